@@ -1,0 +1,25 @@
+import type { Material } from '../materials/material.js';
+
+/** What happens on a side of the outline. Sides that are not named are closed. */
+export type EdgeCondition =
+  /** No flux crosses: A = 0. */
+  | { readonly kind: 'closed' }
+  /** The field crosses at right angles: H along the side is 0 (natural condition). */
+  | { readonly kind: 'crossing' }
+  /** A on this side is plus (repeating) or minus (reversing) A on the side it is matched with in the section. */
+  | { readonly kind: 'repeating' }
+  | { readonly kind: 'reversing' }
+  /** A = Bx y - By x held on the side: a uniform field far away. */
+  | { readonly kind: 'applied'; readonly field: readonly [bx: number, by: number] }
+  /** A given as a function of place, Wb/m. */
+  | { readonly kind: 'potential'; readonly value: (x: number, y: number) => number };
+
+/** What fills the regions and binds the sides, by the names the section gave them. */
+export interface Setup {
+  /** Every region that covers any area must be named. */
+  readonly materials: Readonly<Record<string, Material>>;
+  /** Current density out of the page, A/m^2, by region; absent regions carry none. */
+  readonly currentDensity?: Readonly<Record<string, number>>;
+  /** By side name; sides not named are closed. */
+  readonly edges?: Readonly<Record<string, EdgeCondition>>;
+}

@@ -1,0 +1,284 @@
+import type { Fault } from '../base/fault.js';
+import { InputError } from '../base/fault.js';
+import type { ElementRule } from '../elements/six-node.js';
+import { FULL_RULE, globalNode, gradients, nodeCoordinates, STRAIGHT_RULE } from '../elements/six-node.js';
+import type { LocalLaw } from '../materials/constitutive.js';
+import { evaluateMaterial, remanenceOf } from '../materials/constitutive.js';
+import type { Material } from '../materials/material.js';
+import type { Mesh } from '../mesh/mesh.js';
+import { nodeCount, triangleCount } from '../mesh/mesh.js';
+import type { SymmetricPattern } from '../sparse/pattern.js';
+import type { Setup } from './setup.js';
+import type { Unknowns } from './unknowns.js';
+
+/**
+ * The discrete problem: find u with residual(u) = 0, where for every unknown i
+ *
+ *   residual_i = integral of H . curl(N_i) - J N_i,   H = nu(B) (B - Br),  curl N = (dN/dy, -dN/dx)
+ *
+ * is the derivative of the energy functional; its tangent is symmetric and positive definite.
+ */
+export interface System {
+  readonly mesh: Mesh;
+  readonly unknowns: Unknowns;
+  readonly pattern: SymmetricPattern;
+  /** Int32Array(21 m): for the pairs i >= j of local nodes of triangle t, at 21 t + i (i + 1)/2 + j, the entry of the pattern; -1 where fixed. */
+  readonly scatter: Int32Array;
+  /** Material by region number. */
+  readonly materials: readonly Material[];
+  /** Triangles whose material is a curve. */
+  readonly curved: Int32Array;
+  /** Float64Array(entries): what the triangles of constant reluctivity add to the tangent, whatever the field. */
+  readonly linearValues: Float64Array;
+  /** Float64Array(nodes): integral of J N + nu Br . curl N. */
+  readonly source: Float64Array;
+}
+
+export function buildSystem(mesh: Mesh, setup: Setup, unknowns: Unknowns): System {
+  const materials = materialsOf(mesh, setup);
+  const { pattern, scatter } = patternOf(mesh, unknowns);
+  const curved: number[] = [];
+  const linearValues = new Float64Array(pattern.row.length);
+  const source = new Float64Array(nodeCount(mesh));
+  const density = mesh.regionNames.map((name) => setup.currentDensity?.[name] ?? 0);
+  const work = newWork();
+  for (let t = 0; t < triangleCount(mesh); t++) {
+    const region = mesh.triangleToRegion[t];
+    const material = materials[region];
+    addSource(mesh, t, material, density[region], source, work);
+    if (material.kind === 'curve') {
+      curved.push(t);
+      continue;
+    }
+    const { nu } = evaluateMaterial(material, 0, 0, work.law);
+    work.matrix.fill(0);
+    nodeCoordinates(mesh, t, work.coordinates);
+    const rule = ruleFor(mesh, t, false);
+    for (let q = 0; q < rule.count; q++) {
+      const det = gradients(work.coordinates, rule.slopes, 12 * q, work.grad);
+      addOuter(work.grad, nu * rule.weights[q] * det, work.matrix);
+    }
+    scatterMatrix(mesh, unknowns, scatter, t, work.matrix, linearValues);
+  }
+  return { mesh, unknowns, pattern, scatter, materials, curved: Int32Array.from(curved), linearValues, source };
+}
+
+/** Quadrature for the stiffness of triangle t. */
+export function ruleFor(mesh: Mesh, t: number, varies: boolean): ElementRule {
+  return varies || mesh.curved[t] === 1 ? FULL_RULE : STRAIGHT_RULE;
+}
+
+interface Work {
+  readonly coordinates: Float64Array;
+  readonly grad: Float64Array;
+  /** Lower triangle of the local matrix, rows after one another. */
+  readonly matrix: Float64Array;
+  readonly local: Float64Array;
+  readonly law: LocalLaw;
+}
+const newWork = (): Work => ({
+  coordinates: new Float64Array(12),
+  grad: new Float64Array(12),
+  matrix: new Float64Array(21),
+  local: new Float64Array(6),
+  law: { nu: 0, spread: 0, energy: 0 },
+});
+
+function addOuter(grad: Float64Array, weight: number, matrix: Float64Array): void {
+  let p = 0;
+  for (let i = 0; i < 6; i++) {
+    const gx = weight * grad[i];
+    const gy = weight * grad[6 + i];
+    for (let j = 0; j <= i; j++) matrix[p++] += gx * grad[j] + gy * grad[6 + j];
+  }
+}
+
+function scatterMatrix(
+  mesh: Mesh,
+  unknowns: Unknowns,
+  scatter: Int32Array,
+  t: number,
+  matrix: Float64Array,
+  values: Float64Array,
+): void {
+  const { sign } = unknowns;
+  for (let i = 0, p = 0; i < 6; i++) {
+    const si = sign[globalNode(mesh, t, i)];
+    for (let j = 0; j <= i; j++, p++) {
+      const at = scatter[21 * t + p];
+      if (at < 0) continue;
+      const value = si * sign[globalNode(mesh, t, j)] * matrix[p];
+      // Two nodes of one triangle may share an unknown (a repeating strip one element wide): both orders add up.
+      values[at] +=
+        i !== j && unknowns.unknownOf[globalNode(mesh, t, i)] === unknowns.unknownOf[globalNode(mesh, t, j)]
+          ? 2 * value
+          : value;
+    }
+  }
+}
+
+function addSource(mesh: Mesh, t: number, material: Material, density: number, source: Float64Array, work: Work): void {
+  const [rx, ry] = remanenceOf(material);
+  if (density === 0 && rx === 0 && ry === 0) return;
+  const { nu } = evaluateMaterial(material, 0, 0, work.law);
+  nodeCoordinates(mesh, t, work.coordinates);
+  for (let q = 0; q < FULL_RULE.count; q++) {
+    const weight = FULL_RULE.weights[q] * gradients(work.coordinates, FULL_RULE.slopes, 12 * q, work.grad);
+    for (let i = 0; i < 6; i++) {
+      const curl = rx * work.grad[6 + i] - ry * work.grad[i];
+      source[globalNode(mesh, t, i)] += weight * (density * FULL_RULE.values[6 * q + i] + nu * curl);
+    }
+  }
+}
+
+function materialsOf(mesh: Mesh, setup: Setup): Material[] {
+  const faults: Fault[] = [];
+  const materials = mesh.regionNames.map((name, region): Material => {
+    const material = setup.materials[name];
+    if (material !== undefined) return material;
+    if (mesh.triangleToRegion.includes(region)) {
+      faults.push({ code: 'no-material', key: name, wrong: 'has no material', remedy: 'name it in the setup' });
+    }
+    return { kind: 'linear', muR: 1 };
+  });
+  if (faults.length > 0) throw new InputError(faults);
+  return materials;
+}
+
+/** Pattern of all couplings within triangles, and where each local pair lands in it. */
+function patternOf(mesh: Mesh, unknowns: Unknowns): { pattern: SymmetricPattern; scatter: Int32Array } {
+  const m = triangleCount(mesh);
+  const n = unknowns.count;
+  const columns: number[][] = Array.from({ length: n }, (_, j) => [j]);
+  const at = new Int32Array(6);
+  for (let t = 0; t < m; t++) {
+    for (let i = 0; i < 6; i++) {
+      at[i] = unknowns.unknownOf[globalNode(mesh, t, i)];
+      if (at[i] < 0) continue;
+      for (let j = 0; j < i; j++) {
+        if (at[j] >= 0 && at[j] !== at[i]) columns[Math.min(at[i], at[j])].push(Math.max(at[i], at[j]));
+      }
+    }
+  }
+  const start = new Int32Array(n + 1);
+  columns.forEach((column, j) => {
+    column.sort((a, b) => a - b);
+    let kept = 0;
+    for (const i of column) if (kept === 0 || column[kept - 1] !== i) column[kept++] = i;
+    column.length = kept;
+    start[j + 1] = start[j] + kept;
+  });
+  const row = new Int32Array(start[n]);
+  columns.forEach((column, j) => {
+    row.set(column, start[j]);
+  });
+  const scatter = new Int32Array(21 * m).fill(-1);
+  for (let t = 0; t < m; t++) {
+    for (let i = 0, p = 0; i < 6; i++) {
+      const a = unknowns.unknownOf[globalNode(mesh, t, i)];
+      for (let j = 0; j <= i; j++, p++) {
+        const b = unknowns.unknownOf[globalNode(mesh, t, j)];
+        if (a >= 0 && b >= 0)
+          scatter[21 * t + p] = find(row, start[Math.min(a, b)], start[Math.min(a, b) + 1], Math.max(a, b));
+      }
+    }
+  }
+  return { pattern: { n, start, row }, scatter };
+}
+
+function find(row: Int32Array, from: number, to: number, value: number): number {
+  let [low, high] = [from, to - 1];
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (row[middle] < value) low = middle + 1;
+    else high = middle;
+  }
+  return low;
+}
+
+/** Potential at the nodes from the unknowns, written into `out` (Float64Array(nodes)) and returned. */
+export function potentialOf(unknowns: Unknowns, u: Float64Array, out: Float64Array): Float64Array {
+  for (let node = 0; node < out.length; node++) {
+    const i = unknowns.unknownOf[node];
+    out[node] = i < 0 ? unknowns.fixed[node] : unknowns.sign[node] * u[i];
+  }
+  return out;
+}
+
+/** Sum over the nodes of each unknown, with their signs, of a nodal vector: what a functional of A is to the unknowns. */
+export function gatherToUnknowns(unknowns: Unknowns, nodal: Float64Array, out: Float64Array): Float64Array {
+  out.fill(0);
+  for (let node = 0; node < nodal.length; node++) {
+    const i = unknowns.unknownOf[node];
+    if (i >= 0) out[i] += unknowns.sign[node] * nodal[node];
+  }
+  return out;
+}
+
+/**
+ * Residual at the given potential, by unknowns, and, where `tangent` is given, the lower triangle of its derivative.
+ * @param potential  Float64Array(nodes), Wb/m
+ * @param residual  Float64Array(n), A; overwritten
+ * @param tangent  Float64Array(entries), m/H; overwritten
+ */
+export function assemble(
+  system: System,
+  potential: Float64Array,
+  residual: Float64Array,
+  tangent?: Float64Array,
+): void {
+  const { mesh, unknowns, materials, source } = system;
+  const nodal = new Float64Array(potential.length);
+  const work = newWork();
+  for (let t = 0; t < triangleCount(mesh); t++) {
+    const material = materials[mesh.triangleToRegion[t]];
+    if (material.kind !== 'curve') addResidual(mesh, t, material, potential, nodal, work);
+  }
+  tangent?.set(system.linearValues);
+  for (const t of system.curved) {
+    work.matrix.fill(0);
+    addResidual(mesh, t, materials[mesh.triangleToRegion[t]], potential, nodal, work);
+    if (tangent !== undefined) scatterMatrix(mesh, unknowns, system.scatter, t, work.matrix, tangent);
+  }
+  for (let node = 0; node < nodal.length; node++) nodal[node] -= source[node];
+  gatherToUnknowns(unknowns, nodal, residual);
+}
+
+/** Adds integral nu grad A . grad N_i (the remanence is in `source`), and for curves the tangent to work.matrix. */
+function addResidual(
+  mesh: Mesh,
+  t: number,
+  material: Material,
+  potential: Float64Array,
+  nodal: Float64Array,
+  work: Work,
+): void {
+  const { coordinates, grad, local, law } = work;
+  const varies = material.kind === 'curve';
+  const rule = ruleFor(mesh, t, varies);
+  nodeCoordinates(mesh, t, coordinates);
+  for (let i = 0; i < 6; i++) local[i] = potential[globalNode(mesh, t, i)];
+  for (let q = 0; q < rule.count; q++) {
+    const weight = rule.weights[q] * gradients(coordinates, rule.slopes, 12 * q, grad);
+    let [gx, gy] = [0, 0];
+    for (let i = 0; i < 6; i++) {
+      gx += local[i] * grad[i];
+      gy += local[i] * grad[6 + i];
+    }
+    evaluateMaterial(material, gy, -gx, law);
+    const flux = weight * law.nu;
+    for (let i = 0; i < 6; i++) nodal[globalNode(mesh, t, i)] += flux * (gx * grad[i] + gy * grad[6 + i]);
+    if (!varies) continue;
+    addOuter(grad, flux, work.matrix);
+    addRankOne(grad, gx, gy, weight * law.spread, work.matrix);
+  }
+}
+
+/** The part of the tangent from d nu: spread (B . curl N_i)(B . curl N_j) = spread (grad A . grad N_i)(grad A . grad N_j). */
+function addRankOne(grad: Float64Array, gx: number, gy: number, weight: number, matrix: Float64Array): void {
+  let p = 0;
+  for (let i = 0; i < 6; i++) {
+    const di = weight * (gx * grad[i] + gy * grad[6 + i]);
+    for (let j = 0; j <= i; j++) matrix[p++] += di * (gx * grad[j] + gy * grad[6 + j]);
+  }
+}

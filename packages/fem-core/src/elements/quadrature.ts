@@ -1,0 +1,58 @@
+/** Points and weights on the reference triangle (0,0) (1,0) (0,1); weights sum to its area, 1/2. */
+export interface TriangleRule {
+  /** Highest total degree integrated exactly. */
+  readonly degree: number;
+  /** Float64Array(2q): reference coordinates. */
+  readonly points: Float64Array;
+  /** Float64Array(q). */
+  readonly weights: Float64Array;
+}
+
+function symmetricRule(degree: number, orbits: readonly (readonly [share: number, weight: number])[]): TriangleRule {
+  const points: number[] = [];
+  const weights: number[] = [];
+  for (const [a, w] of orbits) {
+    const b = 1 - 2 * a;
+    if (Math.abs(a - b) < 1e-12) {
+      points.push(a, a);
+      weights.push(w / 2);
+    } else {
+      points.push(a, a, b, a, a, b);
+      weights.push(w / 2, w / 2, w / 2);
+    }
+  }
+  return { degree, points: Float64Array.from(points), weights: Float64Array.from(weights) };
+}
+
+const root15 = Math.sqrt(15);
+
+/** Strang, Fix, An Analysis of the Finite Element Method, 1973: three inner points, exact to degree 2. */
+export const RULE_2 = symmetricRule(2, [[1 / 6, 1 / 3]]);
+
+/** Radon, Zur mechanischen Kubatur, 1948: seven points, exact to degree 5. */
+export const RULE_5 = symmetricRule(5, [
+  [1 / 3, 9 / 40],
+  [(6 - root15) / 21, (155 - root15) / 1200],
+  [(6 + root15) / 21, (155 + root15) / 1200],
+]);
+
+/** Gauss-Legendre points on [0, 1] with n = 2 ... 8 points: exact to degree 2 n - 1. */
+export function gaussLegendre(n: number): { readonly points: Float64Array; readonly weights: Float64Array } {
+  const points = new Float64Array(n);
+  const weights = new Float64Array(n);
+  for (let i = 0; i < n; i++) {
+    let x = Math.cos((Math.PI * (i + 0.75)) / (n + 0.5));
+    let slope = 1;
+    for (let step = 0; step < 100; step++) {
+      let [p0, p1] = [1, x];
+      for (let k = 2; k <= n; k++) [p0, p1] = [p1, ((2 * k - 1) * x * p1 - (k - 1) * p0) / k];
+      slope = (n * (x * p1 - p0)) / (x * x - 1);
+      const change = p1 / slope;
+      x -= change;
+      if (Math.abs(change) < 1e-16) break;
+    }
+    points[n - 1 - i] = 0.5 * (1 + x);
+    weights[n - 1 - i] = 1 / ((1 - x * x) * slope * slope);
+  }
+  return { points, weights };
+}

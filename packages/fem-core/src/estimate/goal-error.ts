@@ -1,0 +1,125 @@
+import type { System } from '../assembly/system.js';
+import { gatherToUnknowns, potentialOf } from '../assembly/system.js';
+import { FULL_RULE, globalNode, gradients, nodeCoordinates } from '../elements/six-node.js';
+import type { Field } from '../field/field.js';
+import type { Functional } from '../field/functionals.js';
+import type { LocalLaw } from '../materials/constitutive.js';
+import { evaluateMaterial } from '../materials/constitutive.js';
+import type { Material } from '../materials/material.js';
+import { triangleCount } from '../mesh/mesh.js';
+import type { Factor } from '../sparse/cholesky.js';
+import { solve } from '../sparse/cholesky.js';
+import type { RecoveredGradient } from './recovery.js';
+import { recoverGradients } from './recovery.js';
+
+/** Estimated errors of a field. */
+export interface ErrorEstimate {
+  /** Per goal, per triangle: Float64Array(m), its share of the goal's error, in the goal's unit, not negative. */
+  readonly goals: readonly Float64Array[];
+  /** Per goal: sum of the shares, a bound in practice since shares of either sign would cancel. */
+  readonly bounds: readonly number[];
+  /** Energy norm of the error squared, halved, J/m: estimate of the error of the stored energy. */
+  readonly energy: number;
+  /** The gradient of A as recovered, better than the elements' own. */
+  readonly recovered: RecoveredGradient;
+}
+
+/**
+ * Dual-weighted error estimate of linear functionals of a solved field. With z the solution of the adjoint problem
+ * K z = g under the tangent K at the solution, J(A) - J(A_h) = K(e_A, e_z) for the errors of both (Galerkin orthogonality),
+ * and both errors are read off the gap between recovered and element gradients:
+ *
+ *   share of triangle T = | integral over T of  e_z . (nu + spread g g^T) e_A |.
+ *
+ * Becker, Rannacher, An optimal control approach to a posteriori error estimation, Acta Numerica 10, 2001; gradients by
+ * `recoverGradients`.
+ */
+export function estimateGoalErrors(
+  system: System,
+  field: Field,
+  factor: Factor,
+  goals: readonly Functional[],
+): ErrorEstimate {
+  const { mesh } = field;
+  const duals = goals.map((goal) => solveAdjoint(system, factor, goal));
+  const [recovered, ...recoveredDuals] = recoverGradients(mesh, smoothParts(field), [field.potential, ...duals]);
+  const m = triangleCount(mesh);
+  const shares = goals.map(() => new Float64Array(m));
+  const at = new Float64Array(12);
+  const grad = new Float64Array(12);
+  const law: LocalLaw = { nu: 0, spread: 0, energy: 0 };
+  let energy = 0;
+  for (let t = 0; t < m; t++) {
+    const material = system.materials[mesh.triangleToRegion[t]];
+    nodeCoordinates(mesh, t, at);
+    for (let q = 0; q < FULL_RULE.count; q++) {
+      const weight = FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
+      const [gx, gy, ex, ey] = gradientError(field, field.potential, recovered, t, q, grad);
+      evaluateMaterial(material, gy, -gx, law);
+      const along = gx * ex + gy * ey;
+      energy += 0.5 * weight * (law.nu * (ex * ex + ey * ey) + law.spread * along * along);
+      for (let k = 0; k < goals.length; k++) {
+        const [, , zx, zy] = gradientError(field, duals[k], recoveredDuals[k], t, q, grad);
+        shares[k][t] += weight * (law.nu * (ex * zx + ey * zy) + law.spread * along * (gx * zx + gy * zy));
+      }
+    }
+    for (const share of shares) share[t] = Math.abs(share[t]);
+  }
+  return { goals: shares, bounds: shares.map((share) => share.reduce((a, b) => a + b, 0)), energy, recovered };
+}
+
+function solveAdjoint(system: System, factor: Factor, goal: Functional): Float64Array {
+  const right = gatherToUnknowns(system.unknowns, goal, new Float64Array(system.unknowns.count));
+  const z = solve(factor, right, right);
+  const { unknowns } = system;
+  return potentialOf({ ...unknowns, fixed: new Float64Array(goal.length) }, z, new Float64Array(goal.length));
+}
+
+const result: [number, number, number, number] = [0, 0, 0, 0];
+
+/** Element gradient of a nodal function at a quadrature point, and recovered less element gradient. */
+function gradientError(
+  field: Field,
+  nodal: Float64Array,
+  recovered: RecoveredGradient,
+  t: number,
+  q: number,
+  grad: Float64Array,
+): readonly [gx: number, gy: number, ex: number, ey: number] {
+  let [gx, gy, rx, ry] = [0, 0, 0, 0];
+  for (let i = 0; i < 6; i++) {
+    const value = nodal[globalNode(field.mesh, t, i)];
+    gx += value * grad[i];
+    gy += value * grad[6 + i];
+    const n = FULL_RULE.values[6 * q + i];
+    rx += n * recovered[12 * t + i];
+    ry += n * recovered[12 * t + 6 + i];
+  }
+  result[0] = gx;
+  result[1] = gy;
+  result[2] = rx - gx;
+  result[3] = ry - gy;
+  return result;
+}
+
+/** Regions of one law belong to one part, across which the gradient has no jump: air and a winding without current. */
+function smoothParts(field: Field): Int32Array {
+  const { mesh, setup } = field;
+  const seen: Material[] = [];
+  const partOf = mesh.regionNames.map((name) => {
+    const material = setup.materials[name];
+    if (material === undefined) return -1;
+    const known = seen.findIndex((other) => sameLaw(other, material));
+    return known >= 0 ? known : seen.push(material) - 1;
+  });
+  return Int32Array.from(mesh.triangleToRegion, (region) => partOf[region]);
+}
+
+function sameLaw(a: Material, b: Material): boolean {
+  if (a.kind === 'linear' && b.kind === 'linear') return a.muR === b.muR;
+  if (a.kind === 'curve' && b.kind === 'curve') return a.curve === b.curve;
+  if (a.kind === 'magnet' && b.kind === 'magnet') {
+    return a.recoil === b.recoil && a.remanence[0] === b.remanence[0] && a.remanence[1] === b.remanence[1];
+  }
+  return false;
+}

@@ -1,0 +1,44 @@
+import type { Mesh } from '../mesh/mesh.js';
+import { triangleCount } from '../mesh/mesh.js';
+
+/** Smallest share of its present size an element is asked to shrink to in one go. */
+const SMALLEST = 0.25;
+
+/**
+ * Longest edges that would bring the summed error down to `target` with the fewest triangles. With quadratic elements a
+ * triangle's share of a functional's error falls with the fourth power of size per area of it; minimising the count
+ * sum(r^-2) under sum(share r^4) = target gives r = (c / share)^(1/6), the same share for every triangle.
+ *
+ * @param shares  Float64Array(m), not negative
+ * @returns Float64Array(m), metres; Infinity where the present size will do
+ */
+export function wantedSizes(mesh: Mesh, shares: Float64Array, target: number): Float64Array {
+  const m = triangleCount(mesh);
+  const ratio = (c: number, share: number): number =>
+    share <= 0 ? 1 : Math.min(1, Math.max(SMALLEST, (c / share) ** (1 / 6)));
+  const total = (c: number): number => shares.reduce((sum, share) => sum + share * ratio(c, share) ** 4, 0);
+  let [low, high] = [0, shares.reduce((a, b) => Math.max(a, b), 0)];
+  for (let i = 0; i < 50; i++) {
+    const middle = 0.5 * (low + high);
+    if (total(middle) > target) high = middle;
+    else low = middle;
+  }
+  const wanted = new Float64Array(m).fill(Infinity);
+  for (let t = 0; t < m; t++) {
+    const r = ratio(low, shares[t]);
+    // An element asked for the limit ends up about 0.7 of it long, so mild wishes are met by the neighbours' refinement.
+    if (r < 0.85) wanted[t] = 1.15 * r * longestEdge(mesh, t);
+  }
+  return wanted;
+}
+
+function longestEdge(mesh: Mesh, t: number): number {
+  const { xy, triangles } = mesh;
+  let longest = 0;
+  for (let k = 0; k < 3; k++) {
+    const a = 2 * triangles[3 * t + k];
+    const b = 2 * triangles[3 * t + ((k + 1) % 3)];
+    longest = Math.max(longest, Math.hypot(xy[a] - xy[b], xy[a + 1] - xy[b + 1]));
+  }
+  return longest;
+}

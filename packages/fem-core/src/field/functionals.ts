@@ -1,0 +1,75 @@
+import { FULL_RULE, globalNode, gradients, nodeCoordinates, shapeValues } from '../elements/six-node.js';
+import type { Mesh } from '../mesh/mesh.js';
+import { nodeCount, triangleCount } from '../mesh/mesh.js';
+import type { Spot } from './locate.js';
+
+/**
+ * A linear functional of the potential as a nodal vector g, Float64Array(nodes): J(A) = g . A. The answers that steer an
+ * adaptive solution are told to it in this form.
+ */
+export type Functional = Float64Array;
+
+export function applyFunctional(functional: Functional, potential: Float64Array): number {
+  let sum = 0;
+  for (let i = 0; i < functional.length; i++) sum += functional[i] * potential[i];
+  return sum;
+}
+
+/** J(A) = integral of weight(x, y) A over the named regions. */
+export function weightedIntegral(
+  mesh: Mesh,
+  regions: readonly string[],
+  weight: (x: number, y: number) => number,
+): Functional {
+  const g = new Float64Array(nodeCount(mesh));
+  eachPoint(mesh, regions, (t, q, x, y, area) => {
+    const w = area * weight(x, y);
+    for (let i = 0; i < 6; i++) g[globalNode(mesh, t, i)] += w * FULL_RULE.values[6 * q + i];
+  });
+  return g;
+}
+
+/** J(A) = integral of wx Bx + wy By over the named regions, with the weights (wx, wy) given by place. */
+export function weightedFlux(
+  mesh: Mesh,
+  regions: readonly string[],
+  weight: (x: number, y: number, triangle: number, point: number) => readonly [wx: number, wy: number],
+): Functional {
+  const g = new Float64Array(nodeCount(mesh));
+  eachPoint(mesh, regions, (t, q, x, y, area, grad) => {
+    const [wx, wy] = weight(x, y, t, q);
+    for (let i = 0; i < 6; i++) g[globalNode(mesh, t, i)] += area * (wx * grad[6 + i] - wy * grad[i]);
+  });
+  return g;
+}
+
+/** J(A) = A at a place. */
+export function pointPotential(mesh: Mesh, spot: Spot): Functional {
+  const g = new Float64Array(nodeCount(mesh));
+  const shapes = shapeValues(spot.xi, spot.eta, new Float64Array(6));
+  for (let i = 0; i < 6; i++) g[globalNode(mesh, spot.triangle, i)] += shapes[i];
+  return g;
+}
+
+function eachPoint(
+  mesh: Mesh,
+  regions: readonly string[],
+  visit: (t: number, q: number, x: number, y: number, area: number, grad: Float64Array) => void,
+): void {
+  const wanted = mesh.regionNames.map((name) => regions.includes(name));
+  const at = new Float64Array(12);
+  const grad = new Float64Array(12);
+  for (let t = 0; t < triangleCount(mesh); t++) {
+    if (!wanted[mesh.triangleToRegion[t]]) continue;
+    nodeCoordinates(mesh, t, at);
+    for (let q = 0; q < FULL_RULE.count; q++) {
+      const area = FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
+      let [x, y] = [0, 0];
+      for (let i = 0; i < 6; i++) {
+        x += FULL_RULE.values[6 * q + i] * at[2 * i];
+        y += FULL_RULE.values[6 * q + i] * at[2 * i + 1];
+      }
+      visit(t, q, x, y, area, grad);
+    }
+  }
+}

@@ -1,0 +1,167 @@
+import { FULL_RULE, globalNode, gradients, nodeCoordinates } from '../elements/six-node.js';
+import type { LocalLaw } from '../materials/constitutive.js';
+import { evaluateMaterial, remanenceOf } from '../materials/constitutive.js';
+import type { Material } from '../materials/material.js';
+import type { Mesh } from '../mesh/mesh.js';
+import { triangleCount } from '../mesh/mesh.js';
+import type { Field } from './field.js';
+
+/** What is known at one quadrature point of a field. */
+export interface FieldSample {
+  triangle: number;
+  x: number;
+  y: number;
+  /** Quadrature weight times det J, m^2: sums to areas. */
+  area: number;
+  /** Potential, Wb/m. */
+  a: number;
+  bx: number;
+  by: number;
+  hx: number;
+  hy: number;
+  /** J/m^3. */
+  energy: number;
+  nu: number;
+  spread: number;
+  material: Material;
+  /** Float64Array(12): d/dx of the six shape functions here, then d/dy, 1/m. */
+  readonly grad: Float64Array;
+}
+
+/**
+ * Visits the quadrature points (seven a triangle) of all triangles of the named regions, in the order of the mesh. The
+ * sample object is used again at every visit.
+ */
+export function forEachSample(
+  field: Field,
+  regions: readonly string[] | 'all',
+  visit: (sample: FieldSample) => void,
+): void {
+  const { mesh, setup, potential } = field;
+  const wanted = mesh.regionNames.map((name) => regions === 'all' || regions.includes(name));
+  const at = new Float64Array(12);
+  const grad = new Float64Array(12);
+  const law: LocalLaw = { nu: 0, spread: 0, energy: 0 };
+  const sample: FieldSample = {
+    triangle: 0,
+    x: 0,
+    y: 0,
+    area: 0,
+    a: 0,
+    bx: 0,
+    by: 0,
+    hx: 0,
+    hy: 0,
+    energy: 0,
+    nu: 0,
+    spread: 0,
+    material: { kind: 'linear', muR: 1 },
+    grad,
+  };
+  for (let t = 0; t < triangleCount(mesh); t++) {
+    if (!wanted[mesh.triangleToRegion[t]]) continue;
+    nodeCoordinates(mesh, t, at);
+    const material = setup.materials[mesh.regionNames[mesh.triangleToRegion[t]]];
+    const [rx, ry] = remanenceOf(material);
+    for (let q = 0; q < FULL_RULE.count; q++) {
+      const det = gradients(at, FULL_RULE.slopes, 12 * q, grad);
+      let [x, y, a, gx, gy] = [0, 0, 0, 0, 0];
+      for (let i = 0; i < 6; i++) {
+        const n = FULL_RULE.values[6 * q + i];
+        const value = potential[globalNode(mesh, t, i)];
+        x += n * at[2 * i];
+        y += n * at[2 * i + 1];
+        a += n * value;
+        gx += value * grad[i];
+        gy += value * grad[6 + i];
+      }
+      evaluateMaterial(material, gy, -gx, law);
+      sample.triangle = t;
+      sample.x = x;
+      sample.y = y;
+      sample.area = FULL_RULE.weights[q] * det;
+      sample.a = a;
+      sample.bx = gy;
+      sample.by = -gx;
+      sample.hx = law.nu * (gy - rx);
+      sample.hy = law.nu * (-gx - ry);
+      sample.energy = law.energy;
+      sample.nu = law.nu;
+      sample.spread = law.spread;
+      sample.material = material;
+      visit(sample);
+    }
+  }
+}
+
+export interface RegionMeans {
+  /** m^2. */
+  readonly area: number;
+  /** T. */
+  readonly bx: number;
+  readonly by: number;
+  /** Mean of |B|, T. */
+  readonly b: number;
+  /** Wb/m. */
+  readonly a: number;
+}
+
+/** Means over the named regions together. */
+export function meanOver(field: Field, regions: readonly string[]): RegionMeans {
+  let [area, bx, by, b, a] = [0, 0, 0, 0, 0];
+  forEachSample(field, regions, (s) => {
+    area += s.area;
+    bx += s.area * s.bx;
+    by += s.area * s.by;
+    b += s.area * Math.hypot(s.bx, s.by);
+    a += s.area * s.a;
+  });
+  return { area, bx: bx / area, by: by / area, b: b / area, a: a / area };
+}
+
+export interface Energies {
+  /** J per metre of depth: air B^2/(2 mu0), curve integral of H dB, magnet (B - Br)^2/(2 mu). */
+  readonly energy: number;
+  /** J per metre of depth: integral of H . B - energy. */
+  readonly coenergy: number;
+}
+
+export function energiesOf(field: Field, regions: readonly string[] | 'all' = 'all'): Energies {
+  let [energy, product] = [0, 0];
+  forEachSample(field, regions, (s) => {
+    energy += s.area * s.energy;
+    product += s.area * (s.hx * s.bx + s.hy * s.by);
+  });
+  return { energy, coenergy: product - energy };
+}
+
+/** Flux density that |B| exceeds in the given share of the regions' area, T (corners are singular, so a maximum means nothing). */
+export function exceededIn(field: Field, regions: readonly string[], share: number): number {
+  const samples: { b: number; area: number }[] = [];
+  let total = 0;
+  forEachSample(field, regions, (s) => {
+    samples.push({ b: Math.hypot(s.bx, s.by), area: s.area });
+    total += s.area;
+  });
+  samples.sort((p, q) => q.b - p.b);
+  let passed = 0;
+  for (const { b, area } of samples) {
+    passed += area;
+    if (passed >= share * total) return b;
+  }
+  return 0;
+}
+
+/** Area of each region, m^2, curved edges included. */
+export function regionAreas(mesh: Mesh): number[] {
+  const areas = mesh.regionNames.map(() => 0);
+  const at = new Float64Array(12);
+  const grad = new Float64Array(12);
+  for (let t = 0; t < triangleCount(mesh); t++) {
+    nodeCoordinates(mesh, t, at);
+    for (let q = 0; q < FULL_RULE.count; q++) {
+      areas[mesh.triangleToRegion[t]] += FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
+    }
+  }
+  return areas;
+}

@@ -1,0 +1,67 @@
+/**
+ * Plane magnetostatic fields by finite elements. The public names, floor by floor; data flows one way:
+ * section -> mesh -> system -> field -> answer.
+ */
+
+export type { EdgeCondition, Setup } from './assembly/setup.js';
+export type { System } from './assembly/system.js';
+export { assemble, buildSystem } from './assembly/system.js';
+export type { Unknowns } from './assembly/unknowns.js';
+export { numberUnknowns } from './assembly/unknowns.js';
+export { MU0 } from './base/constants.js';
+export type { Fault, Place } from './base/fault.js';
+export { formatFault, InputError } from './base/fault.js';
+export { unreachable } from './base/unreachable.js';
+export { gaussLegendre } from './elements/quadrature.js';
+export type { ErrorEstimate } from './estimate/goal-error.js';
+export { estimateGoalErrors } from './estimate/goal-error.js';
+export type { RecoveredGradient } from './estimate/recovery.js';
+export { recoverGradients } from './estimate/recovery.js';
+export type { Field } from './field/field.js';
+export type { Force } from './field/force.js';
+export { forceOn, stressFunctional, stressThrough } from './field/force.js';
+export type { Functional } from './field/functionals.js';
+export { applyFunctional, pointPotential, weightedFlux, weightedIntegral } from './field/functionals.js';
+export type { Energies, FieldSample, RegionMeans } from './field/integrals.js';
+export { energiesOf, exceededIn, forEachSample, meanOver, regionAreas } from './field/integrals.js';
+export type { Locator, Spot } from './field/locate.js';
+export { buildLocator } from './field/locate.js';
+export type { FieldValue } from './field/values.js';
+export { fluxBetween, valueAt, valuesAlong } from './field/values.js';
+export type { Curve } from './geometry/curve.js';
+export { sidesOf } from './geometry/planar-graph.js';
+export type { Point, Region, Section, Shape } from './geometry/section.js';
+export type { Document, Path, TreeNode } from './io/document.js';
+export { formatPath, placeOf, placeOfKey, plainValue } from './io/document.js';
+export { findNearest } from './io/nearest.js';
+export type { Dimension, Misreading } from './io/quantity.js';
+export { parseAnyQuantity, parsePrice, parseQuantity } from './io/quantity.js';
+export type { Setting } from './io/settings.js';
+export { applySettings } from './io/settings.js';
+export { listWords, showText, showValue } from './io/show.js';
+export type { PictureCopy, PictureData, PictureOptions } from './io/svg-picture.js';
+export { colourScaleEnd, drawField } from './io/svg-picture.js';
+export type { VtuData } from './io/vtu.js';
+export { writeVtu } from './io/vtu.js';
+export { escapeXml } from './io/xml-text.js';
+export { readDocument } from './io/yaml.js';
+export type { BHCurve, CurvePoint } from './materials/bh-curve.js';
+export { buildBHCurve, evaluateCurve, findTableFaults } from './materials/bh-curve.js';
+export type { Material } from './materials/material.js';
+export type { MeshQuality } from './mesh/check-mesh.js';
+export { checkMesh, measureMesh } from './mesh/check-mesh.js';
+export type { Mesh } from './mesh/mesh.js';
+export { cornerCount, edgeCount, nodeCount, nodePoint, triangleCount, triangleNodes } from './mesh/mesh.js';
+export { meshSection, refineMesh } from './mesh/mesh-section.js';
+export type { QualityLimits } from './mesh/refine.js';
+export type { AdaptiveOptions, AdaptiveSolution, Goal, SolvedField } from './pipeline.js';
+export { solveAdaptively, solveOnMesh, solveSection } from './pipeline.js';
+export type { NewtonOptions, Solution, SolveReport } from './solve/newton.js';
+export { solveNewton } from './solve/newton.js';
+export type { Analysis } from './sparse/analysis.js';
+export { analyse } from './sparse/analysis.js';
+export type { Factor, NotPositive } from './sparse/cholesky.js';
+export { factor, solve } from './sparse/cholesky.js';
+export { minimumDegreeOrder } from './sparse/minimum-degree.js';
+export type { SymmetricPattern } from './sparse/pattern.js';
+export { multiply } from './sparse/pattern.js';

@@ -1,0 +1,127 @@
+import { MU0 } from '../base/constants.js';
+import type { Fault } from '../base/fault.js';
+import { InputError } from '../base/fault.js';
+
+/**
+ * A magnetisation curve as H(B), odd in B: piecewise cubic through the rows of a table, going on with slope mu0 beyond
+ * the last. Made by `buildBHCurve`.
+ */
+export interface BHCurve {
+  /** Float64Array(k), T: rising, b[0] = 0. */
+  readonly b: Float64Array;
+  /** Float64Array(k), A/m: rising, h[0] = 0. */
+  readonly h: Float64Array;
+  /** Float64Array(k), m/H: dH/dB at the rows. */
+  readonly slope: Float64Array;
+  /** Float64Array(k), J/m^3: integral of H dB from 0 to each row. */
+  readonly energy: Float64Array;
+}
+
+/**
+ * Monotone piecewise cubic H(B): slopes at the rows by the weighted harmonic mean of the neighbouring chords, which keeps
+ * every piece rising (Fritsch, Butland, A method for constructing local monotone piecewise cubic interpolants, 1984);
+ * at the last row the slope is that of the continuation, 1/mu0, as far as monotony allows.
+ *
+ * @param rows  [H in A/m, B in T]; a first row [0, 0] is added where it is missing
+ * @throws InputError for fewer than two rows, numbers that are not finite or negative, columns that do not both rise, and
+ * segments flatter than mu0 (no material is)
+ */
+export function buildBHCurve(rows: readonly (readonly [H: number, B: number])[]): BHCurve {
+  const faults = findTableFaults(rows);
+  if (faults.length > 0) throw new InputError(faults);
+  const all = rows[0][0] === 0 && rows[0][1] === 0 ? rows : [[0, 0] as const, ...rows];
+  const h = Float64Array.from(all, (row) => row[0]);
+  const b = Float64Array.from(all, (row) => row[1]);
+  const slope = slopesOf(b, h);
+  const energy = new Float64Array(b.length);
+  for (let i = 1; i < b.length; i++) {
+    const d = b[i] - b[i - 1]; // integral of the cubic Hermite piece
+    energy[i] = energy[i - 1] + d * (0.5 * (h[i - 1] + h[i]) + (d / 12) * (slope[i - 1] - slope[i]));
+  }
+  return { b, h, slope, energy };
+}
+
+/** Everything wrong with a B-H table; `key` of a fault is `row N`, counted from 1. */
+export function findTableFaults(rows: readonly (readonly [H: number, B: number])[]): Fault[] {
+  const faults: Fault[] = [];
+  const tell = (row: number, wrong: string, remedy: string): void => {
+    faults.push({ code: 'bad-bh-table', key: `row ${row}`, wrong, remedy });
+  };
+  if (rows.length === 0 || (rows.length === 1 && rows[0][1] === 0)) {
+    tell(1, 'the table has too few rows', 'give at least two rows [H in A/m, B in T] beyond [0, 0]');
+  }
+  let [h0, b0] = [0, 0];
+  rows.forEach(([h, b], i) => {
+    if (!Number.isFinite(h) || !Number.isFinite(b)) {
+      tell(i + 1, `holds a number that is not finite: [${h}, ${b}]`, 'give finite numbers');
+    } else if (h < 0 || b < 0) {
+      tell(i + 1, `is negative: [${h}, ${b}]`, 'give the first quadrant only');
+    } else if (!(i === 0 && h === 0 && b === 0)) {
+      if (h <= h0 || b <= b0) {
+        tell(
+          i + 1,
+          `does not rise in both columns: [${h}, ${b}] after [${h0}, ${b0}]`,
+          'order the rows so that H and B both rise',
+        );
+      } else if (b - b0 < 0.999 * MU0 * (h - h0)) {
+        tell(
+          i + 1,
+          `rises less than vacuum would: [${h}, ${b}] after [${h0}, ${b0}]`,
+          'check the units: H in A/m, B (not polarisation) in T',
+        );
+      }
+    }
+    [h0, b0] = [h, b];
+  });
+  return faults;
+}
+
+function slopesOf(b: Float64Array, h: Float64Array): Float64Array {
+  const last = b.length - 1;
+  const slope = new Float64Array(last + 1);
+  const chord = (i: number): number => (h[i + 1] - h[i]) / (b[i + 1] - b[i]);
+  for (let i = 1; i < last; i++) {
+    const [d0, d1] = [b[i] - b[i - 1], b[i + 1] - b[i]];
+    const [w0, w1] = [2 * d1 + d0, d1 + 2 * d0];
+    slope[i] = (w0 + w1) / (w0 / chord(i - 1) + w1 / chord(i));
+  }
+  // H(B) is odd, so its chord over [-b1, b1] is the first chord; the rows next to 0 pull towards it.
+  slope[0] = chord(0);
+  slope[last] = Math.min(1 / MU0, 3 * chord(last - 1));
+  return slope;
+}
+
+/** H in A/m and dH/dB in m/H at flux density b >= 0, and the energy density integral of H dB in J/m^3. */
+export interface CurvePoint {
+  h: number;
+  slope: number;
+  energy: number;
+}
+
+/** Evaluates the curve at b >= 0 (T); writes into `out` and returns it. */
+export function evaluateCurve(curve: BHCurve, b: number, out: CurvePoint): CurvePoint {
+  const last = curve.b.length - 1;
+  if (b >= curve.b[last]) {
+    const d = b - curve.b[last];
+    out.h = curve.h[last] + d / MU0;
+    out.slope = 1 / MU0;
+    out.energy = curve.energy[last] + d * (curve.h[last] + (0.5 * d) / MU0);
+    return out;
+  }
+  let [low, high] = [0, last];
+  while (high - low > 1) {
+    const middle = (low + high) >> 1;
+    if (curve.b[middle] <= b) low = middle;
+    else high = middle;
+  }
+  const d = curve.b[high] - curve.b[low];
+  const s = (b - curve.b[low]) / d;
+  const [h0, h1, m0, m1] = [curve.h[low], curve.h[high], d * curve.slope[low], d * curve.slope[high]];
+  // Hermite piece h0 + s (m0 + s (c + s e)) with value and slope given at both ends.
+  const c = 3 * (h1 - h0) - 2 * m0 - m1;
+  const e = 2 * (h0 - h1) + m0 + m1;
+  out.h = h0 + s * (m0 + s * (c + s * e));
+  out.slope = (m0 + s * (2 * c + 3 * s * e)) / d;
+  out.energy = curve.energy[low] + d * s * (h0 + s * (m0 / 2 + s * (c / 3 + (s * e) / 4)));
+  return out;
+}

@@ -1,0 +1,367 @@
+import Delaunator from 'delaunator';
+import { InputError } from '../base/fault.js';
+import { pointOnCurve } from '../geometry/curve.js';
+import type { PlanarGraph } from '../geometry/planar-graph.js';
+import { boundsOf, contains } from '../geometry/planar-graph.js';
+import type { Section } from '../geometry/section.js';
+import type { Triangulation } from './triangulation.js';
+import {
+  addVertex,
+  circleHolds,
+  emptyTriangulation,
+  flip,
+  inUse,
+  nextHalf,
+  previousHalf,
+  releaseSlot,
+  takeSlot,
+  triangleOf,
+  turn,
+} from './triangulation.js';
+
+/** Region number of what lies outside the outline; such triangles are removed. */
+const OUTSIDE = -1;
+
+/**
+ * Constrained Delaunay triangulation of a section: `delaunator` triangulates the points, the segments are recovered by
+ * flips (Sloan, A fast algorithm for generating constrained Delaunay triangulations, 1993), Lawson's flips with exact
+ * predicates make it Delaunay, and each part between segments gets its region: 0 the background, i + 1 region i.
+ * Lines that turn out to part nothing (covered by a later region) are dropped.
+ */
+export function triangulateGraph(section: Section, given: PlanarGraph): Triangulation {
+  let graph = clearLenses(given);
+  for (;;) {
+    const tri = delaunayOf(graph);
+    const boxed = tri.vertexCount - 4;
+    recoverSegments(tri, graph);
+    lawson(tri);
+    nameRegions(tri, section);
+    const useless = uselessSegments(tri);
+    if (useless.size === 0) {
+      removeOutside(tri, boxed);
+      return tri;
+    }
+    graph = withoutSegments(graph, useless);
+  }
+}
+
+/** Halves chords until no point lies between a chord and its arc, where it would change sides at a later cut. */
+function clearLenses(graph: PlanarGraph): PlanarGraph {
+  const { curves } = graph;
+  if (curves.every((curve) => curve.kind === 'line')) return graph;
+  const points = Array.from(graph.points);
+  const segments = Array.from(graph.segments);
+  const segmentToCurve = Array.from(graph.segmentToCurve);
+  const segmentToSide = Array.from(graph.segmentToSide);
+  const segmentToMatch = Array.from(graph.segmentToMatch);
+  for (let s = 0; s < segmentToCurve.length; s++) {
+    const curve = curves[segmentToCurve[s]];
+    if (curve.kind !== 'arc') continue;
+    for (let halvings = 0; halvings < 20; halvings++) {
+      const [a, b] = [segments[2 * s], segments[2 * s + 1]];
+      const [ax, ay, bx, by] = [points[2 * a], points[2 * a + 1], points[2 * b], points[2 * b + 1]];
+      const beyond = (x: number, y: number): number => (bx - ax) * (y - ay) - (by - ay) * (x - ax);
+      const away = beyond(curve.centre[0], curve.centre[1]);
+      let held = false;
+      for (let p = 0; p < points.length / 2 && !held; p++) {
+        if (p === a || p === b) continue;
+        const [x, y] = [points[2 * p], points[2 * p + 1]];
+        held =
+          beyond(x, y) * away <= 0 && Math.hypot(x - curve.centre[0], y - curve.centre[1]) < curve.radius * (1 - 1e-12);
+      }
+      if (!held) break;
+      const [mx, my] = pointOnCurve(curve, ax, ay, bx, by, 0.5);
+      const m = points.length / 2;
+      points.push(mx, my);
+      segments[2 * s + 1] = m;
+      segments.push(m, b);
+      segmentToCurve.push(segmentToCurve[s]);
+      segmentToSide.push(segmentToSide[s]);
+      segmentToMatch.push(-1);
+    }
+  }
+  return {
+    points: Float64Array.from(points),
+    segments: Int32Array.from(segments),
+    segmentToCurve: Int32Array.from(segmentToCurve),
+    curves,
+    segmentToSide: Int32Array.from(segmentToSide),
+    sideNames: graph.sideNames,
+    segmentToMatch: Int32Array.from(segmentToMatch),
+  };
+}
+
+/** All points of the graph and the four corners of a box well outside it. */
+function delaunayOf(graph: PlanarGraph): Triangulation {
+  const count = graph.points.length / 2;
+  const box = { x0: Infinity, y0: Infinity, x1: -Infinity, y1: -Infinity };
+  for (let i = 0; i < count; i++) {
+    box.x0 = Math.min(box.x0, graph.points[2 * i]);
+    box.x1 = Math.max(box.x1, graph.points[2 * i]);
+    box.y0 = Math.min(box.y0, graph.points[2 * i + 1]);
+    box.y1 = Math.max(box.y1, graph.points[2 * i + 1]);
+  }
+  const size = Math.max(box.x1 - box.x0, box.y1 - box.y0);
+  const tri = emptyTriangulation(2 * count + 16, 4 * count + 32, graph.curves);
+  for (let i = 0; i < count; i++) addVertex(tri, graph.points[2 * i], graph.points[2 * i + 1]);
+  addVertex(tri, box.x0 - size, box.y0 - size);
+  addVertex(tri, box.x1 + size, box.y0 - size);
+  addVertex(tri, box.x1 + size, box.y1 + size);
+  addVertex(tri, box.x0 - size, box.y1 + size);
+  // delaunator drops points nearer than 2^-52: scale by a power of two, which rounds nothing, to a size near 1.
+  const scale = 2 ** -Math.round(Math.log2(size));
+  const raw = new Delaunator(tri.xy.slice(0, 2 * tri.vertexCount).map((value) => value * scale));
+  const triangles = raw.triangles.length / 3;
+  for (let t = 0; t < triangles; t++) {
+    takeSlot(tri);
+    // delaunator counts clockwise where y points up: turn each triangle over, keeping half-edge slots in step.
+    tri.origin[3 * t] = raw.triangles[3 * t];
+    tri.origin[3 * t + 1] = raw.triangles[3 * t + 2];
+    tri.origin[3 * t + 2] = raw.triangles[3 * t + 1];
+    for (let k = 0; k < 3; k++) {
+      const opposite = raw.halfedges[3 * t + turned(k)];
+      tri.twin[3 * t + k] = opposite < 0 ? -1 : 3 * triangleOf(opposite) + turned(opposite % 3);
+    }
+  }
+  return tri;
+}
+
+/** Half-edge k of a triangle a b c (a-b, b-c, c-a) is half-edge turned(k) of a c b (a-c, c-b, b-a), backwards. */
+const turned = (k: number): number => 2 - k;
+
+/** Per vertex some half-edge that starts there. */
+function outgoing(tri: Triangulation): Int32Array {
+  const out = new Int32Array(tri.vertexCount).fill(-1);
+  for (let h = 0; h < 3 * tri.slotCount; h++) out[tri.origin[h]] = h;
+  return out;
+}
+
+function recoverSegments(tri: Triangulation, graph: PlanarGraph): void {
+  const out = outgoing(tri);
+  const { segments } = tri;
+  for (let s = 0; s < graph.segmentToCurve.length; s++) {
+    const a = graph.segments[2 * s];
+    const b = graph.segments[2 * s + 1];
+    segments.from.push(a);
+    segments.to.push(b);
+    segments.curve.push(graph.segmentToCurve[s]);
+    segments.side.push(graph.segmentToSide[s]);
+    segments.match.push(graph.segmentToMatch[s]);
+    segments.half.push(-1);
+    recover(tri, out, a, b);
+    const h = halfBetween(tri, out, a, b);
+    if (h < 0) throw new Error('recoverSegments: an edge that was just made is missing');
+    tri.segment[h] = s;
+    tri.segment[tri.twin[h]] = s;
+    segments.half[s] = h;
+  }
+}
+
+/** Flips edges until a-b is one. No point lies on a-b: the planar graph was cut there. */
+function recover(tri: Triangulation, out: Int32Array, a: number, b: number): void {
+  if (halfBetween(tri, out, a, b) >= 0) return;
+  const crossing = crossedEdges(tri, out, a, b);
+  let idle = 0;
+  for (let at = 0; at < crossing.length; at++) {
+    const [u, v] = crossing[at];
+    const h = halfBetween(tri, out, u, v);
+    const c = tri.origin[previousHalf(h)];
+    const d = tri.origin[previousHalf(tri.twin[h])];
+    const { xy } = tri;
+    const convex =
+      turn(tri, c, d, xy[2 * u], xy[2 * u + 1]) > 0 !== turn(tri, c, d, xy[2 * v], xy[2 * v + 1]) > 0 &&
+      turn(tri, c, d, xy[2 * u], xy[2 * u + 1]) !== 0 &&
+      turn(tri, c, d, xy[2 * v], xy[2 * v + 1]) !== 0;
+    if (!convex) {
+      if (++idle > crossing.length + 10) {
+        throw new InputError([
+          {
+            code: 'lines-too-near',
+            key: 'regions',
+            wrong: 'two drawn lines run so close together that the space between them cannot be meshed',
+            remedy: 'move them apart, or let them share their corners',
+          },
+        ]);
+      }
+      crossing.push([u, v]);
+      continue;
+    }
+    idle = 0;
+    flip(tri, h);
+    for (const e of [h, tri.twin[3 * triangleOf(h) + 2]]) {
+      const t = triangleOf(e);
+      for (let k = 3 * t; k < 3 * t + 3; k++) out[tri.origin[k]] = k;
+    }
+    const crosses =
+      c !== a &&
+      c !== b &&
+      d !== a &&
+      d !== b &&
+      turn(tri, a, b, xy[2 * c], xy[2 * c + 1]) > 0 !== turn(tri, a, b, xy[2 * d], xy[2 * d + 1]) > 0;
+    if (crosses) crossing.push([c, d]);
+  }
+}
+
+/** Edges that the open segment a-b crosses, from a to b. */
+function crossedEdges(tri: Triangulation, out: Int32Array, a: number, b: number): [number, number][] {
+  const [bx, by] = [tri.xy[2 * b], tri.xy[2 * b + 1]];
+  const crossed: [number, number][] = [];
+  let h = out[a];
+  for (;;) {
+    const far = nextHalf(h); // the edge opposite a in this triangle
+    const [u, v] = [tri.origin[far], tri.origin[nextHalf(far)]];
+    if (turn(tri, a, u, bx, by) > 0 && turn(tri, a, v, bx, by) < 0) {
+      h = far;
+      break;
+    }
+    const round = tri.twin[previousHalf(h)];
+    if (round < 0 || round === out[a]) throw new Error('crossedEdges: no edge faces the segment');
+    h = round;
+  }
+  for (;;) {
+    crossed.push([tri.origin[h], tri.origin[nextHalf(h)]]);
+    const g = tri.twin[h];
+    const c = tri.origin[previousHalf(g)];
+    if (c === b) return crossed;
+    const side = turn(tri, a, b, tri.xy[2 * c], tri.xy[2 * c + 1]);
+    // Keep to the edge with one end on each side of a-b.
+    h = side > 0 ? nextHalf(g) : previousHalf(g);
+    const [u, v] = [tri.origin[h], tri.origin[nextHalf(h)]];
+    const [su, sv] = [u, v].map((w) => turn(tri, a, b, tri.xy[2 * w], tri.xy[2 * w + 1]));
+    if (su > 0 === sv > 0) h = side > 0 ? previousHalf(g) : nextHalf(g);
+  }
+}
+
+/** The half-edge from a to b, or -1. Vertices inside the box are ringed by triangles, so the turn closes. */
+function halfBetween(tri: Triangulation, out: Int32Array, a: number, b: number): number {
+  let h = out[a];
+  do {
+    if (tri.origin[nextHalf(h)] === b) return h;
+    h = tri.twin[previousHalf(h)];
+  } while (h >= 0 && h !== out[a]);
+  if (h >= 0) return -1;
+  for (h = out[a]; ; ) {
+    // a corner of the box: turn the other way
+    const g = tri.twin[h];
+    if (g < 0) return -1;
+    h = nextHalf(g);
+    if (tri.origin[nextHalf(h)] === b) return h;
+  }
+}
+
+/** Lawson's flips with exact in-circle tests until every edge that is no segment is locally Delaunay. */
+function lawson(tri: Triangulation): void {
+  const stack: number[] = [];
+  for (let h = 0; h < 3 * tri.slotCount; h++) stack.push(h);
+  while (stack.length > 0) {
+    const h = stack.pop() as number;
+    const g = tri.twin[h];
+    if (g < 0 || tri.segment[h] >= 0) continue;
+    const d = tri.origin[previousHalf(g)];
+    if (!(circleHolds(tri, triangleOf(h), tri.xy[2 * d], tri.xy[2 * d + 1]) > 0)) continue;
+    flip(tri, h);
+    const [t, s] = [triangleOf(h), triangleOf(g)];
+    stack.push(3 * t, 3 * t + 1, 3 * s, 3 * s + 1);
+  }
+}
+
+/** Spreads each region's number over the parts bounded by segments; a part is judged at the middle of its largest triangle. */
+function nameRegions(tri: Triangulation, section: Section): void {
+  const done = new Uint8Array(tri.slotCount);
+  for (let seed = 0; seed < tri.slotCount; seed++) {
+    if (done[seed] === 1) continue;
+    const part = [seed];
+    done[seed] = 1;
+    let largest = seed;
+    for (let i = 0; i < part.length; i++) {
+      const t = part[i];
+      if (area(tri, t) > area(tri, largest)) largest = t;
+      for (let h = 3 * t; h < 3 * t + 3; h++) {
+        const g = tri.twin[h];
+        if (tri.segment[h] >= 0 || g < 0 || done[triangleOf(g)] === 1) continue;
+        done[triangleOf(g)] = 1;
+        part.push(triangleOf(g));
+      }
+    }
+    const region = regionAt(section, ...middle(tri, largest));
+    for (const t of part) tri.region[t] = region;
+  }
+}
+
+function regionAt(section: Section, x: number, y: number): number {
+  const box = boundsOf(section.outline);
+  const out = x < box.x0 || x > box.x1 || y < box.y0 || y > box.y1;
+  if (out || !contains(section.outline, x, y)) return OUTSIDE;
+  for (let i = section.regions.length - 1; i >= 0; i--) if (contains(section.regions[i].shape, x, y)) return i + 1;
+  return 0;
+}
+
+function middle(tri: Triangulation, t: number): [number, number] {
+  let [x, y] = [0, 0];
+  for (let h = 3 * t; h < 3 * t + 3; h++) {
+    x += tri.xy[2 * tri.origin[h]] / 3;
+    y += tri.xy[2 * tri.origin[h] + 1] / 3;
+  }
+  return [x, y];
+}
+
+const area = (tri: Triangulation, t: number): number => {
+  const c = tri.origin[3 * t + 2];
+  return turn(tri, tri.origin[3 * t], tri.origin[3 * t + 1], tri.xy[2 * c], tri.xy[2 * c + 1]);
+};
+
+function uselessSegments(tri: Triangulation): Set<number> {
+  const useless = new Set<number>();
+  tri.segments.half.forEach((h, s) => {
+    if (tri.region[triangleOf(h)] === tri.region[triangleOf(tri.twin[h])]) useless.add(s);
+  });
+  return useless;
+}
+
+function withoutSegments(graph: PlanarGraph, useless: ReadonlySet<number>): PlanarGraph {
+  const keep: number[] = [];
+  for (let s = 0; s < graph.segmentToCurve.length; s++) if (!useless.has(s)) keep.push(s);
+  const pointTo = new Int32Array(graph.points.length / 2).fill(-1);
+  const points: number[] = [];
+  const renumber = (p: number): number => {
+    if (pointTo[p] < 0) {
+      pointTo[p] = points.length / 2;
+      points.push(graph.points[2 * p], graph.points[2 * p + 1]);
+    }
+    return pointTo[p];
+  };
+  const segmentTo = new Map(keep.map((s, i) => [s, i]));
+  return {
+    ...graph,
+    segments: Int32Array.from(
+      keep.flatMap((s) => [renumber(graph.segments[2 * s]), renumber(graph.segments[2 * s + 1])]),
+    ),
+    points: Float64Array.from(points),
+    segmentToCurve: Int32Array.from(keep, (s) => graph.segmentToCurve[s]),
+    segmentToSide: Int32Array.from(keep, (s) => graph.segmentToSide[s]),
+    segmentToMatch: Int32Array.from(keep, (s) => segmentTo.get(graph.segmentToMatch[s]) ?? -1),
+  };
+}
+
+/** Removes what lies outside the outline, the box's corners with it (they are the last four points). */
+function removeOutside(tri: Triangulation, pointCount: number): void {
+  for (let t = 0; t < tri.slotCount; t++) {
+    if (tri.region[t] !== OUTSIDE) continue;
+    for (let h = 3 * t; h < 3 * t + 3; h++) {
+      const g = tri.twin[h];
+      if (g < 0) continue;
+      tri.twin[g] = -1;
+      if (tri.segment[g] >= 0) tri.segments.half[tri.segment[g]] = g;
+      tri.segment[h] = -1;
+    }
+    releaseSlot(tri, t);
+  }
+  // Points left in no triangle would end the numbering with gaps: `meshOf` drops them.
+  tri.vertexCount = pointCount;
+  for (let t = 0; t < tri.slotCount; t++) {
+    if (inUse(tri, t)) return;
+  }
+  throw new InputError([
+    { code: 'no-area', key: 'outline', wrong: 'has no area', remedy: 'give it a width and a height' },
+  ]);
+}

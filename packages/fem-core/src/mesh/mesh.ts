@@ -1,0 +1,60 @@
+import type { Curve } from '../geometry/curve.js';
+import type { Point } from '../geometry/section.js';
+
+/**
+ * Six-node triangles covering a plane section; never changed once built. n corners, e edges, m triangles.
+ *
+ * Node numbers: 0 ... n-1 are the corners, n ... n+e-1 the third (middle) nodes of the edges, n + edge number.
+ * Local order in a triangle: corners 0 1 2, then the middle nodes opposite corners 0 1 2.
+ */
+export interface Mesh {
+  /** Float64Array(2n), metres: corner i is at (xy[2i], xy[2i + 1]). */
+  readonly xy: Float64Array;
+  /** Int32Array(3m): corners of triangle t at 3t, 3t + 1, 3t + 2, counter-clockwise. */
+  readonly triangles: Int32Array;
+  /** Int32Array(3m): edge opposite each corner of each triangle. */
+  readonly triangleToEdge: Int32Array;
+  /** Int32Array(3m): triangle across that edge, -1 at the outline. */
+  readonly neighbours: Int32Array;
+  /** Int32Array(m): triangle t lies in the region regionNames[triangleToRegion[t]]. */
+  readonly triangleToRegion: Int32Array;
+  readonly regionNames: readonly string[];
+  /** Int32Array(2e): end corners of each edge. */
+  readonly edges: Int32Array;
+  /** Float64Array(2e), metres: third node of each edge; on the arc where the edge follows one, else half-way. */
+  readonly middles: Float64Array;
+  /** Int32Array(e): index into `curves` of the drawn line the edge lies on, -1 for edges of the mesh alone. */
+  readonly edgeToCurve: Int32Array;
+  readonly curves: readonly Curve[];
+  /** Int32Array(e): index into sideNames for edges on the outline, -1 inside. */
+  readonly edgeToSide: Int32Array;
+  readonly sideNames: readonly string[];
+  /** Int32Array(e): the edge that corresponds on the matched side, -1 where there is none; end corners correspond in stored order. */
+  readonly edgeToMatch: Int32Array;
+  /** Uint8Array(m): 1 where an edge of the triangle follows an arc, so that its map is quadratic. */
+  readonly curved: Uint8Array;
+}
+
+export const cornerCount = (mesh: Mesh): number => mesh.xy.length / 2;
+export const edgeCount = (mesh: Mesh): number => mesh.edges.length / 2;
+export const triangleCount = (mesh: Mesh): number => mesh.triangles.length / 3;
+/** Nodes of the quadratic elements: corners and edge middles. */
+export const nodeCount = (mesh: Mesh): number => cornerCount(mesh) + edgeCount(mesh);
+
+/** The six node numbers of triangle t, written into `out` (Int32Array(6)) and returned. */
+export function triangleNodes(mesh: Mesh, t: number, out: Int32Array): Int32Array {
+  const n = cornerCount(mesh);
+  for (let k = 0; k < 3; k++) {
+    out[k] = mesh.triangles[3 * t + k];
+    out[3 + k] = n + mesh.triangleToEdge[3 * t + k];
+  }
+  return out;
+}
+
+/** Coordinates of a node (corner or edge middle), metres. */
+export function nodePoint(mesh: Mesh, node: number): Point {
+  const n = cornerCount(mesh);
+  return node < n
+    ? [mesh.xy[2 * node], mesh.xy[2 * node + 1]]
+    : [mesh.middles[2 * (node - n)], mesh.middles[2 * (node - n) + 1]];
+}

@@ -1,0 +1,145 @@
+import type { System } from '../assembly/system.js';
+import { assemble, potentialOf } from '../assembly/system.js';
+import type { Analysis } from '../sparse/analysis.js';
+import { analyse } from '../sparse/analysis.js';
+import type { Factor } from '../sparse/cholesky.js';
+import { factor, solve } from '../sparse/cholesky.js';
+
+export interface NewtonOptions {
+  /** Wanted ratio of the residual to that at A = 0 (with the held values), 2-norms. */
+  readonly tolerance?: number;
+  readonly maxSteps?: number;
+  /** Float64Array(n): unknowns to start from, for example from a coarser mesh; zero if absent. */
+  readonly start?: Float64Array;
+  /** The pattern's analysis, where it is known from an earlier solve. */
+  readonly analysis?: Analysis;
+}
+
+/** How a solve went; failure is a report, not an exception. */
+export interface SolveReport {
+  readonly converged: boolean;
+  /** Newton steps taken (a linear problem takes one). */
+  readonly steps: number;
+  /** Residual over that at A = 0 before the first step and after each step. */
+  readonly residuals: readonly number[];
+  /** Share of the full step the line search took, per step. */
+  readonly stepLengths: readonly number[];
+  readonly unknowns: number;
+  readonly factorEntries: number;
+  /** Why it stopped short; undefined where it converged. */
+  readonly failure?: string;
+}
+
+export interface Solution {
+  /** Float64Array(n). */
+  readonly u: Float64Array;
+  /** Float64Array(nodes), Wb/m. */
+  readonly potential: Float64Array;
+  readonly report: SolveReport;
+  /** Factor of the tangent at the last step but for the very last change: serves adjoint problems. */
+  readonly factor: Factor | undefined;
+}
+
+/** Below this the residual is rounding, whatever was asked. */
+const ROUNDING = 1e-14;
+
+/**
+ * Newton's method with the exact tangent on the convex energy functional, and a line search on its slope along the step:
+ * the slope d . residual(u + s d) rises with s, so that a step is long enough and not too long once the slope has shrunk to
+ * half its start in size; where it has turned positive beyond that, its zero is sought by regula falsi (Illinois).
+ * Ortega, Rheinboldt, Iterative Solution of Nonlinear Equations in Several Variables, 1970, sections 8.2 and 14.4.
+ */
+export function solveNewton(system: System, options: NewtonOptions = {}): Solution {
+  const { tolerance = 1e-8, maxSteps = 60 } = options;
+  const { n } = system.pattern;
+  const nodes = system.source.length;
+  const analysis = options.analysis ?? analyse(system.pattern);
+  const blocks = new Float64Array(analysis.blockSize);
+  const tangent = new Float64Array(system.pattern.row.length);
+  const u = new Float64Array(n);
+  const potential = new Float64Array(nodes);
+  const residual = new Float64Array(n);
+  const at = (v: Float64Array, withTangent: boolean): void => {
+    potentialOf(system.unknowns, v, potential);
+    assemble(system, potential, residual, withTangent ? tangent : undefined);
+  };
+  const residuals: number[] = [];
+  const stepLengths: number[] = [];
+  let last: Factor | undefined;
+  const finish = (failure?: string): Solution => ({
+    u,
+    potential: potentialOf(system.unknowns, u, potential),
+    report: {
+      converged: failure === undefined,
+      steps: stepLengths.length,
+      residuals,
+      stepLengths,
+      unknowns: n,
+      factorEntries: analysis.blockSize,
+      ...(failure === undefined ? {} : { failure }),
+    },
+    factor: last,
+  });
+
+  at(u, true);
+  const scale = norm(residual);
+  if (options.start !== undefined && scale > 0) {
+    u.set(options.start);
+    at(u, true);
+  }
+  const step = new Float64Array(n);
+  const trial = new Float64Array(n);
+  const goal = Math.max(tolerance, ROUNDING);
+  for (;;) {
+    const size = scale === 0 ? 0 : norm(residual) / scale;
+    residuals.push(size);
+    if (Number.isNaN(size)) return finish('the residual is not a number');
+    if (size <= goal && (last !== undefined || scale === 0)) return finish();
+    if (stepLengths.length >= maxSteps) return finish(`not converged in ${maxSteps} steps`);
+    const factored = factor(analysis, tangent, blocks);
+    if (!('blocks' in factored)) return finish(`the tangent is not positive definite (pivot ${factored.pivot})`);
+    last = factored;
+    solve(factored, residual, step);
+    for (let i = 0; i < n; i++) step[i] = -step[i];
+    const length = searchLine(u, step, trial, residual, (v) => at(v, false));
+    stepLengths.push(length);
+    for (let i = 0; i < n; i++) u[i] += length * step[i];
+    at(u, true);
+  }
+}
+
+function searchLine(
+  u: Float64Array,
+  step: Float64Array,
+  trial: Float64Array,
+  residual: Float64Array,
+  evaluate: (v: Float64Array) => void,
+): number {
+  const before = norm(residual);
+  const slope0 = dot(residual, step);
+  const slopeAt = (s: number): number => {
+    for (let i = 0; i < u.length; i++) trial[i] = u[i] + s * step[i];
+    evaluate(trial);
+    return dot(residual, step);
+  };
+  let [low, lowSlope, high, highSlope] = [0, slope0, 1, slopeAt(1)];
+  if (highSlope <= -0.5 * slope0 || norm(residual) < before) return 1;
+  // Too far: the energy rises again. The zero of the slope lies between; half its start in size will do.
+  for (let tries = 0; tries < 30; tries++) {
+    let s = (low * highSlope - high * lowSlope) / (highSlope - lowSlope);
+    if (!(s > low + 0.05 * (high - low) && s < high - 0.05 * (high - low))) s = 0.5 * (low + high);
+    const slope = slopeAt(s);
+    if (Math.abs(slope) <= 0.5 * Math.abs(slope0)) return s;
+    if (slope > 0) [high, highSlope, lowSlope] = [s, slope, 0.5 * lowSlope];
+    else [low, lowSlope, highSlope] = [s, slope, 0.5 * highSlope];
+  }
+  return high;
+}
+
+function dot(a: Float64Array, b: Float64Array): number {
+  let sum = 0;
+  for (let i = 0; i < a.length; i++) sum += a[i] * b[i];
+  return sum;
+}
+
+const norm = (a: Float64Array): number => Math.sqrt(dot(a, a));

@@ -1,0 +1,136 @@
+/**
+ * A machine in SI units, as the models work with it: lengths in metres, angles in radians, temperatures in degrees
+ * Celsius, speeds in revolutions per minute only where the key says so. Built by `readMachine`; every promise of the
+ * input checks holds.
+ */
+export interface Machine {
+  readonly name: string;
+  /** Library and user materials by name; every material the machine names is here. */
+  readonly materials: Readonly<Record<string, LibraryMaterial>>;
+  readonly rotor: Rotor;
+  readonly winding: Winding;
+  readonly operation: Operation;
+  readonly model: Model;
+}
+
+export type LibraryMaterial =
+  | { readonly kind: 'nonmagnetic'; readonly density?: number; readonly source: string }
+  | { readonly kind: 'steel'; readonly muR: number; readonly density?: number; readonly source: string }
+  | {
+      readonly kind: 'steel-curve';
+      /** Rows [H in A/m, B in T], strictly rising, from [0, 0]. */
+      readonly bh: readonly (readonly [H: number, B: number])[];
+      readonly density?: number;
+      readonly source: string;
+    }
+  | {
+      readonly kind: 'magnet';
+      /** At 20 degC, T. */
+      readonly remanence: number;
+      readonly recoil: number;
+      /** Relative change per kelvin, -0.0012 for -0.12 %/K. */
+      readonly remanenceSlope: number;
+      /** A/m at 20 degC. */
+      readonly coercivityIntrinsic?: number;
+      readonly coercivitySlope?: number;
+      readonly density?: number;
+      readonly source: string;
+    };
+
+export interface Disc {
+  readonly material: string;
+  readonly thickness: number;
+  readonly innerRadius: number;
+  readonly outerRadius: number;
+  readonly clampRadius?: number;
+}
+
+export interface Rotor {
+  /** Even, at least 2. */
+  readonly poles: number;
+  readonly arrangement: 'twin' | 'keeper';
+  /** Magnet face to magnet face (or keeper), m. */
+  readonly gap: number;
+  /** Undefined when ironless (material: none). */
+  readonly disc: Disc | undefined;
+  readonly magnets: Magnets;
+}
+
+export interface MagnetsCommon {
+  readonly material: string;
+  readonly thickness: number;
+  readonly meanRadius: number;
+  /** degC. */
+  readonly temperature: number;
+}
+export type Magnets =
+  | (MagnetsCommon & { readonly shape: 'block'; readonly width: number; readonly length: number })
+  | (MagnetsCommon & { readonly shape: 'sector'; /** Share of the pole pitch. */ readonly arc: number; readonly length: number });
+
+/** The hole of a concentrated coil: a trapezium on the coil's axis, widths straight across. */
+export interface Opening {
+  readonly innerRadius: number;
+  readonly outerRadius: number;
+  readonly innerWidth: number;
+  readonly outerWidth: number;
+}
+
+export interface Wire {
+  /** Bare copper section of one strand, m^2. */
+  readonly strandArea: number;
+  readonly strands: number;
+  /** Bare diameter of a round strand, m. */
+  readonly diameter?: number;
+  /** Sides of a rectangular strand, m. */
+  readonly width?: number;
+  readonly height?: number;
+  readonly enamel?: string;
+}
+
+interface WindingCommon {
+  readonly phases: 3;
+  /** All coils of the machine. */
+  readonly coils: number;
+  /** Per coil (overlapped: conductors per leg). */
+  readonly turns: number;
+  /** At right angles to the leg's side, m; where tapered, at the magnets' mean radius. */
+  readonly legWidth: number;
+  readonly legShape: 'parallel' | 'tapered';
+  /** Axial size of the winding, m; centred in the gap. */
+  readonly thickness: number;
+  readonly clearance: number;
+  readonly wire: Wire;
+  readonly connection: 'star' | 'delta';
+  readonly paths: number;
+  /** degC. */
+  readonly temperature: number;
+}
+export type Winding =
+  | (WindingCommon & { readonly layout: 'concentrated'; readonly opening: Opening })
+  | (WindingCommon & {
+      readonly layout: 'overlapped';
+      /** Radii between which the legs run, m. */
+      readonly legs: { readonly innerRadius: number; readonly outerRadius: number };
+    });
+
+export interface Operation {
+  readonly speedRpm: number;
+  readonly overspeedRpm?: number;
+  /** degC. */
+  readonly ambient: number;
+  readonly cold?: number;
+}
+
+export interface Model {
+  /** Radii of the slices and their weights: integral over the magnets' radial length of f dr = sum weight f(radius). */
+  readonly slices: readonly { readonly radius: number; readonly weight: number }[];
+  /** Wanted relative error, from the mesh, of the effective leg flux density. */
+  readonly accuracy: number;
+  readonly endCorrection: boolean;
+}
+
+/** A remark that does not stop the work; `key` is the dotted path in the machine file or the results. */
+export interface Warning {
+  readonly key: string;
+  readonly text: string;
+}

@@ -1,0 +1,83 @@
+import type { Machine, Warning } from '../machine.js';
+import type { SliceAnswer } from '../slices/slice-answer.js';
+import { findCautions } from './cautions.js';
+import { circulatingEmf, computeEmf, describeEmf } from './emf.js';
+import { describeEffectiveB, describeLeg } from './leg-wave.js';
+import { describeMasses, describePull } from './mechanical.js';
+import { describeMerit } from './merit.js';
+import type { MachineResult, SliceResult } from './result.js';
+import { describeWinding } from './winding-figures.js';
+
+/** What only the caller knows of a run. */
+export interface RunStamp {
+  /** Version of the program, `0.1.0`. */
+  readonly version: string;
+  /** SHA-256 of the machine file with what was set over it, in hexadecimal digits. */
+  readonly inputSha256: string;
+}
+
+/**
+ * Result of a machine from its solved slices: EMF, effective flux density, winding, merit, pull, masses, cautions. The
+ * error twins bound what the mesh does; see `error-bounds.ts`. No end factor is applied.
+ *
+ * @param slices    one for each entry of `machine.model.slices`, in that order
+ * @param warnings  of the reader; a slice that did not converge or missed the wanted accuracy adds its own
+ */
+export function describeMachine(
+  machine: Machine,
+  slices: readonly SliceAnswer[],
+  warnings: readonly Warning[],
+  stamp: RunStamp,
+): MachineResult {
+  const emf = describeEmf(machine, slices);
+  const effectiveB = describeEffectiveB(machine, slices);
+  const winding = describeWinding(machine);
+  const mechanical = describePull(machine, slices);
+  const figures = { emf, winding, mechanical, circulatingEmf: circulatingEmf(computeEmf(machine, slices)) };
+  return {
+    format: 'gapwright-result/1',
+    gapwright: stamp.version,
+    machine: machine.name,
+    input_sha256: stamp.inputSha256,
+    slices: slices.map((slice) => describeSlice(machine, slice)),
+    emf,
+    effective_B: effectiveB,
+    winding,
+    merit: describeMerit(machine, emf, effectiveB),
+    mechanical,
+    masses: describeMasses(machine),
+    cautions: findCautions(machine, figures),
+    warnings: [...warnings, ...slices.flatMap((slice, i) => sliceWarnings(machine, slice, i))],
+  };
+}
+
+function describeSlice(machine: Machine, slice: SliceAnswer): SliceResult {
+  return {
+    radius_m: slice.radius,
+    pole_pitch_m: slice.polePitch,
+    mid_B: { order: slice.midB.order, amplitude_T: slice.midB.amplitude },
+    winding_B: { order: slice.windingB.order, amplitude_T: slice.windingB.amplitude },
+    ...describeLeg(machine, slice),
+    pull_N_per_m_pole: slice.pull,
+    pull_N_per_m_pole_rel_err: slice.pullRelErr,
+    energy_J_per_m_pole: slice.energy,
+    energy_J_per_m_pole_rel_err: slice.energyRelErr,
+    ...(slice.discB !== undefined && { disc_B_T: slice.discB }),
+    ...(slice.peakSteelB !== undefined && { peak_steel_B_T: slice.peakSteelB }),
+    mesh: { nodes: slice.mesh.nodes, triangles: slice.mesh.triangles, min_angle_deg: slice.mesh.minAngleDeg },
+    newton_steps: slice.newtonSteps,
+  };
+}
+
+function sliceWarnings(machine: Machine, slice: SliceAnswer, index: number): readonly Warning[] {
+  const key = `slices[${index}]`;
+  const where = `the slice at ${(slice.radius * 1000).toFixed(1)} mm`;
+  if (!slice.converged) {
+    return [
+      { key, text: `${where} did not converge in ${slice.newtonSteps} Newton steps; its figures are not to be used` },
+    ];
+  }
+  if (slice.accurate) return [];
+  const wanted = `${(100 * machine.model.accuracy).toPrecision(2)} %`;
+  return [{ key, text: `${where} did not reach the wanted accuracy of ${wanted}; see leg_B_rel_err` }];
+}

@@ -1,0 +1,108 @@
+import type { Machine } from '../machine.js';
+import { coilPlaces, pathsAreAlike } from '../winding/coil-places.js';
+import type { EmfResult, MachineResult, WindingResult } from './result.js';
+
+/** What the cautions look at, beside the machine. */
+export interface CautionFigures {
+  readonly emf: EmfResult;
+  readonly winding: WindingResult;
+  readonly mechanical: MachineResult['mechanical'];
+  /** Rms EMF per phase that drives current round a closed delta, V; see `circulatingEmf`. */
+  readonly circulatingEmf: number;
+}
+
+/** m/s^2, to tell a force in kgf. */
+const STANDARD_GRAVITY = 9.80665;
+
+/** Above this a DC voltage is taken for a shock hazard, V; from memory, limits differ by country. */
+const TOUCH_VOLTAGE = 60;
+
+/** Metal above this burns the skin that touches it, degC; from memory. */
+const TOUCH_TEMPERATURE = 60;
+
+/** Magnets longer than this (m) crush by themselves, and a pull above this (N) does; common practice. */
+const CRUSHING_LENGTH = 0.02;
+const CRUSHING_PULL = 50;
+
+/** Cautions that the machine's own figures call for, each with its figure; the last one is general. */
+export function findCautions(machine: Machine, figures: CautionFigures): readonly string[] {
+  return [
+    crushing(machine, figures.mechanical.disc_pull_N),
+    shock(machine, figures.emf),
+    flyingParts(machine),
+    heat(machine),
+    circulation(machine, figures),
+    unlikePaths(machine),
+    'Short circuit: its current and braking torque are not computed yet. A coreless machine can drive many times its ' +
+      'rated current; do not count on shorting it as a brake at speed.',
+    'A preliminary design aid, not a certification: local electrical codes and licensed persons decide on whatever is ' +
+      'connected to a building, a boat, a vehicle or a network.',
+  ].filter((text) => text !== undefined);
+}
+
+function crushing({ rotor }: Machine, pull: number): string | undefined {
+  const { magnets } = rotor;
+  if (magnets.length <= CRUSHING_LENGTH && pull <= CRUSHING_PULL) return undefined;
+  return (
+    `Crushing: at this gap the discs draw together with ${figure(pull)} N (${figure(pull / STANDARD_GRAVITY)} kgf), and ` +
+    `single magnets of ${figure(magnets.length * 1000)} mm snap together hard enough to crush fingers and throw splinters. ` +
+    'Lower the discs with jacking screws, slide magnets over wood, wear eye protection, do not work alone, keep medical ' +
+    'implants well away.'
+  );
+}
+
+function shock({ rotor, operation }: Machine, emf: EmfResult): string | undefined {
+  const { speedRpm, overspeedRpm = speedRpm } = operation;
+  const atSpeed = emf.line.peak_V; // the highest rectified voltage with the load open, in star and in delta
+  const atOverspeed = (atSpeed * overspeedRpm) / speedRpm;
+  if (Math.max(atSpeed, atOverspeed) <= TOUCH_VOLTAGE) return undefined;
+  return (
+    `Electric shock: with the load off, the rectified voltage peaks at ${figure(atSpeed)} V at ${figure(speedRpm)} rpm` +
+    (overspeedRpm === speedRpm ? '' : ` and at ${figure(atOverspeed)} V at ${figure(overspeedRpm)} rpm`) +
+    `; above ${TOUCH_VOLTAGE} V DC touch can kill. Magnets colder than the ${figure(rotor.magnets.temperature)} degC taken ` +
+    'here raise it further; controllers and capacitors must stand it.'
+  );
+}
+
+function flyingParts({ rotor, operation }: Machine): string {
+  const { speedRpm, overspeedRpm = speedRpm } = operation;
+  const fastest = Math.max(speedRpm, overspeedRpm);
+  const rim = rotor.disc?.outerRadius ?? rotor.magnets.meanRadius + rotor.magnets.length / 2;
+  return (
+    `Flying parts: the rim runs at ${figure((2 * Math.PI * fastest * rim) / 60)} m/s at ${figure(fastest)} rpm. Hold the ` +
+    'magnets by a band or a ring, not by glue alone; test overspeed from behind a guard.'
+  );
+}
+
+function heat({ winding }: Machine): string | undefined {
+  if (winding.temperature <= TOUCH_TEMPERATURE) return undefined;
+  return (
+    `Heat: a winding at ${figure(winding.temperature)} degC burns skin (above ${TOUCH_TEMPERATURE} degC), and overheated ` +
+    'resin and enamel give off harmful fumes.'
+  );
+}
+
+/** Triplen EMFs above 1 % of the fundamental in a closed delta; the winding's resistance alone limits the current told. */
+function circulation({ winding }: Machine, figures: CautionFigures): string | undefined {
+  const { emf, circulatingEmf } = figures;
+  if (winding.connection !== 'delta' || circulatingEmf <= 0.01 * emf.phase.fundamental_rms_V) return undefined;
+  const current = circulatingEmf / figures.winding.phase_resistance_hot_ohm;
+  return (
+    `Circulating current: harmonics 3, 9, 15, ... put ${figure(circulatingEmf)} V rms per phase round the closed delta and ` +
+    `drive up to ${figure(current)} A through it with no load, which heats and brakes. Star avoids it.`
+  );
+}
+
+function unlikePaths({ winding, rotor }: Machine): string | undefined {
+  if (pathsAreAlike(coilPlaces(winding, rotor.poles), rotor.poles, winding.paths)) return undefined;
+  return (
+    `Circulating current: the coils of a phase cannot be shared among ${winding.paths} parallel paths of equal EMF; current ` +
+    'runs between the paths even with no load.'
+  );
+}
+
+/** At least three significant digits, no exponent, no zeros after the point alone. */
+function figure(value: number): string {
+  const digits = value === 0 ? 0 : Math.max(0, 2 - Math.floor(Math.log10(Math.abs(value))));
+  return value.toFixed(Math.min(digits, 6)).replace(/\.0+$/, '');
+}

@@ -1,0 +1,107 @@
+import type { Machine } from '../machine.js';
+import type { SliceAnswer } from '../slices/slice-answer.js';
+import { legSpreadFactor } from '../winding/factors.js';
+import { legCut } from '../winding/leg-cut.js';
+import { harmonicBound, peakBound, relative } from './error-bounds.js';
+import type { MachineResult, SliceResult } from './result.js';
+import { amplitudeOf, amplitudes, evaluate, peak, type Series } from './series.js';
+
+/**
+ * Flux density averaged over a leg, against the electrical angle of the leg's centre from a magnet's axis, with a bound
+ * of the mesh's error for each harmonic (T).
+ */
+export interface LegWave {
+  readonly series: Series;
+  readonly bounds: readonly number[];
+}
+
+/** The leg's wave in one slice: each harmonic of the winding's By times the leg-spread factor of the width here. */
+export function legWave(machine: Machine, slice: SliceAnswer): LegWave {
+  const { width } = legCut(machine.winding, machine.rotor.poles, machine.rotor.magnets.meanRadius, slice.radius);
+  const { order, amplitude } = slice.windingB;
+  const spread = order.map((n) => legSpreadFactor(width, slice.polePitch, n));
+  return {
+    series: { order, cos: amplitude.map((value, i) => value * spread[i]), sin: order.map(() => 0) },
+    bounds: order.map((n, i) => harmonicBound(slice, n) * Math.abs(spread[i])),
+  };
+}
+
+/** leg(theta) - leg(theta - 120 deg): what two neighbouring phases of a star see together. Triplen orders cancel. */
+export function lineWave({ series, bounds }: LegWave): LegWave {
+  // cos(n 120 deg) and sin(n 120 deg) by n modulo 3, so that the triplen orders cancel exactly
+  const c = [1, -0.5, -0.5];
+  const s = [0, Math.sqrt(3) / 2, -Math.sqrt(3) / 2];
+  const { order, cos, sin } = series;
+  return {
+    series: {
+      order,
+      cos: order.map((n, i) => cos[i] * (1 - c[n % 3]) + sin[i] * s[n % 3]),
+      sin: order.map((n, i) => sin[i] * (1 - c[n % 3]) - cos[i] * s[n % 3]),
+    },
+    bounds: order.map((n, i) => bounds[i] * Math.hypot(1 - c[n % 3], s[n % 3])),
+  };
+}
+
+/**
+ * Wave of the whole machine:  sum(weight r leg(r, theta)) / sum(weight r),  each slice's leg about its own centre, so
+ * that legs which are not radial count as if they were.
+ */
+export function effectiveWave(machine: Machine, slices: readonly SliceAnswer[]): LegWave {
+  const order = longestOrders(slices);
+  const legs = slices.map((slice) => legWave(machine, slice));
+  const shares = slices.map(({ weight, radius }) => weight * radius);
+  const total = shares.reduce((sum, share) => sum + share, 0);
+  const overSlices = (pick: (leg: LegWave) => readonly number[], factors: readonly number[]): number[] =>
+    order.map((_, i) => legs.reduce((sum, leg, k) => sum + factors[k] * (pick(leg)[i] ?? 0), 0) / total);
+  return {
+    series: { order, cos: overSlices((leg) => leg.series.cos, shares), sin: order.map(() => 0) },
+    bounds: overSlices((leg) => leg.bounds, shares.map(Math.abs)), // weights of freely chosen radii may be negative
+  };
+}
+
+/** Orders of the slice that holds most; the orders of a slice are 1, 3, 5, ... without a hole. */
+export function longestOrders(slices: readonly SliceAnswer[]): readonly number[] {
+  return slices.map(({ windingB }) => windingB.order).reduce((a, b) => (b.length > a.length ? b : a), []);
+}
+
+/** The part of a slice's result that depends on the leg. */
+export function describeLeg(
+  machine: Machine,
+  slice: SliceAnswer,
+): Pick<SliceResult, 'leg_B' | 'leg_width_m' | 'line_B_peak_T' | 'leg_B_rel_err'> {
+  const leg = legWave(machine, slice);
+  const degrees = Array.from({ length: 72 }, (_, i) => 5 * i);
+  const peakT = peak(leg.series);
+  return {
+    leg_B: {
+      electrical_deg: degrees,
+      value_T: degrees.map((degree) => evaluate(leg.series, (degree * Math.PI) / 180)),
+      peak_T: peakT,
+      fundamental_T: leg.series.cos[0] ?? 0,
+    },
+    leg_width_m: legCut(machine.winding, machine.rotor.poles, machine.rotor.magnets.meanRadius, slice.radius).width,
+    line_B_peak_T: peak(lineWave(leg).series),
+    leg_B_rel_err: relative(peakBound(leg.bounds), peakT),
+  };
+}
+
+/** `effective_B` of the results. */
+export function describeEffectiveB(machine: Machine, slices: readonly SliceAnswer[]): MachineResult['effective_B'] {
+  const phase = effectiveWave(machine, slices);
+  const line = lineWave(phase);
+  const [phasePeak, linePeak] = [peak(phase.series), peak(line.series)];
+  return {
+    peak_T: phasePeak,
+    peak_T_rel_err: relative(peakBound(phase.bounds), phasePeak),
+    line_peak_T: linePeak,
+    line_peak_T_rel_err: relative(peakBound(line.bounds), linePeak),
+    third_share_phase: thirdShare(phase.series),
+    third_share_line: thirdShare(line.series),
+  };
+}
+
+/** |b3| / |b1|. */
+function thirdShare(series: Series): number {
+  const harmonics = { order: series.order, amplitude: amplitudes(series) };
+  return amplitudeOf(harmonics, 3) / amplitudeOf(harmonics, 1);
+}

@@ -1,0 +1,99 @@
+import type { Warning } from '../machine.js';
+
+/** Content of results.json: SI units, the unit ends the key; `_rel_err` twins are bounds estimated from the mesh. */
+export interface MachineResult {
+  readonly format: 'gapwright-result/1';
+  readonly gapwright: string;
+  readonly machine: string;
+  readonly input_sha256: string;
+  readonly slices: readonly SliceResult[];
+  readonly emf: EmfResult;
+  readonly effective_B: {
+    readonly peak_T: number;
+    readonly peak_T_rel_err: number;
+    readonly line_peak_T: number;
+    readonly line_peak_T_rel_err: number;
+    readonly third_share_phase: number;
+    readonly third_share_line: number;
+  };
+  readonly winding: WindingResult;
+  readonly merit: {
+    readonly merit_W: number;
+    readonly merit_W_rel_err: number;
+    readonly line_B_squared_thickness_T2m: number;
+    readonly line_B_squared_thickness_T2m_rel_err: number;
+  };
+  readonly mechanical: { readonly disc_pull_N: number; readonly disc_pull_N_rel_err: number };
+  readonly masses: { readonly magnets_kg?: number; readonly copper_kg: number; readonly steel_kg?: number };
+  readonly cautions: readonly string[];
+  readonly warnings: readonly Warning[];
+}
+
+export interface SliceResult {
+  readonly radius_m: number;
+  readonly pole_pitch_m: number;
+  readonly mid_B: { readonly order: readonly number[]; readonly amplitude_T: readonly number[] };
+  readonly winding_B: { readonly order: readonly number[]; readonly amplitude_T: readonly number[] };
+  readonly leg_B: {
+    readonly electrical_deg: readonly number[];
+    readonly value_T: readonly number[];
+    readonly peak_T: number;
+    readonly fundamental_T: number;
+  };
+  /** Width of the leg along the circumference at this radius. */
+  readonly leg_width_m: number;
+  readonly line_B_peak_T: number;
+  readonly pull_N_per_m_pole: number;
+  readonly pull_N_per_m_pole_rel_err: number;
+  readonly energy_J_per_m_pole: number;
+  readonly energy_J_per_m_pole_rel_err: number;
+  readonly disc_B_T?: number;
+  readonly peak_steel_B_T?: number;
+  readonly mesh: { readonly nodes: number; readonly triangles: number; readonly min_angle_deg: number };
+  readonly newton_steps: number;
+  readonly leg_B_rel_err: number;
+}
+
+export interface VoltageResult {
+  readonly rms_V: number;
+  readonly rms_V_rel_err: number;
+  readonly peak_V: number;
+  readonly peak_V_rel_err: number;
+  readonly fundamental_rms_V: number;
+  readonly fundamental_rms_V_rel_err: number;
+  readonly order: readonly number[];
+  readonly harmonic_rms_V: readonly number[];
+  /** sqrt(rms^2 / fundamental^2 - 1). */
+  readonly thd: number;
+}
+
+export interface EmfResult {
+  readonly speed_rpm: number;
+  /** Electrical frequency. */
+  readonly frequency_Hz: number;
+  readonly phase: VoltageResult;
+  readonly line: VoltageResult;
+  readonly rectified_mean_V: number;
+  readonly rectified_mean_V_rel_err: number;
+  readonly line_rms_V_per_rpm: number;
+  readonly waveform: {
+    readonly electrical_deg: readonly number[];
+    readonly phase_V: readonly number[];
+    readonly line_V: readonly number[];
+    readonly rectified_V: readonly number[];
+  };
+}
+
+export interface WindingResult {
+  readonly thickness_m: number;
+  readonly fill_factor: number;
+  readonly mean_turn_m: number;
+  /** Wire length of the whole machine, one strand. */
+  readonly wire_length_m: number;
+  readonly phase_resistance_20C_ohm: number;
+  readonly phase_resistance_hot_ohm: number;
+  readonly order: readonly number[];
+  readonly winding_factor: readonly number[];
+  /** For each coil in order round the machine: its phase (1 ...) and which way round (+1, -1). */
+  readonly phase_map: readonly { readonly phase: number; readonly sense: 1 | -1 }[];
+}

@@ -1,0 +1,43 @@
+import type { Machine } from '../machine.js';
+import { coilPlaces } from '../winding/coil-places.js';
+import { distributionFactor, legSpreadFactor, pitchFactor } from '../winding/factors.js';
+import { legCut } from '../winding/leg-cut.js';
+import { fillFactor, meanTurn, phaseResistance, wireLength } from '../winding/turn.js';
+import type { WindingResult } from './result.js';
+
+/** Orders of the winding factors that are told. */
+const ORDERS = [1, 3, 5, 7, 9, 11, 13];
+
+/**
+ * `winding` of the results. The winding factor of an order is distribution x pitch x leg spread with the coil's true span
+ * and leg width at the magnets' mean radius, signed so that  e1 = sum peak_n sin(n theta),  peak_n in proportion to
+ * factor_n x B_n; 1 would be all conductors in step under the peak of the wave.
+ */
+export function describeWinding(machine: Machine): WindingResult {
+  const { winding, rotor } = machine;
+  const { poles } = rotor;
+  const places = coilPlaces(winding, poles);
+  return {
+    thickness_m: winding.thickness,
+    fill_factor: fillFactor(winding),
+    mean_turn_m: meanTurn(winding, poles),
+    wire_length_m: wireLength(winding, poles),
+    phase_resistance_20C_ohm: phaseResistance(winding, poles, 20),
+    phase_resistance_hot_ohm: phaseResistance(winding, poles, winding.temperature),
+    order: ORDERS,
+    winding_factor: ORDERS.map((order) => windingFactor(machine, order)),
+    phase_map: places.map(({ phase, sense }) => ({ phase, sense })),
+  };
+}
+
+/** Signed winding factor at the magnets' mean radius; see `describeWinding`. */
+export function windingFactor({ winding, rotor }: Machine, order: number): number {
+  const { poles, magnets } = rotor;
+  const { halfSpan, width } = legCut(winding, poles, magnets.meanRadius, magnets.meanRadius);
+  const polePitch = (2 * Math.PI * magnets.meanRadius) / poles;
+  return (
+    distributionFactor(coilPlaces(winding, poles), poles, order) *
+    pitchFactor((poles / 2) * halfSpan, order) *
+    legSpreadFactor(width, polePitch, order)
+  );
+}
