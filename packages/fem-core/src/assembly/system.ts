@@ -187,7 +187,8 @@ function patternOf(mesh: Mesh, unknowns: Unknowns): { pattern: SymmetricPattern;
 }
 
 function find(row: Int32Array, from: number, to: number, value: number): number {
-  let [low, high] = [from, to - 1];
+  let low = from;
+  let high = to - 1;
   while (low < high) {
     const middle = (low + high) >> 1;
     if (row[middle] < value) low = middle + 1;
@@ -260,7 +261,8 @@ function addResidual(
   for (let i = 0; i < 6; i++) local[i] = potential[globalNode(mesh, t, i)];
   for (let q = 0; q < rule.count; q++) {
     const weight = rule.weights[q] * gradients(coordinates, rule.slopes, 12 * q, grad);
-    let [gx, gy] = [0, 0];
+    let gx = 0;
+    let gy = 0;
     for (let i = 0; i < 6; i++) {
       gx += local[i] * grad[i];
       gy += local[i] * grad[6 + i];

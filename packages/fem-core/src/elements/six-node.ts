@@ -88,7 +88,10 @@ export function nodeCoordinates(mesh: Mesh, t: number, out: Float64Array): Float
  * @returns det J in m^2, positive in a valid triangle
  */
 export function gradients(coordinates: Float64Array, slopes: Float64Array, from: number, out: Float64Array): number {
-  let [xXi, xEta, yXi, yEta] = [0, 0, 0, 0];
+  let xXi = 0;
+  let xEta = 0;
+  let yXi = 0;
+  let yEta = 0;
   for (let i = 0; i < 6; i++) {
     const x = coordinates[2 * i];
     const y = coordinates[2 * i + 1];

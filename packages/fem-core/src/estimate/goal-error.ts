@@ -86,7 +86,10 @@ function gradientError(
   q: number,
   grad: Float64Array,
 ): readonly [gx: number, gy: number, ex: number, ey: number] {
-  let [gx, gy, rx, ry] = [0, 0, 0, 0];
+  let gx = 0;
+  let gy = 0;
+  let rx = 0;
+  let ry = 0;
   for (let i = 0; i < 6; i++) {
     const value = nodal[globalNode(field.mesh, t, i)];
     gx += value * grad[i];

@@ -126,7 +126,8 @@ interface Fit {
 const monomials = (x: number, y: number): readonly number[] => [1, x, y, x * x, x * y, y * y];
 
 function fitPatch(mesh: Mesh, v: number, patch: readonly number[], samples: Samples): Fit {
-  const [x0, y0] = [mesh.xy[2 * v], mesh.xy[2 * v + 1]];
+  const x0 = mesh.xy[2 * v];
+  const y0 = mesh.xy[2 * v + 1];
   let size = 0;
   for (const t of patch) {
     for (let k = 0; k < 3; k++) {
@@ -160,7 +161,8 @@ function fitPatch(mesh: Mesh, v: number, patch: readonly number[], samples: Samp
 }
 
 function wellPosed(lower: Matrix): boolean {
-  let [least, most] = [Infinity, 0];
+  let least = Infinity;
+  let most = 0;
   for (let i = 0; i < lower.rows; i++) {
     least = Math.min(least, lower.get(i, i));
     most = Math.max(most, lower.get(i, i));
@@ -178,7 +180,8 @@ function spreadFit(
   hits: Float64Array,
 ): void {
   const { terms, size, coefficients } = fit;
-  const [x0, y0] = [mesh.xy[2 * v], mesh.xy[2 * v + 1]];
+  const x0 = mesh.xy[2 * v];
+  const y0 = mesh.xy[2 * v + 1];
   for (const t of core) {
     for (let k = 0; k < 3; k++) {
       if (mesh.triangles[3 * t + k] === v) {

@@ -29,12 +29,15 @@ export interface Force {
 export function forceOn(field: Field, regions: readonly string[], about: readonly [number, number] = [0, 0]): Force {
   const { mesh } = field;
   const weight = layerWeights(field, regions);
-  let [fx, fy, torque] = [0, 0, 0];
+  let fx = 0;
+  let fy = 0;
+  let torque = 0;
   forEachSample(field, airRegions(field), (s) => {
     // w is quadratic on curved triangles (middle values half-way), so that it is 1 all along a round body.
     const w = [0, 1, 2].map((k) => weight[mesh.triangles[3 * s.triangle + k]]);
     if (w[0] === w[1] && w[1] === w[2]) return;
-    let [wx, wy] = [0, 0];
+    let wx = 0;
+    let wy = 0;
     for (let i = 0; i < 6; i++) {
       const value = i < 3 ? w[i] : 0.5 * (w[(i + 1) % 3] + w[(i + 2) % 3]);
       wx += value * s.grad[i];
@@ -108,7 +111,8 @@ export function stressThrough(
   regions: readonly string[],
   slope: (x: number, y: number) => readonly [wx: number, wy: number],
 ): { readonly fx: number; readonly fy: number } {
-  let [fx, fy] = [0, 0];
+  let fx = 0;
+  let fy = 0;
   forEachSample(field, regions, (s) => {
     const [wx, wy] = slope(s.x, s.y);
     const half = 0.5 * (s.bx * s.bx + s.by * s.by);

@@ -64,7 +64,8 @@ function eachPoint(
     nodeCoordinates(mesh, t, at);
     for (let q = 0; q < FULL_RULE.count; q++) {
       const area = FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
-      let [x, y] = [0, 0];
+      let x = 0;
+      let y = 0;
       for (let i = 0; i < 6; i++) {
         x += FULL_RULE.values[6 * q + i] * at[2 * i];
         y += FULL_RULE.values[6 * q + i] * at[2 * i + 1];

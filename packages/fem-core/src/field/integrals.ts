@@ -1,3 +1,4 @@
+import { MU0 } from '../base/constants.js';
 import { FULL_RULE, globalNode, gradients, nodeCoordinates } from '../elements/six-node.js';
 import type { LocalLaw } from '../materials/constitutive.js';
 import { evaluateMaterial, remanenceOf } from '../materials/constitutive.js';
@@ -65,7 +66,11 @@ export function forEachSample(
     const [rx, ry] = remanenceOf(material);
     for (let q = 0; q < FULL_RULE.count; q++) {
       const det = gradients(at, FULL_RULE.slopes, 12 * q, grad);
-      let [x, y, a, gx, gy] = [0, 0, 0, 0, 0];
+      let x = 0;
+      let y = 0;
+      let a = 0;
+      let gx = 0;
+      let gy = 0;
       for (let i = 0; i < 6; i++) {
         const n = FULL_RULE.values[6 * q + i];
         const value = potential[globalNode(mesh, t, i)];
@@ -108,7 +113,11 @@ export interface RegionMeans {
 
 /** Means over the named regions together. */
 export function meanOver(field: Field, regions: readonly string[]): RegionMeans {
-  let [area, bx, by, b, a] = [0, 0, 0, 0, 0];
+  let area = 0;
+  let bx = 0;
+  let by = 0;
+  let b = 0;
+  let a = 0;
   forEachSample(field, regions, (s) => {
     area += s.area;
     bx += s.area * s.bx;
@@ -127,7 +136,8 @@ export interface Energies {
 }
 
 export function energiesOf(field: Field, regions: readonly string[] | 'all' = 'all'): Energies {
-  let [energy, product] = [0, 0];
+  let energy = 0;
+  let product = 0;
   forEachSample(field, regions, (s) => {
     energy += s.area * s.energy;
     product += s.area * (s.hx * s.bx + s.hy * s.by);
@@ -164,4 +174,31 @@ export function regionAreas(mesh: Mesh): number[] {
     }
   }
   return areas;
+}
+
+/** Means of the field triangle by triangle. */
+export interface TriangleMeans {
+  /** Float64Array(2m): Bx, By, T. */
+  readonly fluxDensity: Float64Array;
+  /** Float64Array(m): relative permeability, 1/(mu0 nu). */
+  readonly relativePermeability: Float64Array;
+}
+
+export function triangleMeans(field: Field): TriangleMeans {
+  const m = triangleCount(field.mesh);
+  const fluxDensity = new Float64Array(2 * m);
+  const relativePermeability = new Float64Array(m);
+  const area = new Float64Array(m);
+  forEachSample(field, 'all', (s) => {
+    area[s.triangle] += s.area;
+    fluxDensity[2 * s.triangle] += s.area * s.bx;
+    fluxDensity[2 * s.triangle + 1] += s.area * s.by;
+    relativePermeability[s.triangle] += s.area / (MU0 * s.nu);
+  });
+  for (let t = 0; t < m; t++) {
+    fluxDensity[2 * t] /= area[t];
+    fluxDensity[2 * t + 1] /= area[t];
+    relativePermeability[t] /= area[t];
+  }
+  return { fluxDensity, relativePermeability };
 }

@@ -26,7 +26,8 @@ export function buildLocator(mesh: Mesh): Locator {
   const clampY = (y: number): number => Math.min(ny - 1, Math.max(0, Math.floor((y - y0) / cell)));
   const start = new Int32Array(nx * ny + 1);
   const cover = (t: number, visit: (c: number) => void): void => {
-    const [i1, j1] = [clampX(boxes.of[4 * t + 2]), clampY(boxes.of[4 * t + 3])];
+    const i1 = clampX(boxes.of[4 * t + 2]);
+    const j1 = clampY(boxes.of[4 * t + 3]);
     for (let j = clampY(boxes.of[4 * t + 1]); j <= j1; j++) {
       for (let i = clampX(boxes.of[4 * t]); i <= i1; i++) visit(j * nx + i);
     }
@@ -70,7 +71,8 @@ function boxesOf(mesh: Mesh): { readonly of: Float64Array; readonly all: [number
     if (mesh.curved[t] === 1) {
       // A quadratic edge stays within the box of its ends and twice the way to its middle.
       for (let k = 0; k < 3; k++) {
-        const [i, j] = [(k + 1) % 3, (k + 2) % 3];
+        const i = (k + 1) % 3;
+        const j = (k + 2) % 3;
         xs.push(2 * at[6 + 2 * k] - 0.5 * (at[2 * i] + at[2 * j]));
         ys.push(2 * at[7 + 2 * k] - 0.5 * (at[2 * i + 1] + at[2 * j + 1]));
       }
@@ -92,14 +94,18 @@ const slopes = new Float64Array(12);
 /** Reference coordinates of (x, y) in triangle t, inside or not; by Newton's method where the triangle is curved. */
 export function spotIn(mesh: Mesh, t: number, x: number, y: number): Spot {
   const at = nodeCoordinates(mesh, t, coordinates);
-  const [ux, uy, vx, vy] = [at[2] - at[0], at[3] - at[1], at[4] - at[0], at[5] - at[1]];
+  const ux = at[2] - at[0];
+  const uy = at[3] - at[1];
+  const vx = at[4] - at[0];
+  const vy = at[5] - at[1];
   const det = ux * vy - uy * vx;
   let xi = ((x - at[0]) * vy - (y - at[1]) * vx) / det;
   let eta = (ux * (y - at[1]) - uy * (x - at[0])) / det;
   for (let step = 0; step < 20 && mesh.curved[t] === 1; step++) {
     shapeValues(xi, eta, values);
     shapeSlopes(xi, eta, slopes);
-    let [px, py] = [x, y];
+    let px = x;
+    let py = y;
     for (let i = 0; i < 6; i++) {
       px -= values[i] * at[2 * i];
       py -= values[i] * at[2 * i + 1];
@@ -114,7 +120,10 @@ export function spotIn(mesh: Mesh, t: number, x: number, y: number): Spot {
 
 /** J^-1 (px, py), with J from the slopes just tabulated. */
 function referenceStep(at: Float64Array, px: number, py: number): [number, number] {
-  let [xXi, xEta, yXi, yEta] = [0, 0, 0, 0];
+  let xXi = 0;
+  let xEta = 0;
+  let yXi = 0;
+  let yEta = 0;
   for (let i = 0; i < 6; i++) {
     xXi += slopes[i] * at[2 * i];
     xEta += slopes[6 + i] * at[2 * i];

@@ -26,14 +26,17 @@ export function valueAtSpot(field: Field, spot: Spot): FieldValue {
   const { mesh, potential, setup } = field;
   shapeValues(spot.xi, spot.eta, shapes);
   gradientsAt(mesh, spot, grad);
-  let [a, gx, gy] = [0, 0, 0];
+  let a = 0;
+  let gx = 0;
+  let gy = 0;
   for (let i = 0; i < 6; i++) {
     const value = potential[globalNode(mesh, spot.triangle, i)];
     a += value * shapes[i];
     gx += value * grad[i];
     gy += value * grad[6 + i];
   }
-  const [bx, by] = [gy, -gx];
+  const bx = gy;
+  const by = -gx;
   const material = setup.materials[mesh.regionNames[mesh.triangleToRegion[spot.triangle]]];
   evaluateMaterial(material, bx, by, law);
   const [rx, ry] = remanenceOf(material);

@@ -50,7 +50,8 @@ export function findTableFaults(rows: readonly (readonly [H: number, B: number])
   if (rows.length === 0 || (rows.length === 1 && rows[0][1] === 0)) {
     tell(1, 'the table has too few rows', 'give at least two rows [H in A/m, B in T] beyond [0, 0]');
   }
-  let [h0, b0] = [0, 0];
+  let h0 = 0;
+  let b0 = 0;
   rows.forEach(([h, b], i) => {
     if (!Number.isFinite(h) || !Number.isFinite(b)) {
       tell(i + 1, `holds a number that is not finite: [${h}, ${b}]`, 'give finite numbers');
@@ -81,8 +82,10 @@ function slopesOf(b: Float64Array, h: Float64Array): Float64Array {
   const slope = new Float64Array(last + 1);
   const chord = (i: number): number => (h[i + 1] - h[i]) / (b[i + 1] - b[i]);
   for (let i = 1; i < last; i++) {
-    const [d0, d1] = [b[i] - b[i - 1], b[i + 1] - b[i]];
-    const [w0, w1] = [2 * d1 + d0, d1 + 2 * d0];
+    const d0 = b[i] - b[i - 1];
+    const d1 = b[i + 1] - b[i];
+    const w0 = 2 * d1 + d0;
+    const w1 = d1 + 2 * d0;
     slope[i] = (w0 + w1) / (w0 / chord(i - 1) + w1 / chord(i));
   }
   // H(B) is odd, so its chord over [-b1, b1] is the first chord; the rows next to 0 pull towards it.
@@ -108,7 +111,8 @@ export function evaluateCurve(curve: BHCurve, b: number, out: CurvePoint): Curve
     out.energy = curve.energy[last] + d * (curve.h[last] + (0.5 * d) / MU0);
     return out;
   }
-  let [low, high] = [0, last];
+  let low = 0;
+  let high = last;
   while (high - low > 1) {
     const middle = (low + high) >> 1;
     if (curve.b[middle] <= b) low = middle;
@@ -116,7 +120,10 @@ export function evaluateCurve(curve: BHCurve, b: number, out: CurvePoint): Curve
   }
   const d = curve.b[high] - curve.b[low];
   const s = (b - curve.b[low]) / d;
-  const [h0, h1, m0, m1] = [curve.h[low], curve.h[high], d * curve.slope[low], d * curve.slope[high]];
+  const h0 = curve.h[low];
+  const h1 = curve.h[high];
+  const m0 = d * curve.slope[low];
+  const m1 = d * curve.slope[high];
   // Hermite piece h0 + s (m0 + s (c + s e)) with value and slope given at both ends.
   const c = 3 * (h1 - h0) - 2 * m0 - m1;
   const e = 2 * (h0 - h1) + m0 + m1;

@@ -149,7 +149,8 @@ export function fillCavity(
 function cutSegment(tri: Triangulation, s: number, p: number, made: readonly number[]): void {
   const { from, to, curve, side, match, half } = tri.segments;
   const second = from.length;
-  const [a, b] = [from[s], to[s]];
+  const a = from[s];
+  const b = to[s];
   from.push(p);
   to.push(b);
   curve.push(curve[s]);
@@ -176,7 +177,9 @@ export type Landing =
 /** Straight walk from the middle of triangle t to (x, y). */
 export function walkTo(tri: Triangulation, t: number, x: number, y: number): Landing {
   const { xy, origin, twin, segment } = tri;
-  const [i, j, k] = [2 * origin[3 * t], 2 * origin[3 * t + 1], 2 * origin[3 * t + 2]];
+  const i = 2 * origin[3 * t];
+  const j = 2 * origin[3 * t + 1];
+  const k = 2 * origin[3 * t + 2];
   const fx = (xy[i] + xy[j] + xy[k]) / 3;
   const fy = (xy[i + 1] + xy[j + 1] + xy[k + 1]) / 3;
   let entry = -1;

@@ -66,7 +66,10 @@ interface Queue {
 }
 
 function startWork(tri: Triangulation, limits: QualityLimits): Work {
-  let [x0, x1, y0, y1] = [Infinity, -Infinity, Infinity, -Infinity];
+  let x0 = Infinity;
+  let x1 = -Infinity;
+  let y0 = Infinity;
+  let y1 = -Infinity;
   for (let v = 0; v < tri.vertexCount; v++) {
     x0 = Math.min(x0, tri.xy[2 * v]);
     x1 = Math.max(x1, tri.xy[2 * v]);
@@ -126,11 +129,18 @@ const figure: Figure = { shortest: 0, shortest2: 0, longest2: 0, circumX: 0, cir
 
 function measure(tri: Triangulation, t: number): Figure {
   const { xy, origin } = tri;
-  const [a, b, c] = [2 * origin[3 * t], 2 * origin[3 * t + 1], 2 * origin[3 * t + 2]];
-  const [ux, uy] = [xy[b] - xy[a], xy[b + 1] - xy[a + 1]];
-  const [vx, vy] = [xy[c] - xy[a], xy[c + 1] - xy[a + 1]];
-  const [wx, wy] = [vx - ux, vy - uy];
-  const [u2, v2, w2] = [ux * ux + uy * uy, vx * vx + vy * vy, wx * wx + wy * wy];
+  const a = 2 * origin[3 * t];
+  const b = 2 * origin[3 * t + 1];
+  const c = 2 * origin[3 * t + 2];
+  const ux = xy[b] - xy[a];
+  const uy = xy[b + 1] - xy[a + 1];
+  const vx = xy[c] - xy[a];
+  const vy = xy[c + 1] - xy[a + 1];
+  const wx = vx - ux;
+  const wy = vy - uy;
+  const u2 = ux * ux + uy * uy;
+  const v2 = vx * vx + vy * vy;
+  const w2 = wx * wx + wy * wy;
   figure.shortest = u2 <= v2 && u2 <= w2 ? 3 * t : w2 <= v2 ? 3 * t + 1 : 3 * t + 2;
   figure.shortest2 = Math.min(u2, v2, w2);
   figure.longest2 = Math.max(u2, v2, w2);
@@ -178,11 +188,14 @@ function treatTriangle(work: Work, t: number): void {
   const f = measure(tri, t);
   const flat = isFlat(work, f);
   if (f.shortest2 < work.floor) return;
-  const [u, v] = [tri.origin[f.shortest], tri.origin[nextHalf(f.shortest)]];
+  const u = tri.origin[f.shortest];
+  const v = tri.origin[nextHalf(f.shortest)];
   if (flat && !isLong(work, t, f) && bridgesSharpCorner(tri, work.sharp, u, v)) return;
-  let [x, y] = [f.circumX, f.circumY];
+  let x = f.circumX;
+  let y = f.circumY;
   if (flat) {
-    const [mx, my] = [0.5 * (tri.xy[2 * u] + tri.xy[2 * v]), 0.5 * (tri.xy[2 * u + 1] + tri.xy[2 * v + 1])];
+    const mx = 0.5 * (tri.xy[2 * u] + tri.xy[2 * v]);
+    const my = 0.5 * (tri.xy[2 * u + 1] + tri.xy[2 * v + 1]);
     const away = Math.hypot(x - mx, y - my);
     const reach = work.offCentre * Math.sqrt(f.shortest2);
     if (away > reach) {

@@ -121,8 +121,14 @@ export function flip(tri: Triangulation, h: number): void {
   const g = twin[h];
   const t = triangleOf(h);
   const s = triangleOf(g);
-  const [hn, hp, gn, gp] = [nextHalf(h), previousHalf(h), nextHalf(g), previousHalf(g)];
-  const [a, b, c, d] = [origin[h], origin[g], origin[hp], origin[gp]];
+  const hn = nextHalf(h);
+  const hp = previousHalf(h);
+  const gn = nextHalf(g);
+  const gp = previousHalf(g);
+  const a = origin[h];
+  const b = origin[g];
+  const c = origin[hp];
+  const d = origin[gp];
   const outer = [hp, gn, gp, hn].map((e) => [twin[e], segment[e]] as const); // c-a, a-d, d-b, b-c
   const write = (e: number, from: number, [opposite, seg]: readonly [number, number]): void => {
     origin[e] = from;

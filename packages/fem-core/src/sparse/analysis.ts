@@ -100,7 +100,8 @@ function upperOf(pattern: SymmetricPattern, place: Int32Array): Upper {
   const each = (visit: (low: number, high: number) => void): void => {
     for (let j = 0; j < n; j++) {
       for (let p = pattern.start[j] + 1; p < pattern.start[j + 1]; p++) {
-        const [a, b] = [place[j], place[pattern.row[p]]];
+        const a = place[j];
+        const b = place[pattern.row[p]];
         if (a < b) visit(a, b);
         else visit(b, a);
       }
@@ -201,9 +202,11 @@ function supernodes(
     zeros.push(0);
     // The last column of the group before must be a child of this one's first column.
     while (start.length > 1) {
-      const [a, b] = [start[start.length - 2], start[start.length - 1]];
+      const a = start[start.length - 2];
+      const b = start[start.length - 1];
       if (parent[b - 1] !== b) break;
-      const [left, right] = [b - a, j + 1 - b];
+      const left = b - a;
+      const right = j + 1 - b;
       const height = right - 1 + count[j]; // rows of the right group: its columns and what lies below them
       const before = left - 1 + count[b - 1];
       const merged = left + height;
@@ -232,7 +235,8 @@ function rowsOf(
   const below: number[][] = Array.from({ length: n }, () => []); // rows below the diagonal by column of the reordered matrix
   for (let j = 0; j < n; j++) {
     for (let p = pattern.start[j] + 1; p < pattern.start[j + 1]; p++) {
-      const [a, b] = [place[j], place[pattern.row[p]]];
+      const a = place[j];
+      const b = place[pattern.row[p]];
       below[Math.min(a, b)].push(Math.max(a, b));
     }
   }
@@ -242,7 +246,8 @@ function rowsOf(
   const lists: number[][] = [];
   const mark = new Int32Array(n).fill(-1);
   for (let s = 0; s < superCount; s++) {
-    const [a, end] = [first[s], first[s + 1]];
+    const a = first[s];
+    const end = first[s + 1];
     const list: number[] = [];
     const take = (i: number): void => {
       if (i < end || mark[i] === s) return;
@@ -289,7 +294,8 @@ function targets(
     const height = rowStart[s + 1] - rowStart[s];
     for (let r = 0; r < height; r++) position[rows[rowStart[s] + r]] = r;
     for (const p of entries) {
-      const [a, b] = [place[columnOfEntry[p]], place[row[p]]];
+      const a = place[columnOfEntry[p]];
+      const b = place[row[p]];
       const [column, down] = a < b ? [a, b] : [b, a];
       target[p] = blockStart[s] + (column - first[s]) * height + position[down];
     }

@@ -128,11 +128,14 @@ function outerColumns(
   for (; j + 1 < width; j += 2) {
     const p = base + j * height + c;
     const q = p + height;
-    const [a0, b0] = [blocks[p], blocks[q]];
+    const a0 = blocks[p];
+    const b0 = blocks[q];
     if (two) {
-      const [a1, b1] = [blocks[p + 1], blocks[q + 1]];
+      const a1 = blocks[p + 1];
+      const b1 = blocks[q + 1];
       for (let i = 0; i < size; i++) {
-        const [x, y] = [blocks[p + i], blocks[q + i]];
+        const x = blocks[p + i];
+        const y = blocks[q + i];
         strip[i] += a0 * x + b0 * y;
         strip[size + i] += a1 * x + b1 * y;
       }
@@ -171,7 +174,8 @@ function factorBlock(blocks: Float64Array, base: number, height: number, width: 
     for (; k + 1 < j; k += 2) {
       const p = base + k * height;
       const q = p + height;
-      const [a, b] = [blocks[p + j], blocks[q + j]];
+      const a = blocks[p + j];
+      const b = blocks[q + j];
       for (let i = j; i < height; i++) blocks[column + i] -= a * blocks[p + i] + b * blocks[q + i];
     }
     if (k < j) {

@@ -65,7 +65,7 @@ export function buildPoleSection(machine: Machine, radius: number, cuts: Cuts = 
   const layer = (name: string, x0: number, x1: number, y0: number, y1: number): Region => ({
     name,
     shape: { kind: 'rectangle', from: [x0, y0], to: [x1, y1] },
-    maxEdge: Math.min(Math.abs(y1 - y0) / 2, polePitch / 10),
+    maxEdge: Math.min(Math.abs(y1 - y0), polePitch / 10),
   });
   const windingFrom = cuts.midPlane ? 0 : -winding.thickness / 2;
   const regions: Region[] = [layer('winding', from, half, windingFrom, winding.thickness / 2)];

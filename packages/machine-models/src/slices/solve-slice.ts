@@ -1,4 +1,4 @@
-import type { AdaptiveSolution, Field, Goal, Locator } from '@gapwright/fem-core';
+import type { AdaptiveSolution, Field, Goal, Locator, RecoveredGradient } from '@gapwright/fem-core';
 import {
   buildLocator,
   energiesOf,
@@ -38,6 +38,8 @@ export interface SliceOptions {
 export interface SolvedSlice {
   readonly answer: SliceAnswer;
   readonly field: Field;
+  /** The gradient of A as recovered for the error estimate, smoother and nearer the truth than the elements' own. */
+  readonly recovered: RecoveredGradient;
   readonly pole: PoleSection;
 }
 
@@ -59,7 +61,7 @@ export function solveSlice(
     accuracy: options.accuracy ?? machine.model.accuracy,
     ...(options.onMesh === undefined ? {} : { onMesh: options.onMesh }),
   });
-  return { answer: describeSlice(slice, pole, solution), field: solution.field, pole };
+  return { answer: describeSlice(slice, pole, solution), field: solution.field, recovered: solution.estimate.recovered, pole };
 }
 
 /** Amplitude of an odd order of By averaged over the winding: -(2 k/(polePitch t)) integral of A sin(k x) over a whole pole. */

@@ -1,0 +1,133 @@
+import { colourScaleEnd, drawField, writeVtu } from '@gapwright/fem-core';
+import type { Machine, MachineResult, SliceAnswer, Warning } from '@gapwright/machine-models';
+import { sheetText } from '../datasheet.js';
+import type { Engine, SliceField, SolvedMachine } from '../engine.js';
+import { figure, given, givenMm, percent } from '../figures.js';
+import { checkOutputFolder, writeFiles } from '../files.js';
+import { readMachineFile } from '../input.js';
+import { type CommonOptions, colourWanted } from '../options.js';
+import { plainText } from '../plain-text.js';
+import { resultJson } from '../results-json.js';
+import { datasheet } from '../sheet.js';
+import { exitStatus, type Surroundings, stopIfInterrupted } from '../surroundings.js';
+import { ownVersion } from '../version.js';
+import { waveformsCsv } from '../waveforms-csv.js';
+
+export interface SolveCommandOptions extends CommonOptions {
+  readonly out?: string;
+  readonly vtu: boolean;
+}
+
+/** `gapwright solve FILE`: the main job, from a machine file to its datasheet. */
+export async function runSolve(
+  engine: Engine,
+  file: string,
+  options: SolveCommandOptions,
+  surroundings: Surroundings,
+): Promise<number> {
+  const { stdout, stderr, signal } = surroundings;
+  const begun = performance.now();
+  const { machine, warnings, sha256 } = readMachineFile(engine, file, options.set);
+  if (options.out !== undefined) checkOutputFolder(options.out, outputNames(machine, options.vtu), file);
+  if (!options.quiet) showWarnings(warnings, options, surroundings);
+  const solved = await engine.solve(machine, {
+    version: ownVersion(),
+    inputSha256: sha256,
+    warnings,
+    signal,
+    onSlice: (answer, index) => {
+      if (!options.quiet && stderr.isTTY === true) stderr.write(progressLine(answer, index, machine));
+    },
+  });
+  const solvedMs = performance.now() - begun;
+  const { result } = solved;
+  stdout.write(
+    options.json ? resultJson(result) : sheetText(datasheet(machine, result), colourWanted(options, surroundings)),
+  );
+  if (options.out !== undefined) {
+    const files = await outputFiles(machine, solved, options.vtu);
+    stopIfInterrupted(signal);
+    writeFiles(options.out, files);
+    if (!options.quiet) stderr.write(`${files.size} files written to ${plainText(options.out)}\n`);
+  }
+  if (!options.quiet) stderr.write(`${timeLine(machine, solvedMs, performance.now() - begun)}\n`);
+  return judge(machine, solved.answers, surroundings);
+}
+
+/** A terminal that shows the datasheet shows the warnings there; anywhere else they would be missed. */
+function showWarnings(warnings: readonly Warning[], options: CommonOptions, { stdout, stderr }: Surroundings): void {
+  if (!options.json && stdout.isTTY === true && stderr.isTTY === true) return;
+  for (const { key, text } of warnings) stderr.write(`warning: ${plainText(`${key}: ${text}`)}\n`);
+}
+
+function progressLine(answer: SliceAnswer, index: number, machine: Machine): string {
+  const { mesh, meshes, newtonStepsTotal } = answer;
+  return (
+    `slice ${index + 1} of ${machine.model.slices.length}, radius ${givenMm(answer.radius)} mm: ` +
+    `${mesh.triangles} triangles, mesh ${meshes}, ${newtonStepsTotal} Newton steps in all\n`
+  );
+}
+
+function timeLine(machine: Machine, solvedMs: number, totalMs: number): string {
+  const { length } = machine.model.slices;
+  return `${length} ${length === 1 ? 'slice' : 'slices'} solved in ${figure(solvedMs / 1000, 3)} s, all done in ${figure(totalMs / 1000, 3)} s`;
+}
+
+/** Exit status, with a line for each slice that did not reach what was asked. */
+function judge(machine: Machine, answers: readonly SliceAnswer[], { stderr }: Surroundings): number {
+  const short = answers.filter(({ converged, accurate }) => !converged || !accurate);
+  for (const { radius, converged, newtonSteps } of short) {
+    const what = converged
+      ? `did not reach the wanted accuracy of ${percent(machine.model.accuracy, 2)}`
+      : `did not converge in ${newtonSteps} Newton steps; its figures are not to be used`;
+    stderr.write(`not reached: the slice at radius ${givenMm(radius)} mm ${what}\n`);
+  }
+  return short.length === 0 ? exitStatus.done : exitStatus.notReached;
+}
+
+const sliceName = (radius: number, index: number): string => `slice-${index + 1}-${given(1000 * radius)}mm`;
+
+function outputNames(machine: Machine, vtu: boolean): string[] {
+  const slices = machine.model.slices.map(({ radius }, k) => sliceName(radius, k));
+  return [
+    'results.json',
+    'waveforms.csv',
+    'report.html',
+    ...slices.map((name) => `${name}.svg`),
+    ...(vtu ? slices.map((name) => `${name}.vtu`) : []),
+  ];
+}
+
+/** Content of all files by name; the same solution gives the same bytes. */
+async function outputFiles(
+  machine: Machine,
+  { result, answers, fieldOf }: SolvedMachine,
+  vtu: boolean,
+): Promise<Map<string, string>> {
+  // The chart library takes longer to load than a slice to solve, so it is loaded only here.
+  const { reportHtml } = await import('../report/report.js');
+  const fields = answers.map((_, index) => fieldOf(index));
+  const pictures = drawPictures(result, fields);
+  const contents = [
+    resultJson(result),
+    waveformsCsv(result),
+    reportHtml(datasheet(machine, result), result, pictures),
+    ...pictures,
+    ...(vtu ? fields.map(writeVtu) : []),
+  ];
+  return new Map(outputNames(machine, vtu).map((name, k) => [name, contents[k]]));
+}
+
+/** One picture a slice, all on one colour scale so that they can be compared. */
+function drawPictures(result: MachineResult, fields: readonly SliceField[]): string[] {
+  const scaleEnd = Math.max(...fields.map(({ mesh, magnitude }) => colourScaleEnd(mesh, magnitude)));
+  return fields.map((field, k) =>
+    drawField(field, {
+      title: `${plainText(result.machine)}: slice at radius ${givenMm(result.slices[k].radius_m)} mm`,
+      copies: field.copies,
+      heights: field.heights,
+      scaleEnd,
+      idPrefix: `slice-${k + 1}-`,
+    }),
+  );
+}

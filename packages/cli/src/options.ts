@@ -1,0 +1,37 @@
+import type { Setting } from '@gapwright/fem-core';
+import { type Command, InvalidArgumentError } from 'commander';
+import type { Surroundings } from './surroundings.js';
+
+/** Options that every verb working on a machine file takes. */
+export interface CommonOptions {
+  readonly set: readonly Setting[];
+  readonly json: boolean;
+  readonly workers: number;
+  readonly quiet: boolean;
+  readonly colour: boolean;
+}
+
+export function addCommonOptions(command: Command): Command {
+  return command
+    .option('--set <KEY=VALUE>', 'set a value of the file, for example rotor.gap=18mm; may be repeated', addSetting, [])
+    .option('--json', 'print the result alone, as JSON', false)
+    .option('--workers <N>', 'threads to use at most', wholeNumber, 1)
+    .option('--quiet', 'print no progress, warnings or times', false)
+    .option('--no-colour', 'print without colours (as the environment variable NO_COLOR does)');
+}
+
+function addSetting(text: string, before: readonly Setting[]): readonly Setting[] {
+  const split = text.indexOf('=');
+  if (split < 1) throw new InvalidArgumentError('Give it as KEY=VALUE, for example rotor.gap=18mm.');
+  return [...before, { key: text.slice(0, split).trim(), value: text.slice(split + 1).trim() }];
+}
+
+function wholeNumber(text: string): number {
+  if (!/^[1-9]\d{0,5}$/.test(text)) throw new InvalidArgumentError('Give a whole number, 1 or more.');
+  return Number(text);
+}
+
+/** Colours go to a terminal only, and only if neither the option nor NO_COLOR (https://no-color.org) forbids them. */
+export function colourWanted(options: Pick<CommonOptions, 'colour'>, { stdout, env }: Surroundings): boolean {
+  return options.colour && stdout.isTTY === true && (env.NO_COLOR ?? '') === '';
+}

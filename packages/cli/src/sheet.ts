@@ -1,0 +1,300 @@
+import type { Machine, MachineResult, VoltageResult } from '@gapwright/machine-models';
+import { figure, force, given, givenMm, meshError, mm, percent, power, resistance } from './figures.js';
+import { plainText } from './plain-text.js';
+
+/** A datasheet as content, whatever it is then shown on. All texts are plain, of one line, with units. */
+export interface Sheet {
+  readonly title: string;
+  readonly groups: readonly SheetGroup[];
+  readonly warnings: readonly string[];
+  readonly cautions: readonly string[];
+}
+
+export interface SheetGroup {
+  readonly heading: string;
+  readonly blocks: readonly SheetBlock[];
+}
+
+export type SheetBlock =
+  | { readonly kind: 'rows'; readonly rows: readonly SheetRow[] }
+  | ({ readonly kind: 'table' } & SheetTable);
+
+export interface SheetRow {
+  readonly label: string;
+  readonly value: string;
+  /** What qualifies the value, for example the mesh's error. */
+  readonly note?: string;
+}
+
+export interface SheetTable {
+  /** Units stand in the head; a column with an empty unit has none. */
+  readonly columns: readonly { readonly name: string; readonly unit: string }[];
+  readonly rows: readonly (readonly string[])[];
+  readonly caption?: string;
+}
+
+/** What the commands and the report show of a solved machine. */
+export function datasheet(machine: Machine, result: MachineResult): Sheet {
+  return {
+    title: plainText(result.machine),
+    groups: [
+      machineGroup(machine),
+      slicesGroup(machine, result),
+      emfGroup(result),
+      windingGroup(machine, result),
+      meritGroup(result),
+      mechanicalGroup(result),
+    ],
+    warnings: result.warnings.map(({ key, text }) => plainText(key === '' ? text : `${key}: ${text}`)),
+    cautions: result.cautions.map(plainText),
+  };
+}
+
+/** The group that needs no field: what was asked for. */
+export function machineGroup({ rotor, winding, operation, materials }: Machine): SheetGroup {
+  const { magnets, disc } = rotor;
+  const size =
+    magnets.shape === 'block'
+      ? `blocks ${givenMm(magnets.width)} x ${givenMm(magnets.length)} x ${givenMm(magnets.thickness)} mm`
+      : `sectors, arc ${given(magnets.arc)} of the pole pitch, ${givenMm(magnets.length)} mm long, ${givenMm(magnets.thickness)} mm thick`;
+  const legs = `${givenMm(winding.legWidth)} mm wide (${winding.legShape}), ${givenMm(winding.thickness)} mm thick`;
+  const rows: SheetRow[] = [
+    { label: 'Rotor', value: `${rotor.arrangement}, ${rotor.poles} poles, gap ${givenMm(rotor.gap)} mm` },
+    { label: 'Magnets', value: `${size}, mean radius ${givenMm(magnets.meanRadius)} mm` },
+    {
+      label: 'Magnet material',
+      value: `${materialText(magnets.material, materials)}, at ${given(magnets.temperature)} degC`,
+    },
+    {
+      label: 'Discs',
+      value:
+        disc === undefined
+          ? 'none'
+          : `${plainText(disc.material)}, ${givenMm(disc.thickness)} mm thick, radius ${givenMm(disc.innerRadius)} to ${givenMm(disc.outerRadius)} mm`,
+    },
+    {
+      label: 'Winding',
+      value: `${winding.layout}, ${winding.coils} coils of ${winding.turns} turns, ${winding.phases} phases in ${winding.connection}${winding.paths > 1 ? `, ${winding.paths} parallel paths` : ''}`,
+    },
+    { label: 'Legs', value: `${legs}, ${givenMm(winding.clearance)} mm clearance each side` },
+    { label: 'Wire', value: wireText(winding.wire) },
+    {
+      label: 'Operation',
+      value: `${given(operation.speedRpm)} rpm${operation.overspeedRpm === undefined ? '' : `, overspeed ${given(operation.overspeedRpm)} rpm`}; winding at ${given(winding.temperature)} degC`,
+    },
+  ];
+  return { heading: 'Machine', blocks: [rowsBlock(rows)] };
+}
+
+const rowsBlock = (rows: readonly SheetRow[]): SheetBlock => ({ kind: 'rows', rows });
+
+function materialText(name: string, materials: Machine['materials']): string {
+  const material = materials[name];
+  if (material?.kind !== 'magnet') return plainText(name);
+  return `${plainText(name)}, remanence ${figure(material.remanence, 3)} T, recoil ${given(material.recoil)}`;
+}
+
+function wireText(wire: Machine['winding']['wire']): string {
+  const strand =
+    wire.diameter === undefined
+      ? `${givenMm(wire.width ?? 0)} x ${givenMm(wire.height ?? 0)} mm`
+      : `${givenMm(wire.diameter)} mm bare`;
+  const copper = `${figure(1e6 * wire.strands * wire.strandArea, 3)} mm2 copper`;
+  const enamel = wire.enamel === undefined ? '' : `, enamel ${plainText(wire.enamel)}`;
+  return `${wire.strands} ${wire.strands === 1 ? 'strand' : 'strands in hand'} of ${strand}, ${copper}${enamel}`;
+}
+
+function slicesGroup(machine: Machine, result: MachineResult): SheetGroup {
+  const { slices, effective_B: effective } = result;
+  const column = (name: string, unit: string) => ({ name, unit });
+  const field: SheetTable = {
+    columns: [
+      column('radius', 'mm'),
+      column('pole pitch', 'mm'),
+      column('gap B1', 'T'),
+      column('gap B3', 'T'),
+      column('leg peak', 'T'),
+      column('leg B1', 'T'),
+      column('line peak', 'T'),
+      column('mesh', '± %'),
+      column('disc', 'T'),
+      column('steel peak', 'T'),
+      column('pull', 'kN/m'),
+    ],
+    rows: slices.map((slice) => [
+      mm(slice.radius_m),
+      mm(slice.pole_pitch_m),
+      harmonic(slice.mid_B, 1),
+      harmonic(slice.mid_B, 3),
+      figure(slice.leg_B.peak_T),
+      figure(slice.leg_B.fundamental_T),
+      figure(slice.line_B_peak_T),
+      (100 * slice.leg_B_rel_err).toFixed(3),
+      slice.disc_B_T === undefined ? '-' : figure(slice.disc_B_T, 3),
+      slice.peak_steel_B_T === undefined ? '-' : figure(slice.peak_steel_B_T, 3),
+      figure(slice.pull_N_per_m_pole / 1000, 3),
+    ]),
+    caption:
+      'B1, B3: harmonics on the mid-plane of the gap; leg: averaged over a leg; pull: per pole and metre of radius',
+  };
+  const mesh = slices.map(({ mesh: { nodes, triangles, min_angle_deg }, newton_steps }, k) => ({
+    label: `Mesh at ${mm(slices[k].radius_m)} mm`,
+    value: `${triangles} triangles, ${nodes} nodes, angles from ${figure(min_angle_deg, 3)} deg, ${newton_steps} Newton ${newton_steps === 1 ? 'step' : 'steps'}`,
+  }));
+  const rows: SheetRow[] = [
+    {
+      label: 'Effective B, leg',
+      value: `${figure(effective.peak_T)} T peak`,
+      note: `${meshError(effective.peak_T_rel_err)}, wanted ${percent(machine.model.accuracy, 2)}`,
+    },
+    {
+      label: 'Effective B, line',
+      value: `${figure(effective.line_peak_T)} T peak`,
+      note: meshError(effective.line_peak_T_rel_err),
+    },
+    {
+      label: 'Third harmonic',
+      value: `${percent(effective.third_share_phase)} of the phase, ${percent(effective.third_share_line)} of the line`,
+    },
+    ...mesh,
+  ];
+  return { heading: 'Slices', blocks: [{ kind: 'table', ...field }, rowsBlock(rows)] };
+}
+
+function harmonic(
+  series: { readonly order: readonly number[]; readonly amplitude_T: readonly number[] },
+  order: number,
+): string {
+  const k = series.order.indexOf(order);
+  return k < 0 ? '-' : series.amplitude_T[k].toFixed(4);
+}
+
+function emfGroup({ emf, winding }: MachineResult): SheetGroup {
+  const voltage = (name: string, v: VoltageResult): SheetRow[] => [
+    { label: `${name}, rms`, value: `${figure(v.rms_V)} V`, note: meshError(v.rms_V_rel_err) },
+    { label: `${name}, peak`, value: `${figure(v.peak_V)} V`, note: meshError(v.peak_V_rel_err) },
+    {
+      label: `${name}, fundamental`,
+      value: `${figure(v.fundamental_rms_V)} V rms, ${percent(v.thd)} harmonic distortion`,
+      note: meshError(v.fundamental_rms_V_rel_err),
+    },
+  ];
+  const rows = [
+    { label: 'Speed', value: `${given(emf.speed_rpm)} rpm, ${figure(emf.frequency_Hz)} Hz` },
+    ...voltage('Phase', emf.phase),
+    ...voltage('Line', emf.line),
+    { label: 'Line per speed', value: `${figure(1000 * emf.line_rms_V_per_rpm)} V rms per 1000 rpm` },
+    {
+      label: 'Rectified mean',
+      value: `${figure(emf.rectified_mean_V)} V, without diode drop`,
+      note: meshError(emf.rectified_mean_V_rel_err),
+    },
+  ];
+  return {
+    heading: 'EMF with no load',
+    blocks: [rowsBlock(rows), { kind: 'table', ...harmonicsTable(emf, winding) }],
+  };
+}
+
+function harmonicsTable(emf: MachineResult['emf'], winding: MachineResult['winding']): SheetTable {
+  const at = (orders: readonly number[], values: readonly number[], order: number): number | undefined =>
+    values[orders.indexOf(order)];
+  const cells = ({ order, harmonic_rms_V, fundamental_rms_V }: VoltageResult, n: number): string[] => {
+    const value = at(order, harmonic_rms_V, n);
+    return value === undefined ? ['-', '-'] : [value.toFixed(3), ((100 * value) / fundamental_rms_V).toFixed(2)];
+  };
+  const orders = tellingOrders(emf);
+  return {
+    columns: [
+      { name: 'order', unit: '' },
+      { name: 'phase', unit: 'V rms' },
+      { name: 'of first', unit: '%' },
+      { name: 'line', unit: 'V rms' },
+      { name: 'of first', unit: '%' },
+      { name: 'winding factor', unit: '' },
+    ],
+    rows: orders.map((n) => {
+      const factor = at(winding.order, winding.winding_factor, n);
+      return [String(n), ...cells(emf.phase, n), ...cells(emf.line, n), factor === undefined ? '-' : factor.toFixed(4)];
+    }),
+    ...(orders.length < emf.phase.order.length && {
+      caption: `orders above ${orders.at(-1)} stay below 0.01 % of the first`,
+    }),
+  };
+}
+
+/** Orders up to the last that has at least 0.01 % of the fundamental, in phase or line. */
+export function tellingOrders({ phase, line }: MachineResult['emf']): readonly number[] {
+  const tells = ({ order, harmonic_rms_V, fundamental_rms_V }: VoltageResult, n: number): boolean =>
+    (harmonic_rms_V[order.indexOf(n)] ?? 0) >= 1e-4 * fundamental_rms_V;
+  const last = Math.max(1, ...phase.order.filter((n) => tells(phase, n) || tells(line, n)));
+  return phase.order.filter((n) => n <= last);
+}
+
+function windingGroup({ winding: built }: Machine, { winding }: MachineResult): SheetGroup {
+  return {
+    heading: 'Winding',
+    blocks: [
+      rowsBlock([
+        { label: 'Thickness', value: `${mm(winding.thickness_m)} mm` },
+        { label: 'Fill factor', value: `${figure(winding.fill_factor, 3)} bare copper in the leg's section` },
+        { label: 'Mean turn', value: `${mm(winding.mean_turn_m)} mm` },
+        {
+          label: 'Wire to wind',
+          value: `${figure(winding.wire_length_m, 3)} m of each strand, ${figure(built.wire.strands * winding.wire_length_m, 3)} m in all`,
+        },
+        {
+          label: 'Phase resistance',
+          value: `${resistance(winding.phase_resistance_20C_ohm)} at 20 degC, ${resistance(winding.phase_resistance_hot_ohm)} at ${given(built.temperature)} degC`,
+        },
+        ...phaseRows(winding.phase_map),
+      ]),
+    ],
+  };
+}
+
+/** Which coils, counted round the machine, make each phase; a minus marks those connected the other way round. */
+function phaseRows(map: MachineResult['winding']['phase_map']): SheetRow[] {
+  const phases = [...new Set(map.map(({ phase }) => phase))].sort((a, b) => a - b);
+  return phases.map((phase) => ({
+    label: `Coils of phase ${phase}`,
+    value: map.flatMap((coil, k) => (coil.phase === phase ? [`${coil.sense < 0 ? '-' : ''}${k + 1}`] : [])).join(' '),
+    ...(map.some((coil) => coil.phase === phase && coil.sense < 0) && { note: 'minus: the other way round' }),
+  }));
+}
+
+function meritGroup({ merit }: MachineResult): SheetGroup {
+  return {
+    heading: 'Merit',
+    blocks: [
+      rowsBlock([
+        { label: 'Merit V^2/R, hot', value: power(merit.merit_W), note: meshError(merit.merit_W_rel_err) },
+        {
+          label: 'Line B^2 x thickness',
+          value: `${figure(1000 * merit.line_B_squared_thickness_T2m)} T2 mm`,
+          note: meshError(merit.line_B_squared_thickness_T2m_rel_err),
+        },
+      ]),
+    ],
+  };
+}
+
+function mechanicalGroup({ mechanical, masses }: MachineResult): SheetGroup {
+  const mass = (label: string, value: number | undefined): SheetRow[] =>
+    value === undefined ? [] : [{ label, value: `${figure(value, 3)} kg` }];
+  return {
+    heading: 'Pull and masses',
+    blocks: [
+      rowsBlock([
+        {
+          label: 'Pull between the discs',
+          value: force(mechanical.disc_pull_N),
+          note: meshError(mechanical.disc_pull_N_rel_err),
+        },
+        ...mass('Magnets', masses.magnets_kg),
+        ...mass('Copper', masses.copper_kg),
+        ...mass('Steel', masses.steel_kg),
+      ]),
+    ],
+  };
+}

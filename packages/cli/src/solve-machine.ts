@@ -1,0 +1,49 @@
+import { triangleMeans } from '@gapwright/fem-core';
+import type { Machine, SolvedSlice } from '@gapwright/machine-models';
+import { describeMachine, imagesOfPolePair, readMachine, solveSlice } from '@gapwright/machine-models';
+import type { Engine, SliceField } from './engine.js';
+import { stopIfInterrupted } from './surroundings.js';
+
+/** The models as the commands use them. */
+export const machineEngine: Engine = {
+  read: readMachine,
+
+  async solve(machine, options) {
+    const slices: SolvedSlice[] = [];
+    for (const [index, slice] of machine.model.slices.entries()) {
+      await new Promise((resolve) => setImmediate(resolve)); // lets an interruption be heard between slices
+      stopIfInterrupted(options.signal);
+      const solved = solveSlice(machine, slice);
+      slices.push(solved);
+      options.onSlice(solved.answer, index);
+    }
+    const answers = slices.map(({ answer }) => answer);
+    const stamp = { version: options.version, inputSha256: options.inputSha256 };
+    return {
+      result: describeMachine(machine, answers, options.warnings, stamp),
+      answers,
+      fieldOf: (index) => pictured(machine, slices[index]),
+    };
+  },
+};
+
+/** Air shown behind a disc, in pole pitches; there is more, but nothing happens in it. */
+const airShown = 0.35;
+
+function pictured({ rotor }: Machine, { field, recovered, pole }: SolvedSlice): SliceField {
+  const { mesh, potential } = field;
+  const magnitude = new Float64Array(recovered.length / 2);
+  for (let t = 0; t < magnitude.length / 6; t++) {
+    for (let k = 0; k < 6; k++) magnitude[6 * t + k] = Math.hypot(recovered[12 * t + k], recovered[12 * t + 6 + k]);
+  }
+  const rear = rotor.gap / 2 + rotor.magnets.thickness + (rotor.disc?.thickness ?? 0);
+  const height = rear + airShown * pole.polePitch;
+  return {
+    mesh,
+    potential,
+    magnitude,
+    ...triangleMeans(field),
+    copies: imagesOfPolePair(pole),
+    heights: [-height, height],
+  };
+}

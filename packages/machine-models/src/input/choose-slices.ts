@@ -1,0 +1,54 @@
+import { HAIR, millimetres } from './format-figure.js';
+import { polynomialRadii, type SliceRadius, simpsonRadii } from './radii.js';
+import type { Report } from './report.js';
+import type { ModelFile } from './schema.js';
+
+/** Weights that add up, taken positive, to more than this many times the length blow up errors from slice to slice. */
+const MOST_AMPLIFICATION = 2;
+
+/** The slices that `model.radii` asks for; none where it asks for something impossible, which is told. */
+export function chooseSlices(
+  radii: ModelFile['radii'],
+  { inner, outer }: { readonly inner: number; readonly outer: number },
+  report: Report,
+): readonly SliceRadius[] {
+  if (radii === 'auto') return []; // refused
+  if (typeof radii === 'number') {
+    if (radii % 2 === 0) {
+      const remedy = `give ${radii - 1 > 0 ? `${radii - 1} or ` : ''}${radii + 1}, or a list of radii`;
+      report.fault(['model', 'radii'], 'even-count', `Simpson's rule needs an odd number, got ${radii}`, remedy);
+    }
+    return radii % 2 === 1 ? simpsonRadii(inner, outer, radii) : [];
+  }
+  return checkList(radii, inner, outer, report) ? weigh(radii, inner, outer, report) : [];
+}
+
+function checkList(radii: readonly number[], inner: number, outer: number, report: Report): boolean {
+  const reach = `the magnets reach from ${millimetres(inner)} to ${millimetres(outer)}`;
+  let fine = radii.length > 0 && inner > 0;
+  for (const [i, radius] of radii.entries()) {
+    const path = ['model', 'radii', i];
+    if (radius < inner - HAIR || radius > outer + HAIR) {
+      report.fault(path, 'out-of-range', `${reach}, got ${millimetres(radius)}`, 'give radii within the magnets');
+    }
+    if (i > 0 && radius <= radii[i - 1]) {
+      const wrong = `must be more than the radius before, ${millimetres(radii[i - 1])}, got ${millimetres(radius)}`;
+      report.fault(path, 'not-rising', wrong, 'order the radii, each once');
+    }
+    fine &&= radius >= inner - HAIR && radius <= outer + HAIR && !(i > 0 && radius <= radii[i - 1]);
+  }
+  return fine;
+}
+
+function weigh(radii: readonly number[], inner: number, outer: number, report: Report): readonly SliceRadius[] {
+  const slices = polynomialRadii(inner, outer, radii);
+  const amplification = slices.reduce((sum, { weight }) => sum + Math.abs(weight), 0) / (outer - inner);
+  if (amplification > MOST_AMPLIFICATION) {
+    report.warn(
+      ['model', 'radii'],
+      `the polynomial through these radii swings: errors of the slices count ${amplification.toPrecision(2)} times; ` +
+        'spread the radii over the whole length of the magnets, more densely towards its ends',
+    );
+  }
+  return slices;
+}

@@ -1,0 +1,176 @@
+import type { Field, Functional, Goal, Locator, Material, Section, Setup } from '@gapwright/fem-core';
+import { buildLocator, MU0, pointPotential, stressFunctional, stressThrough, weightedIntegral } from '@gapwright/fem-core';
+
+/**
+ * Slotless gap between two infinitely permeable discs, unrolled; lengths in metres. `halfGap` is the distance from the
+ * magnets' face to the plane of zero scalar potential: half the gap where both discs carry magnets, the whole gap where
+ * the other disc is plain steel.
+ */
+export interface Gap {
+  readonly polePitch: number;
+  readonly width: number;
+  readonly height: number;
+  readonly halfGap: number;
+  /** T. */
+  readonly remanence: number;
+  readonly recoil: number;
+}
+
+/** The three twin-disc gaps and the single-disc one whose figures the tables below give; lengths in millimetres. */
+const gap = (tau: number, w: number, h: number, a: number, remanence: number, recoil: number): Gap => ({
+  polePitch: tau / 1000,
+  width: w / 1000,
+  height: h / 1000,
+  halfGap: a / 1000,
+  remanence,
+  recoil,
+});
+export const G1 = gap(50, 36, 10, 8, 1.25, 1.05);
+export const G2 = gap(30, 20, 6, 5, 1.32, 1.05);
+export const G3 = gap(80, 46, 20, 7, 0.39, 1.1);
+export const G4 = gap(50, 36, 10, 9, 1.25, 1.05);
+
+/**
+ * Amplitude of the odd harmonic n of By at the height y from the plane of zero potential. The magnetisation's wave is
+ * R_n = (4 Br/(n pi)) sin(n pi w/(2 tau)); the scalar potential, ~ sinh(k s) from the disc in the magnet layer and
+ * ~ sinh(k y) in the gap, obeys Laplace's equation in both, and equal potential and normal B at the magnets' face give
+ *
+ *   B_n(y) = R_n cosh(k y) / (cosh(k a) + m sinh(k a) coth(k h)),   k = n pi/tau,
+ *
+ * the recoil permeability m filling the magnet layer between the magnets too.
+ */
+export function seriesAmplitude(g: Gap, n: number, y: number): number {
+  const k = (n * Math.PI) / g.polePitch;
+  const source = ((4 * g.remanence) / (n * Math.PI)) * Math.sin((k * g.width) / 2);
+  // cosh and sinh over cosh(k a), which overflow for high orders
+  const share = (Math.exp(k * (y - g.halfGap)) + Math.exp(-k * (y + g.halfGap))) / (1 + Math.exp(-2 * k * g.halfGap));
+  return (source * share) / (1 + (g.recoil * Math.tanh(k * g.halfGap)) / Math.tanh(k * g.height));
+}
+
+const ORDERS = Array.from({ length: 400 }, (_, i) => 2 * i + 1);
+
+/** Mean of By's harmonic over heights from -t to t (or 0 to t). */
+export function seriesMean(g: Gap, n: number, t: number): number {
+  const x = ((n * Math.PI) / g.polePitch) * t;
+  return (seriesAmplitude(g, n, 0) * Math.sinh(x)) / x;
+}
+
+/** Flux of one pole through the plane at height y, Wb per metre of depth. */
+export function seriesFlux(g: Gap, y: number): number {
+  return ORDERS.reduce(
+    (sum, n) => sum + ((2 * g.polePitch) / (n * Math.PI)) * seriesAmplitude(g, n, y) * (n % 4 === 1 ? 1 : -1),
+    0,
+  );
+}
+
+/** Pull of one pole, N per metre of depth: tau sum B_n^2/(4 mu0) on the plane of zero potential. */
+export function seriesPull(g: Gap): number {
+  return ORDERS.reduce((sum, n) => sum + (g.polePitch * seriesAmplitude(g, n, 0) ** 2) / (4 * MU0), 0);
+}
+
+/** Share of halfGap up to which the averages are taken, and where the line off the mid-plane runs: 0.3 of a twin's gap. */
+const LAYER = 0.6;
+
+/**
+ * Half a pole from its axis to midway between poles, from the plane of zero potential to the disc. The natural condition
+ * on the disc's face stands for infinite permeability; `between` fills the room between the magnets.
+ */
+export function halfPole(g: Gap, between: 'recoil' | 'air'): { readonly section: Section; readonly setup: Setup } {
+  const [half, top] = [g.polePitch / 2, g.halfGap + g.height];
+  const magnet: Material = { kind: 'magnet', recoil: g.recoil, remanence: [0, g.remanence] };
+  const air: Material = { kind: 'linear', muR: 1 };
+  return {
+    section: {
+      outline: { kind: 'rectangle', from: [0, 0], to: [half, top] },
+      background: 'between',
+      maxEdge: g.polePitch / 10,
+      regions: [
+        { name: 'upper gap', shape: { kind: 'rectangle', from: [0, 0], to: [half, g.halfGap] } },
+        { name: 'layer', shape: { kind: 'rectangle', from: [0, 0], to: [half, LAYER * g.halfGap] } },
+        { name: 'magnet', shape: { kind: 'rectangle', from: [0, g.halfGap], to: [g.width / 2, top] } },
+      ],
+    },
+    setup: {
+      materials: {
+        'upper gap': air,
+        layer: air,
+        magnet,
+        between: between === 'air' ? air : { kind: 'linear', muR: g.recoil },
+      },
+      edges: {
+        left: { kind: 'closed' },
+        right: { kind: 'crossing' },
+        bottom: { kind: 'crossing' },
+        top: { kind: 'crossing' },
+      },
+    },
+  };
+}
+
+/** An answer wanted of the half pole, with what the series says of it. */
+export interface Wanted {
+  readonly quantity: string;
+  readonly expected: number;
+  /** Harmonics of By are judged against the fundamental on the plane of zero potential, the others against themselves. */
+  readonly kind: 'harmonic' | 'other';
+  readonly goal: Goal;
+}
+
+export function wantedOf(g: Gap): Wanted[] {
+  const wanted: Wanted[] = [];
+  for (const n of [1, 3, 5]) {
+    const add = (where: string, expected: number, functional: Goal['functional']): void => {
+      const quantity = `B_${n} ${where}`;
+      wanted.push({ quantity, expected, kind: 'harmonic', goal: { name: quantity, functional } });
+    };
+    add('at the mid-plane', seriesAmplitude(g, n, 0), (field) => lineHarmonic(g, field, n, 0));
+    add('off it', seriesAmplitude(g, n, LAYER * g.halfGap), (field) => lineHarmonic(g, field, n, LAYER * g.halfGap));
+    add('over a thickness', seriesMean(g, n, LAYER * g.halfGap), (field) => layerHarmonic(g, field, n));
+  }
+  const flux = 'flux per pole at the mid-plane';
+  const functional = (field: Field): Functional => {
+    const spot = spotAt(buildLocator(field.mesh), g.polePitch / 2, 0);
+    return pointPotential(field.mesh, spot).map((value) => -2 * value);
+  };
+  wanted.push({ quantity: flux, expected: seriesFlux(g, 0), kind: 'other', goal: { name: flux, functional } });
+  const slope = (): readonly [number, number] => [0, 2 / (LAYER * g.halfGap)]; // twice: half a pole is drawn
+  wanted.push({
+    quantity: 'pull per pole',
+    expected: seriesPull(g),
+    kind: 'other',
+    goal: {
+      name: 'pull',
+      functional: (field) => stressFunctional(field, ['layer'], slope).map((value) => -value),
+      value: (field) => -stressThrough(field, ['layer'], slope).fy,
+    },
+  });
+  return wanted;
+}
+
+function spotAt(locator: Locator, x: number, y: number): NonNullable<ReturnType<Locator['find']>> {
+  const spot = locator.find(x, y);
+  if (spot === undefined) throw new Error(`(${x}, ${y}) lies outside`);
+  return spot;
+}
+
+/** A = -sum (B_n/k) sin(k x), so B_n = -(4 k/tau) integral of A sin(k x) over half a pole: midpoint rule, 400 stations. */
+function lineHarmonic(g: Gap, field: Field, n: number, y: number): Functional {
+  const stations = 400;
+  const k = (n * Math.PI) / g.polePitch;
+  const locator = buildLocator(field.mesh);
+  const sum = new Float64Array(field.potential.length);
+  for (let j = 0; j < stations; j++) {
+    const x = ((j + 0.5) * g.polePitch) / (2 * stations);
+    const weight = ((-4 * k) / g.polePitch) * (g.polePitch / (2 * stations)) * Math.sin(k * x);
+    pointPotential(field.mesh, spotAt(locator, x, y)).forEach((value, i) => {
+      if (value !== 0) sum[i] += weight * value;
+    });
+  }
+  return sum;
+}
+
+function layerHarmonic(g: Gap, field: Field, n: number): Functional {
+  const k = (n * Math.PI) / g.polePitch;
+  const factor = (-4 * k) / (g.polePitch * LAYER * g.halfGap);
+  return weightedIntegral(field.mesh, ['layer'], (x) => factor * Math.sin(k * x));
+}
