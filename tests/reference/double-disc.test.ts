@@ -8,7 +8,8 @@ import { check } from './table.js';
 const SERIES =
   'scalar potential in layers, calculated; the approach of Bumby et al. 2004 (IEE Proc. Electr. Power Appl.), title from memory';
 const PRINTED = 'the same series as tabled by a second program, calculated';
-const CELLS = 'bilinear finite elements of the scalar potential on 0.1 mm cells, a separate program, calculated to 2.5e-5';
+const CELLS =
+  'bilinear finite elements of the scalar potential on 0.1 mm cells, a separate program, calculated to 2.5e-5';
 
 const GAPS: readonly [name: string, gap: Gap][] = [
   ['G1', G1],
@@ -118,8 +119,7 @@ test.each([
 ] as const)('flux at the magnet face and entering the disc: %s', (name, g, atFace, atDisc) => {
   const { field } = solveHalfPole(g, 'recoil', wantedOf(g));
   const locator = buildLocator(field.mesh);
-  const flux = (y: number): number =>
-    2 * (fluxBetween(field, locator, [0, y], [g.polePitch / 2, y]) ?? Number.NaN);
+  const flux = (y: number): number => 2 * (fluxBetween(field, locator, [0, y], [g.polePitch / 2, y]) ?? Number.NaN);
   const label = `${name}, recoil ${g.recoil} between the magnets`;
   const face = { case: label, quantity: 'flux per pole, magnet face', source: PRINTED, expected: atFace };
   const disc = { case: label, quantity: 'flux per pole into the disc', source: PRINTED, expected: atDisc };

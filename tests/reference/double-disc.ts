@@ -1,5 +1,12 @@
 import type { Field, Functional, Goal, Locator, Material, Section, Setup } from '@gapwright/fem-core';
-import { buildLocator, MU0, pointPotential, stressFunctional, stressThrough, weightedIntegral } from '@gapwright/fem-core';
+import {
+  buildLocator,
+  MU0,
+  pointPotential,
+  stressFunctional,
+  stressThrough,
+  weightedIntegral,
+} from '@gapwright/fem-core';
 
 /**
  * Slotless gap between two infinitely permeable discs, unrolled; lengths in metres. `halfGap` is the distance from the

@@ -52,7 +52,7 @@ async function runCommand(argv: readonly string[], surroundings: Surroundings, e
     .description('write a starter machine file')
     .argument('[DIR]', 'folder to write it to', '.')
     .option('--scenario <NAME>', 'which one', 'hut-hydro')
-    .option('--list', 'name the scenarios', false)
+    .option('--list', 'name the scenarios')
     .action((directory: string, options: NewOptions) => {
       status = runNew(directory, options, surroundings);
     });
@@ -66,7 +66,7 @@ async function runCommand(argv: readonly string[], surroundings: Surroundings, e
     .description('the main job: slices, EMF, winding, forces, cautions')
     .argument('<FILE>', 'machine file')
     .option('--out <DIR>', 'write results.json, waveforms.csv, report.html and a picture of each slice there')
-    .option('--vtu', 'with --out: also each slice as VTK XML', false)
+    .option('--vtu', 'with --out: also each slice as VTK XML')
     .action(async (file: string, options: SolveCommandOptions) => {
       status = await runSolve(engine, file, options, surroundings);
     });

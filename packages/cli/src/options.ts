@@ -1,22 +1,26 @@
 import type { Setting } from '@gapwright/fem-core';
-import { type Command, InvalidArgumentError } from 'commander';
+import { type Command, InvalidArgumentError, Option } from 'commander';
 import type { Surroundings } from './surroundings.js';
 
 /** Options that every verb working on a machine file takes. */
 export interface CommonOptions {
   readonly set: readonly Setting[];
-  readonly json: boolean;
+  readonly json?: boolean;
   readonly workers: number;
-  readonly quiet: boolean;
+  readonly quiet?: boolean;
   readonly colour: boolean;
 }
 
 export function addCommonOptions(command: Command): Command {
   return command
-    .option('--set <KEY=VALUE>', 'set a value of the file, for example rotor.gap=18mm; may be repeated', addSetting, [])
-    .option('--json', 'print the result alone, as JSON', false)
+    .addOption(
+      new Option('--set <KEY=VALUE>', 'set a value of the file, for example rotor.gap=18mm; may be repeated')
+        .argParser(addSetting)
+        .default([], 'none'),
+    )
+    .option('--json', 'print the result alone, as JSON')
     .option('--workers <N>', 'threads to use at most', wholeNumber, 1)
-    .option('--quiet', 'print no progress, warnings or times', false)
+    .option('--quiet', 'print no progress, warnings or times')
     .option('--no-colour', 'print without colours (as the environment variable NO_COLOR does)');
 }
 

@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import {
   chainPieces,
@@ -6,7 +7,7 @@ import {
   type Trace,
   traceLevel,
 } from '../../../packages/fem-core/src/io/contours.js';
-import { buildDrawingMesh, valuesAtPoints } from '../../../packages/fem-core/src/io/drawing-mesh.js';
+import { buildDrawingMesh, type DrawingMesh, valuesAtPoints } from '../../../packages/fem-core/src/io/drawing-mesh.js';
 import { atNodes, gridMesh } from './grid-mesh.js';
 
 const mesh = gridMesh({
@@ -119,6 +120,38 @@ describe('filled areas', () => {
     expect(rings.map((ring) => Math.sign(signedArea([ring]))).sort()).toEqual([-1, 1]);
   });
 });
+
+test('areas above and below a level add up to the region, in closed rings, for any values at the nodes', () => {
+  const nodes = mesh.xy.length / 2 + mesh.edges.length / 2;
+  // Whole numbers, so that many values equal the level exactly.
+  const values = fc.array(fc.integer({ min: -3, max: 3 }), { minLength: nodes, maxLength: nodes });
+  const coarse = buildDrawingMesh(mesh, 2);
+  fc.assert(
+    fc.property(values, fc.constantFrom(-2, 0, 0.5, 1), (nodal, level) => {
+      const above = valuesAtPoints(coarse, Float64Array.from(nodal));
+      const below = above.map((value) => -value);
+      const rings = [
+        outlineAbove(choosePatches(coarse), above, level),
+        outlineAbove(choosePatches(coarse), below, -level),
+      ];
+      expect(rings.flat().every((ring) => ring.closed)).toBe(true);
+      // Triangles with all three values at the level belong to both.
+      const flat = flatArea(coarse, above, level);
+      expect(signedArea(rings[0]) + signedArea(rings[1]) - flat).toBeCloseTo(0.05 * 0.03, 14);
+    }),
+    { numRuns: 50 },
+  );
+});
+
+function flatArea({ corners, xy }: DrawingMesh, values: Float64Array, level: number): number {
+  let area = 0;
+  for (let q = 0; q < corners.length; q += 3) {
+    const three = [corners[q], corners[q + 1], corners[q + 2]];
+    if (!three.every((point) => values[point] === level)) continue;
+    area += signedArea([{ xy: three.flatMap((point) => [xy[2 * point], xy[2 * point + 1]]), closed: true }]);
+  }
+  return area;
+}
 
 test('pieces chain into one ring whatever their order, and two loops through one point lose nothing', () => {
   expect(chainPieces([3, 1, 2], [1, 2, 3])).toEqual([{ keys: [3, 1, 2], closed: true }]);

@@ -66,6 +66,17 @@ describe('a field picture', () => {
     expect(Number(mirrored?.[1])).toBe(Math.round(10 * width));
   });
 
+  test('shows no more than the heights asked for, and images still meet at y = 0', () => {
+    const heights = [-0.012345, 0.0123] as const;
+    const cropped = drawField({ mesh, potential, magnitude }, { title: 'x', copies, heights });
+    const [, width, height] = /<svg width="([\d.]+)" height="([\d.]+)">/.exec(cropped) ?? [];
+    expect(Number(width) / Number(height)).toBeCloseTo(pitch / (heights[1] - heights[0]), 3);
+    const shift = Number(/matrix\(1 0 0 -1 0 (\d+)\)/.exec(cropped)?.[1]);
+    // Ten grid units to a pixel; y = 0 has a whole place on the grid, and is its own image.
+    expect(shift % 2).toBe(0);
+    expect(shift / 2).toBeCloseTo(10 * Number(height) * (heights[1] / (heights[1] - heights[0])), 0);
+  });
+
   test('shows flux lines between which equal flux flows, and says how much', () => {
     const step = Number(/>([\d.]+) mWb per metre of depth/.exec(picture)?.[1]);
     const largest = Math.max(...potential.map(Math.abs));

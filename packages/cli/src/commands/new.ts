@@ -3,12 +3,12 @@ import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { InputError } from '@gapwright/fem-core';
 import { bareName, writeNewFile } from '../files.js';
-import { plainText } from '../plain-text.js';
+import { plainText, wrapText } from '../plain-text.js';
 import { exitStatus, type Surroundings } from '../surroundings.js';
 
 export interface NewOptions {
   readonly scenario: string;
-  readonly list: boolean;
+  readonly list?: boolean;
 }
 
 const folder = fileURLToPath(new URL('../../scenarios/', import.meta.url));
@@ -21,7 +21,10 @@ export function runNew(directory: string, options: NewOptions, { stdout }: Surro
     .sort();
   if (options.list) {
     const column = Math.max(...names.map((name) => name.length));
-    for (const name of names) stdout.write(`${name.padEnd(column)}  ${titleOf(name)}\n`);
+    for (const name of names) {
+      const lines = wrapText(titleOf(name), 98 - column);
+      stdout.write(`${name.padEnd(column)}  ${lines.join(`\n${' '.repeat(column + 2)}`)}\n`);
+    }
     return exitStatus.done;
   }
   if (!names.includes(options.scenario)) {
@@ -37,5 +40,9 @@ export function runNew(directory: string, options: NewOptions, { stdout }: Surro
 
 const scenarioText = (name: string): string => readFileSync(join(folder, `${name}.yaml`), 'utf8');
 
-/** What the file's first comment says it is. */
-const titleOf = (name: string): string => /^#\s*(.*)$/m.exec(scenarioText(name))?.[1] ?? '';
+/** The first sentence of the file's opening comment. */
+function titleOf(name: string): string {
+  const comment = /^(?:#.*\n)+/.exec(scenarioText(name))?.[0] ?? '';
+  const text = comment.replace(/^# ?/gm, '').replaceAll('\n', ' ').trim();
+  return /^.*?[.](?= |$)/.exec(text)?.[0] ?? text;
+}

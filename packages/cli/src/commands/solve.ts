@@ -15,7 +15,7 @@ import { waveformsCsv } from '../waveforms-csv.js';
 
 export interface SolveCommandOptions extends CommonOptions {
   readonly out?: string;
-  readonly vtu: boolean;
+  readonly vtu?: boolean;
 }
 
 /** `gapwright solve FILE`: the main job, from a machine file to its datasheet. */
@@ -28,7 +28,7 @@ export async function runSolve(
   const { stdout, stderr, signal } = surroundings;
   const begun = performance.now();
   const { machine, warnings, sha256 } = readMachineFile(engine, file, options.set);
-  if (options.out !== undefined) checkOutputFolder(options.out, outputNames(machine, options.vtu), file);
+  if (options.out !== undefined) checkOutputFolder(options.out, outputNames(machine, options.vtu === true), file);
   if (!options.quiet) showWarnings(warnings, options, surroundings);
   const solved = await engine.solve(machine, {
     version: ownVersion(),
@@ -45,7 +45,7 @@ export async function runSolve(
     options.json ? resultJson(result) : sheetText(datasheet(machine, result), colourWanted(options, surroundings)),
   );
   if (options.out !== undefined) {
-    const files = await outputFiles(machine, solved, options.vtu);
+    const files = await outputFiles(machine, solved, options.vtu === true);
     stopIfInterrupted(signal);
     writeFiles(options.out, files);
     if (!options.quiet) stderr.write(`${files.size} files written to ${plainText(options.out)}\n`);

@@ -12,11 +12,18 @@ import { solve } from '../sparse/cholesky.js';
 import type { RecoveredGradient } from './recovery.js';
 import { recoverGradients } from './recovery.js';
 
+/** Margin of the bounds over the summed shares. */
+const MARGIN = 1.25;
+
 /** Estimated errors of a field. */
 export interface ErrorEstimate {
   /** Per goal, per triangle: Float64Array(m), its share of the goal's error, in the goal's unit, not negative. */
   readonly goals: readonly Float64Array[];
-  /** Per goal: sum of the shares, a bound in practice since shares of either sign would cancel. */
+  /**
+   * Per goal: sum of the shares with a margin, a bound in practice. Shares of either sign would cancel, so the sum is
+   * usually several times the error; where the goal is its own dual (an inductance, the mean field of a body in a uniform
+   * one) none do, and the sum tends to the error itself, from below as often as from above.
+   */
   readonly bounds: readonly number[];
   /** Energy norm of the error squared, halved, J/m: estimate of the error of the stored energy. */
   readonly energy: number;
@@ -65,7 +72,8 @@ export function estimateGoalErrors(
     }
     for (const share of shares) share[t] = Math.abs(share[t]);
   }
-  return { goals: shares, bounds: shares.map((share) => share.reduce((a, b) => a + b, 0)), energy, recovered };
+  const bounds = shares.map((share) => MARGIN * share.reduce((a, b) => a + b, 0));
+  return { goals: shares, bounds, energy, recovered };
 }
 
 function solveAdjoint(system: System, factor: Factor, goal: Functional): Float64Array {

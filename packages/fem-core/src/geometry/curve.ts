@@ -61,6 +61,12 @@ function lineWithArc(
   const [fx, fy] = [line.from[0] - arc.centre[0], line.from[1] - arc.centre[1]];
   const a = ux * ux + uy * uy;
   const b = fx * ux + fy * uy;
+  const nearest = Math.abs(fx * uy - fy * ux) / Math.sqrt(a); // of the line to the centre
+  if (Math.abs(nearest - arc.radius) <= snap) {
+    const touch: Point = [line.from[0] - (b / a) * ux, line.from[1] - (b / a) * uy];
+    if (nearLine(line, touch, snap) && onArc(chord, arc, touch)) hits.push(touch);
+    return;
+  }
   const disc = b * b - a * (fx * fx + fy * fy - arc.radius * arc.radius);
   if (disc < 0) return;
   for (const root of [-Math.sqrt(disc), Math.sqrt(disc)]) {
@@ -84,13 +90,25 @@ function arcWithArc(
   const d2 = dx * dx + dy * dy;
   if (d2 === 0) return; // concentric: equal circles meet at the ends found above
   const s = 0.5 * (1 + (pArc.radius * pArc.radius - qArc.radius * qArc.radius) / d2);
-  const h2 = pArc.radius * pArc.radius - s * s * d2;
+  const [apart, r] = [Math.sqrt(d2), pArc.radius];
+  if (Math.min(Math.abs(apart - r - qArc.radius), Math.abs(apart - Math.abs(r - qArc.radius))) <= snap) {
+    const reach = (Math.sign(s) * r) / apart; // they touch, from outside or from within
+    const touch: Point = [pArc.centre[0] + reach * dx, pArc.centre[1] + reach * dy];
+    if (onArc(p, pArc, touch) && onArc(q, qArc, touch)) hits.push(touch);
+    return;
+  }
+  const h2 = r * r - s * s * d2;
   if (h2 < 0) return;
   const h = Math.sqrt(h2 / d2);
   for (const sign of [1, -1]) {
     const at: Point = [pArc.centre[0] + s * dx - sign * h * dy, pArc.centre[1] + s * dy + sign * h * dx];
     if (onArc(p, pArc, at) && onArc(q, qArc, at)) hits.push(at);
   }
+}
+
+/** The point lies on the border piece, but for the snapping distance. */
+export function liesOn(piece: Chord, curve: Curve, at: Point, snap: number): boolean {
+  return curve.kind === 'line' ? nearLine(piece, at, snap) : nearArc(piece, curve, at, snap);
 }
 
 function nearLine(line: Chord, [x, y]: Point, snap: number): boolean {

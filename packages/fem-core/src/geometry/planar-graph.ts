@@ -1,7 +1,7 @@
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
 import type { Curve } from './curve.js';
-import { chordCrossings } from './curve.js';
+import { chordCrossings, liesOn, pointOnCurve } from './curve.js';
 import type { Point, Section, Shape } from './section.js';
 
 /**
@@ -55,6 +55,8 @@ export function buildPlanarGraph(section: Section): PlanarGraph {
   const store = pointStore(snap);
   const cuts = cutPieces(pieces, curves, snap, store);
   mirrorMatchedCuts(section, pieces, outlineCount, sideNames, cuts, store);
+  cutAtSidePoints(pieces, outlineCount, curves, snap, cuts, store);
+  partArcsFromChords(pieces, curves, snap, cuts, store);
 
   const segments: number[] = [];
   const segmentToCurve: number[] = [];
@@ -62,7 +64,7 @@ export function buildPlanarGraph(section: Section): PlanarGraph {
   const known = new Map<string, number>();
   pieces.forEach((piece, i) => {
     for (const [a, b] of chainOf(piece, cuts[i], store)) {
-      const key = a < b ? `${a},${b}` : `${b},${a}`;
+      const key = pairKey(a, b);
       if (known.has(key)) continue; // a border shared by two shapes; the outline comes first and keeps its side
       known.set(key, segmentToCurve.length);
       segments.push(a, b);
@@ -265,6 +267,56 @@ function mirrorMatchedCuts(
   }
 }
 
+/** Gives drawn pieces that run along the outline its cuts, those mirrored from a matched side included. */
+function cutAtSidePoints(
+  pieces: readonly Piece[],
+  outlineCount: number,
+  curves: readonly Curve[],
+  snap: number,
+  cuts: readonly Set<number>[],
+  store: PointStore,
+): void {
+  for (const p of new Set(cuts.slice(0, outlineCount).flatMap((set) => [...set]))) {
+    const at: Point = [store.xy[2 * p], store.xy[2 * p + 1]];
+    for (let k = outlineCount; k < pieces.length; k++) {
+      if (liesOn(pieces[k], curves[pieces[k].curve], at, snap)) cuts[k].add(p);
+    }
+  }
+}
+
+/** Where an arc and another piece run between the same two points, cuts the arc half-way, so that they differ. */
+function partArcsFromChords(
+  pieces: readonly Piece[],
+  curves: readonly Curve[],
+  snap: number,
+  cuts: readonly Set<number>[],
+  store: PointStore,
+): void {
+  const chains = pieces.map((piece, i) => chainOf(piece, cuts[i], store));
+  const curveOf = new Map<string, number>();
+  const shared = new Set<string>();
+  chains.forEach((chain, i) => {
+    for (const [a, b] of chain) {
+      const key = pairKey(a, b);
+      const known = curveOf.get(key);
+      if (known === undefined) curveOf.set(key, pieces[i].curve);
+      else if (known !== pieces[i].curve) shared.add(key);
+    }
+  });
+  chains.forEach((chain, i) => {
+    const curve = curves[pieces[i].curve];
+    if (curve.kind === 'line') return;
+    for (const [a, b] of chain) {
+      if (!shared.has(pairKey(a, b))) continue;
+      const [ax, ay, bx, by] = [store.xy[2 * a], store.xy[2 * a + 1], store.xy[2 * b], store.xy[2 * b + 1]];
+      const [x, y] = pointOnCurve(curve, ax, ay, bx, by, 0.5);
+      if (Math.hypot(x - 0.5 * (ax + bx), y - 0.5 * (ay + by)) > snap) cuts[i].add(store.place(x, y));
+    }
+  });
+}
+
+const pairKey = (a: number, b: number): string => (a < b ? `${a},${b}` : `${b},${a}`);
+
 function matchSegments(section: Section, graph: Omit<PlanarGraph, 'segmentToMatch'>, store: PointStore): Int32Array {
   const match = new Int32Array(graph.segmentToCurve.length).fill(-1);
   const { segments, segmentToSide, sideNames } = graph;
@@ -328,6 +380,17 @@ function checkShapes(section: Section): void {
   const names = [section.background, ...section.regions.map((region) => region.name)];
   const twice = names.find((name, i) => names.indexOf(name) !== i);
   if (twice !== undefined) tell('name-twice', twice, 'names two regions', 'give each region a name of its own');
+  const sizes = [[section.background, section.maxEdge] as const].concat(
+    section.regions.map((r) => [r.name, r.maxEdge]),
+  );
+  for (const [name, maxEdge] of sizes) {
+    if (maxEdge !== undefined && !(maxEdge > 0)) {
+      tell('bad-edge-length', name, `maxEdge must be more than 0 m, got ${maxEdge}`, 'leave it out for no limit');
+    }
+  }
+  const paired = (section.matched ?? []).flat();
+  const again = paired.find((side, i) => paired.indexOf(side) !== i);
+  if (again !== undefined) tell('matched-twice', again, 'is matched twice', 'match a side with one other side');
   for (const [from, to] of section.matched ?? []) {
     if (offsetBetween(section, from, to) === undefined) {
       tell(

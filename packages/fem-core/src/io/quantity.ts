@@ -110,8 +110,9 @@ export function parseQuantity(text: string | number, dimension: Dimension): { re
   const split = splitQuantity(text);
   if ('wrong' in split) return split;
   const { noun, bare, units }: Units = DIMENSIONS[dimension];
-  const names = Object.keys(units);
-  const remedy = `give ${noun} in ${listWords(names.filter((name) => name !== '1'))}`;
+  const names = listWords(Object.keys(units).filter((name) => name !== '1'));
+  const wanted = bare ? 'a bare number' : noun;
+  const remedy = bare ? `give ${wanted}, or one in ${names}` : `give ${wanted} in ${names}`;
   if (split.unit === '') {
     if (bare) return toBase(split.number, [1, 1], text);
     return { wrong: `needs a unit, got ${showValue(text)}`, remedy };
@@ -119,7 +120,7 @@ export function parseQuantity(text: string | number, dimension: Dimension): { re
   if (Object.hasOwn(units, split.unit)) return toBase(split.number, units[split.unit], text);
   const other = dimensionOf(split.unit);
   const why = other === undefined ? 'is not a known unit' : `is a unit of ${withoutArticle(DIMENSIONS[other].noun)}`;
-  return { wrong: `must be ${noun}, got ${showValue(text)}, but ${showText(split.unit)} ${why}`, remedy };
+  return { wrong: `must be ${wanted}, got ${showValue(text)}, but ${showText(split.unit)} ${why}`, remedy };
 }
 
 /** Reads a number with any known unit, or a bare one (a ratio). */

@@ -1,9 +1,10 @@
 import Delaunator from 'delaunator';
 import { InputError } from '../base/fault.js';
-import { pointOnCurve } from '../geometry/curve.js';
+import type { Chord, Curve } from '../geometry/curve.js';
+import { chordCrossings, pointOnCurve } from '../geometry/curve.js';
 import type { PlanarGraph } from '../geometry/planar-graph.js';
 import { boundsOf, contains } from '../geometry/planar-graph.js';
-import type { Section } from '../geometry/section.js';
+import type { Point, Section, Shape } from '../geometry/section.js';
 import type { Triangulation } from './triangulation.js';
 import {
   addVertex,
@@ -35,7 +36,7 @@ export function triangulateGraph(section: Section, given: PlanarGraph): Triangul
     const boxed = tri.vertexCount - 4;
     recoverSegments(tri, graph);
     lawson(tri);
-    nameRegions(tri, section);
+    nameRegions(tri, section, graph);
     const useless = uselessSegments(tri);
     if (useless.size === 0) {
       removeOutside(tri, boxed);
@@ -45,50 +46,97 @@ export function triangulateGraph(section: Section, given: PlanarGraph): Triangul
   }
 }
 
-/** Halves chords until no point lies between a chord and its arc, where it would change sides at a later cut. */
+/**
+ * Halves chords until nothing reaches in between a chord and its arc, where it would change sides at a later cut: no
+ * point, no other arc, and no point an other arc will be cut at.
+ */
 function clearLenses(graph: PlanarGraph): PlanarGraph {
   const { curves } = graph;
   if (curves.every((curve) => curve.kind === 'line')) return graph;
-  const points = Array.from(graph.points);
-  const segments = Array.from(graph.segments);
-  const segmentToCurve = Array.from(graph.segmentToCurve);
+  const cut: Cuttable = {
+    curves,
+    points: Array.from(graph.points),
+    segments: Array.from(graph.segments),
+    segmentToCurve: Array.from(graph.segmentToCurve),
+  };
   const segmentToSide = Array.from(graph.segmentToSide);
   const segmentToMatch = Array.from(graph.segmentToMatch);
-  for (let s = 0; s < segmentToCurve.length; s++) {
-    const curve = curves[segmentToCurve[s]];
+  for (let s = 0; s < cut.segmentToCurve.length; s++) {
+    const curve = curves[cut.segmentToCurve[s]];
     if (curve.kind !== 'arc') continue;
-    for (let halvings = 0; halvings < 20; halvings++) {
-      const [a, b] = [segments[2 * s], segments[2 * s + 1]];
-      const [ax, ay, bx, by] = [points[2 * a], points[2 * a + 1], points[2 * b], points[2 * b + 1]];
-      const beyond = (x: number, y: number): number => (bx - ax) * (y - ay) - (by - ay) * (x - ax);
-      const away = beyond(curve.centre[0], curve.centre[1]);
-      let held = false;
-      for (let p = 0; p < points.length / 2 && !held; p++) {
-        if (p === a || p === b) continue;
-        const [x, y] = [points[2 * p], points[2 * p + 1]];
-        held =
-          beyond(x, y) * away <= 0 && Math.hypot(x - curve.centre[0], y - curve.centre[1]) < curve.radius * (1 - 1e-12);
-      }
-      if (!held) break;
-      const [mx, my] = pointOnCurve(curve, ax, ay, bx, by, 0.5);
-      const m = points.length / 2;
-      points.push(mx, my);
-      segments[2 * s + 1] = m;
-      segments.push(m, b);
-      segmentToCurve.push(segmentToCurve[s]);
+    for (let halvings = 0; halvings < 20 && isLensTaken(cut, s, curve); halvings++) {
+      const b = cut.segments[2 * s + 1];
+      const m = cut.points.length / 2;
+      cut.points.push(...arcMiddle(cut, s, curve));
+      cut.segments[2 * s + 1] = m;
+      cut.segments.push(m, b);
+      cut.segmentToCurve.push(cut.segmentToCurve[s]);
       segmentToSide.push(segmentToSide[s]);
       segmentToMatch.push(-1);
     }
   }
   return {
-    points: Float64Array.from(points),
-    segments: Int32Array.from(segments),
-    segmentToCurve: Int32Array.from(segmentToCurve),
+    points: Float64Array.from(cut.points),
+    segments: Int32Array.from(cut.segments),
+    segmentToCurve: Int32Array.from(cut.segmentToCurve),
     curves,
     segmentToSide: Int32Array.from(segmentToSide),
     sideNames: graph.sideNames,
     segmentToMatch: Int32Array.from(segmentToMatch),
   };
+}
+
+type Arc = Extract<Curve, { kind: 'arc' }>;
+
+/** Points and segments of a planar graph, as growing lists. */
+interface Cuttable {
+  readonly curves: readonly Curve[];
+  readonly points: number[];
+  readonly segments: number[];
+  readonly segmentToCurve: number[];
+}
+
+function chordOf(graph: Pick<PlanarGraph, 'points' | 'segments'> | Cuttable, s: number): Chord {
+  const [a, b] = [2 * graph.segments[2 * s], 2 * graph.segments[2 * s + 1]];
+  return { from: [graph.points[a], graph.points[a + 1]], to: [graph.points[b], graph.points[b + 1]] };
+}
+
+function arcMiddle(graph: Cuttable, s: number, arc: Arc): Point {
+  const { from, to } = chordOf(graph, s);
+  return pointOnCurve(arc, ...from, ...to, 0.5);
+}
+
+/** Something drawn reaches in between the chord of segment s and its arc. */
+function isLensTaken(graph: Cuttable, s: number, arc: Arc): boolean {
+  const { points, segments, segmentToCurve, curves } = graph;
+  const [a, b] = [segments[2 * s], segments[2 * s + 1]];
+  const chord = chordOf(graph, s);
+  for (let p = 0; p < points.length / 2; p++) {
+    if (p !== a && p !== b && lensHolds(chord, arc, points[2 * p], points[2 * p + 1])) return true;
+  }
+  const [mx, my] = [0.5 * (chord.from[0] + chord.to[0]), 0.5 * (chord.from[1] + chord.to[1])];
+  const half = Math.hypot(chord.from[0] - mx, chord.from[1] - my);
+  for (let q = 0; q < segmentToCurve.length; q++) {
+    const other = curves[segmentToCurve[q]];
+    if (other.kind !== 'arc' || other === arc) continue;
+    const { from, to } = chordOf(graph, q); // arcs stay within the circle over their chord
+    const apart = Math.hypot(0.5 * (from[0] + to[0]) - mx, 0.5 * (from[1] + to[1]) - my);
+    if (apart > half + 0.5 * Math.hypot(to[0] - from[0], to[1] - from[1])) continue;
+    if (lensHolds(chord, arc, ...arcMiddle(graph, q, other))) return true;
+    const joined = [segments[2 * q], segments[2 * q + 1]].some((p) => p === a || p === b);
+    if (!joined && chordCrossings(chord, LINE, { from, to }, other, 0).length > 0) return true;
+  }
+  return false;
+}
+
+const LINE: Curve = { kind: 'line' };
+
+/** The point lies between the chord and its arc. */
+function lensHolds({ from, to }: Chord, arc: Arc, x: number, y: number): boolean {
+  const beyond = (px: number, py: number): number =>
+    (to[0] - from[0]) * (py - from[1]) - (to[1] - from[1]) * (px - from[0]);
+  if (beyond(x, y) * beyond(arc.centre[0], arc.centre[1]) > 0) return false;
+  return Math.hypot(x - arc.centre[0], y - arc.centre[1]) < arc.radius * (1 - 1e-12);
 }
 
 /** All points of the graph and the four corners of a box well outside it. */
@@ -266,7 +314,7 @@ function lawson(tri: Triangulation): void {
 }
 
 /** Spreads each region's number over the parts bounded by segments; a part is judged at the middle of its largest triangle. */
-function nameRegions(tri: Triangulation, section: Section): void {
+function nameRegions(tri: Triangulation, section: Section, graph: PlanarGraph): void {
   const done = new Uint8Array(tri.slotCount);
   for (let seed = 0; seed < tri.slotCount; seed++) {
     if (done[seed] === 1) continue;
@@ -283,17 +331,34 @@ function nameRegions(tri: Triangulation, section: Section): void {
         part.push(triangleOf(g));
       }
     }
-    const region = regionAt(section, ...middle(tri, largest));
+    const region = regionAt(section, graph, ...middle(tri, largest));
     for (const t of part) tri.region[t] = region;
   }
 }
 
-function regionAt(section: Section, x: number, y: number): number {
+function regionAt(section: Section, graph: PlanarGraph, x: number, y: number): number {
   const box = boundsOf(section.outline);
   const out = x < box.x0 || x > box.x1 || y < box.y0 || y > box.y1;
-  if (out || !contains(section.outline, x, y)) return OUTSIDE;
-  for (let i = section.regions.length - 1; i >= 0; i--) if (contains(section.regions[i].shape, x, y)) return i + 1;
+  if (out || !drawnRound(section.outline, graph, x, y)) return OUTSIDE;
+  for (let i = section.regions.length - 1; i >= 0; i--) {
+    if (drawnRound(section.regions[i].shape, graph, x, y)) return i + 1;
+  }
   return 0;
+}
+
+/** The point lies in the shape as the segments draw it: what is between a chord and its arc is still outside. */
+function drawnRound(shape: Shape, graph: PlanarGraph, x: number, y: number): boolean {
+  if (!contains(shape, x, y)) return false;
+  if (shape.kind !== 'circle') return true;
+  const { centre, radius } = shape;
+  for (let s = 0; s < graph.segmentToCurve.length; s++) {
+    const curve = graph.curves[graph.segmentToCurve[s]];
+    if (curve.kind !== 'arc') continue;
+    const off = Math.hypot(curve.centre[0] - centre[0], curve.centre[1] - centre[1]);
+    const same = off + Math.abs(curve.radius - radius) <= 1e-8 * radius; // a circle drawn twice keeps one set of chords
+    if (same && lensHolds(chordOf(graph, s), curve, x, y)) return false;
+  }
+  return true;
 }
 
 function middle(tri: Triangulation, t: number): [number, number] {

@@ -34,11 +34,14 @@ function checkEnds(
     report.fault([...path, 'outer_radius'], 'out-of-range', wrong, 'give the radius of the outer end');
     return false;
   }
-  if (innerRadius >= outer || outerRadius <= inner) {
-    const wrong =
-      `legs from ${millimetres(innerRadius)} to ${millimetres(outerRadius)} do not lie over the magnets, which reach from ` +
-      `${millimetres(inner)} to ${millimetres(outer)}`;
-    report.fault(path, 'legs-miss-magnets', wrong, `give radii about ${millimetres(inner)} and ${millimetres(outer)}`);
+  if (innerRadius >= outer) {
+    const wrong = `the legs begin at ${millimetres(innerRadius)}, but the magnets end at ${millimetres(outer)}`;
+    report.fault([...path, 'inner_radius'], 'legs-miss-magnets', wrong, `give about ${millimetres(inner)}`);
+    return false;
+  }
+  if (outerRadius <= inner) {
+    const wrong = `the legs end at ${millimetres(outerRadius)}, but the magnets begin at ${millimetres(inner)}`;
+    report.fault([...path, 'outer_radius'], 'legs-miss-magnets', wrong, `give about ${millimetres(outer)}`);
     return false;
   }
   // Beyond the magnets' ends the field falls off over about the length of the gap.
@@ -55,8 +58,9 @@ function checkEnds(
 
 /** `fit` and `fill` share out the same room: one of them has to say how much. */
 function checkFit({ opening, leg_width }: WindingFile & { readonly layout: 'concentrated' }, report: Report): boolean {
-  const fits = [opening.inner_width, opening.outer_width].filter((width) => width === 'fit').length;
-  if (fits === 1) {
+  const widths = [opening.inner_width, opening.outer_width];
+  const fits = widths.filter((width) => width === 'fit').length;
+  if (fits === 1 && !widths.some(Number.isNaN)) {
     const key = opening.inner_width === 'fit' ? 'outer_width' : 'inner_width';
     const remedy = 'give both widths, or say fit for both';
     report.fault(['winding', 'opening', key], 'half-fit', 'is given while the other width is to fit', remedy);

@@ -81,7 +81,7 @@ function ownSteel(
 }
 
 function checkRows(rows: BhTable, path: readonly string[], report: Report): BhTable {
-  if (rows.flat().some(Number.isNaN)) return rows; // told already
+  if (rows.length === 0 || rows.flat().some(Number.isNaN)) return rows; // told already
   for (const { row, code, wrong, remedy } of tableFaults(rows)) report.fault([...path, row], code, wrong, remedy);
   return withOrigin(rows);
 }

@@ -104,7 +104,7 @@ function describeSlice(
     windingB: windingHarmonics(field, locator, pole, WINDING_ORDERS),
     windingBErr: bounds.slice(0, STEERING_ORDERS.length),
     pull,
-    pullRelErr: bounds[STEERING_ORDERS.length] / Math.abs(pull),
+    pullRelErr: pull === 0 ? 0 : bounds[STEERING_ORDERS.length] / Math.abs(pull),
     energy: pole.copies * energy,
     energyRelErr: estimate.energy / energy,
     discB: discFluxDensity(field, locator, pole),
