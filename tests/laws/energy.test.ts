@@ -31,15 +31,15 @@ test.each(STEELS)('energy + coenergy = integral of J A: %s', (_, steel) => {
 test('energy equals coenergy where everything is linear, and is less where steel saturates', () => {
   const linear = energiesOf(solveSection(core, coreSetup(STEELS[0][1], { out: 5e6, back: -6.25e6 })));
   expect(relativeError(linear.energy, linear.coenergy)).toBeLessThan(1e-12);
-  const saturated = energiesOf(solveSection(core, coreSetup(STEEL, { out: 5e6, back: -6.25e6 })));
-  expect(saturated.energy).toBeLessThan(0.98 * saturated.coenergy);
+  const saturated = energiesOf(solveSection(core, coreSetup(STEEL, { out: 3e7, back: -3.75e7 })));
+  expect(saturated.energy).toBeLessThan(0.9 * saturated.coenergy);
 });
 
 test('work put in while the current rises is the energy stored: integral of I dLinkage, saturating steel', () => {
   // Linkage per ampere-turn is the derivative of the coenergy: d(coenergy) = (integral of J A / I) dI.
   const at = (density: number): Field =>
     solveSection(core, coreSetup(STEEL, { out: density, back: -1.25 * density }), { tolerance: 1e-11 });
-  const [top, steps] = [4e6, 24];
+  const [top, steps] = [2e7, 8];
   let coenergy = 0;
   for (let i = 0; i < steps; i++) {
     // Gauss, two points a step
@@ -48,7 +48,7 @@ test('work put in while the current rises is the energy stored: integral of I dL
       coenergy += (0.5 * (top / steps) * integralOfJA(at(density))) / density;
     }
   }
-  expect(relativeError(energiesOf(at(top)).coenergy, coenergy)).toBeLessThan(1e-5);
+  expect(relativeError(energiesOf(at(top)).coenergy, coenergy)).toBeLessThan(1e-4);
 });
 
 test('a magnet short of currents: energy + coenergy of the whole section is 0, energy is the integral of (B - Br)^2/(2 mu)', () => {

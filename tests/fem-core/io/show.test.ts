@@ -10,6 +10,14 @@ test('long texts are cut', () => {
   expect(showText('x'.repeat(1000))).toBe(`${'x'.repeat(60)}...`);
 });
 
+test('numbers that are none are told as YAML writes them', () => {
+  expect([Number.NaN, Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY].map(showValue)).toEqual([
+    '.nan',
+    '.inf',
+    '-.inf',
+  ]);
+});
+
 test('values are told by themselves or by their kind', () => {
   expect([undefined, null, '', 3, true, [], {}].map(showValue)).toEqual([
     'nothing',

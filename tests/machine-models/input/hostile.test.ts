@@ -2,17 +2,20 @@ import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import { InputError } from '../../../packages/fem-core/src/base/fault.js';
 import { readMachine } from '../../../packages/machine-models/src/input/read-machine.js';
+import { legCut } from '../../../packages/machine-models/src/winding/leg-cut.js';
 import { HUT } from './hut.js';
 
 /** Reads the text; anything but a machine or an InputError fails the test. Returns the faults. */
 function readAnything(text: string): InputError | undefined {
   try {
     const { machine } = readMachine(text, { file: 'hut.yaml' });
-    // What is read holds its promises: no number that is not one.
-    const numbers = JSON.stringify(machine, (_, value) =>
-      typeof value === 'number' && !Number.isFinite(value) ? 'BAD' : value,
-    );
-    expect(numbers).not.toContain('BAD');
+    // What is read holds its promises: no number that is not one, and legs on every circle of the slices.
+    const { winding, rotor, model } = machine;
+    const finite = JSON.stringify(machine, (_, v) => (typeof v === 'number' && !Number.isFinite(v) ? 'BAD' : v));
+    expect(finite).not.toContain('BAD');
+    for (const { radius } of model.slices) {
+      expect(legCut(winding, rotor.poles, rotor.magnets.meanRadius, radius).width).toBeGreaterThan(0);
+    }
     return undefined;
   } catch (error) {
     expect(error).toBeInstanceOf(InputError);

@@ -201,9 +201,11 @@ test('checks that need a value that could not be read keep silent, the others sp
       'rotor.magnets.mean_radius=wide',
       'winding.thickness=17 mm',
       'rotor.poles=15',
+      'limits=3',
     ),
   );
   expect(faults.map((line) => line.replace(/^--set ([^:]*):.*/, '$1')).sort()).toEqual([
+    'limits',
     'rotor.magnets.mean_radius',
     'rotor.poles',
     'winding.opening.inner_radius',

@@ -47,9 +47,10 @@ describe('magnets', () => {
   });
 
   test('magnets that reach the shaft', () => {
-    expect(faultsOf(() => readHut('rotor.magnets.length=256 mm'))[0]).toContain(
-      'rotor.magnets.length: 256 mm about a mean radius of 128 mm reaches the shaft; give less than 256 mm',
-    );
+    expect(faultsOf(() => readHut('rotor.magnets.length=256 mm'))).toEqual([
+      '--set rotor.magnets.length:1:1: rotor.magnets.length: 256 mm about a mean radius of 128 mm reaches the shaft; give ' +
+        'less than 256 mm',
+    ]);
   });
 
   test('odd poles', () => {

@@ -13,7 +13,14 @@ export function showValue(value: unknown): string {
   if (typeof value === 'string') return value === '' ? 'an empty text' : showText(value);
   if (Array.isArray(value)) return 'a list';
   if (typeof value === 'object') return 'a group of keys';
+  if (typeof value === 'number' && !Number.isFinite(value)) return nonFiniteText(value);
   return String(value);
+}
+
+/** As YAML writes it. */
+function nonFiniteText(value: number): string {
+  if (Number.isNaN(value)) return '.nan';
+  return value < 0 ? '-.inf' : '.inf';
 }
 
 /** 'm, mm or in'. */

@@ -190,7 +190,7 @@ function treatTriangle(work: Work, t: number): void {
   if (f.shortest2 < work.floor) return;
   const u = tri.origin[f.shortest];
   const v = tri.origin[nextHalf(f.shortest)];
-  if (flat && !isLong(work, t, f) && bridgesSharpCorner(tri, work.sharp, u, v)) return;
+  if (flat && !isLong(work, t, f) && bridgesSharpCorner(tri, work.sharp, f.shortest)) return;
   let x = f.circumX;
   let y = f.circumY;
   if (flat) {

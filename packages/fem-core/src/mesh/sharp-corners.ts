@@ -1,4 +1,5 @@
 import type { Triangulation } from './triangulation.js';
+import { nextHalf, previousHalf } from './triangulation.js';
 
 /** Corners at which two segments meet under less than 60 degrees, where refinement could chase its own tail. */
 export interface SharpCorners {
@@ -64,15 +65,15 @@ export function shellShare(tri: Triangulation, sharp: SharpCorners, s: number): 
 }
 
 /**
- * A flat triangle whose shortest edge u-v runs between two segments of one sharp corner, at equal distance from it, cannot
- * be mended and is left (Miller, Pav, Walkington, When and why Delaunay refinement algorithms work, 2005).
+ * A flat triangle whose shortest edge, half-edge h, runs between two segments of one sharp corner, at equal distance from
+ * it, cannot be mended and is left (Miller, Pav, Walkington, When and why Delaunay refinement algorithms work, 2005).
  */
-export function bridgesSharpCorner(tri: Triangulation, sharp: SharpCorners, u: number, v: number): boolean {
+export function bridgesSharpCorner(tri: Triangulation, sharp: SharpCorners, h: number): boolean {
   if (sharp.vertices.size === 0) return false;
+  const [u, v] = [tri.origin[h], tri.origin[nextHalf(h)]];
   const [ux, uy, vx, vy] = [tri.xy[2 * u], tri.xy[2 * u + 1], tri.xy[2 * v], tri.xy[2 * v + 1]];
-  const onU = curvesThrough(tri, u);
-  const onV = curvesThrough(tri, v);
-  for (const i of onU) {
+  const onV = curvesRound(tri, nextHalf(h));
+  for (const i of curvesRound(tri, h)) {
     for (const j of onV) {
       const corner = i === j ? undefined : sharp.pairs.get(pairKey(i, j));
       if (corner === undefined) continue;
@@ -85,9 +86,19 @@ export function bridgesSharpCorner(tri: Triangulation, sharp: SharpCorners, u: n
   return false;
 }
 
-function curvesThrough(tri: Triangulation, v: number): Set<number> {
+/** Curves of the segments that meet in the vertex half-edge h starts from. */
+function curvesRound(tri: Triangulation, h: number): Set<number> {
   const curves = new Set<number>();
-  const { from, to, curve } = tri.segments;
-  for (let s = 0; s < from.length; s++) if (from[s] === v || to[s] === v) curves.add(curve[s]);
+  const take = (e: number): void => {
+    if (tri.segment[e] >= 0) curves.add(tri.segments.curve[tri.segment[e]]);
+  };
+  let e = h;
+  do {
+    take(e);
+    take(previousHalf(e));
+    e = tri.twin[previousHalf(e)];
+  } while (e >= 0 && e !== h);
+  // At the outline the turn is cut short: the rest is found the other way round.
+  for (e = e < 0 ? tri.twin[h] : -1; e >= 0; e = tri.twin[nextHalf(e)]) take(nextHalf(e));
   return curves;
 }

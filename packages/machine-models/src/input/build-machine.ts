@@ -1,7 +1,7 @@
 import type { Disc, LibraryMaterial, Machine, Magnets, Operation, Winding } from '../machine.js';
 import type { SliceRadius } from './radii.js';
 import type { MachineFile } from './schema.js';
-import type { MagnetsFile, RotorFile } from './schema-rotor.js';
+import type { RotorFile, SolvedMagnets } from './schema-rotor.js';
 
 /** What the checks have worked out on the way. */
 export interface Resolved {
@@ -28,8 +28,6 @@ export function buildMachine(file: MachineFile, magnets: SolvedMagnets, resolved
     model: { slices: resolved.slices, accuracy: model.accuracy, endCorrection: model.end_correction === 'on' },
   };
 }
-
-export type SolvedMagnets = MagnetsFile & { readonly shape: 'block' | 'sector' };
 
 function buildMagnets(magnets: SolvedMagnets): Magnets {
   const { material, thickness, mean_radius: meanRadius, temperature, length } = magnets;

@@ -3,9 +3,7 @@ import { findMaterial, hasUsualSlope } from './check-materials.js';
 import { atLeastMillimetres, atMostMillimetres, figure, HAIR, millimetres } from './format-figure.js';
 import type { Report } from './report.js';
 import type { MachineFile } from './schema.js';
-import type { RotorFile } from './schema-rotor.js';
-
-type SolvedMagnets = RotorFile['magnets'] & { readonly shape: 'block' | 'sector' };
+import type { RotorFile, SolvedMagnets } from './schema-rotor.js';
 
 /** Inner and outer radius of the magnets, m. */
 export function magnetRadii({ mean_radius, length }: SolvedMagnets): {
@@ -102,11 +100,11 @@ function checkDisc({ disc }: RotorFile, magnets: SolvedMagnets, report: Report):
     }
     return;
   }
-  for (const key of sizes) {
-    if (disc[key] === undefined)
-      report.fault([...path, key], 'missing', 'is missing', 'give a size, for example 10 mm');
+  for (const key of sizes.filter((size) => disc[size] === undefined)) {
+    report.fault([...path, key], 'missing', 'is missing', 'give a size, for example 10 mm');
   }
   const { inner, outer } = magnetRadii(magnets);
+  if (inner <= 0) return; // told already
   const { inner_radius: hole = Number.NaN, outer_radius: rim = Number.NaN, clamp_radius: clamp = 0 } = disc;
   if (rim < outer - HAIR) {
     const wrong = `the disc ends at ${millimetres(rim)}, its magnets at ${millimetres(outer)}`;

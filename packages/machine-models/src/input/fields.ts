@@ -24,9 +24,7 @@ export function usually<T>(value: T, read: Reader<T>) {
   return field(read).default(value as z.core.util.NoUndefined<T>); // readers never give undefined
 }
 
-/**
- * A group of keys, no others. Of the words an issue may carry, the known keys go into the message of the unknown ones.
- */
+/** A group of keys and no others. The message about unknown keys holds the known ones, for `readSchema` to choose from. */
 export function group<S extends z.core.$ZodLooseShape>(shape: S) {
   return z.strictObject(shape, {
     error: (issue) => (issue.code === 'unrecognized_keys' ? Object.keys(shape).join(' ') : undefined),

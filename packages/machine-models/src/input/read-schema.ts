@@ -19,7 +19,7 @@ export function readSchema<S extends z.ZodType>(
   const first = schema.safeParse(raw);
   if (first.success) return { value: first.data, problems: [] };
   const problems = first.error.issues.flatMap((issue) => problemsOf(issue, valueAt(raw, issue.path)));
-  for (const { code, path } of problems) markUnreadable(raw, path, code === 'unknown-key');
+  for (const { code, path } of problems) setAside(raw, path, code === 'unknown-key' || code === 'wrong-kind');
   const second = schema.safeParse(raw);
   return { value: second.success ? second.data : undefined, problems };
 }
@@ -62,11 +62,11 @@ function valueAt(raw: unknown, path: readonly PropertyKey[]): unknown {
   return path.reduce<unknown>((value, step) => (value as Record<PropertyKey, unknown> | undefined)?.[step], raw);
 }
 
-/** Puts the mark at the end of the way, or takes away what stands there; a way that is not there is left alone. */
-function markUnreadable(raw: unknown, path: Path, unknown: boolean): void {
+/** Marks the value at the end of the way as unreadable, or takes away a key or group that should not be there. */
+function setAside(raw: unknown, path: Path, takeAway: boolean): void {
   const parent = valueAt(raw, path.slice(0, -1));
   const key = path.at(-1);
   if (typeof parent !== 'object' || parent === null || key === undefined) return;
-  if (unknown) Reflect.deleteProperty(parent, key);
+  if (takeAway) Reflect.deleteProperty(parent, key);
   else Reflect.set(parent, key, UNREADABLE);
 }

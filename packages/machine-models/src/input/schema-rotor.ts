@@ -67,4 +67,5 @@ export const rotor = group({
   interpoles: interpoles.optional(),
 });
 export type RotorFile = z.infer<typeof rotor>;
-export type MagnetsFile = RotorFile['magnets'];
+/** The shapes that this version solves. */
+export type SolvedMagnets = RotorFile['magnets'] & { readonly shape: 'block' | 'sector' };
