@@ -16,7 +16,10 @@ function blockAfter(marker: string): string {
 
 test('the datasheet in README is what the program prints today', () => {
   const scenario = 'packages/cli/scenarios/hut-hydro.yaml';
-  const printed = execFileSync(process.execPath, ['packages/cli/gapwright.js', 'solve', scenario, '--quiet'], { cwd: root, encoding: 'utf8' });
+  const printed = execFileSync(process.execPath, ['packages/cli/gapwright.js', 'solve', scenario, '--quiet'], {
+    cwd: root,
+    encoding: 'utf8',
+  });
   expect(blockAfter('datasheet')).toBe(printed);
 });
 

@@ -144,6 +144,7 @@ export function closedFormSlices(machine: Machine, bounds: readonly number[] = [
       newtonStepsTotal: 1,
       meshes: 1,
       converged: true,
+      residuals: [1, 0],
       accurate: true,
     };
   });

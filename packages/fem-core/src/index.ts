@@ -33,7 +33,7 @@ export { sidesOf } from './geometry/planar-graph.js';
 export type { Point, Region, Section, Shape } from './geometry/section.js';
 export type { Document, Path, TreeNode } from './io/document.js';
 export { formatPath, placeOf, placeOfKey, plainValue } from './io/document.js';
-export { findNearest, editDistance } from './io/nearest.js';
+export { editDistance, findNearest } from './io/nearest.js';
 export type { Dimension, Misreading } from './io/quantity.js';
 export { parseAnyQuantity, parsePrice, parseQuantity } from './io/quantity.js';
 export type { Setting } from './io/settings.js';

@@ -76,10 +76,10 @@ function timeLine(machine: Machine, solvedMs: number, totalMs: number): string {
 /** Exit status, with a line for each slice that did not reach what was asked. */
 function judge(machine: Machine, answers: readonly SliceAnswer[], { stderr }: Surroundings): number {
   const short = answers.filter(({ converged, accurate }) => !converged || !accurate);
-  for (const { radius, converged, newtonSteps } of short) {
+  for (const { radius, converged, newtonSteps, residuals } of short) {
     const what = converged
       ? `did not reach the wanted accuracy of ${percent(machine.model.accuracy, 2)}`
-      : `did not converge in ${newtonSteps} Newton steps; its figures are not to be used`;
+      : `did not converge in ${newtonSteps} Newton steps; its figures are not to be used (residuals ${residuals.map((r) => r.toExponential(1)).join(', ')})`;
     stderr.write(`not reached: the slice at radius ${givenMm(radius)} mm ${what}\n`);
   }
   return short.length === 0 ? exitStatus.done : exitStatus.notReached;

@@ -61,7 +61,12 @@ export function solveSlice(
     accuracy: options.accuracy ?? machine.model.accuracy,
     ...(options.onMesh === undefined ? {} : { onMesh: options.onMesh }),
   });
-  return { answer: describeSlice(slice, pole, solution), field: solution.field, recovered: solution.estimate.recovered, pole };
+  return {
+    answer: describeSlice(slice, pole, solution),
+    field: solution.field,
+    recovered: solution.estimate.recovered,
+    pole,
+  };
 }
 
 /** Amplitude of an odd order of By averaged over the winding: -(2 k/(polePitch t)) integral of A sin(k x) over a whole pole. */
@@ -118,6 +123,7 @@ function describeSlice(
     newtonStepsTotal: solution.newtonSteps,
     meshes: solution.meshes,
     converged: field.report.converged,
+    residuals: field.report.residuals,
     accurate: solution.accurate,
   };
 }
