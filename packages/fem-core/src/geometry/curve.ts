@@ -35,6 +35,7 @@ export function chordCrossings(p: Chord, pCurve: Curve, q: Chord, qCurve: Curve,
 }
 
 function lineWithLine(p: Chord, q: Chord, snap: number, hits: Point[]): void {
+  if (boxesApart(p, q, snap)) return;
   for (const end of [q.from, q.to]) if (nearLine(p, end, snap)) hits.push(end);
   for (const end of [p.from, p.to]) if (nearLine(q, end, snap)) hits.push(end);
   if (hits.length > 0) return; // they touch at an end or overlap; a further crossing would be the same point
@@ -46,6 +47,13 @@ function lineWithLine(p: Chord, q: Chord, snap: number, hits: Point[]): void {
   const s = (dx * qy - dy * qx) / cross;
   const t = (dx * py - dy * px) / cross;
   if (s > 0 && s < 1 && t > 0 && t < 1) hits.push([p.from[0] + s * px, p.from[1] + s * py]);
+}
+
+function boxesApart(p: Chord, q: Chord, snap: number): boolean {
+  const apart = (i: 0 | 1): boolean =>
+    Math.max(p.from[i], p.to[i]) + snap < Math.min(q.from[i], q.to[i]) ||
+    Math.max(q.from[i], q.to[i]) + snap < Math.min(p.from[i], p.to[i]);
+  return apart(0) || apart(1);
 }
 
 function lineWithArc(

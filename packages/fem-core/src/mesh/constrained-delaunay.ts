@@ -111,20 +111,23 @@ function isLensTaken(graph: Cuttable, s: number, arc: Arc): boolean {
   const { points, segments, segmentToCurve, curves } = graph;
   const [a, b] = [segments[2 * s], segments[2 * s + 1]];
   const chord = chordOf(graph, s);
+  const [mx, my] = [0.5 * (chord.from[0] + chord.to[0]), 0.5 * (chord.from[1] + chord.to[1])];
+  const reach = Math.hypot(chord.from[0] - mx, chord.from[1] - my); // the lens stays within the circle over its chord
   for (let p = 0; p < points.length / 2; p++) {
+    if (Math.abs(points[2 * p] - mx) > reach || Math.abs(points[2 * p + 1] - my) > reach) continue;
     if (p !== a && p !== b && lensHolds(chord, arc, points[2 * p], points[2 * p + 1])) return true;
   }
-  const [mx, my] = [0.5 * (chord.from[0] + chord.to[0]), 0.5 * (chord.from[1] + chord.to[1])];
-  const half = Math.hypot(chord.from[0] - mx, chord.from[1] - my);
   for (let q = 0; q < segmentToCurve.length; q++) {
     const other = curves[segmentToCurve[q]];
     if (other.kind !== 'arc' || other === arc) continue;
-    const { from, to } = chordOf(graph, q); // arcs stay within the circle over their chord
-    const apart = Math.hypot(0.5 * (from[0] + to[0]) - mx, 0.5 * (from[1] + to[1]) - my);
-    if (apart > half + 0.5 * Math.hypot(to[0] - from[0], to[1] - from[1])) continue;
+    const c = segments[2 * q];
+    const d = segments[2 * q + 1];
+    const otherReach = Math.abs(points[2 * d] - points[2 * c]) + Math.abs(points[2 * d + 1] - points[2 * c + 1]);
+    if (Math.abs(points[2 * c] - mx) > reach + 2 * otherReach) continue;
+    if (Math.abs(points[2 * c + 1] - my) > reach + 2 * otherReach) continue;
     if (lensHolds(chord, arc, ...arcMiddle(graph, q, other))) return true;
-    const joined = [segments[2 * q], segments[2 * q + 1]].some((p) => p === a || p === b);
-    if (!joined && chordCrossings(chord, LINE, { from, to }, other, 0).length > 0) return true;
+    const joined = c === a || c === b || d === a || d === b;
+    if (!joined && chordCrossings(chord, LINE, chordOf(graph, q), other, 0).length > 0) return true;
   }
   return false;
 }

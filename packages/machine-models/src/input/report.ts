@@ -34,7 +34,8 @@ export function openReport(document: Document): OpenReport {
   return {
     add,
     fault: (path, code, wrong, remedy) => add({ path, code, wrong, remedy }),
-    faultBeside: (path, fault) => faults.push({ ...fault, key: formatPath(path) }),
+    faultBeside: (path, fault) =>
+      faults.push({ ...fault, at: fault.at ?? placeOf(document, path), key: formatPath(path) }),
     warn: (path, text) => warnings.push({ key: formatPath(path), text }),
     faults: () => inOrder(faults),
     warnings: () => warnings,
