@@ -65,7 +65,8 @@ export interface MagnetsCommon {
 }
 export type Magnets =
   | (MagnetsCommon & { readonly shape: 'block'; readonly width: number; readonly length: number })
-  | (MagnetsCommon & { readonly shape: 'sector'; /** Share of the pole pitch. */ readonly arc: number; readonly length: number });
+  /** `arc` is the share of the pole pitch, above 0, at most 1. */
+  | (MagnetsCommon & { readonly shape: 'sector'; readonly arc: number; readonly length: number });
 
 /** The hole of a concentrated coil: a trapezium on the coil's axis, widths straight across. */
 export interface Opening {
