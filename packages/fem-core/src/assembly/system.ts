@@ -8,6 +8,7 @@ import type { Material } from '../materials/material.js';
 import type { Mesh } from '../mesh/mesh.js';
 import { nodeCount, triangleCount } from '../mesh/mesh.js';
 import type { SymmetricPattern } from '../sparse/pattern.js';
+import { multiply } from '../sparse/pattern.js';
 import type { Setup } from './setup.js';
 import type { Unknowns } from './unknowns.js';
 
@@ -32,6 +33,10 @@ export interface System {
   readonly linearValues: Float64Array;
   /** Float64Array(nodes): integral of J N + nu Br . curl N. */
   readonly source: Float64Array;
+  /** Float64Array(n): residual of the triangles of constant reluctivity, and of the source, where all unknowns are 0. */
+  readonly offset: Float64Array;
+  /** Int32Array(n): a node of each unknown. */
+  readonly nodeOf: Int32Array;
 }
 
 export function buildSystem(mesh: Mesh, setup: Setup, unknowns: Unknowns): System {
@@ -60,7 +65,33 @@ export function buildSystem(mesh: Mesh, setup: Setup, unknowns: Unknowns): Syste
     }
     scatterMatrix(mesh, unknowns, scatter, t, work.matrix, linearValues);
   }
-  return { mesh, unknowns, pattern, scatter, materials, curved: Int32Array.from(curved), linearValues, source };
+  const nodal = source.map((value) => -value);
+  if (unknowns.fixed.some((value) => value !== 0)) {
+    for (let t = 0; t < triangleCount(mesh); t++) {
+      const material = materials[mesh.triangleToRegion[t]];
+      if (material.kind !== 'curve') addResidual(mesh, t, material, unknowns.fixed, nodal, work);
+    }
+  }
+  return {
+    mesh,
+    unknowns,
+    pattern,
+    scatter,
+    materials,
+    curved: Int32Array.from(curved),
+    linearValues,
+    source,
+    offset: gatherToUnknowns(unknowns, nodal, new Float64Array(unknowns.count)),
+    nodeOf: nodesOf(unknowns),
+  };
+}
+
+function nodesOf(unknowns: Unknowns): Int32Array {
+  const nodeOf = new Int32Array(unknowns.count);
+  unknowns.unknownOf.forEach((i, node) => {
+    if (i >= 0) nodeOf[i] = node;
+  });
+  return nodeOf;
 }
 
 /** Quadrature for the stiffness of triangle t. */
@@ -228,21 +259,20 @@ export function assemble(
   residual: Float64Array,
   tangent?: Float64Array,
 ): void {
-  const { mesh, unknowns, materials, source } = system;
+  const { mesh, unknowns, pattern, materials, offset, nodeOf } = system;
+  // Constant reluctivity: the residual is the matrix times the unknowns, without another walk over the triangles.
+  const u = Float64Array.from(nodeOf, (node) => unknowns.sign[node] * potential[node]);
+  const linear = multiply(pattern, system.linearValues, u, new Float64Array(unknowns.count));
   const nodal = new Float64Array(potential.length);
   const work = newWork();
-  for (let t = 0; t < triangleCount(mesh); t++) {
-    const material = materials[mesh.triangleToRegion[t]];
-    if (material.kind !== 'curve') addResidual(mesh, t, material, potential, nodal, work);
-  }
   tangent?.set(system.linearValues);
   for (const t of system.curved) {
     work.matrix.fill(0);
     addResidual(mesh, t, materials[mesh.triangleToRegion[t]], potential, nodal, work);
     if (tangent !== undefined) scatterMatrix(mesh, unknowns, system.scatter, t, work.matrix, tangent);
   }
-  for (let node = 0; node < nodal.length; node++) nodal[node] -= source[node];
   gatherToUnknowns(unknowns, nodal, residual);
+  for (let i = 0; i < residual.length; i++) residual[i] += linear[i] + offset[i];
 }
 
 /** Adds integral nu grad A . grad N_i (the remanence is in `source`), and for curves the tangent to work.matrix. */
