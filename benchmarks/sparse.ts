@@ -1,0 +1,177 @@
+import type { Factor, Section, SymmetricPattern } from '@gapwright/fem-core';
+import {
+  analyse,
+  buildSystem,
+  factor,
+  MU0,
+  meshSection,
+  minimumDegreeOrder,
+  multiply,
+  numberUnknowns,
+  solve,
+} from '@gapwright/fem-core';
+import { CholeskyDecomposition, Matrix } from 'ml-matrix';
+import { medianMs, ms, printTable } from './timing.js';
+
+/** A Laplacian of quadratic elements with a uniform source on the unit square, 0 all round. */
+interface Problem {
+  readonly pattern: SymmetricPattern;
+  readonly values: Float64Array;
+  readonly right: Float64Array;
+}
+
+/** A slanted patch of the same stuff keeps the mesh from falling into a regular pattern. */
+const square = (maxEdge: number): Section => ({
+  outline: { kind: 'rectangle', from: [0, 0], to: [1, 1] },
+  background: 'air',
+  maxEdge,
+  regions: [
+    {
+      name: 'patch',
+      shape: {
+        kind: 'polygon',
+        corners: [
+          [0.21, 0.33],
+          [0.74, 0.13],
+          [0.62, 0.81],
+        ],
+      },
+      maxEdge,
+    },
+  ],
+});
+
+function laplacian(maxEdge: number): Problem {
+  const mesh = meshSection(square(maxEdge));
+  const unit = { kind: 'linear', muR: 1 / MU0 } as const; // reluctivity 1
+  const setup = { materials: { air: unit, patch: unit }, currentDensity: { air: 1, patch: 1 } };
+  const unknowns = numberUnknowns(mesh, setup);
+  const system = buildSystem(mesh, setup, unknowns);
+  const right = new Float64Array(unknowns.count);
+  unknowns.unknownOf.forEach((i, node) => {
+    if (i >= 0) right[i] += system.source[node];
+  });
+  return { pattern: system.pattern, values: system.linearValues, right };
+}
+
+const dot = (a: Float64Array, b: Float64Array): number => a.reduce((sum, value, i) => sum + value * b[i], 0);
+
+function residualOf({ pattern, values, right }: Problem, x: Float64Array): number {
+  const product = multiply(pattern, values, x, new Float64Array(pattern.n));
+  const left = right.map((value, i) => value - product[i]);
+  return Math.sqrt(dot(left, left) / dot(right, right));
+}
+
+/** Conjugate gradients with the diagonal as preconditioner, to 1e-10 of the right-hand side: the plain way to do it. */
+function solveByGradients({ pattern, values, right }: Problem): { x: Float64Array; steps: number } {
+  const { n, start } = pattern;
+  const inverse = Float64Array.from({ length: n }, (_, i) => 1 / values[start[i]]);
+  const x = new Float64Array(n);
+  const r = right.slice();
+  const z = r.map((value, i) => value * inverse[i]);
+  const p = z.slice();
+  const q = new Float64Array(n);
+  let rz = dot(r, z);
+  const goal = 1e-20 * dot(r, r);
+  for (let steps = 1; steps < 10 * n; steps++) {
+    multiply(pattern, values, p, q);
+    const length = rz / dot(p, q);
+    for (let i = 0; i < n; i++) {
+      x[i] += length * p[i];
+      r[i] -= length * q[i];
+    }
+    if (dot(r, r) <= goal) return { x, steps };
+    for (let i = 0; i < n; i++) z[i] = r[i] * inverse[i];
+    const next = dot(r, z);
+    for (let i = 0; i < n; i++) p[i] = z[i] + (next / rz) * p[i];
+    rz = next;
+  }
+  throw new Error('conjugate gradients did not converge');
+}
+
+function positive(result: ReturnType<typeof factor>): Factor {
+  if (!('blocks' in result)) throw new Error(`not positive definite at ${result.unknown}`);
+  return result;
+}
+
+/** Order, analysis, factor and solve against conjugate gradients in the same run. */
+export function benchSparse(): void {
+  console.log('\nsparse solver: Laplacian of quadratic elements on the unit square (times in ms, medians)');
+  const rows: string[][] = [
+    [
+      'unknowns',
+      'entries',
+      'order',
+      'analysis',
+      'factor',
+      'solve',
+      'fill',
+      'Mflop/s',
+      'residual',
+      'CG',
+      'steps',
+      'all/CG',
+    ],
+  ];
+  for (const [maxEdge, runs] of [
+    [0.07, 9],
+    [0.0318, 5],
+    [0.0145, 3],
+  ] as const) {
+    const problem = laplacian(maxEdge);
+    const { pattern, values, right } = problem;
+    const { n } = pattern;
+    const order = minimumDegreeOrder(pattern);
+    const analysis = analyse(pattern, order);
+    const blocks = new Float64Array(analysis.blockSize);
+    const factored = positive(factor(analysis, values, blocks));
+    const x = solve(factored, right, new Float64Array(n));
+    const orderMs = medianMs(runs, () => minimumDegreeOrder(pattern), 1);
+    const analysisMs = medianMs(runs, () => analyse(pattern, order), 1);
+    const factorMs = medianMs(runs, () => factor(analysis, values, blocks), 1);
+    const solveMs = medianMs(runs, () => solve(factored, right, new Float64Array(n)), 1);
+    const gradients = solveByGradients(problem);
+    const gradientsMs = medianMs(Math.min(runs, 3), () => solveByGradients(problem), 0);
+    rows.push([
+      `${n}`,
+      `${pattern.row.length}`,
+      ms(orderMs),
+      ms(analysisMs),
+      ms(factorMs),
+      ms(solveMs),
+      (analysis.blockSize / pattern.row.length).toFixed(1),
+      (analysis.flops / factorMs / 1000).toFixed(0),
+      residualOf(problem, x).toExponential(1),
+      ms(gradientsMs),
+      `${gradients.steps}`,
+      ((orderMs + analysisMs + factorMs + solveMs) / gradientsMs).toFixed(2),
+    ]);
+  }
+  printTable(rows);
+  console.log('  fill: entries of the factor over those of the matrix; all/CG: order + analysis + factor + solve');
+  benchDense();
+}
+
+/** A system small enough for a dense general-purpose library. */
+function benchDense(): void {
+  const problem = laplacian(0.165);
+  const { pattern, values, right } = problem;
+  const { n, start, row } = pattern;
+  const dense = Matrix.zeros(n, n);
+  for (let j = 0; j < n; j++) {
+    for (let p = start[j]; p < start[j + 1]; p++) {
+      dense.set(row[p], j, values[p]);
+      dense.set(j, row[p], values[p]);
+    }
+  }
+  const column = Matrix.columnVector(Array.from(right));
+  const ours = (): Float64Array => solve(positive(factor(analyse(pattern), values)), right, new Float64Array(n));
+  const theirs = (): Matrix => new CholeskyDecomposition(dense).solve(column);
+  const [oursMs, theirsMs] = [medianMs(15, ours, 5), medianMs(15, theirs, 5)];
+  const residual = residualOf(problem, ours()).toExponential(1);
+  const peer = residualOf(problem, Float64Array.from(theirs().to1DArray())).toExponential(1);
+  console.log(
+    `  ${n} unknowns, order to solution: ${(oursMs / theirsMs).toFixed(3)} x dense Cholesky of ml-matrix ` +
+      `(${ms(oursMs)} / ${ms(theirsMs)} ms, residuals ${residual} / ${peer})`,
+  );
+}
