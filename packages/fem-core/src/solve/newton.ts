@@ -4,6 +4,8 @@ import type { Analysis } from '../sparse/analysis.js';
 import { analyse } from '../sparse/analysis.js';
 import type { Factor } from '../sparse/cholesky.js';
 import { factor, solve } from '../sparse/cholesky.js';
+import type { SymmetricPattern } from '../sparse/pattern.js';
+import { multiply } from '../sparse/pattern.js';
 
 export interface NewtonOptions {
   /** Wanted ratio of the residual to that at A = 0 (with the held values), 2-norms. */
@@ -40,8 +42,8 @@ export interface Solution {
   readonly factor: Factor | undefined;
 }
 
-/** Below this the residual is rounding, whatever was asked. */
-const ROUNDING = 1e-14;
+/** Rounding errors of a residual, in units of 2^-52 |K| |u|: its sums are some ten terms long. */
+const ROUNDING = 4 * Number.EPSILON;
 
 /**
  * Newton's method with the exact tangent on the convex energy functional, and a line search on its slope along the step:
@@ -59,9 +61,9 @@ export function solveNewton(system: System, options: NewtonOptions = {}): Soluti
   const u = new Float64Array(n);
   const potential = new Float64Array(nodes);
   const residual = new Float64Array(n);
-  const at = (v: Float64Array, withTangent: boolean): void => {
+  const at = (v: Float64Array): void => {
     potentialOf(system.unknowns, v, potential);
-    assemble(system, potential, residual, withTangent ? tangent : undefined);
+    assemble(system, potential, residual, tangent);
   };
   const residuals: number[] = [];
   const stepLengths: number[] = [];
@@ -81,33 +83,36 @@ export function solveNewton(system: System, options: NewtonOptions = {}): Soluti
     factor: last,
   });
 
-  at(u, true);
+  at(u);
   const scale = norm(residual);
   if (options.start !== undefined && scale > 0) {
     u.set(options.start);
-    at(u, true);
+    at(u);
   }
   const step = new Float64Array(n);
   const trial = new Float64Array(n);
-  const goal = Math.max(tolerance, ROUNDING);
   for (;;) {
     const size = scale === 0 ? 0 : norm(residual) / scale;
     residuals.push(size);
     if (Number.isNaN(size)) return finish('the residual is not a number');
-    if (size <= goal && (last !== undefined || scale === 0)) return finish();
+    // What rounding leaves cannot be reduced further, whatever was asked.
+    const goal =
+      scale === 0 ? 0 : Math.max(tolerance, (ROUNDING * absoluteProduct(system.pattern, tangent, u)) / scale);
+    const reached = size <= goal;
+    if (reached && last !== undefined) return finish();
     if (stepLengths.length >= maxSteps) return finish(`not converged in ${maxSteps} steps`);
     const factored = factor(analysis, tangent, blocks);
     if (!('blocks' in factored)) return finish(`the tangent is not positive definite (pivot ${factored.pivot})`);
     last = factored;
+    if (reached) return finish(); // the start was the solution; adjoint problems need the factor all the same
     solve(factored, residual, step);
     for (let i = 0; i < n; i++) step[i] = -step[i];
-    const length = searchLine(u, step, trial, residual, (v) => at(v, false));
-    stepLengths.push(length);
-    for (let i = 0; i < n; i++) u[i] += length * step[i];
-    at(u, true);
+    stepLengths.push(searchLine(u, step, trial, residual, at));
+    u.set(trial);
   }
 }
 
+/** Leaves the accepted point in `trial`, evaluated, and returns its share of the step. */
 function searchLine(
   u: Float64Array,
   step: Float64Array,
@@ -133,7 +138,14 @@ function searchLine(
     if (slope > 0) [high, highSlope, lowSlope] = [s, slope, 0.5 * lowSlope];
     else [low, lowSlope, highSlope] = [s, slope, 0.5 * highSlope];
   }
+  slopeAt(high);
   return high;
+}
+
+/** 2-norm of |K| |u|. */
+function absoluteProduct(pattern: SymmetricPattern, values: Float64Array, u: Float64Array): number {
+  const abs = (x: Float64Array): Float64Array => x.map(Math.abs);
+  return norm(multiply(pattern, abs(values), abs(u), new Float64Array(u.length)));
 }
 
 function dot(a: Float64Array, b: Float64Array): number {
