@@ -147,7 +147,7 @@ export function writeFiles(folder: string, files: ReadonlyMap<string, string>): 
   let made: string | undefined;
   let temporary: string | undefined;
   try {
-    made = mkdirSync(folder, { recursive: true });
+    made = makeFolders(resolve(folder));
     temporary = join(folder, `.gapwright-${randomBytes(6).toString('hex')}`);
     mkdirSync(temporary);
     for (const [name, content] of files) writeFileSync(join(temporary, name), content, { flag: 'wx' });
@@ -158,6 +158,14 @@ export function writeFiles(folder: string, files: ReadonlyMap<string, string>): 
     if (made !== undefined) removeEmptyFolders(resolve(folder), resolve(made));
     throw outputFault(folder, error);
   }
+}
+
+/** Makes the folder and the parents it lacks, and returns the topmost one made. (Node's own way never ends under /proc.) */
+function makeFolders(folder: string): string | undefined {
+  if (statSync(folder, { throwIfNoEntry: false })?.isDirectory() === true) return undefined;
+  const top = dirname(folder) === folder ? undefined : makeFolders(dirname(folder));
+  mkdirSync(folder);
+  return top ?? folder;
 }
 
 /** Takes back what `mkdir` made: from `folder` upwards to `top`, as long as they are empty. */
@@ -178,7 +186,7 @@ function removeEmptyFolders(folder: string, top: string): void {
 export function writeNewFile(path: string, content: string): void {
   let begun = false;
   try {
-    mkdirSync(dirname(path), { recursive: true });
+    makeFolders(resolve(dirname(path)));
     const file = openSync(path, 'wx');
     begun = true;
     try {

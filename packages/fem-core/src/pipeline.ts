@@ -113,7 +113,7 @@ export function solveAdaptively(section: Section, setup: Setup, options: Adaptiv
     }
     const estimate = estimateGoalErrors(system, field, factor, functionals);
     const weights = options.weights(values);
-    const error = estimate.bounds.reduce((sum, bound, k) => sum + weights[k] * bound, 0);
+    const error = estimate.bounds.reduce((sum, bound, k) => sum + weighed(weights[k], bound), 0);
     options.onMesh?.({ mesh: meshes, triangles: triangleCount(mesh), error });
     const accurate = error <= options.accuracy;
     const stuck = meshes >= maxMeshes || triangleCount(mesh) >= maxTriangles || !field.report.converged;
@@ -122,15 +122,22 @@ export function solveAdaptively(section: Section, setup: Setup, options: Adaptiv
     }
     const shares = new Float64Array(triangleCount(mesh));
     estimate.goals.forEach((share, k) => {
-      for (let t = 0; t < shares.length; t++) shares[t] += weights[k] * share[t];
+      for (let t = 0; t < shares.length; t++) shares[t] += weighed(weights[k], share[t]);
     });
-    mesh = refineMesh(mesh, wantedSizes(mesh, shares, AIM * options.accuracy));
+    const most = Math.min(maxTriangles, GROWTH * triangleCount(mesh));
+    mesh = refineMesh(mesh, wantedSizes(mesh, shares, AIM * options.accuracy, most));
     before = field;
   }
 }
 
+/** No error is none under any weight: 1/|value| is infinite where there are no sources and so no field. */
+const weighed = (weight: number, error: number): number => (error === 0 ? 0 : weight * error);
+
 /** Share of the wanted error the next mesh aims at: near singular corners errors fall slower than `wantedSizes` supposes. */
 const AIM = 0.6;
+
+/** A mesh grows this many times at most: what a coarse mesh says of its errors is not to be followed much further. */
+const GROWTH = 8;
 
 /** Unknowns on a new mesh of the same section, from the potential on the old one. */
 function carryOver(field: Field, mesh: Mesh, setup: Setup): Float64Array {

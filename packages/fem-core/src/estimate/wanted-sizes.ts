@@ -10,18 +10,20 @@ const SMALLEST = 0.25;
  * sum(r^-2) under sum(share r^4) = target gives r = (c / share)^(1/6), the same share for every triangle.
  *
  * @param shares  Float64Array(m), not negative
+ * @param most  triangles the next mesh may have, about; where the target asks for more, it is missed
  * @returns Float64Array(m), metres; Infinity where the present size will do
  */
-export function wantedSizes(mesh: Mesh, shares: Float64Array, target: number): Float64Array {
+export function wantedSizes(mesh: Mesh, shares: Float64Array, target: number, most = Infinity): Float64Array {
   const m = triangleCount(mesh);
   const ratio = (c: number, share: number): number =>
     share <= 0 ? 1 : Math.min(1, Math.max(SMALLEST, (c / share) ** (1 / 6)));
   const total = (c: number): number => shares.reduce((sum, share) => sum + share * ratio(c, share) ** 4, 0);
+  const count = (c: number): number => shares.reduce((sum, share) => sum + ratio(c, share) ** -2, 0);
   let [low, high] = [0, shares.reduce((a, b) => Math.max(a, b), 0)];
   for (let i = 0; i < 50; i++) {
     const middle = 0.5 * (low + high);
-    if (total(middle) > target) high = middle;
-    else low = middle;
+    if (total(middle) <= target || count(middle) > most) low = middle;
+    else high = middle;
   }
   const wanted = new Float64Array(m).fill(Infinity);
   for (let t = 0; t < m; t++) {
