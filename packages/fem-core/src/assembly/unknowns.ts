@@ -1,7 +1,8 @@
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
+import { FULL_RULE, gradients, nodeCoordinates } from '../elements/six-node.js';
 import type { Mesh } from '../mesh/mesh.js';
-import { cornerCount, edgeCount, nodeCount, nodePoint } from '../mesh/mesh.js';
+import { cornerCount, edgeCount, nodeCount, nodePoint, triangleCount } from '../mesh/mesh.js';
 import type { EdgeCondition, Setup } from './setup.js';
 
 /**
@@ -174,14 +175,19 @@ const onlyRepeating = (setup: Setup): boolean =>
 function checkReturn(mesh: Mesh, setup: Setup): void {
   const density = mesh.regionNames.map((name) => setup.currentDensity?.[name] ?? 0);
   let [net, gross] = [0, 0];
-  for (let t = 0; t < mesh.triangleToRegion.length; t++) {
-    const [a, b, c] = [0, 1, 2].map((k) => 2 * mesh.triangles[3 * t + k]);
-    const { xy } = mesh;
-    const area = 0.5 * ((xy[b] - xy[a]) * (xy[c + 1] - xy[a + 1]) - (xy[b + 1] - xy[a + 1]) * (xy[c] - xy[a]));
+  const coordinates = new Float64Array(12);
+  const grad = new Float64Array(12);
+  for (let t = 0; t < triangleCount(mesh); t++) {
+    nodeCoordinates(mesh, t, coordinates);
+    let area = 0;
+    for (let q = 0; q < FULL_RULE.count; q++) {
+      area += FULL_RULE.weights[q] * gradients(coordinates, FULL_RULE.slopes, 12 * q, grad);
+    }
     net += density[mesh.triangleToRegion[t]] * area;
     gross += Math.abs(density[mesh.triangleToRegion[t]]) * area;
   }
-  if (Math.abs(net) <= 1e-9 * gross || gross === 0) return;
+  // Eight edges round a circle miss 8e-4 of its area: no reason to refuse bars that carry the same current.
+  if (Math.abs(net) <= 1e-3 * gross) return;
   throw new InputError([
     {
       code: 'no-return',

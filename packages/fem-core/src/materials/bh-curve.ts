@@ -20,7 +20,7 @@ export interface BHCurve {
 /**
  * Monotone piecewise cubic H(B): slopes at the rows by the weighted harmonic mean of the neighbouring chords, which keeps
  * every piece rising (Fritsch, Butland, A method for constructing local monotone piecewise cubic interpolants, 1984);
- * at the last row the slope is that of the continuation, 1/mu0, as far as monotony allows.
+ * at the last row the slope is that of the parabola through the last three, within the bounds of monotony.
  *
  * @param rows  [H in A/m, B in T]; a first row [0, 0] is added where it is missing
  * @throws InputError for fewer than two rows, numbers that are not finite or negative, columns that do not both rise, and
@@ -90,8 +90,16 @@ function slopesOf(b: Float64Array, h: Float64Array): Float64Array {
   }
   // H(B) is odd, so its chord over [-b1, b1] is the first chord; the rows next to 0 pull towards it.
   slope[0] = chord(0);
-  slope[last] = Math.min(1 / MU0, 3 * chord(last - 1));
+  slope[last] = endSlope(b, chord, last);
   return slope;
+}
+
+/** Slope of the parabola through the last three rows, kept between a quarter and three times the last chord, and to 1/mu0. */
+function endSlope(b: Float64Array, chord: (i: number) => number, last: number): number {
+  const d1 = chord(last - 1);
+  if (last < 2) return d1;
+  const share = (b[last] - b[last - 1]) / (b[last] - b[last - 2]);
+  return Math.min(1 / MU0, Math.max(0.25 * d1, Math.min(3 * d1, d1 + share * (d1 - chord(last - 2)))));
 }
 
 /** H in A/m and dH/dB in m/H at flux density b >= 0, and the energy density integral of H dB in J/m^3. */
