@@ -115,7 +115,7 @@ export function solveAdaptively(section: Section, setup: Setup, options: Adaptiv
     const weights = options.weights(values);
     const error = estimate.bounds.reduce((sum, bound, k) => sum + weighed(weights[k], bound), 0);
     options.onMesh?.({ mesh: meshes, triangles: triangleCount(mesh), error });
-    const accurate = error <= options.accuracy;
+    const accurate = field.report.converged && error <= options.accuracy; // the estimate is of a solved field
     const stuck = meshes >= maxMeshes || triangleCount(mesh) >= maxTriangles || !field.report.converged;
     if (accurate || stuck) {
       return { field, estimate, values, bounds: estimate.bounds, error, accurate, meshes, newtonSteps };

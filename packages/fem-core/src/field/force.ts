@@ -64,9 +64,9 @@ function airRegions(field: Field): string[] {
 
 const DEPTH = 3;
 
-/** w at the corners: 1 on the body, falling by a third a ring of elements, 0 on whatever else is not air. */
+/** w at the corners: 1 on the body, falling by a third a ring of elements, 0 on whatever else is not air and on the outline. */
 function layerWeights(field: Field, regions: readonly string[]): Float64Array {
-  const { mesh } = field;
+  const { mesh, setup } = field;
   const air = airRegions(field);
   const kind = mesh.regionNames.map((name) => (regions.includes(name) ? 'body' : air.includes(name) ? 'air' : 'other'));
   const n = cornerCount(mesh);
@@ -86,6 +86,14 @@ function layerWeights(field: Field, regions: readonly string[]): Float64Array {
       'touches another body',
       'a force is defined on a body with air all round it; name all parts that move together',
     );
+  }
+  // Stress on the outline pushes whatever lies beyond; on bound sides what leaves by the one comes in by the other.
+  for (let e = 0; e < mesh.edgeToSide.length; e++) {
+    const side = mesh.edgeToSide[e];
+    const condition = side < 0 ? undefined : (setup.edges?.[mesh.sideNames[side]]?.kind ?? 'closed');
+    if (condition === undefined || condition === 'repeating' || condition === 'reversing') continue;
+    other[mesh.edges[2 * e]] = 1;
+    other[mesh.edges[2 * e + 1]] = 1;
   }
   for (let depth = 1; depth < DEPTH; depth++) {
     for (let t = 0; t < triangleCount(mesh); t++) {

@@ -159,7 +159,7 @@ export function exceededIn(field: Field, regions: readonly string[], share: numb
     passed += area;
     if (passed >= share * total) return b;
   }
-  return 0;
+  return samples.at(-1)?.b ?? 0; // the whole area, but for rounding
 }
 
 /** Area of each region, m^2, curved edges included. */

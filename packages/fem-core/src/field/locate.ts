@@ -47,17 +47,38 @@ export function buildLocator(mesh: Mesh): Locator {
       if (!(x >= x0 - slack && x <= x1 + slack && y >= y0 - slack && y <= y1 + slack)) return undefined;
       const c = clampY(y) * nx + clampX(x);
       let best: Spot | undefined;
-      let outside = 1e-6; // a point on the rim, or on an edge, may miss every triangle by rounding
+      let outside = Infinity;
       for (let p = start[c]; p < start[c + 1]; p++) {
         const spot = spotIn(mesh, list[p], x, y);
         const miss = -Math.min(spot.xi, spot.eta, 1 - spot.xi - spot.eta);
         if (miss <= 0) return spot;
-        if (miss < outside) [best, outside] = [spot, miss];
+        if (miss < outside && miss < slackOf(mesh, list[p])) [best, outside] = [spot, miss];
       }
       return best;
     },
   };
 }
+
+/**
+ * How far beyond its border, in reference coordinates, a triangle still takes a point: one on an edge may miss every
+ * triangle by rounding, one on a drawn circle lies beyond the quadratic edge that follows it. Where that edge bulges by the
+ * share q of its chord the circle is q^3 chords farther out, and no triangle is less than a fifth of its edge high.
+ */
+function slackOf(mesh: Mesh, t: number): number {
+  if (mesh.curved[t] === 0) return ROUNDING;
+  const { xy, middles, triangles, triangleToEdge } = mesh;
+  let slack = ROUNDING;
+  for (let k = 0; k < 3; k++) {
+    const m = 2 * triangleToEdge[3 * t + k];
+    const a = 2 * triangles[3 * t + ((k + 1) % 3)];
+    const b = 2 * triangles[3 * t + ((k + 2) % 3)];
+    const bulge = Math.hypot(middles[m] - 0.5 * (xy[a] + xy[b]), middles[m + 1] - 0.5 * (xy[a + 1] + xy[b + 1]));
+    slack += 5 * (bulge / Math.hypot(xy[b] - xy[a], xy[b + 1] - xy[a + 1])) ** 3;
+  }
+  return slack;
+}
+
+const ROUNDING = 1e-6;
 
 function boxesOf(mesh: Mesh): { readonly of: Float64Array; readonly all: [number, number, number, number] } {
   const m = triangleCount(mesh);
