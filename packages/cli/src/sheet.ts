@@ -154,7 +154,7 @@ function slicesGroup(machine: Machine, result: MachineResult): SheetGroup {
     },
     {
       label: 'Third harmonic',
-      value: `${percent(effective.third_share_phase)} of the phase, ${percent(effective.third_share_line)} of the line`,
+      value: `${percent(effective.third_share_phase)} of the flux a leg cuts, ${percent(effective.third_share_line)} of leg less leg 120 deg on`,
     },
     ...mesh,
   ];
@@ -175,9 +175,10 @@ function emfGroup({ emf, winding }: MachineResult): SheetGroup {
     { label: `${name}, peak`, value: `${figure(v.peak_V)} V`, note: meshError(v.peak_V_rel_err) },
     {
       label: `${name}, fundamental`,
-      value: `${figure(v.fundamental_rms_V)} V rms, ${percent(v.thd)} harmonic distortion`,
+      value: `${figure(v.fundamental_rms_V)} V rms`,
       note: meshError(v.fundamental_rms_V_rel_err),
     },
+    { label: `${name}, distortion`, value: `${percent(v.thd)} rms of the harmonics over the fundamental` },
   ];
   const rows = [
     { label: 'Speed', value: `${given(emf.speed_rpm)} rpm, ${figure(emf.frequency_Hz)} Hz` },
@@ -195,6 +196,9 @@ function emfGroup({ emf, winding }: MachineResult): SheetGroup {
     blocks: [rowsBlock(rows), { kind: 'table', ...harmonicsTable(emf, winding) }],
   };
 }
+
+const SLICES_ALONE =
+  'from the slices alone, without end factor: expect some percent less; ± is what the mesh leaves, no more';
 
 function harmonicsTable(emf: MachineResult['emf'], winding: MachineResult['winding']): SheetTable {
   const at = (orders: readonly number[], values: readonly number[], order: number): number | undefined =>
@@ -217,9 +221,10 @@ function harmonicsTable(emf: MachineResult['emf'], winding: MachineResult['windi
       const factor = at(winding.order, winding.winding_factor, n);
       return [String(n), ...cells(emf.phase, n), ...cells(emf.line, n), factor === undefined ? '-' : factor.toFixed(4)];
     }),
-    ...(orders.length < emf.phase.order.length && {
-      caption: `orders above ${orders.at(-1)} stay below 0.01 % of the first`,
-    }),
+    caption:
+      orders.length < emf.phase.order.length
+        ? `${SLICES_ALONE}; orders above ${orders.at(-1)} stay below 0.01 % of the first`
+        : SLICES_ALONE,
   };
 }
 

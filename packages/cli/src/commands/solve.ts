@@ -79,7 +79,10 @@ function judge(machine: Machine, answers: readonly SliceAnswer[], { stderr }: Su
   for (const { radius, converged, newtonSteps, residuals } of short) {
     const what = converged
       ? `did not reach the wanted accuracy of ${percent(machine.model.accuracy, 2)}`
-      : `did not converge in ${newtonSteps} Newton steps; its figures are not to be used (residuals ${residuals.map((r) => r.toExponential(1)).join(', ')})`;
+      : `did not converge in ${newtonSteps} Newton steps; its figures are not to be used (last residuals ${residuals
+          .slice(-6)
+          .map((r) => r.toExponential(1))
+          .join(', ')})`;
     stderr.write(`not reached: the slice at radius ${givenMm(radius)} mm ${what}\n`);
   }
   return short.length === 0 ? exitStatus.done : exitStatus.notReached;

@@ -30,12 +30,13 @@ export function warnLeftOut(file: MachineFile, report: Report): void {
   for (const key of ['limits', 'prices', 'tolerances', 'measured'] as const) {
     if (file[key] !== undefined) leftOut([key], report);
   }
-  if (file.model.end_correction === 'on') {
-    report.warn(
-      ['model', 'end_correction'],
-      'the end factor is not worked out by this version yet: voltages are those of the slices alone, some percent too high',
-    );
-  }
+  const told = 'voltages are those of the slices alone, some percent too high';
+  report.warn(
+    ['model', 'end_correction'],
+    file.model.end_correction === 'on'
+      ? `the end factor is not worked out by this version yet: ${told}`
+      : `off: ${told}`,
+  );
 }
 
 function leftOut(path: Path, report: Report): void {

@@ -1,6 +1,6 @@
 import type { Machine, Warning } from '../machine.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
-import { findCautions } from './cautions.js';
+import { findCautions, overspeedPeak } from './cautions.js';
 import { circulatingEmf, computeEmf, describeEmf } from './emf.js';
 import { describeEffectiveB, describeLeg } from './leg-wave.js';
 import { describeMasses, describePull } from './mechanical.js';
@@ -34,6 +34,7 @@ export function describeMachine(
   const winding = describeWinding(machine);
   const mechanical = describePull(machine, slices);
   const figures = { emf, winding, mechanical, circulatingEmf: circulatingEmf(computeEmf(machine, slices)) };
+  const overspeed = overspeedPeak(machine, emf);
   return {
     format: 'gapwright-result/1',
     gapwright: stamp.version,
@@ -44,10 +45,11 @@ export function describeMachine(
     effective_B: effectiveB,
     winding,
     merit: describeMerit(machine, emf, effectiveB),
+    faults: { ...(overspeed !== undefined && { overspeed_dc_peak_V: overspeed }) },
     mechanical,
     masses: describeMasses(machine),
     cautions: findCautions(machine, figures),
-    warnings: [...warnings, ...slices.flatMap((slice, i) => sliceWarnings(machine, slice, i))],
+    warnings: [...warnings, ...slices.flatMap((slice, i) => sliceWarnings(machine, slice, i)), ...saturation(slices)],
   };
 }
 
@@ -67,6 +69,18 @@ function describeSlice(machine: Machine, slice: SliceAnswer): SliceResult {
     mesh: { nodes: slice.mesh.nodes, triangles: slice.mesh.triangles, min_angle_deg: slice.mesh.minAngleDeg },
     newton_steps: slice.newtonSteps,
   };
+}
+
+/** Mean flux density in a disc above which plates of mild steel saturate, T; common practice 1.6 to 1.8. */
+const SATURATED = 1.8;
+
+function saturation(slices: readonly SliceAnswer[]): readonly Warning[] {
+  const most = Math.max(...slices.map(({ discB }) => discB ?? 0));
+  if (!(most > SATURATED)) return [];
+  const text =
+    `the discs carry up to ${most.toFixed(2)} T midway between poles: they saturate, which costs voltage and lets field ` +
+    'out behind them; thicker discs or smaller magnets would help';
+  return [{ key: 'rotor.disc.thickness', text }];
 }
 
 function sliceWarnings(machine: Machine, slice: SliceAnswer, index: number): readonly Warning[] {

@@ -1,4 +1,5 @@
 import type { Machine } from '../machine.js';
+import { remanenceAt } from '../slices/pole-section.js';
 import { coilPlaces, pathsAreAlike } from '../winding/coil-places.js';
 import type { EmfResult, MachineResult, WindingResult } from './result.js';
 
@@ -31,6 +32,7 @@ export function findCautions(machine: Machine, figures: CautionFigures): readonl
     shock(machine, figures.emf),
     flyingParts(machine),
     heat(machine),
+    demagnetisation(machine),
     circulation(machine, figures),
     unlikePaths(machine),
     'Short circuit: its current and braking torque are not computed yet. A coreless machine can drive many times its ' +
@@ -51,17 +53,36 @@ function crushing({ rotor }: Machine, pull: number): string | undefined {
   );
 }
 
-function shock({ rotor, operation }: Machine, emf: EmfResult): string | undefined {
-  const { speedRpm, overspeedRpm = speedRpm } = operation;
+function shock(machine: Machine, emf: EmfResult): string | undefined {
+  const { rotor, operation } = machine;
   const atSpeed = emf.line.peak_V; // the highest rectified voltage with the load open, in star and in delta
-  const atOverspeed = (atSpeed * overspeedRpm) / speedRpm;
-  if (Math.max(atSpeed, atOverspeed) <= TOUCH_VOLTAGE) return undefined;
+  const worst = overspeedPeak(machine, emf);
+  if (Math.max(atSpeed, worst ?? 0) <= TOUCH_VOLTAGE) return undefined;
+  const { overspeedRpm, cold } = operation;
+  const overspeed =
+    worst === undefined || overspeedRpm === undefined
+      ? ''
+      : ` and at ${figure(worst)} V at ${figure(overspeedRpm)} rpm${cold === undefined ? '' : ` with magnets at ${figure(cold)} degC`}`;
+  const colder = cold === undefined || worst === undefined ? rotor.magnets.temperature : cold;
   return (
-    `Electric shock: with the load off, the rectified voltage peaks at ${figure(atSpeed)} V at ${figure(speedRpm)} rpm` +
-    (overspeedRpm === speedRpm ? '' : ` and at ${figure(atOverspeed)} V at ${figure(overspeedRpm)} rpm`) +
-    `; above ${TOUCH_VOLTAGE} V DC touch can kill. Magnets colder than the ${figure(rotor.magnets.temperature)} degC taken ` +
-    'here raise it further; controllers and capacitors must stand it.'
+    `Electric shock: with the load off, the rectified voltage peaks at ${figure(atSpeed)} V at ` +
+    `${figure(operation.speedRpm)} rpm${overspeed}; above ${TOUCH_VOLTAGE} V DC touch can kill. Magnets colder than ` +
+    `${figure(colder)} degC raise it further; controllers and capacitors must stand it.`
   );
+}
+
+/**
+ * Highest rectified voltage with the load open at overspeed, with the magnets at the coldest start where one is given, V;
+ * undefined without an overspeed. In proportion to speed and to remanence, which holds while the discs do not saturate
+ * (cold magnets in saturated discs give a little less).
+ */
+export function overspeedPeak({ rotor, operation, materials }: Machine, emf: EmfResult): number | undefined {
+  const { speedRpm, overspeedRpm, cold } = operation;
+  if (overspeedRpm === undefined || overspeedRpm < speedRpm) return undefined;
+  const magnet = materials[rotor.magnets.material];
+  const at = (celsius: number): number => (magnet.kind === 'magnet' ? remanenceAt(magnet, celsius) : 1);
+  const warmer = cold === undefined ? 1 : at(cold) / at(rotor.magnets.temperature);
+  return (emf.line.peak_V * overspeedRpm * warmer) / speedRpm;
 }
 
 function flyingParts({ rotor, operation }: Machine): string {
@@ -71,6 +92,18 @@ function flyingParts({ rotor, operation }: Machine): string {
   return (
     `Flying parts: the rim runs at ${figure((2 * Math.PI * fastest * rim) / 60)} m/s at ${figure(fastest)} rpm. Hold the ` +
     'magnets by a band or a ring, not by glue alone; test overspeed from behind a guard.'
+  );
+}
+
+/** Above this an ordinary NdFeB grade may lose strength for good, degC; makers' guide values for standard grades are 80. */
+const WARM_MAGNETS = 60;
+
+function demagnetisation({ rotor }: Machine): string | undefined {
+  const { temperature } = rotor.magnets;
+  if (temperature <= WARM_MAGNETS) return undefined;
+  return (
+    `Demagnetisation: at ${figure(temperature)} degC magnets may lose strength for good; whether these do is not checked by ` +
+    "this version. Ask the maker for the grade's curves at that temperature."
   );
 }
 

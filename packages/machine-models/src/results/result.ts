@@ -23,6 +23,8 @@ export interface MachineResult {
     readonly line_B_squared_thickness_T2m: number;
     readonly line_B_squared_thickness_T2m_rel_err: number;
   };
+  /** Open-circuit peak at overspeed with cold magnets, scaled from the figures above; left out without an overspeed. */
+  readonly faults: { readonly overspeed_dc_peak_V?: number };
   readonly mechanical: { readonly disc_pull_N: number; readonly disc_pull_N_rel_err: number };
   readonly masses: { readonly magnets_kg?: number; readonly copper_kg: number; readonly steel_kg?: number };
   readonly cautions: readonly string[];

@@ -6,7 +6,7 @@ import { fillFactor, meanTurn, phaseResistance, wireLength } from '../winding/tu
 import type { WindingResult } from './result.js';
 
 /** Orders of the winding factors that are told. */
-const ORDERS = [1, 3, 5, 7, 9, 11, 13];
+const ORDERS = Array.from({ length: 25 }, (_, k) => 2 * k + 1);
 
 /**
  * `winding` of the results. The winding factor of an order is distribution x pitch x leg spread with the coil's true span
