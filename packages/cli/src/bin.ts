@@ -2,11 +2,12 @@
 import { main } from './main.js';
 
 // A reader that has seen enough (`gapwright solve FILE | head`) is no fault; files are still written in full.
-for (const stream of [process.stdout, process.stderr]) {
-  stream.on('error', (error: NodeJS.ErrnoException) => {
-    if (error.code !== 'EPIPE') process.exitCode = 1;
-  });
-}
+process.stderr.on('error', () => {});
+process.stdout.on('error', (error: NodeJS.ErrnoException) => {
+  if (error.code === 'EPIPE') return;
+  process.stderr.write(`standard output cannot be written to: ${error.message}\n`);
+  process.exitCode = 2;
+});
 
 const interruption = new AbortController();
 // The first interrupt stops at the next safe point and cleans up; a second one does not wait.

@@ -196,7 +196,7 @@ export function writeNewFile(path: string, content: string): void {
     }
   } catch (error) {
     if (begun) rmSync(path, { force: true });
-    if (codeOf(error) === 'EEXIST') {
+    if (codeOf(error) === 'EEXIST' && statSync(dirname(path), { throwIfNoEntry: false })?.isDirectory() === true) {
       throw fileFault('exists', path, 'exists already and is not overwritten', 'name another folder, or move the file');
     }
     throw fileFault('unwritable', path, `cannot be written: ${reasonOf(error)}`, 'name a folder you may write to');

@@ -1,5 +1,6 @@
 import { createHash } from 'node:crypto';
-import type { Setting } from '@gapwright/fem-core';
+import { dirname, join } from 'node:path';
+import { InputError, type Setting } from '@gapwright/fem-core';
 import type { Engine, ReadMachine } from './engine.js';
 import { readFileBeside, readTextFile } from './files.js';
 
@@ -17,12 +18,30 @@ export interface MachineInput extends ReadMachine {
 export function readMachineFile(engine: Engine, path: string, settings: readonly Setting[]): MachineInput {
   const { bytes, text } = readTextFile(path);
   const digest = createHash('sha256').update(bytes);
+  const sideFiles = new Set<string>();
   const readBeside = (name: string): string => {
     const beside = readFileBeside(path, name);
     digest.update(`\0file ${name}\0`).update(beside.bytes);
+    sideFiles.add(name);
     return beside.text;
   };
-  const read = engine.read(text, { file: path, settings, readBeside });
+  const read = withPaths(sideFiles, dirname(path), () => engine.read(text, { file: path, settings, readBeside }));
   for (const { key, value } of settings) digest.update(`\0set ${key}=${value}`);
   return { ...read, sha256: digest.digest('hex') };
+}
+
+/** Tells faults of side files by the path from where the user stands, not from the machine file's folder. */
+function withPaths<T>(sideFiles: ReadonlySet<string>, folder: string, read: () => T): T {
+  try {
+    return read();
+  } catch (error) {
+    if (!(error instanceof InputError)) throw error;
+    throw new InputError(
+      error.faults.map((fault) =>
+        fault.at !== undefined && sideFiles.has(fault.at.file)
+          ? { ...fault, at: { ...fault.at, file: join(folder, fault.at.file) } }
+          : fault,
+      ),
+    );
+  }
 }

@@ -114,7 +114,7 @@ test('the energy at the rows is that of Simpson on each cubic piece, which is ex
 });
 
 test.each([
-  ['of 800 mu0, but for its last piece, which bends towards mu0', 800, 5],
+  ['of 800 mu0, up to its last row', 800, 9],
   ['of mu0, the end and all beyond included', 1, 0.02],
 ])('a straight table is straight, whatever its rows: %s', (_, muR, end) => {
   const permeability = muR * MU0;

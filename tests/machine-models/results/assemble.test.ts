@@ -137,11 +137,16 @@ describe('cautions', () => {
 
   test('shock is told where the open bridge peaks above 60 V DC, at speed or at overspeed', () => {
     const { peak_V } = solve(machine).emf.line;
-    const overspeedPeak = (peak_V * 756) / 420;
-    expect(about(machine, /^Electric shock/)).toContain(`${overspeedPeak.toFixed(0)} V at 756 rpm`);
+    // Magnets at -10 degC carry 1 + 0.0012 x 30 times their remanence at 20 degC.
+    const overspeedPeak = (1.036 * peak_V * 756) / 420;
+    expect(about(machine, /^Electric shock/)).toContain(
+      `${overspeedPeak.toFixed(0)} V at 756 rpm with magnets at -10 degC`,
+    );
+    expect(relativeError(solve(machine).faults.overspeed_dc_peak_V ?? 0, overspeedPeak)).toBeLessThan(1e-12);
+    const { cold: _cold, ...mild } = machine.operation;
     const slow = (overspeedRpm: number): Machine => ({
       ...machine,
-      operation: { ...machine.operation, speedRpm: (420 * 40) / peak_V, overspeedRpm },
+      operation: { ...mild, speedRpm: (420 * 40) / peak_V, overspeedRpm },
     });
     expect(about(slow((420 * 59) / peak_V), /^Electric shock/)).toBeUndefined();
     expect(about(slow((420 * 61) / peak_V), /^Electric shock/)).toMatch(/60 V DC/);
@@ -150,6 +155,22 @@ describe('cautions', () => {
   test('the rim speed is that of the disc at overspeed', () => {
     const rim = (2 * Math.PI * 756 * 0.165) / 60;
     expect(about(machine, /^Flying parts/)).toContain(`${rim.toFixed(1)} m/s at 756 rpm`);
+  });
+
+  test('magnets above 60 degC: that their loss of strength is not checked', () => {
+    const { rotor } = machine;
+    const warm = { ...machine, rotor: { ...rotor, magnets: { ...rotor.magnets, temperature: 90 } } };
+    expect(about(machine, /^Demagnetisation/)).toBeUndefined();
+    expect(about(warm, /^Demagnetisation/)).toMatch(/90 degC/);
+  });
+
+  test('saturated discs draw a warning, others none', () => {
+    const keys = (discB: number): readonly string[] => {
+      const slices = closedFormSlices(machine).map((slice) => ({ ...slice, discB }));
+      return describeMachine(machine, slices, [], stamp).warnings.map(({ key }) => key);
+    };
+    expect(keys(1.7)).toEqual([]);
+    expect(keys(2.1)).toEqual(['rotor.disc.thickness']);
   });
 
   test('heat is told above 60 degC only', () => {

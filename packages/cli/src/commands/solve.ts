@@ -1,4 +1,4 @@
-import { colourScaleEnd, drawField, writeVtu } from '@gapwright/fem-core';
+import { colourScaleEnd, drawField, InputError, writeVtu } from '@gapwright/fem-core';
 import type { Machine, MachineResult, SliceAnswer, Warning } from '@gapwright/machine-models';
 import { sheetText } from '../datasheet.js';
 import type { Engine, SliceField, SolvedMachine } from '../engine.js';
@@ -27,6 +27,10 @@ export async function runSolve(
 ): Promise<number> {
   const { stdout, stderr, signal } = surroundings;
   const begun = performance.now();
+  if (options.vtu === true && options.out === undefined) {
+    const remedy = 'name a folder with --out DIR';
+    throw new InputError([{ code: 'no-folder', key: '--vtu', wrong: 'has nowhere to write to', remedy }]);
+  }
   const { machine, warnings, sha256 } = readMachineFile(engine, file, options.set);
   if (options.out !== undefined) checkOutputFolder(options.out, outputNames(machine, options.vtu === true), file);
   if (!options.quiet) showWarnings(warnings, options, surroundings);
@@ -126,7 +130,7 @@ function drawPictures(result: MachineResult, fields: readonly SliceField[]): str
   const scaleEnd = Math.max(...fields.map(({ mesh, magnitude }) => colourScaleEnd(mesh, magnitude)));
   return fields.map((field, k) =>
     drawField(field, {
-      title: `${plainText(result.machine)}: slice at radius ${givenMm(result.slices[k].radius_m)} mm`,
+      title: `Slice at radius ${givenMm(result.slices[k].radius_m)} mm: ${plainText(result.machine)}`,
       copies: field.copies,
       heights: field.heights,
       scaleEnd,

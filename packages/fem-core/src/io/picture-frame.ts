@@ -16,6 +16,8 @@ export const grid = 10;
 const drawingSize = 760;
 /** Room round the drawing in pixels. */
 export const margin = { left: 16, top: 46, right: 92, bottom: 40 } as const;
+/** A narrower picture would cut its own title and scale bar, in pixels. */
+export const leastWidth = 520;
 /** Of texts and lines. */
 export const ink = '#1d1d1f';
 

@@ -6,6 +6,7 @@ import {
   frameOf,
   grid,
   ink,
+  leastWidth,
   margin,
   type PictureCopy,
   type Placement,
@@ -75,7 +76,7 @@ export function drawField(data: PictureData, options: PictureOptions): string {
     },
   ];
   const total = {
-    width: margin.left + width + margin.right,
+    width: Math.max(leastWidth, margin.left + width + margin.right),
     height: margin.top + height + margin.bottom + names.keyHeight,
   };
   return [

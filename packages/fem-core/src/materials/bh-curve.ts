@@ -41,11 +41,6 @@ export function buildBHCurve(rows: readonly (readonly [H: number, B: number])[])
   return { b, h, slope, energy };
 }
 
-/** T; Bozorth, Ferromagnetism, 1951, gives 2.45 T for iron-cobalt (from memory), the most there is. */
-const MOST_POLARISATION = 2.6;
-/** Highest of the best laboratory alloys, about 1e6 (from memory). */
-const MOST_PERMEABILITY = 1e6;
-
 /** Everything wrong with a B-H table; `key` of a fault is `row N`, counted from 1. */
 export function findTableFaults(rows: readonly (readonly [H: number, B: number])[]): Fault[] {
   const faults: Fault[] = [];
@@ -68,18 +63,6 @@ export function findTableFaults(rows: readonly (readonly [H: number, B: number])
           i + 1,
           `does not rise in both columns: [${h}, ${b}] after [${h0}, ${b0}]`,
           'order the rows so that H and B both rise',
-        );
-      } else if (b - MU0 * h > MOST_POLARISATION) {
-        tell(
-          i + 1,
-          `holds a polarisation of ${(b - MU0 * h).toPrecision(3)} T, more than any material's (iron-cobalt 2.45 T)`,
-          'check the units and the order of the columns: H in A/m, then B in T',
-        );
-      } else if (b > MOST_PERMEABILITY * MU0 * h) {
-        tell(
-          i + 1,
-          `makes the relative permeability ${(b / (MU0 * h)).toPrecision(3)}, more than any steel's`,
-          'check the unit of H: A/m, not kA/m',
         );
       } else if (b - b0 < 0.999 * MU0 * (h - h0)) {
         tell(

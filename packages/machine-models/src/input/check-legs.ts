@@ -34,6 +34,7 @@ function checkEnds(
     report.fault([...path, 'outer_radius'], 'out-of-range', wrong, 'give the radius of the outer end');
     return false;
   }
+  if (inner <= 0) return false; // magnets that reach the shaft are told already
   if (innerRadius >= outer) {
     const wrong = `the legs begin at ${millimetres(innerRadius)}, but the magnets end at ${millimetres(outer)}`;
     report.fault([...path, 'inner_radius'], 'legs-miss-magnets', wrong, `give about ${millimetres(inner)}`);

@@ -1,7 +1,8 @@
-import { editDistance, type Fault, findTableFaults, InputError, showText } from '@gapwright/fem-core';
+import { editDistance, type Fault, findTableFaults, InputError, MU0, showText } from '@gapwright/fem-core';
 import type { LibraryMaterial } from '../machine.js';
 import { MATERIAL_LIBRARY } from '../materials/library.js';
 import { type BhRow, readBhCsv } from './bh-csv.js';
+import { figure } from './format-figure.js';
 import type { Report } from './report.js';
 import type { MachineFile } from './schema.js';
 import type { UserMaterial } from './schema-materials.js';
@@ -107,7 +108,30 @@ function readTable(name: string, path: readonly string[], readBeside: ReadBeside
 }
 
 function tableFaults(rows: BhTable): readonly (Fault & { readonly row: number })[] {
-  return findTableFaults(rows).map((fault) => ({ ...fault, row: Number(/\d+/.exec(fault.key)) - 1 }));
+  const faults = findTableFaults(rows).map((fault) => ({ ...fault, row: Number(/\d+/.exec(fault.key)) - 1 }));
+  return faults.length > 0 ? faults : implausible(rows);
+}
+
+/** T; iron-cobalt has 2.45 T (Bozorth, Ferromagnetism, 1951; from memory), the most there is. */
+const MOST_POLARISATION = 2.6;
+/** Of the best laboratory alloys, about (from memory). */
+const MOST_PERMEABILITY = 1e6;
+
+/** The first row that no material has: a table in other units, or with its columns the other way round. */
+function implausible(rows: BhTable): readonly (Fault & { readonly row: number })[] {
+  const code = 'implausible-bh';
+  for (const [row, [h, b]] of rows.entries()) {
+    const permeability = b / (MU0 * h);
+    if (b - MU0 * h > MOST_POLARISATION) {
+      const wrong = `${figure(b)} T is more than any material carries at ${figure(h)} A/m`;
+      return [{ code, key: '', wrong, remedy: 'check units and columns: H in A/m, then B in T', row }];
+    }
+    if (permeability > MOST_PERMEABILITY) {
+      const wrong = `${figure(b)} T at ${figure(h)} A/m makes the relative permeability ${permeability.toPrecision(2)}`;
+      return [{ code, key: '', wrong, remedy: 'check the unit of H: A/m, not kA/m', row }];
+    }
+  }
+  return [];
 }
 
 function placedIn(rows: readonly BhRow[], found: Fault & { readonly row: number }, file: string): Fault {
