@@ -137,6 +137,16 @@ describe('a table in a file of its own', () => {
       '# x\n0,0\n200,0.5\n  100,0.6\n',
       'plate.csv:4:3: materials.plate.bh_file: does not rise in both columns: [100, 0.6] after [200, 0.5]',
     ],
+    // H in kA/m, columns the other way round, B in kG
+    [
+      '0.3, 0.9\n1, 1.4\n',
+      'plate.csv:1:1: materials.plate.bh_file: 0.9 T at 0.3 A/m makes the relative permeability 2.4e+6',
+    ],
+    [
+      '0.5, 300\n1.5, 2000\n',
+      'plate.csv:1:1: materials.plate.bh_file: 300 T is more than any material carries at 0.5 A/m',
+    ],
+    ['100, 5\n500, 14\n', 'plate.csv:1:1: materials.plate.bh_file: 5 T is more than any material carries at 100 A/m'],
     ['', 'plate.csv:1:1: materials.plate.bh_file: the table has too few rows'],
   ])('%j is told at its own line', (csv, message) => {
     expect(faultsOf(() => read(csv)).join('\n')).toContain(message);
