@@ -27,7 +27,7 @@ const houses: readonly (readonly [SourcePackage, Floors])[] = [
       ['index.ts'],
     ],
   ],
-  [machineModels, [['machine.ts'], ['materials', 'winding'], ['input', 'slices'], ['results'], ['index.ts']]],
+  [machineModels, [['machine.ts'], ['materials', 'waves', 'winding'], ['input', 'slices'], ['results'], ['index.ts']]],
   [
     cli,
     [

@@ -178,13 +178,21 @@ function emfGroup({ emf, winding }: MachineResult): SheetGroup {
       value: `${figure(v.fundamental_rms_V)} V rms`,
       note: meshError(v.fundamental_rms_V_rel_err),
     },
-    { label: `${name}, distortion`, value: `${percent(v.thd)} rms of the harmonics over the fundamental` },
+    {
+      label: `${name}, distortion`,
+      value: `${percent(v.thd)}, harmonics over fundamental`,
+      note: meshError(v.thd_rel_err),
+    },
   ];
   const rows = [
     { label: 'Speed', value: `${given(emf.speed_rpm)} rpm, ${figure(emf.frequency_Hz)} Hz` },
     ...voltage('Phase', emf.phase),
     ...voltage('Line', emf.line),
-    { label: 'Line per speed', value: `${figure(1000 * emf.line_rms_V_per_rpm)} V rms per 1000 rpm` },
+    {
+      label: 'Line per speed',
+      value: `${figure(1000 * emf.line_rms_V_per_rpm)} V rms per 1000 rpm`,
+      note: meshError(emf.line_rms_V_per_rpm_rel_err),
+    },
     {
       label: 'Rectified mean',
       value: `${figure(emf.rectified_mean_V)} V, without diode drop`,
@@ -203,9 +211,15 @@ const SLICES_ALONE =
 function harmonicsTable(emf: MachineResult['emf'], winding: MachineResult['winding']): SheetTable {
   const at = (orders: readonly number[], values: readonly number[], order: number): number | undefined =>
     values[orders.indexOf(order)];
-  const cells = ({ order, harmonic_rms_V, fundamental_rms_V }: VoltageResult, n: number): string[] => {
+  const cells = (voltage: VoltageResult, n: number): string[] => {
+    const { order, harmonic_rms_V, harmonic_rms_V_rel_err, fundamental_rms_V } = voltage;
     const value = at(order, harmonic_rms_V, n);
-    return value === undefined ? ['-', '-'] : [value.toFixed(3), ((100 * value) / fundamental_rms_V).toFixed(2)];
+    if (value === undefined) return ['-', '-'];
+    // A harmonic smaller than the mesh's error in it is told by that bound alone.
+    const bound = value * (at(order, harmonic_rms_V_rel_err, n) ?? 0);
+    const sign = bound > value ? '<' : '';
+    const told = Math.max(value, bound);
+    return [sign + told.toFixed(3), sign + ((100 * told) / fundamental_rms_V).toFixed(2)];
   };
   const orders = tellingOrders(emf);
   return {

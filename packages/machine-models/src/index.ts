@@ -10,6 +10,7 @@ export type { Image } from './slices/images.js';
 export { imagesOfPolePair } from './slices/images.js';
 export type { Cuts, PoleSection } from './slices/pole-section.js';
 export { buildPoleSection, symmetryCuts } from './slices/pole-section.js';
-export type { Harmonics, SliceAnswer } from './slices/slice-answer.js';
+export type { SliceAnswer } from './slices/slice-answer.js';
 export type { SliceOptions, SolvedSlice } from './slices/solve-slice.js';
 export { solveSlice } from './slices/solve-slice.js';
+export type { Harmonics } from './waves/series.js';

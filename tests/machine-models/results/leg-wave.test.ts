@@ -6,7 +6,7 @@ import {
   legWave,
   lineWave,
 } from '../../../packages/machine-models/src/results/leg-wave.js';
-import { evaluate, peak } from '../../../packages/machine-models/src/results/series.js';
+import { evaluate, peak } from '../../../packages/machine-models/src/waves/series.js';
 import { closedFormSlices, hutHydro } from '../../helpers/machines.js';
 
 const machine = hutHydro();

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import { rectifiedAt, rectifiedMean } from '../../../packages/machine-models/src/results/rectified.js';
-import { peak, rms, type Series } from '../../../packages/machine-models/src/results/series.js';
+import { peak, rms, type Series } from '../../../packages/machine-models/src/waves/series.js';
 
 /** Line voltages of three phases sum peak_n sin(n theta), the next one 120 degrees later. */
 function starLines(peaks: readonly number[]): readonly Series[] {

@@ -1,20 +1,13 @@
-import {
-  applyFunctional,
-  buildLocator,
-  nodeCount,
-  nodePoint,
-  solveSection,
-  valueAt,
-  weightedIntegral,
-} from '@gapwright/fem-core';
+import { applyFunctional, buildLocator, nodeCount, nodePoint, solveSection, valueAt } from '@gapwright/fem-core';
 import { describe, expect, test } from 'vitest';
 import {
-  midPlaneHarmonics,
+  midPlaneShare,
   oddOrders,
-  windingHarmonics,
+  ordersThatMatter,
+  windingFunctional,
 } from '../../../packages/machine-models/src/slices/gap-harmonics.js';
 import { buildPoleSection } from '../../../packages/machine-models/src/slices/pole-section.js';
-import { hutHydro } from '../../helpers/machines.js';
+import { closedFormSlices, hutHydro, withWinding } from '../../helpers/machines.js';
 import { ALL_CUTS, nameOf } from './variants.js';
 
 test('odd orders', () => {
@@ -25,59 +18,79 @@ test('odd orders', () => {
 describe.each(ALL_CUTS.map((cuts) => [nameOf(cuts), cuts] as const))('cut along %s', (_, cuts) => {
   const pole = buildPoleSection(hutHydro(), 0.128, cuts);
   const field = solveSection(pole.section, pole.setup);
-  const locator = buildLocator(field.mesh);
   const orders = oddOrders(4);
 
-  test('harmonics on the mid-plane are those of By itself, integrated against the cosines', () => {
-    const { order, amplitude } = midPlaneHarmonics(field, locator, pole, orders);
-    expect(order).toEqual(orders);
-    const stations = 4000;
-    orders.forEach((n, i) => {
+  test('harmonics are those of By itself, integrated over the winding against the cosines', () => {
+    const locator = buildLocator(field.mesh);
+    const [stations, levels] = [600, 24];
+    const first = applyFunctional(windingFunctional(field.mesh, pole, 1), field.potential);
+    for (const n of orders) {
       let sum = 0;
       for (let j = 0; j < stations; j++) {
         const x = pole.from + ((j + 0.5) * (pole.to - pole.from)) / stations;
-        const by = valueAt(field, locator, x, 0)?.by ?? Number.NaN;
-        sum += by * Math.cos((n * Math.PI * x) / pole.polePitch);
+        for (let i = 0; i < levels; i++) {
+          const y = pole.windingFrom + ((i + 0.5) * (pole.windingTo - pole.windingFrom)) / levels;
+          sum += (valueAt(field, locator, x, y)?.by ?? Number.NaN) * Math.cos((n * Math.PI * x) / pole.polePitch);
+        }
       }
+      const amplitude = applyFunctional(windingFunctional(field.mesh, pole, n), field.potential);
       // By of the elements is one order poorer than A, and the mesh is the first one.
-      expect(Math.abs(amplitude[i] - (2 * sum) / stations)).toBeLessThan(5e-3 * amplitude[0]);
-    });
+      expect(Math.abs(amplitude - (2 * sum) / (stations * levels))).toBeLessThan(5e-3 * first);
+    }
   });
 
-  test('harmonics over the winding are the integrals of A that steer the mesh, to the roughness of the elements', () => {
-    const { amplitude } = windingHarmonics(field, locator, pole, orders);
-    orders.forEach((n, i) => {
-      const k = (n * Math.PI) / pole.polePitch;
-      const area = (pole.to - pole.from) * (pole.windingTo - pole.windingFrom);
-      const functional = weightedIntegral(field.mesh, ['winding'], (x) => (-2 * k * Math.sin(k * x)) / area);
-      const direct = applyFunctional(functional, field.potential);
-      expect(Math.abs(amplitude[i] - direct)).toBeLessThan(1e-3 * amplitude[0]);
-    });
-  });
-
-  test('of a made field come back as put in, each order by itself, at y = 0 and averaged over the winding', () => {
-    const [b1, b3, b5] = [0.6, -0.2, 0.05];
+  test('of a made field come back as put in, each order by itself, over the winding and on the mid-plane', () => {
+    const mid = [0.6, -0.2, 0.05, 0];
     const k = Math.PI / pole.polePitch;
     const a = (x: number, y: number): number =>
-      [b1, b3, b5].reduce((sum, b, i) => {
+      mid.reduce((sum, b, i) => {
         const q = (2 * i + 1) * k;
         return sum - (b / q) * Math.sin(q * x) * Math.cosh(q * y);
       }, 0);
     const potential = Float64Array.from({ length: nodeCount(field.mesh) }, (_n, i) => a(...nodePoint(field.mesh, i)));
-    const made = { ...field, potential };
-    const mid = midPlaneHarmonics(made, locator, pole, orders).amplitude;
-    const winding = windingHarmonics(made, locator, pole, orders).amplitude;
-    [b1, b3, b5, 0].forEach((b, i) => {
-      const q = ((2 * i + 1) * k * hutHydro().winding.thickness) / 2;
-      expect(Math.abs(mid[i] - b)).toBeLessThan(1e-3);
-      expect(Math.abs(winding[i] - (b * Math.sinh(q)) / q)).toBeLessThan(2e-3);
+    orders.forEach((n, i) => {
+      const q = (n * k * hutHydro().winding.thickness) / 2;
+      const over = applyFunctional(windingFunctional(field.mesh, pole, n), potential);
+      expect(Math.abs(over - (mid[i] * Math.sinh(q)) / q)).toBeLessThan(1e-3);
+      expect(Math.abs(over * midPlaneShare(pole, n) - mid[i])).toBeLessThan(5e-4);
     });
   });
 });
 
-test('a place outside the section is a fault of the caller, told as such', () => {
+describe('orders that matter', () => {
   const pole = buildPoleSection(hutHydro(), 0.128);
-  const field = solveSection(pole.section, pole.setup);
-  const wrong = { ...pole, to: 2 * pole.to };
-  expect(() => midPlaneHarmonics(field, buildLocator(field.mesh), wrong, [1])).toThrow('outside the section');
+  const kept = (legWidth: number, share: number): number => ordersThatMatter(hutHydro(), pole, legWidth, share).length;
+
+  test('grow in number as legs narrow and as more is asked', () => {
+    expect(kept(0.003, 4e-5)).toBeGreaterThan(kept(0.02, 4e-5));
+    expect(kept(0.02, 1e-7)).toBeGreaterThan(kept(0.02, 4e-5));
+    expect(kept(0.02, 1)).toBe(6);
+    expect(kept(1e-5, 0)).toBe(40);
+  });
+
+  test.each([0.003, 0.008, 0.0205])(
+    'leave out no order that brings more than the share, by the closed form: leg of %s m',
+    (legWidth) => {
+      const share = 4e-5;
+      const machine = withWinding(hutHydro(), { legWidth });
+      const slice = closedFormSlices(machine)[1];
+      const spread = (n: number): number => {
+        const x = (n * Math.PI * legWidth) / (2 * slice.polePitch);
+        return Math.sin(x) / x;
+      };
+      const all = slice.windingB.order.map((n, i) => Math.abs(slice.windingB.amplitude[i] * spread(n)));
+      const orders = ordersThatMatter(machine, pole, legWidth, share);
+      slice.windingB.order.forEach((n, i) => {
+        if (!orders.includes(n)) expect(all[i]).toBeLessThan(share * all[0]);
+      });
+    },
+  );
+});
+
+test('a thick winding and a high order overflow nothing', () => {
+  const machine = withWinding(hutHydro(), { thickness: 0.0189 });
+  const pole = buildPoleSection(machine, 0.128);
+  const { mesh } = solveSection(pole.section, pole.setup);
+  expect(windingFunctional(mesh, pole, 999).every(Number.isFinite)).toBe(true);
+  expect(midPlaneShare(pole, 9999)).toBe(0);
 });

@@ -36,6 +36,25 @@ export const RULE_5 = symmetricRule(5, [
   [(6 + root15) / 21, (155 + root15) / 1200],
 ]);
 
+/** The rule applied to each of the cuts^2 equal triangles the reference triangle falls into: for weights that oscillate. */
+export function subdivided(rule: TriangleRule, cuts: number): TriangleRule {
+  const points: number[] = [];
+  const weights: number[] = [];
+  const add = (x0: number, y0: number, sign: 1 | -1): void => {
+    for (let q = 0; q < rule.weights.length; q++) {
+      points.push((x0 + sign * rule.points[2 * q]) / cuts, (y0 + sign * rule.points[2 * q + 1]) / cuts);
+      weights.push(rule.weights[q] / (cuts * cuts));
+    }
+  };
+  for (let i = 0; i < cuts; i++) {
+    for (let j = 0; i + j < cuts; j++) {
+      add(i, j, 1);
+      if (i + j < cuts - 1) add(i + 1, j + 1, -1); // the triangle turned over beside it
+    }
+  }
+  return { degree: rule.degree, points: Float64Array.from(points), weights: Float64Array.from(weights) };
+}
+
 /** Gauss-Legendre points on [0, 1] with n = 2 ... 8 points: exact to degree 2 n - 1. */
 export function gaussLegendre(n: number): { readonly points: Float64Array; readonly weights: Float64Array } {
   const points = new Float64Array(n);

@@ -48,7 +48,7 @@ export interface ElementRule {
   readonly slopes: Float64Array;
 }
 
-function tabulate(rule: TriangleRule): ElementRule {
+export function tabulate(rule: TriangleRule): ElementRule {
   const count = rule.weights.length;
   const values = new Float64Array(6 * count);
   const slopes = new Float64Array(12 * count);

@@ -1,5 +1,6 @@
 import type { Machine } from '../machine.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
+import { amplitudeOf, amplitudes, combine, evaluate, peak, rms, type Series, scaleEach } from '../waves/series.js';
 import { coilPlaces } from '../winding/coil-places.js';
 import { coilSum, legSpreadFactor, phaseAxis, pitchFactor } from '../winding/factors.js';
 import { legCut } from '../winding/leg-cut.js';
@@ -7,7 +8,6 @@ import { harmonicBound, peakBound, relative, rmsBound } from './error-bounds.js'
 import { longestOrders } from './leg-wave.js';
 import { rectifiedAt, rectifiedMean } from './rectified.js';
 import type { EmfResult, VoltageResult } from './result.js';
-import { amplitudeOf, amplitudes, combine, evaluate, peak, rms, type Series, scaleEach } from './series.js';
 
 /**
  * Open-circuit EMFs of a machine in volts against the electrical angle theta.
@@ -118,6 +118,7 @@ export function describeEmf(machine: Machine, slices: readonly SliceAnswer[]): E
     rectified_mean_V: mean,
     rectified_mean_V_rel_err: relative(peakBound(lineBounds), mean),
     line_rms_V_per_rpm: line.rms_V / speed,
+    line_rms_V_per_rpm_rel_err: line.rms_V_rel_err,
     waveform: {
       electrical_deg: degrees,
       phase_V: sample((theta) => evaluate(phases[0], theta)),
@@ -131,6 +132,7 @@ function describeVoltage(series: Series, bounds: readonly number[]): VoltageResu
   const harmonicRms = amplitudes(series).map((amplitude) => amplitude / Math.SQRT2);
   const fundamental = amplitudeOf({ order: series.order, amplitude: harmonicRms }, 1);
   const [rmsV, peakV] = [rms(series), peak(series)];
+  const thd = Math.sqrt(Math.max(0, (rmsV / fundamental) ** 2 - 1)); // rounding can leave it just under 0
   return {
     rms_V: rmsV,
     rms_V_rel_err: relative(rmsBound(bounds), rmsV),
@@ -140,7 +142,9 @@ function describeVoltage(series: Series, bounds: readonly number[]): VoltageResu
     fundamental_rms_V_rel_err: relative(rmsBound(bounds.slice(0, 1)), fundamental),
     order: series.order,
     harmonic_rms_V: harmonicRms,
-    thd: Math.sqrt(Math.max(0, (rmsV / fundamental) ** 2 - 1)), // rounding can leave it just under 0
+    harmonic_rms_V_rel_err: harmonicRms.map((value, i) => relative(bounds[i] / Math.SQRT2, value)),
+    thd,
+    thd_rel_err: relative(rmsBound(bounds.slice(1)) / fundamental, thd),
   };
 }
 

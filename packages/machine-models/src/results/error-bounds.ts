@@ -1,7 +1,7 @@
 /**
  * How the mesh's error reaches the figures, to first order and as bounds.
  *
- * A slice bounds the error of each of its first harmonics of By, `windingBErr`. All figures of voltage and flux density
+ * A slice bounds the error of each harmonic of By it keeps, `windingBErr`. All figures of voltage and flux density
  * are linear in these harmonics up to a last step (rms, peak, mean of the highest less the lowest):
  *
  * - a harmonic of a leg, an EMF or `effective_B` is a sum over slices; the bounds add up with the sizes of the weights;
@@ -10,7 +10,7 @@
  * - a square (merit, line_B_squared_thickness) is off by twice the relative error of what is squared;
  * - pull and energy are sums of the slices' own figures; their bounds add up in the same way.
  *
- * Harmonics past those the mesh was steered by, and the model itself, are not in these bounds.
+ * Harmonics past those a slice keeps (each under a fiftieth of the wanted error) and the model itself are not in them.
  */
 import type { SliceAnswer } from '../slices/slice-answer.js';
 

@@ -1,10 +1,10 @@
 import type { Machine } from '../machine.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
+import { amplitudeOf, amplitudes, evaluate, peak, type Series } from '../waves/series.js';
 import { legSpreadFactor } from '../winding/factors.js';
 import { legCut } from '../winding/leg-cut.js';
 import { harmonicBound, peakBound, relative } from './error-bounds.js';
 import type { MachineResult, SliceResult } from './result.js';
-import { amplitudeOf, amplitudes, evaluate, peak, type Series } from './series.js';
 
 /**
  * Flux density averaged over a leg, against the electrical angle of the leg's centre from a magnet's axis, with a bound

@@ -1,4 +1,4 @@
-import { antiderivative, evaluate, type Series } from './series.js';
+import { antiderivative, evaluate, type Series } from '../waves/series.js';
 
 /**
  * Highest less lowest terminal of a three-phase winding, which is the largest of its line voltages, whichever way round.

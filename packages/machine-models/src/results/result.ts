@@ -65,8 +65,11 @@ export interface VoltageResult {
   readonly fundamental_rms_V_rel_err: number;
   readonly order: readonly number[];
   readonly harmonic_rms_V: readonly number[];
+  /** Above 1 where the mesh's error may be more than the harmonic itself; null in JSON where the harmonic is 0. */
+  readonly harmonic_rms_V_rel_err: readonly number[];
   /** sqrt(rms^2 / fundamental^2 - 1). */
   readonly thd: number;
+  readonly thd_rel_err: number;
 }
 
 export interface EmfResult {
@@ -78,6 +81,7 @@ export interface EmfResult {
   readonly rectified_mean_V: number;
   readonly rectified_mean_V_rel_err: number;
   readonly line_rms_V_per_rpm: number;
+  readonly line_rms_V_per_rpm_rel_err: number;
   readonly waveform: {
     readonly electrical_deg: readonly number[];
     readonly phase_V: readonly number[];

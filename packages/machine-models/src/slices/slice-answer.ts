@@ -1,8 +1,4 @@
-/** Signed cosine coefficients about a magnet's axis: f(x) = sum amplitude[i] cos(order[i] pi x / polePitch). */
-export interface Harmonics {
-  readonly order: readonly number[];
-  readonly amplitude: readonly number[];
-}
+import type { Harmonics } from '../waves/series.js';
 
 /**
  * What one solved slice tells the models. All per metre of depth and for one pole where it says so.
@@ -20,7 +16,7 @@ export interface SliceAnswer {
   readonly midB: Harmonics;
   /** By averaged over the winding thickness, T; odd orders 1 ... as far as the average over a leg needs. */
   readonly windingB: Harmonics;
-  /** Estimated bound of the mesh's error in each `windingB` amplitude that steers the mesh, T, for orders 1, 3, 5, ... */
+  /** Estimated bound of the mesh's error in each `windingB` amplitude, T. */
   readonly windingBErr: readonly number[];
   /** Pull of one disc towards the other, N per metre of depth and pole; positive attracts. */
   readonly pull: number;

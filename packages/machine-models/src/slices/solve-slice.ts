@@ -10,21 +10,20 @@ import {
   stressThrough,
   triangleCount,
   valueAt,
-  weightedIntegral,
 } from '@gapwright/fem-core';
 import type { Machine } from '../machine.js';
+import { peak } from '../waves/series.js';
 import { legSpreadFactor } from '../winding/factors.js';
 import { legCut } from '../winding/leg-cut.js';
-import { midPlaneHarmonics, oddOrders, windingHarmonics } from './gap-harmonics.js';
+import { midPlaneShare, oddOrders, ordersThatMatter, windingFunctional } from './gap-harmonics.js';
 import type { Cuts, PoleSection } from './pole-section.js';
 import { buildPoleSection } from './pole-section.js';
 import type { SliceAnswer } from './slice-answer.js';
 
-/** Orders kept of the field in the winding: beyond them a leg's average holds less than 1e-5 of the fundamental. */
-const WINDING_ORDERS = oddOrders(25);
+/** Orders told of the field on the mid-plane. */
 const MID_ORDERS = oddOrders(6);
-/** Orders whose errors steer the mesh. */
-const STEERING_ORDERS = oddOrders(3);
+/** An order that may bring less than this share of the wanted error is left out. */
+const NEGLIGIBLE = 0.02;
 
 export interface SliceOptions {
   /** Wanted relative error of the leg flux density; the machine's own where absent. */
@@ -50,35 +49,31 @@ export function solveSlice(
   options: SliceOptions = {},
 ): SolvedSlice {
   const pole = buildPoleSection(machine, slice.radius, options.cuts);
+  const accuracy = options.accuracy ?? machine.model.accuracy;
+  const { width } = legCut(machine.winding, machine.rotor.poles, machine.rotor.magnets.meanRadius, slice.radius);
+  const orders = ordersThatMatter(machine, pole, width, NEGLIGIBLE * accuracy);
+  const spread = orders.map((order) => legSpreadFactor(width, pole.polePitch, order));
   const solution = solveAdaptively(pole.section, pole.setup, {
-    goals: [...STEERING_ORDERS.map((order) => harmonicGoal(pole, order)), pullGoal(pole)],
-    weights: ([first]) => {
-      const leg = legCut(machine.winding, machine.rotor.poles, machine.rotor.magnets.meanRadius, slice.radius);
-      const factor = (order: number): number => Math.abs(legSpreadFactor(leg.width, pole.polePitch, order));
-      const scale = Math.abs(first) * factor(1);
-      return [...STEERING_ORDERS.map((order) => factor(order) / scale), 0];
+    goals: [...orders.map((order) => harmonicGoal(pole, order)), pullGoal(pole)],
+    // The error of a leg's wave at any angle, over the wave's peak: the leg_B_rel_err of the results.
+    weights: (values) => {
+      const leg = { order: orders, cos: spread.map((f, i) => f * values[i]), sin: orders.map(() => 0) };
+      const scale = peak(leg);
+      return [...spread.map((f) => Math.abs(f) / scale), 0];
     },
-    accuracy: options.accuracy ?? machine.model.accuracy,
+    accuracy,
     ...(options.onMesh === undefined ? {} : { onMesh: options.onMesh }),
   });
   return {
-    answer: describeSlice(slice, pole, solution),
+    answer: describeSlice(slice, pole, orders, solution),
     field: solution.field,
     recovered: solution.estimate.recovered,
     pole,
   };
 }
 
-/** Amplitude of an odd order of By averaged over the winding: -(2 k/(polePitch t)) integral of A sin(k x) over a whole pole. */
 function harmonicGoal(pole: PoleSection, order: number): Goal {
-  const k = (order * Math.PI) / pole.polePitch;
-  const height = pole.windingTo - pole.windingFrom;
-  const share = pole.cuts.magnetAxis ? 2 : 1; // the half pole stands for both; the mean over the thickness needs no factor
-  const factor = (-2 * k * share) / (pole.polePitch * height);
-  return {
-    name: `winding By order ${order}`,
-    functional: (field) => weightedIntegral(field.mesh, ['winding'], (x) => factor * Math.sin(k * x)),
-  };
+  return { name: `winding By order ${order}`, functional: ({ mesh }) => windingFunctional(mesh, pole, order) };
 }
 
 /** Pull on the upper disc with its magnets, towards the lower, by the stress averaged through the winding's space. */
@@ -95,21 +90,23 @@ function pullGoal(pole: PoleSection): Goal {
 function describeSlice(
   slice: { readonly radius: number; readonly weight: number },
   pole: PoleSection,
+  orders: readonly number[],
   solution: AdaptiveSolution,
 ): SliceAnswer {
   const { field, values, bounds, estimate } = solution;
   const locator = buildLocator(field.mesh);
-  const pull = values[STEERING_ORDERS.length];
+  const pull = values[orders.length];
+  const mid = MID_ORDERS.map((order, i) => values[i] * midPlaneShare(pole, order));
   const { energy } = energiesOf(field);
   return {
     radius: slice.radius,
     weight: slice.weight,
     polePitch: pole.polePitch,
-    midB: midPlaneHarmonics(field, locator, pole, MID_ORDERS),
-    windingB: windingHarmonics(field, locator, pole, WINDING_ORDERS),
-    windingBErr: bounds.slice(0, STEERING_ORDERS.length),
+    midB: { order: MID_ORDERS, amplitude: mid },
+    windingB: { order: orders, amplitude: values.slice(0, orders.length) },
+    windingBErr: bounds.slice(0, orders.length),
     pull,
-    pullRelErr: pull === 0 ? 0 : bounds[STEERING_ORDERS.length] / Math.abs(pull),
+    pullRelErr: pull === 0 ? 0 : bounds[orders.length] / Math.abs(pull),
     energy: pole.copies * energy,
     energyRelErr: estimate.energy / energy,
     discB: discFluxDensity(field, locator, pole),

@@ -8,7 +8,7 @@ import {
   peak,
   rms,
   type Series,
-} from '../../../packages/machine-models/src/results/series.js';
+} from '../../../packages/machine-models/src/waves/series.js';
 
 const part = fc.double({ min: -10, max: 10, noNaN: true });
 const anySeries = fc.array(fc.tuple(part, part), { minLength: 1, maxLength: 30 }).map(

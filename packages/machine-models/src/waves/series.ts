@@ -1,4 +1,8 @@
-import type { Harmonics } from '../slices/slice-answer.js';
+/** Signed cosine coefficients about a magnet's axis: f(x) = sum amplitude[i] cos(order[i] pi x / polePitch). */
+export interface Harmonics {
+  readonly order: readonly number[];
+  readonly amplitude: readonly number[];
+}
 
 /**
  * A periodic function of odd harmonics:
