@@ -19,7 +19,7 @@ export function addCommonOptions(command: Command): Command {
         .default([], 'none'),
     )
     .option('--json', 'print the result alone, as JSON')
-    .option('--workers <N>', 'threads to use at most', wholeNumber, 1)
+    .option('--workers <N>', 'threads to use at most; this version solves on one', wholeNumber, 1)
     .option('--quiet', 'print no progress, warnings or times')
     .option('--no-colour', 'print without colours (as the environment variable NO_COLOR does)');
 }

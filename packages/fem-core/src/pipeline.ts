@@ -14,6 +14,7 @@ import type { Section } from './geometry/section.js';
 import type { Mesh } from './mesh/mesh.js';
 import { nodeCount, nodePoint, triangleCount } from './mesh/mesh.js';
 import { meshSection, refineMesh } from './mesh/mesh-section.js';
+import { DEFAULT_LIMITS } from './mesh/refine.js';
 import type { NewtonOptions } from './solve/newton.js';
 import { solveNewton } from './solve/newton.js';
 import type { Factor } from './sparse/cholesky.js';
@@ -87,7 +88,8 @@ export interface AdaptiveSolution {
  */
 export function solveAdaptively(section: Section, setup: Setup, options: AdaptiveOptions): AdaptiveSolution {
   const { maxMeshes = 12, maxTriangles = 200_000 } = options;
-  let mesh = meshSection(section);
+  const limits = { ...DEFAULT_LIMITS, maxTriangles: RUNAWAY * maxTriangles };
+  let mesh = meshSection(section, limits);
   let newtonSteps = 0;
   let before: Field | undefined;
   for (let meshes = 1; ; meshes++) {
@@ -125,7 +127,7 @@ export function solveAdaptively(section: Section, setup: Setup, options: Adaptiv
       for (let t = 0; t < shares.length; t++) shares[t] += weighed(weights[k], share[t]);
     });
     const most = Math.min(maxTriangles, GROWTH * triangleCount(mesh));
-    mesh = refineMesh(mesh, wantedSizes(mesh, shares, AIM * options.accuracy, most));
+    mesh = refineMesh(mesh, wantedSizes(mesh, shares, AIM * options.accuracy, most), limits);
     before = field;
   }
 }
@@ -135,6 +137,9 @@ const weighed = (weight: number, error: number): number => (error === 0 ? 0 : we
 
 /** Share of the wanted error the next mesh aims at: near singular corners errors fall slower than `wantedSizes` supposes. */
 const AIM = 0.6;
+
+/** A mesh this many times over the limit is not the outcome of refinement but of a drawing with details far too fine. */
+const RUNAWAY = 2;
 
 /** A mesh grows this many times at most: what a coarse mesh says of its errors is not to be followed much further. */
 const GROWTH = 8;

@@ -12,7 +12,7 @@ describe('magnets', () => {
     // 2 pi 100.5 mm / 16 = 39.47 mm
     expect(faultsOf(() => readHut('rotor.magnets.width=45 mm'))).toEqual([
       '--set rotor.magnets.width:1:1: rotor.magnets.width: neighbouring magnets overlap: 45 mm wide, but at their inner radius ' +
-        'of 100.5 mm there are only 39.47 mm from pole to pole; give at most 39.46 mm, or a mean_radius of at least 142.1 mm',
+        'of 100.5 mm there are only 39.47 mm from pole to pole; give at most 39.4 mm, or a mean_radius of at least 142.3 mm',
     ]);
   });
 
@@ -30,7 +30,7 @@ describe('magnets', () => {
         const [fault] = faultsOf(() => readHut('rotor.magnets.width=200 mm', ...around));
         const [, width, radius] = /at most ([\d.]+) mm, or a mean_radius of at least ([\d.]+) mm/.exec(fault) ?? [];
         expect(() => readHut(`rotor.magnets.width=${width} mm`, ...around)).not.toThrow();
-        expect(() => readHut(`rotor.magnets.width=${Number(width) * 1.001} mm`, ...around)).toThrow(/overlap/);
+        expect(() => readHut(`rotor.magnets.width=${Number(width) * 1.004} mm`, ...around)).toThrow(/overlap|too thin/);
         expect(
           faultsOf(() =>
             readHut('rotor.magnets.width=200 mm', ...around, `rotor.magnets.mean_radius=${radius} mm`),
@@ -119,4 +119,28 @@ describe('operation', () => {
     expect(warningsOf('operation.overspeed=300 rpm')).toContain('300 rpm is less than the speed of 420 rpm');
     expect(warningsOf('operation.cold=30 degC')).toContain('30 degC is warmer than the ambient 15 degC');
   });
+});
+
+describe('layers and slots too thin to be meshed', () => {
+  test.each([
+    ['rotor.disc.thickness=0.001 mm', 'rotor.disc.thickness: a disc of 0.001 mm'],
+    ['rotor.magnets.thickness=0.02 mm', 'rotor.magnets.thickness: a magnet of 0.02 mm'],
+    ['winding.thickness=0.01 mm', 'winding.thickness: a winding of 0.01 mm'],
+    ['rotor.magnets.width=39.465 mm', 'rotor.magnets.width: the slot between magnets of'],
+  ])('%s', (setting, told) => {
+    const fault = faultsOf(() => readHut(setting, 'winding.turns=1', 'winding.wire={diameter: 0.05 mm}')).join('\n');
+    expect(fault).toContain(told);
+    expect(fault).toContain('a thousandth of the pole pitch');
+  });
+
+  test('air of a hair between winding and magnets is refused, none at all is not', () => {
+    expect(faultsOf(() => readHut('winding.clearance=0 mm', 'winding.thickness=18.9 mm')).join()).toMatch(
+      /air between/,
+    );
+    expect(() => readHut('winding.clearance=0 mm', 'winding.thickness=19 mm')).not.toThrow();
+  });
+});
+
+test('magnets too hot to keep any coercivity are refused', () => {
+  expect(faultsOf(() => readHut('rotor.magnets.temperature=200 degC')).join()).toMatch(/leaves no coercivity/);
 });

@@ -25,7 +25,10 @@ export interface ErrorEstimate {
    * one) none do, and the sum tends to the error itself, from below as often as from above.
    */
   readonly bounds: readonly number[];
-  /** Energy norm of the error squared, halved, J/m: estimate of the error of the stored energy. */
+  /**
+   * Energy norm of the error squared, halved, J/m: estimate of the error of the energy functional, which is that of the
+   * stored energy where there are no currents, or where all materials are linear.
+   */
   readonly energy: number;
   /** The gradient of A as recovered, better than the elements' own. */
   readonly recovered: RecoveredGradient;

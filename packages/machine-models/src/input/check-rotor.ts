@@ -1,4 +1,5 @@
 import type { LibraryMaterial } from '../machine.js';
+import { THINNEST } from './check-layers.js';
 import { findMaterial, hasUsualSlope } from './check-materials.js';
 import { atLeastMillimetres, atMostMillimetres, figure, HAIR, millimetres } from './format-figure.js';
 import type { Report } from './report.js';
@@ -57,6 +58,16 @@ function checkMagnetMaterial(
       'give the temperature the magnets work at',
     );
   }
+  const { coercivityIntrinsic, coercivitySlope } = material;
+  if (
+    coercivityIntrinsic !== undefined &&
+    coercivitySlope !== undefined &&
+    1 + coercivitySlope * (temperature - 20) <= 0
+  ) {
+    const wrong = `at ${figure(temperature)} degC the slope of ${figure(coercivitySlope * 100)} %/K leaves no coercivity: the magnets are lost`;
+    const remedy = 'give the temperature the magnets work at, or a grade for it';
+    report.fault(['rotor', 'magnets', 'temperature'], 'no-coercivity', wrong, remedy);
+  }
   if (temperature !== 20 && hasUsualSlope(file, name)) {
     report.warn(['materials', name, 'remanence_slope'], 'not given; -0.12 %/K, as usual for NdFeB, is taken');
   }
@@ -83,8 +94,11 @@ function checkMagnets(rotor: RotorFile, magnets: SolvedMagnets, report: Report):
     const wrong =
       `neighbouring magnets overlap: ${millimetres(magnets.width)} wide, but at their inner radius of ${millimetres(inner)} ` +
       `there are only ${millimetres(pitch)} from pole to pole`;
-    const meanRadius = (magnets.width * poles) / (2 * Math.PI) + magnets.length / 2;
-    const remedy = `give at most ${atMostMillimetres(pitch)}, or a mean_radius of at least ${atLeastMillimetres(meanRadius)}`;
+    // With the slot between them that `checkLayers` asks for, a share of the outer pole pitch.
+    const half = magnets.length / 2;
+    const slot = (THINNEST * 2 * Math.PI * (magnets.mean_radius + half)) / poles;
+    const meanRadius = ((magnets.width * poles) / (2 * Math.PI) + half * (1 + THINNEST)) / (1 - THINNEST);
+    const remedy = `give at most ${atMostMillimetres(pitch - slot)}, or a mean_radius of at least ${atLeastMillimetres(meanRadius)}`;
     report.fault(['rotor', 'magnets', 'width'], 'magnets-overlap', wrong, remedy);
   }
 }

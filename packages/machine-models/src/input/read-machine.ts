@@ -1,6 +1,7 @@
 import { applySettings, InputError, plainValue, readDocument, type Setting } from '@gapwright/fem-core';
 import type { Machine, Warning } from '../machine.js';
 import { buildMachine } from './build-machine.js';
+import { checkLayers } from './check-layers.js';
 import { gatherMaterials, type ReadBeside } from './check-materials.js';
 import { checkOperation } from './check-operation.js';
 import { checkRotor, magnetRadii } from './check-rotor.js';
@@ -75,6 +76,7 @@ function judge(file: MachineFile, options: ReadOptions, report: OpenReport): Mac
   const around = { poles: rotor.poles, gap: rotor.gap, ...radii };
   const winding = resolveWinding(file.winding, around);
   checkWinding(file.winding, winding, around, report);
+  checkLayers(rotor, rotor.magnets, winding, report);
   const slices = chooseSlices(model.radii, radii, report);
   if (report.faults().length > 0) return undefined;
   return buildMachine(file, rotor.magnets, { materials, winding, slices });

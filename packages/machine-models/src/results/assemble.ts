@@ -88,7 +88,10 @@ function sliceWarnings(machine: Machine, slice: SliceAnswer, index: number): rea
   const where = `the slice at ${(slice.radius * 1000).toFixed(1)} mm`;
   if (!slice.converged) {
     return [
-      { key, text: `${where} did not converge in ${slice.newtonSteps} Newton steps; its figures are not to be used` },
+      {
+        key,
+        text: `${where} did not converge in ${slice.newtonSteps} Newton steps${slice.failure === undefined ? '' : ` (${slice.failure})`}; its figures are not to be used`,
+      },
     ];
   }
   if (slice.accurate) return [];

@@ -35,6 +35,8 @@ export interface SliceAnswer {
   /** Meshes solved until the wanted accuracy was met. */
   readonly meshes: number;
   readonly converged: boolean;
+  /** Why Newton's method stopped short; undefined where it converged. */
+  readonly failure?: string;
   /** Residual of the final solve over that at A = 0, before the first Newton step and after each. */
   readonly residuals: readonly number[];
   /** The wanted accuracy was reached. */

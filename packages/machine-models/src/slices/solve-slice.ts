@@ -120,6 +120,7 @@ function describeSlice(
     newtonStepsTotal: solution.newtonSteps,
     meshes: solution.meshes,
     converged: field.report.converged,
+    ...(field.report.failure === undefined ? {} : { failure: field.report.failure }),
     residuals: field.report.residuals,
     accurate: solution.accurate,
   };
