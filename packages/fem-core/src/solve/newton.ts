@@ -44,6 +44,8 @@ export interface Solution {
 
 /** Rounding errors of a residual, in units of 2^-52 |K| |u|: its sums are some ten terms long. */
 const ROUNDING = 4 * Number.EPSILON;
+/** Residuals above this are not of rounding. */
+const NEAR_ROUNDING = 1e-5;
 
 /**
  * Newton's method with the exact tangent on the convex energy functional, and a line search on its slope along the step:
@@ -95,10 +97,9 @@ export function solveNewton(system: System, options: NewtonOptions = {}): Soluti
     const size = scale === 0 ? 0 : norm(residual) / scale;
     residuals.push(size);
     if (Number.isNaN(size)) return finish('the residual is not a number');
-    // What rounding leaves cannot be reduced further, whatever was asked.
-    const goal =
-      scale === 0 ? 0 : Math.max(tolerance, (ROUNDING * absoluteProduct(system.pattern, tangent, u)) / scale);
-    const reached = size <= goal;
+    // What rounding leaves cannot be reduced further, whatever was asked; it is asked for only where it might decide.
+    const floor = (): number => (ROUNDING * absoluteProduct(system.pattern, tangent, u)) / scale;
+    const reached = size <= tolerance || (size < NEAR_ROUNDING && size <= floor());
     if (reached && last !== undefined) return finish();
     if (stepLengths.length >= maxSteps) return finish(`not converged in ${maxSteps} steps`);
     const factored = factor(analysis, tangent, blocks);
