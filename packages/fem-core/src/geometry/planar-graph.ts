@@ -44,14 +44,13 @@ interface Piece {
  */
 export function buildPlanarGraph(section: Section): PlanarGraph {
   checkShapes(section);
+  const snap = snapOf(section);
   const curves: Curve[] = [];
   const sideNames = sidesOf(section.outline);
-  const pieces = piecesOf(section.outline, curves, true);
+  const pieces = piecesOf(section.outline, curves, snap, true);
   const outlineCount = pieces.length;
-  for (const region of section.regions) pieces.push(...piecesOf(region.shape, curves, false));
+  for (const region of section.regions) pieces.push(...piecesOf(region.shape, curves, snap, false));
 
-  const box = boundsOf(section.outline);
-  const snap = SNAP * Math.max(box.x1 - box.x0, box.y1 - box.y0);
   const store = pointStore(snap);
   const cuts = cutPieces(pieces, curves, snap, store);
   mirrorMatchedCuts(section, pieces, outlineCount, sideNames, cuts, store);
@@ -81,6 +80,20 @@ export function buildPlanarGraph(section: Section): PlanarGraph {
     sideNames,
   };
   return { ...graph, segmentToMatch: matchSegments(section, graph, store) };
+}
+
+/** Distance in metres within which points of the section are one. */
+export function snapOf(section: Section): number {
+  const box = boundsOf(section.outline);
+  return SNAP * Math.max(box.x1 - box.x0, box.y1 - box.y0);
+}
+
+type Circle = Extract<Shape, { kind: 'circle' }>;
+
+/** Circles drawn twice but for rounding; they are cut alike. */
+export function sameCircle(p: Pick<Circle, 'centre' | 'radius'>, q: typeof p, snap: number): boolean {
+  const apart = Math.hypot(p.centre[0] - q.centre[0], p.centre[1] - q.centre[1]);
+  return apart + Math.abs(p.radius - q.radius) <= 4 * snap;
 }
 
 /** Names of the sides of an outline, in order. */
@@ -140,13 +153,16 @@ function cornersOf(shape: Exclude<Shape, { kind: 'circle' }>): readonly Point[] 
   ];
 }
 
-function piecesOf(shape: Shape, curves: Curve[], outline: boolean): Piece[] {
+const isArc = (curve: Curve): curve is Extract<Curve, { kind: 'arc' }> => curve.kind === 'arc';
+
+function piecesOf(shape: Shape, curves: Curve[], snap: number, outline: boolean): Piece[] {
   const curve = curves.length;
   if (shape.kind === 'circle') {
-    curves.push({ kind: 'arc', centre: shape.centre, radius: shape.radius });
+    const { centre, radius } = curves.filter(isArc).find((arc) => sameCircle(arc, shape, snap)) ?? shape;
+    curves.push({ kind: 'arc', centre, radius });
     const at = (i: number): Point => {
       const angle = (2 * Math.PI * (i % CHORDS)) / CHORDS;
-      return [shape.centre[0] + shape.radius * Math.cos(angle), shape.centre[1] + shape.radius * Math.sin(angle)];
+      return [centre[0] + radius * Math.cos(angle), centre[1] + radius * Math.sin(angle)];
     };
     return Array.from({ length: CHORDS }, (_, i) => ({ from: at(i), to: at(i + 1), curve, side: outline ? 0 : -1 }));
   }
@@ -300,7 +316,7 @@ function partArcsFromChords(
       const key = pairKey(a, b);
       const known = curveOf.get(key);
       if (known === undefined) curveOf.set(key, pieces[i].curve);
-      else if (known !== pieces[i].curve) shared.add(key);
+      else if (!isSameCurve(curves[known], curves[pieces[i].curve])) shared.add(key);
     }
   });
   chains.forEach((chain, i) => {
@@ -314,6 +330,9 @@ function partArcsFromChords(
     }
   });
 }
+
+const isSameCurve = (p: Curve, q: Curve): boolean =>
+  p === q || (p.kind === 'arc' && q.kind === 'arc' && p.centre === q.centre && p.radius === q.radius);
 
 const pairKey = (a: number, b: number): string => (a < b ? `${a},${b}` : `${b},${a}`);
 

@@ -54,7 +54,7 @@ export function checkMesh(mesh: Mesh): void {
     for (let k = 0; k < 3; k++) {
       const e = triangleToEdge[3 * t + k];
       const ends = [triangles[3 * t + ((k + 1) % 3)], triangles[3 * t + ((k + 2) % 3)]];
-      if (!ends.includes(edges[2 * e]) || !ends.includes(edges[2 * e + 1]))
+      if (edges[2 * e] === edges[2 * e + 1] || !ends.includes(edges[2 * e]) || !ends.includes(edges[2 * e + 1]))
         broken(`edge ${e} does not join corners of triangle ${t}`);
       seen[e]++;
       const u = neighbours[3 * t + k];

@@ -1,10 +1,10 @@
 import Delaunator from 'delaunator';
 import { InputError } from '../base/fault.js';
 import type { Chord, Curve } from '../geometry/curve.js';
-import { chordCrossings, pointOnCurve } from '../geometry/curve.js';
+import { pointOnCurve } from '../geometry/curve.js';
 import type { PlanarGraph } from '../geometry/planar-graph.js';
-import { boundsOf, contains } from '../geometry/planar-graph.js';
-import type { Point, Section, Shape } from '../geometry/section.js';
+import { boundsOf, contains, sameCircle, snapOf } from '../geometry/planar-graph.js';
+import type { Section, Shape } from '../geometry/section.js';
 import type { Triangulation } from './triangulation.js';
 import {
   addVertex,
@@ -30,26 +30,27 @@ const OUTSIDE = -1;
  * Lines that turn out to part nothing (covered by a later region) are dropped.
  */
 export function triangulateGraph(section: Section, given: PlanarGraph): Triangulation {
-  let graph = clearLenses(given);
-  for (;;) {
-    const tri = delaunayOf(graph);
-    const boxed = tri.vertexCount - 4;
-    recoverSegments(tri, graph);
-    lawson(tri);
-    nameRegions(tri, section, graph);
-    const useless = uselessSegments(tri);
-    if (useless.size === 0) {
-      removeOutside(tri, boxed);
-      return tri;
-    }
-    graph = withoutSegments(graph, useless);
+  const graph = clearLenses(given);
+  let tri = constrained(graph);
+  nameRegions(tri, (part) => regionAt(section, graph, ...middle(tri, largestOf(tri, part))));
+  const beside = regionsBeside(tri);
+  const useful = Array.from(graph.segmentToCurve.keys()).filter((s) => beside[2 * s] !== beside[2 * s + 1]);
+  if (useful.length < graph.segmentToCurve.length) {
+    tri = constrained(onlySegments(graph, useful));
+    nameRegions(tri, (part) => regionBy(tri, part, (s) => 2 * useful[s], beside));
   }
+  removeOutside(tri);
+  return tri;
 }
 
-/**
- * Halves chords until nothing reaches in between a chord and its arc, where it would change sides at a later cut: no
- * point, no other arc, and no point an other arc will be cut at.
- */
+function constrained(graph: PlanarGraph): Triangulation {
+  const tri = delaunayOf(graph);
+  recoverSegments(tri, graph);
+  lawson(tri);
+  return tri;
+}
+
+/** Halves chords until no point lies between a chord and its arc, where it would change sides at a later cut. */
 function clearLenses(graph: PlanarGraph): PlanarGraph {
   const { curves } = graph;
   if (curves.every((curve) => curve.kind === 'line')) return graph;
@@ -61,18 +62,21 @@ function clearLenses(graph: PlanarGraph): PlanarGraph {
   };
   const segmentToSide = Array.from(graph.segmentToSide);
   const segmentToMatch = Array.from(graph.segmentToMatch);
+  const given = segmentToSide.length;
   for (let s = 0; s < cut.segmentToCurve.length; s++) {
     const curve = curves[cut.segmentToCurve[s]];
     if (curve.kind !== 'arc') continue;
     for (let halvings = 0; halvings < 20 && isLensTaken(cut, s, curve); halvings++) {
       const b = cut.segments[2 * s + 1];
       const m = cut.points.length / 2;
-      cut.points.push(...arcMiddle(cut, s, curve));
+      const { from, to } = chordOf(cut, s);
+      cut.points.push(...pointOnCurve(curve, ...from, ...to, 0.5));
       cut.segments[2 * s + 1] = m;
       cut.segments.push(m, b);
       cut.segmentToCurve.push(cut.segmentToCurve[s]);
       segmentToSide.push(segmentToSide[s]);
       segmentToMatch.push(-1);
+      if (cut.segmentToCurve.length > given + MAX_HALVINGS) throw tooNear();
     }
   }
   return {
@@ -84,6 +88,20 @@ function clearLenses(graph: PlanarGraph): PlanarGraph {
     sideNames: graph.sideNames,
     segmentToMatch: Int32Array.from(segmentToMatch),
   };
+}
+
+/** Arcs that need more cuts than this to be told apart are nearer than any mesh of sensible size can fill. */
+const MAX_HALVINGS = 10_000;
+
+function tooNear(): InputError {
+  return new InputError([
+    {
+      code: 'lines-too-near',
+      key: 'regions',
+      wrong: 'two drawn lines run so close together that the space between them cannot be meshed',
+      remedy: 'move them apart, or let them share their corners',
+    },
+  ]);
 }
 
 type Arc = Extract<Curve, { kind: 'arc' }>;
@@ -101,41 +119,20 @@ function chordOf(graph: Pick<PlanarGraph, 'points' | 'segments'> | Cuttable, s: 
   return { from: [graph.points[a], graph.points[a + 1]], to: [graph.points[b], graph.points[b + 1]] };
 }
 
-function arcMiddle(graph: Cuttable, s: number, arc: Arc): Point {
-  const { from, to } = chordOf(graph, s);
-  return pointOnCurve(arc, ...from, ...to, 0.5);
-}
-
-/** Something drawn reaches in between the chord of segment s and its arc. */
+/** A point lies between the chord of segment s and its arc. */
 function isLensTaken(graph: Cuttable, s: number, arc: Arc): boolean {
-  const { points, segments, segmentToCurve, curves } = graph;
+  const { points, segments } = graph;
   const [a, b] = [segments[2 * s], segments[2 * s + 1]];
   const chord = chordOf(graph, s);
-  const [mx, my] = [0.5 * (chord.from[0] + chord.to[0]), 0.5 * (chord.from[1] + chord.to[1])];
-  const reach = Math.hypot(chord.from[0] - mx, chord.from[1] - my); // the lens stays within the circle over its chord
   for (let p = 0; p < points.length / 2; p++) {
-    if (Math.abs(points[2 * p] - mx) > reach || Math.abs(points[2 * p + 1] - my) > reach) continue;
     if (p !== a && p !== b && lensHolds(chord, arc, points[2 * p], points[2 * p + 1])) return true;
-  }
-  for (let q = 0; q < segmentToCurve.length; q++) {
-    const other = curves[segmentToCurve[q]];
-    if (other.kind !== 'arc' || other === arc) continue;
-    const c = segments[2 * q];
-    const d = segments[2 * q + 1];
-    const otherReach = Math.abs(points[2 * d] - points[2 * c]) + Math.abs(points[2 * d + 1] - points[2 * c + 1]);
-    if (Math.abs(points[2 * c] - mx) > reach + 2 * otherReach) continue;
-    if (Math.abs(points[2 * c + 1] - my) > reach + 2 * otherReach) continue;
-    if (lensHolds(chord, arc, ...arcMiddle(graph, q, other))) return true;
-    const joined = c === a || c === b || d === a || d === b;
-    if (!joined && chordCrossings(chord, LINE, chordOf(graph, q), other, 0).length > 0) return true;
   }
   return false;
 }
 
-const LINE: Curve = { kind: 'line' };
-
-/** The point lies between the chord and its arc. */
+/** The point lies between the chord and its arc, and so within the circle that has the chord as diameter. */
 function lensHolds({ from, to }: Chord, arc: Arc, x: number, y: number): boolean {
+  if ((from[0] - x) * (to[0] - x) + (from[1] - y) * (to[1] - y) > 0) return false;
   const beyond = (px: number, py: number): number =>
     (to[0] - from[0]) * (py - from[1]) - (to[1] - from[1]) * (px - from[0]);
   if (beyond(x, y) * beyond(arc.centre[0], arc.centre[1]) > 0) return false;
@@ -201,7 +198,7 @@ function recoverSegments(tri: Triangulation, graph: PlanarGraph): void {
     segments.half.push(-1);
     recover(tri, out, a, b);
     const h = halfBetween(tri, out, a, b);
-    if (h < 0) throw new Error('recoverSegments: an edge that was just made is missing');
+    if (h < 0) throw tooNear();
     tri.segment[h] = s;
     tri.segment[tri.twin[h]] = s;
     segments.half[s] = h;
@@ -216,6 +213,7 @@ function recover(tri: Triangulation, out: Int32Array, a: number, b: number): voi
   for (let at = 0; at < crossing.length; at++) {
     const [u, v] = crossing[at];
     const h = halfBetween(tri, out, u, v);
+    if (h < 0 || tri.segment[h] >= 0) throw tooNear(); // drawn lines that cross, but for the snapping distance
     const c = tri.origin[previousHalf(h)];
     const d = tri.origin[previousHalf(tri.twin[h])];
     const { xy } = tri;
@@ -225,14 +223,7 @@ function recover(tri: Triangulation, out: Int32Array, a: number, b: number): voi
       turn(tri, c, d, xy[2 * v], xy[2 * v + 1]) !== 0;
     if (!convex) {
       if (++idle > crossing.length + 10) {
-        throw new InputError([
-          {
-            code: 'lines-too-near',
-            key: 'regions',
-            wrong: 'two drawn lines run so close together that the space between them cannot be meshed',
-            remedy: 'move them apart, or let them share their corners',
-          },
-        ]);
+        throw tooNear();
       }
       crossing.push([u, v]);
       continue;
@@ -266,7 +257,7 @@ function crossedEdges(tri: Triangulation, out: Int32Array, a: number, b: number)
       break;
     }
     const round = tri.twin[previousHalf(h)];
-    if (round < 0 || round === out[a]) throw new Error('crossedEdges: no edge faces the segment');
+    if (round < 0 || round === out[a]) throw tooNear();
     h = round;
   }
   for (;;) {
@@ -316,50 +307,76 @@ function lawson(tri: Triangulation): void {
   }
 }
 
-/** Spreads each region's number over the parts bounded by segments; a part is judged at the middle of its largest triangle. */
-function nameRegions(tri: Triangulation, section: Section, graph: PlanarGraph): void {
+/** Gives each part bounded by segments, a list of triangles, the region it is judged to be. */
+function nameRegions(tri: Triangulation, judge: (part: readonly number[]) => number): void {
   const done = new Uint8Array(tri.slotCount);
   for (let seed = 0; seed < tri.slotCount; seed++) {
     if (done[seed] === 1) continue;
     const part = [seed];
     done[seed] = 1;
-    let largest = seed;
     for (let i = 0; i < part.length; i++) {
-      const t = part[i];
-      if (area(tri, t) > area(tri, largest)) largest = t;
-      for (let h = 3 * t; h < 3 * t + 3; h++) {
+      for (let h = 3 * part[i]; h < 3 * part[i] + 3; h++) {
         const g = tri.twin[h];
         if (tri.segment[h] >= 0 || g < 0 || done[triangleOf(g)] === 1) continue;
         done[triangleOf(g)] = 1;
         part.push(triangleOf(g));
       }
     }
-    const region = regionAt(section, graph, ...middle(tri, largest));
+    const region = judge(part);
     for (const t of part) tri.region[t] = region;
   }
 }
 
+function largestOf(tri: Triangulation, part: readonly number[]): number {
+  return part.reduce((largest, t) => (area(tri, t) > area(tri, largest) ? t : largest));
+}
+
+/** Int32Array(2s): regions to the left and to the right of each segment. */
+function regionsBeside(tri: Triangulation): Int32Array {
+  const beside = new Int32Array(2 * tri.segments.half.length);
+  for (let h = 0; h < 3 * tri.slotCount; h++) {
+    const s = tri.segment[h];
+    if (s >= 0) beside[2 * s + (isForward(tri, h) ? 0 : 1)] = tri.region[triangleOf(h)];
+  }
+  return beside;
+}
+
+const isForward = (tri: Triangulation, h: number): boolean => tri.segments.from[tri.segment[h]] === tri.origin[h];
+
+/** Region of a part by any segment that bounds it, whose regions stand in `beside` from place at(segment) on. */
+function regionBy(
+  tri: Triangulation,
+  part: readonly number[],
+  at: (segment: number) => number,
+  beside: Int32Array,
+): number {
+  for (const t of part) {
+    for (let h = 3 * t; h < 3 * t + 3; h++) {
+      if (tri.segment[h] >= 0) return beside[at(tri.segment[h]) + (isForward(tri, h) ? 0 : 1)];
+    }
+  }
+  throw new Error('regionBy: a part without a border');
+}
+
 function regionAt(section: Section, graph: PlanarGraph, x: number, y: number): number {
+  const snap = snapOf(section);
   const box = boundsOf(section.outline);
   const out = x < box.x0 || x > box.x1 || y < box.y0 || y > box.y1;
-  if (out || !drawnRound(section.outline, graph, x, y)) return OUTSIDE;
+  if (out || !drawnRound(section.outline, graph, snap, x, y)) return OUTSIDE;
   for (let i = section.regions.length - 1; i >= 0; i--) {
-    if (drawnRound(section.regions[i].shape, graph, x, y)) return i + 1;
+    if (drawnRound(section.regions[i].shape, graph, snap, x, y)) return i + 1;
   }
   return 0;
 }
 
 /** The point lies in the shape as the segments draw it: what is between a chord and its arc is still outside. */
-function drawnRound(shape: Shape, graph: PlanarGraph, x: number, y: number): boolean {
+function drawnRound(shape: Shape, graph: PlanarGraph, snap: number, x: number, y: number): boolean {
   if (!contains(shape, x, y)) return false;
   if (shape.kind !== 'circle') return true;
-  const { centre, radius } = shape;
   for (let s = 0; s < graph.segmentToCurve.length; s++) {
     const curve = graph.curves[graph.segmentToCurve[s]];
-    if (curve.kind !== 'arc') continue;
-    const off = Math.hypot(curve.centre[0] - centre[0], curve.centre[1] - centre[1]);
-    const same = off + Math.abs(curve.radius - radius) <= 1e-8 * radius; // a circle drawn twice keeps one set of chords
-    if (same && lensHolds(chordOf(graph, s), curve, x, y)) return false;
+    if (curve.kind !== 'arc' || !sameCircle(curve, shape, snap)) continue; // drawn twice, it keeps one set of chords
+    if (lensHolds(chordOf(graph, s), curve, x, y)) return false;
   }
   return true;
 }
@@ -378,17 +395,7 @@ const area = (tri: Triangulation, t: number): number => {
   return turn(tri, tri.origin[3 * t], tri.origin[3 * t + 1], tri.xy[2 * c], tri.xy[2 * c + 1]);
 };
 
-function uselessSegments(tri: Triangulation): Set<number> {
-  const useless = new Set<number>();
-  tri.segments.half.forEach((h, s) => {
-    if (tri.region[triangleOf(h)] === tri.region[triangleOf(tri.twin[h])]) useless.add(s);
-  });
-  return useless;
-}
-
-function withoutSegments(graph: PlanarGraph, useless: ReadonlySet<number>): PlanarGraph {
-  const keep: number[] = [];
-  for (let s = 0; s < graph.segmentToCurve.length; s++) if (!useless.has(s)) keep.push(s);
+function onlySegments(graph: PlanarGraph, keep: readonly number[]): PlanarGraph {
   const pointTo = new Int32Array(graph.points.length / 2).fill(-1);
   const points: number[] = [];
   const renumber = (p: number): number => {
@@ -412,7 +419,7 @@ function withoutSegments(graph: PlanarGraph, useless: ReadonlySet<number>): Plan
 }
 
 /** Removes what lies outside the outline, the box's corners with it (they are the last four points). */
-function removeOutside(tri: Triangulation, pointCount: number): void {
+function removeOutside(tri: Triangulation): void {
   for (let t = 0; t < tri.slotCount; t++) {
     if (tri.region[t] !== OUTSIDE) continue;
     for (let h = 3 * t; h < 3 * t + 3; h++) {
@@ -425,7 +432,7 @@ function removeOutside(tri: Triangulation, pointCount: number): void {
     releaseSlot(tri, t);
   }
   // Points left in no triangle would end the numbering with gaps: `meshOf` drops them.
-  tri.vertexCount = pointCount;
+  tri.vertexCount -= 4;
   for (let t = 0; t < tri.slotCount; t++) {
     if (inUse(tri, t)) return;
   }

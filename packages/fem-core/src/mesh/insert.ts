@@ -28,6 +28,8 @@ export function newCavity(): Cavity {
 /**
  * Bowyer-Watson cavity of (x, y) in a constrained Delaunay triangulation: grown from `starts`, never across segments,
  * except across segment `open` (the one the point is about to split; -1 for none).
+ *
+ * @returns whether every edge round the cavity is seen from the point at its left; if not, rounding forbids the vertex
  */
 export function findCavity(
   tri: Triangulation,
@@ -36,7 +38,7 @@ export function findCavity(
   y: number,
   starts: readonly number[],
   open: number,
-): void {
+): boolean {
   const { triangles, border } = cavity;
   if (cavity.mark.length < tri.stamp.length) {
     const mark = new Int32Array(tri.stamp.length);
@@ -65,8 +67,10 @@ export function findCavity(
     }
   }
   // A split point is rounded, and on an arc stands off its chord: drop triangles that would be turned over.
+  let seen = true;
   for (let again = true; again; ) {
     again = false;
+    seen = true;
     border.length = 0;
     for (let i = 0; i < triangles.length; i++) {
       const t = triangles[i];
@@ -77,10 +81,13 @@ export function findCavity(
         const within =
           s >= 0 ? s === open && (g < 0 || mark[triangleOf(g)] === inside) : mark[triangleOf(g)] === inside;
         if (within) continue;
-        if (i >= firm && !(turn(tri, tri.origin[h], tri.origin[nextHalf(h)], x, y) > 0)) {
-          mark[t] = 0;
-          again = true;
-          break;
+        if (!(turn(tri, tri.origin[h], tri.origin[nextHalf(h)], x, y) > 0)) {
+          if (i < firm) seen = false;
+          else {
+            mark[t] = 0;
+            again = true;
+            break;
+          }
         }
         border.push(h);
       }
@@ -89,6 +96,7 @@ export function findCavity(
   let kept = 0;
   for (const t of triangles) if (mark[t] === inside) triangles[kept++] = t;
   triangles.length = kept;
+  return seen;
 }
 
 /**
@@ -176,12 +184,16 @@ export type Landing =
 
 /** Straight walk from the middle of triangle t to (x, y). */
 export function walkTo(tri: Triangulation, t: number, x: number, y: number): Landing {
-  const { xy, origin, twin, segment } = tri;
+  const { xy, origin } = tri;
   const i = 2 * origin[3 * t];
   const j = 2 * origin[3 * t + 1];
   const k = 2 * origin[3 * t + 2];
-  const fx = (xy[i] + xy[j] + xy[k]) / 3;
-  const fy = (xy[i + 1] + xy[j + 1] + xy[k + 1]) / 3;
+  return walkFrom(tri, t, (xy[i] + xy[j] + xy[k]) / 3, (xy[i + 1] + xy[j + 1] + xy[k + 1]) / 3, x, y);
+}
+
+/** Straight walk from (fx, fy), a point of triangle t, to (x, y). */
+export function walkFrom(tri: Triangulation, t: number, fx: number, fy: number, x: number, y: number): Landing {
+  const { xy, origin, twin, segment } = tri;
   let entry = -1;
   for (let steps = 0; steps <= tri.slotCount; steps++) {
     let exit = -1;

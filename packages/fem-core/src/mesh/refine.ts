@@ -1,11 +1,12 @@
 import { InputError } from '../base/fault.js';
 import { pointOnCurve } from '../geometry/curve.js';
+import type { Point } from '../geometry/section.js';
 import type { Cavity } from './insert.js';
-import { apex, fillCavity, findCavity, newCavity, walkTo } from './insert.js';
+import { apex, fillCavity, findCavity, newCavity, walkFrom, walkTo } from './insert.js';
 import type { SharpCorners } from './sharp-corners.js';
 import { bridgesSharpCorner, findSharpCorners, shellShare } from './sharp-corners.js';
 import type { Triangulation } from './triangulation.js';
-import { inUse, nextHalf, triangleOf } from './triangulation.js';
+import { inUse, nextHalf, triangleOf, turn } from './triangulation.js';
 
 export interface QualityLimits {
   /** No angle below this, radians, away from sharper corners of the input. */
@@ -209,7 +210,7 @@ function treatTriangle(work: Work, t: number): void {
     if (cut && inUse(tri, t)) judgeTriangle(work, t);
     return;
   }
-  findCavity(tri, cavity, x, y, [landing.t], -1);
+  const seen = findCavity(tri, cavity, x, y, [landing.t], -1);
   let encroaches = false;
   for (const h of cavity.border) {
     const s = tri.segment[h];
@@ -224,6 +225,7 @@ function treatTriangle(work: Work, t: number): void {
     if (cut && inUse(tri, t)) judgeTriangle(work, t);
     return;
   }
+  if (!seen) return; // smaller than rounding can tell
   checkCount(work);
   fillCavity(tri, cavity, x, y, -1, work.made);
   judgeMade(work);
@@ -240,36 +242,79 @@ function judgeMade(work: Work): void {
   }
 }
 
-/** Cuts a segment, on its curve, and with it the segment it is matched with; false where it is too short to be cut. */
-function splitSegment(work: Work, s: number): boolean {
+/**
+ * Cuts a segment, on its curve, and with it the segment it is matched with; false where it is too short to be cut, or the
+ * way to the cut is not to be cleared. `depth` counts cuts made for the sake of other cuts.
+ */
+function splitSegment(work: Work, s: number, depth = 0): boolean {
   const { segments, xy } = work.tri;
   const a = segments.from[s];
   const b = segments.to[s];
   if ((xy[2 * a] - xy[2 * b]) ** 2 + (xy[2 * a + 1] - xy[2 * b + 1]) ** 2 < work.floor) return false;
   const share = shellShare(work.tri, work.sharp, s);
+  if (!clearWay(work, s, share, depth)) return false;
   const mate = segments.match[s];
-  const second = cutAt(work, s, share);
+  if (mate >= 0 && !findCut(work, mate, share)) return false;
+  if (!findCut(work, s, share)) return false;
+  const second = cutFound(work, s, share);
   if (mate < 0) return true;
-  const mateSecond = cutAt(work, mate, share);
+  findCut(work, mate, share);
+  const mateSecond = cutFound(work, mate, share);
   segments.match[second] = mateSecond;
   segments.match[mateSecond] = second;
   return true;
 }
 
-function cutAt(work: Work, s: number, share: number): number {
-  const { tri, cavity } = work;
+/** Cuts in one way at most, and cuts for the sake of cuts at most: beyond this arcs touch but for rounding. */
+const PATIENCE = 30;
+
+/**
+ * The cut of an arc stands off its chord, and may lie beyond the chord of another arc that has been cut less finely, as in
+ * a ring thinner than its chords are high: then that one is cut first.
+ */
+function clearWay(work: Work, s: number, share: number, depth: number): boolean {
+  const { tri } = work;
+  const { segments, curves } = tri;
+  if (curves[segments.curve[s]].kind === 'line') return true;
+  const [x, y] = placeOn(tri, s, share);
+  const [fx, fy] = [0, 1].map((k) => 0.5 * (tri.xy[2 * segments.from[s] + k] + tri.xy[2 * segments.to[s] + k]));
+  for (let tries = 0; tries < PATIENCE && depth < PATIENCE; tries++) {
+    const half = segments.half[s];
+    const ahead = turn(tri, tri.origin[half], tri.origin[nextHalf(half)], x, y) > 0 ? half : tri.twin[half];
+    if (ahead < 0) return true; // out of the outline, where nothing is
+    const landing = walkFrom(tri, triangleOf(ahead), fx, fy, x, y);
+    if (landing.kind === 'triangle') return true;
+    const other = tri.segment[landing.half];
+    if (curves[segments.curve[other]].kind === 'line' || !splitSegment(work, other, depth + 1)) return false;
+  }
+  return false;
+}
+
+function placeOn(tri: Triangulation, s: number, share: number): Point {
   const { segments, xy } = tri;
   const a = 2 * segments.from[s];
   const b = 2 * segments.to[s];
-  const [x, y] = pointOnCurve(tri.curves[segments.curve[s]], xy[a], xy[a + 1], xy[b], xy[b + 1], share);
-  const h = segments.half[s];
+  return pointOnCurve(tri.curves[segments.curve[s]], xy[a], xy[a + 1], xy[b], xy[b + 1], share);
+}
+
+/** Finds the cavity of the cut; false where rounding forbids it. */
+function findCut(work: Work, s: number, share: number): boolean {
+  const { tri } = work;
+  const [x, y] = placeOn(tri, s, share);
+  const h = tri.segments.half[s];
   const g = tri.twin[h];
   const starts = g < 0 ? [triangleOf(h)] : [triangleOf(h), triangleOf(g)];
-  findCavity(tri, cavity, x, y, starts, s);
+  return findCavity(tri, work.cavity, x, y, starts, s);
+}
+
+/** Cuts where `findCut` has just been; returns the new segment. */
+function cutFound(work: Work, s: number, share: number): number {
+  const { tri, cavity } = work;
+  const [x, y] = placeOn(tri, s, share);
   checkCount(work);
   fillCavity(tri, cavity, x, y, s, work.made);
   judgeMade(work);
-  return segments.from.length - 1;
+  return tri.segments.from.length - 1;
 }
 
 function checkCount(work: Work): void {
