@@ -3,8 +3,9 @@ import { sidesOf } from '@gapwright/fem-core';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import type { PlanarGraph } from '../../../packages/fem-core/src/geometry/planar-graph.js';
-import { boundsOf, buildPlanarGraph, contains } from '../../../packages/fem-core/src/geometry/planar-graph.js';
+import { buildPlanarGraph } from '../../../packages/fem-core/src/geometry/planar-graph.js';
 import { orientation } from '../../../packages/fem-core/src/geometry/predicates.js';
+import { boundsOf, contains } from '../../../packages/fem-core/src/geometry/shapes.js';
 import { circle, drawing, faultCodes, moved, polar, polygon, polygons, rectangle, rectangles } from './drawings.js';
 
 const pointAt = (graph: PlanarGraph, p: number): Point => [graph.points[2 * p], graph.points[2 * p + 1]];

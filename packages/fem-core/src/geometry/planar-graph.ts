@@ -1,8 +1,10 @@
-import type { Fault } from '../base/fault.js';
-import { InputError } from '../base/fault.js';
+import { checkShapes } from './check-shapes.js';
 import type { Curve } from './curve.js';
 import { chordCrossings, liesOn, pointOnCurve } from './curve.js';
+import type { PointStore } from './point-store.js';
+import { pointStore } from './point-store.js';
 import type { Point, Section, Shape } from './section.js';
+import { cornersOf, offsetBetween, sameCircle, sidesOf, snapOf } from './shapes.js';
 
 /**
  * The drawn lines of a section, cut wherever they meet: no two segments cross, none passes through a point.
@@ -22,9 +24,6 @@ export interface PlanarGraph {
   /** Int32Array(s): the segment of the matched side that corresponds (ends in stored order), or -1. */
   readonly segmentToMatch: Int32Array;
 }
-
-/** Points nearer than this share of the section's size are one point. */
-export const SNAP = 1e-9;
 
 /** Chords a full circle starts with; refinement halves them as needed, always on the circle. */
 const CHORDS = 16;
@@ -82,77 +81,6 @@ export function buildPlanarGraph(section: Section): PlanarGraph {
   return { ...graph, segmentToMatch: matchSegments(section, graph, store) };
 }
 
-/** Distance in metres within which points of the section are one. */
-export function snapOf(section: Section): number {
-  const box = boundsOf(section.outline);
-  return SNAP * Math.max(box.x1 - box.x0, box.y1 - box.y0);
-}
-
-type Circle = Extract<Shape, { kind: 'circle' }>;
-
-/** Circles drawn twice but for rounding; they are cut alike. */
-export function sameCircle(p: Pick<Circle, 'centre' | 'radius'>, q: typeof p, snap: number): boolean {
-  const apart = Math.hypot(p.centre[0] - q.centre[0], p.centre[1] - q.centre[1]);
-  return apart + Math.abs(p.radius - q.radius) <= 4 * snap;
-}
-
-/** Names of the sides of an outline, in order. */
-export function sidesOf(shape: Shape): string[] {
-  switch (shape.kind) {
-    case 'rectangle':
-      return ['bottom', 'right', 'top', 'left'];
-    case 'polygon':
-      return shape.corners.map((_, i) => `edge ${i + 1}`);
-    case 'circle':
-      return ['rim'];
-  }
-}
-
-export interface Bounds {
-  readonly x0: number;
-  readonly y0: number;
-  readonly x1: number;
-  readonly y1: number;
-}
-
-export function boundsOf(shape: Shape): Bounds {
-  switch (shape.kind) {
-    case 'rectangle':
-      return {
-        x0: Math.min(shape.from[0], shape.to[0]),
-        y0: Math.min(shape.from[1], shape.to[1]),
-        x1: Math.max(shape.from[0], shape.to[0]),
-        y1: Math.max(shape.from[1], shape.to[1]),
-      };
-    case 'polygon': {
-      const bounds = { x0: Infinity, y0: Infinity, x1: -Infinity, y1: -Infinity };
-      for (const [x, y] of shape.corners) {
-        bounds.x0 = Math.min(bounds.x0, x);
-        bounds.x1 = Math.max(bounds.x1, x);
-        bounds.y0 = Math.min(bounds.y0, y);
-        bounds.y1 = Math.max(bounds.y1, y);
-      }
-      return bounds;
-    }
-    case 'circle': {
-      const [x, y] = shape.centre;
-      return { x0: x - shape.radius, y0: y - shape.radius, x1: x + shape.radius, y1: y + shape.radius };
-    }
-  }
-}
-
-/** Corners of a rectangle or polygon, counter-clockwise from the first for rectangles, as drawn for polygons. */
-function cornersOf(shape: Exclude<Shape, { kind: 'circle' }>): readonly Point[] {
-  if (shape.kind === 'polygon') return shape.corners;
-  const { x0, y0, x1, y1 } = boundsOf(shape);
-  return [
-    [x0, y0],
-    [x1, y0],
-    [x1, y1],
-    [x0, y1],
-  ];
-}
-
 const isArc = (curve: Curve): curve is Extract<Curve, { kind: 'arc' }> => curve.kind === 'arc';
 
 function piecesOf(shape: Shape, curves: Curve[], snap: number, outline: boolean): Piece[] {
@@ -171,40 +99,6 @@ function piecesOf(shape: Shape, curves: Curve[], snap: number, outline: boolean)
     curves.push({ kind: 'line' });
     return { from, to: corners[(i + 1) % corners.length], curve: curve + i, side: outline ? i : -1 };
   });
-}
-
-/** Points by number, one for all that lie within the snapping distance (grid of twice that size, four cells looked at). */
-interface PointStore {
-  readonly xy: number[];
-  /** Number of the point there, made if it is new. */
-  place(x: number, y: number): number;
-}
-
-function pointStore(snap: number): PointStore {
-  const xy: number[] = [];
-  const cells = new Map<string, number[]>();
-  const size = 2 * snap;
-  return {
-    xy,
-    place(x, y) {
-      const cx = Math.floor(x / size - 0.5);
-      const cy = Math.floor(y / size - 0.5);
-      for (let i = cx; i <= cx + 1; i++) {
-        for (let j = cy; j <= cy + 1; j++) {
-          for (const p of cells.get(`${i},${j}`) ?? []) {
-            if (Math.hypot(xy[2 * p] - x, xy[2 * p + 1] - y) <= snap) return p;
-          }
-        }
-      }
-      const p = xy.length / 2;
-      xy.push(x, y);
-      const key = `${Math.floor(x / size)},${Math.floor(y / size)}`;
-      const cell = cells.get(key);
-      if (cell === undefined) cells.set(key, [p]);
-      else cell.push(p);
-      return p;
-    },
-  };
 }
 
 /** For each piece the points at which it must be cut, its ends included. */
@@ -244,24 +138,6 @@ function chainOf(piece: Piece, cuts: ReadonlySet<number>, store: PointStore): [n
   const chain: [number, number][] = [];
   for (let i = 1; i < sorted.length; i++) chain.push([sorted[i - 1], sorted[i]]);
   return chain;
-}
-
-/** Offset that carries side `from` onto side `to`, or undefined where they are not parallel and equal. */
-function offsetBetween(section: Section, from: string, to: string): Point | undefined {
-  if (section.outline.kind === 'circle') return undefined;
-  const corners = cornersOf(section.outline);
-  const names = sidesOf(section.outline);
-  const i = names.indexOf(from);
-  const j = names.indexOf(to);
-  if (i < 0 || j < 0) return undefined;
-  const [a, b] = [corners[i], corners[(i + 1) % corners.length]];
-  const [c, d] = [corners[j], corners[(j + 1) % corners.length]];
-  const size = Math.hypot(b[0] - a[0], b[1] - a[1]);
-  const near = (p: Point, q: Point): boolean => Math.hypot(p[0] - q[0], p[1] - q[1]) <= 1e-9 * size;
-  const shift: Point = [d[0] - a[0], d[1] - a[1]]; // outlines run round, so the start of one meets the end of the other
-  if (near([b[0] + shift[0], b[1] + shift[1]], c)) return shift;
-  const straight: Point = [c[0] - a[0], c[1] - a[1]];
-  return near([b[0] + straight[0], b[1] + straight[1]], d) ? straight : undefined;
 }
 
 /** Gives each side of a matched pair the cuts of the other. */
@@ -358,106 +234,4 @@ function matchSegments(section: Section, graph: Omit<PlanarGraph, 'segmentToMatc
     }
   }
   return match;
-}
-
-/** Gathers every fault of the drawing. */
-function checkShapes(section: Section): void {
-  const faults: Fault[] = [];
-  const tell = (code: string, key: string, wrong: string, remedy: string): void => {
-    faults.push({ code, key, wrong, remedy });
-  };
-  const shapes: readonly (readonly [string, Shape])[] = [
-    ['outline', section.outline],
-    ...section.regions.map((region) => [region.name, region.shape] as const),
-  ];
-  for (const [name, shape] of shapes) {
-    const box = boundsOf(shape);
-    if (![box.x0, box.y0, box.x1, box.y1].every(Number.isFinite)) {
-      tell('not-finite', name, 'has a coordinate that is not a finite number', 'give every coordinate in metres');
-    } else if (!(box.x1 > box.x0 && box.y1 > box.y0)) {
-      tell('no-area', name, 'has no area', 'give corners that span a width and a height');
-    } else if (shape.kind === 'polygon' && shape.corners.length < 3) {
-      tell('too-few-corners', name, `has ${shape.corners.length} corners`, 'a polygon needs three or more');
-    } else if (shape.kind === 'polygon') {
-      const crossing = selfCrossing(shape.corners);
-      if (crossing !== undefined) {
-        tell(
-          'outline-crosses-itself',
-          name,
-          `crosses itself near (${crossing.join(', ')}) m`,
-          'order the corners round the shape',
-        );
-      }
-    }
-  }
-  const outer = boundsOf(section.outline);
-  for (const region of section.regions) {
-    const box = boundsOf(region.shape);
-    const apart = box.x0 >= outer.x1 || box.x1 <= outer.x0 || box.y0 >= outer.y1 || box.y1 <= outer.y0;
-    if (apart) tell('outside', region.name, 'lies outside the outline', 'move it inside or enlarge the outline');
-  }
-  const names = [section.background, ...section.regions.map((region) => region.name)];
-  const twice = names.find((name, i) => names.indexOf(name) !== i);
-  if (twice !== undefined) tell('name-twice', twice, 'names two regions', 'give each region a name of its own');
-  const sizes = [[section.background, section.maxEdge] as const].concat(
-    section.regions.map((r) => [r.name, r.maxEdge]),
-  );
-  for (const [name, maxEdge] of sizes) {
-    if (maxEdge !== undefined && !(maxEdge > 0)) {
-      tell('bad-edge-length', name, `maxEdge must be more than 0 m, got ${maxEdge}`, 'leave it out for no limit');
-    }
-  }
-  const paired = (section.matched ?? []).flat();
-  const again = paired.find((side, i) => paired.indexOf(side) !== i);
-  if (again !== undefined) tell('matched-twice', again, 'is matched twice', 'match a side with one other side');
-  for (const [from, to] of section.matched ?? []) {
-    if (offsetBetween(section, from, to) === undefined) {
-      tell(
-        'not-matching',
-        `${from}, ${to}`,
-        'are not sides of equal length and direction',
-        `sides here are: ${sidesOf(section.outline).join(', ')}`,
-      );
-    }
-  }
-  if (faults.length > 0) throw new InputError(faults);
-}
-
-/** A point where a polygon's border meets itself other than at neighbouring corners. */
-function selfCrossing(corners: readonly Point[]): Point | undefined {
-  const n = corners.length;
-  const box = boundsOf({ kind: 'polygon', corners });
-  const snap = SNAP * Math.max(box.x1 - box.x0, box.y1 - box.y0);
-  const line: Curve = { kind: 'line' };
-  for (let i = 0; i < n; i++) {
-    const p = { from: corners[i], to: corners[(i + 1) % n] };
-    for (let j = i + 2; j < n; j++) {
-      if (i === 0 && j === n - 1) continue;
-      const hit = chordCrossings(p, line, { from: corners[j], to: corners[(j + 1) % n] }, line, snap)[0];
-      if (hit !== undefined) return hit;
-    }
-  }
-  return undefined;
-}
-
-/** True when the point lies inside the shape (its border counts for neither side reliably). */
-export function contains(shape: Shape, x: number, y: number): boolean {
-  switch (shape.kind) {
-    case 'rectangle': {
-      const { x0, y0, x1, y1 } = boundsOf(shape);
-      return x > x0 && x < x1 && y > y0 && y < y1;
-    }
-    case 'circle':
-      return Math.hypot(x - shape.centre[0], y - shape.centre[1]) < shape.radius;
-    case 'polygon': {
-      let inside = false; // ray towards +x, Jordan
-      const { corners } = shape;
-      for (let i = 0, j = corners.length - 1; i < corners.length; j = i++) {
-        const [xi, yi] = corners[i];
-        const [xj, yj] = corners[j];
-        if (yi > y !== yj > y && x < xi + ((y - yi) / (yj - yi)) * (xj - xi)) inside = !inside;
-      }
-      return inside;
-    }
-  }
 }

@@ -1,10 +1,10 @@
 import Delaunator from 'delaunator';
 import { InputError } from '../base/fault.js';
-import type { Chord, Curve } from '../geometry/curve.js';
-import { pointOnCurve } from '../geometry/curve.js';
 import type { PlanarGraph } from '../geometry/planar-graph.js';
-import { boundsOf, contains, sameCircle, snapOf } from '../geometry/planar-graph.js';
-import type { Section, Shape } from '../geometry/section.js';
+import type { Section } from '../geometry/section.js';
+import { clearLenses } from './lenses.js';
+import { largestOf, middle, nameRegions, OUTSIDE, regionAt, regionBy, regionsBeside } from './region-parts.js';
+import { tooNear } from './too-near.js';
 import type { Triangulation } from './triangulation.js';
 import {
   addVertex,
@@ -19,9 +19,6 @@ import {
   triangleOf,
   turn,
 } from './triangulation.js';
-
-/** Region number of what lies outside the outline; such triangles are removed. */
-const OUTSIDE = -1;
 
 /**
  * Constrained Delaunay triangulation of a section: `delaunator` triangulates the points, the segments are recovered by
@@ -48,95 +45,6 @@ function constrained(graph: PlanarGraph): Triangulation {
   recoverSegments(tri, graph);
   lawson(tri);
   return tri;
-}
-
-/** Halves chords until no point lies between a chord and its arc, where it would change sides at a later cut. */
-function clearLenses(graph: PlanarGraph): PlanarGraph {
-  const { curves } = graph;
-  if (curves.every((curve) => curve.kind === 'line')) return graph;
-  const cut: Cuttable = {
-    curves,
-    points: Array.from(graph.points),
-    segments: Array.from(graph.segments),
-    segmentToCurve: Array.from(graph.segmentToCurve),
-  };
-  const segmentToSide = Array.from(graph.segmentToSide);
-  const segmentToMatch = Array.from(graph.segmentToMatch);
-  const given = segmentToSide.length;
-  for (let s = 0; s < cut.segmentToCurve.length; s++) {
-    const curve = curves[cut.segmentToCurve[s]];
-    if (curve.kind !== 'arc') continue;
-    for (let halvings = 0; halvings < 20 && isLensTaken(cut, s, curve); halvings++) {
-      const b = cut.segments[2 * s + 1];
-      const m = cut.points.length / 2;
-      const { from, to } = chordOf(cut, s);
-      cut.points.push(...pointOnCurve(curve, ...from, ...to, 0.5));
-      cut.segments[2 * s + 1] = m;
-      cut.segments.push(m, b);
-      cut.segmentToCurve.push(cut.segmentToCurve[s]);
-      segmentToSide.push(segmentToSide[s]);
-      segmentToMatch.push(-1);
-      if (cut.segmentToCurve.length > given + MAX_HALVINGS) throw tooNear();
-    }
-  }
-  return {
-    points: Float64Array.from(cut.points),
-    segments: Int32Array.from(cut.segments),
-    segmentToCurve: Int32Array.from(cut.segmentToCurve),
-    curves,
-    segmentToSide: Int32Array.from(segmentToSide),
-    sideNames: graph.sideNames,
-    segmentToMatch: Int32Array.from(segmentToMatch),
-  };
-}
-
-/** Arcs that need more cuts than this to be told apart are nearer than any mesh of sensible size can fill. */
-const MAX_HALVINGS = 10_000;
-
-function tooNear(): InputError {
-  return new InputError([
-    {
-      code: 'lines-too-near',
-      key: 'regions',
-      wrong: 'two drawn lines run so close together that the space between them cannot be meshed',
-      remedy: 'move them apart, or let them share their corners',
-    },
-  ]);
-}
-
-type Arc = Extract<Curve, { kind: 'arc' }>;
-
-/** Points and segments of a planar graph, as growing lists. */
-interface Cuttable {
-  readonly curves: readonly Curve[];
-  readonly points: number[];
-  readonly segments: number[];
-  readonly segmentToCurve: number[];
-}
-
-function chordOf(graph: Pick<PlanarGraph, 'points' | 'segments'> | Cuttable, s: number): Chord {
-  const [a, b] = [2 * graph.segments[2 * s], 2 * graph.segments[2 * s + 1]];
-  return { from: [graph.points[a], graph.points[a + 1]], to: [graph.points[b], graph.points[b + 1]] };
-}
-
-/** A point lies between the chord of segment s and its arc. */
-function isLensTaken(graph: Cuttable, s: number, arc: Arc): boolean {
-  const { points, segments } = graph;
-  const [a, b] = [segments[2 * s], segments[2 * s + 1]];
-  const chord = chordOf(graph, s);
-  for (let p = 0; p < points.length / 2; p++) {
-    if (p !== a && p !== b && lensHolds(chord, arc, points[2 * p], points[2 * p + 1])) return true;
-  }
-  return false;
-}
-
-/** The point lies between the chord and its arc, and so within the circle that has the chord as diameter. */
-function lensHolds({ from, to }: Chord, arc: Arc, x: number, y: number): boolean {
-  if ((from[0] - x) * (to[0] - x) + (from[1] - y) * (to[1] - y) > 0) return false;
-  const beyond = (px: number, py: number): number =>
-    (to[0] - from[0]) * (py - from[1]) - (to[1] - from[1]) * (px - from[0]);
-  if (beyond(x, y) * beyond(arc.centre[0], arc.centre[1]) > 0) return false;
-  return Math.hypot(x - arc.centre[0], y - arc.centre[1]) < arc.radius * (1 - 1e-12);
 }
 
 /** All points of the graph and the four corners of a box well outside it. */
@@ -306,94 +214,6 @@ function lawson(tri: Triangulation): void {
     stack.push(3 * t, 3 * t + 1, 3 * s, 3 * s + 1);
   }
 }
-
-/** Gives each part bounded by segments, a list of triangles, the region it is judged to be. */
-function nameRegions(tri: Triangulation, judge: (part: readonly number[]) => number): void {
-  const done = new Uint8Array(tri.slotCount);
-  for (let seed = 0; seed < tri.slotCount; seed++) {
-    if (done[seed] === 1) continue;
-    const part = [seed];
-    done[seed] = 1;
-    for (let i = 0; i < part.length; i++) {
-      for (let h = 3 * part[i]; h < 3 * part[i] + 3; h++) {
-        const g = tri.twin[h];
-        if (tri.segment[h] >= 0 || g < 0 || done[triangleOf(g)] === 1) continue;
-        done[triangleOf(g)] = 1;
-        part.push(triangleOf(g));
-      }
-    }
-    const region = judge(part);
-    for (const t of part) tri.region[t] = region;
-  }
-}
-
-function largestOf(tri: Triangulation, part: readonly number[]): number {
-  return part.reduce((largest, t) => (area(tri, t) > area(tri, largest) ? t : largest));
-}
-
-/** Int32Array(2s): regions to the left and to the right of each segment. */
-function regionsBeside(tri: Triangulation): Int32Array {
-  const beside = new Int32Array(2 * tri.segments.half.length);
-  for (let h = 0; h < 3 * tri.slotCount; h++) {
-    const s = tri.segment[h];
-    if (s >= 0) beside[2 * s + (isForward(tri, h) ? 0 : 1)] = tri.region[triangleOf(h)];
-  }
-  return beside;
-}
-
-const isForward = (tri: Triangulation, h: number): boolean => tri.segments.from[tri.segment[h]] === tri.origin[h];
-
-/** Region of a part by any segment that bounds it, whose regions stand in `beside` from place at(segment) on. */
-function regionBy(
-  tri: Triangulation,
-  part: readonly number[],
-  at: (segment: number) => number,
-  beside: Int32Array,
-): number {
-  for (const t of part) {
-    for (let h = 3 * t; h < 3 * t + 3; h++) {
-      if (tri.segment[h] >= 0) return beside[at(tri.segment[h]) + (isForward(tri, h) ? 0 : 1)];
-    }
-  }
-  throw new Error('regionBy: a part without a border');
-}
-
-function regionAt(section: Section, graph: PlanarGraph, x: number, y: number): number {
-  const snap = snapOf(section);
-  const box = boundsOf(section.outline);
-  const out = x < box.x0 || x > box.x1 || y < box.y0 || y > box.y1;
-  if (out || !drawnRound(section.outline, graph, snap, x, y)) return OUTSIDE;
-  for (let i = section.regions.length - 1; i >= 0; i--) {
-    if (drawnRound(section.regions[i].shape, graph, snap, x, y)) return i + 1;
-  }
-  return 0;
-}
-
-/** The point lies in the shape as the segments draw it: what is between a chord and its arc is still outside. */
-function drawnRound(shape: Shape, graph: PlanarGraph, snap: number, x: number, y: number): boolean {
-  if (!contains(shape, x, y)) return false;
-  if (shape.kind !== 'circle') return true;
-  for (let s = 0; s < graph.segmentToCurve.length; s++) {
-    const curve = graph.curves[graph.segmentToCurve[s]];
-    if (curve.kind !== 'arc' || !sameCircle(curve, shape, snap)) continue; // drawn twice, it keeps one set of chords
-    if (lensHolds(chordOf(graph, s), curve, x, y)) return false;
-  }
-  return true;
-}
-
-function middle(tri: Triangulation, t: number): [number, number] {
-  let [x, y] = [0, 0];
-  for (let h = 3 * t; h < 3 * t + 3; h++) {
-    x += tri.xy[2 * tri.origin[h]] / 3;
-    y += tri.xy[2 * tri.origin[h] + 1] / 3;
-  }
-  return [x, y];
-}
-
-const area = (tri: Triangulation, t: number): number => {
-  const c = tri.origin[3 * t + 2];
-  return turn(tri, tri.origin[3 * t], tri.origin[3 * t + 1], tri.xy[2 * c], tri.xy[2 * c + 1]);
-};
 
 function onlySegments(graph: PlanarGraph, keep: readonly number[]): PlanarGraph {
   const pointTo = new Int32Array(graph.points.length / 2).fill(-1);
