@@ -41,6 +41,12 @@ describe.each([0.003, 0.008, 0.0205])('a leg %s m wide', (legWidth) => {
       const wave = exact.slices[i].leg_B;
       const worst = Math.max(...slice.leg_B.value_T.map((value, j) => Math.abs(value - wave.value_T[j]))) / wave.peak_T;
       expect(worst).toBeLessThan(slice.leg_B_rel_err);
+      for (const key of ['winding_B', 'mid_B'] as const) {
+        slice[key].amplitude_T.forEach((value, k) => {
+          const miss = Math.abs(value - exact.slices[i][key].amplitude_T[k]);
+          expect(miss).toBeLessThanOrEqual(Math.abs(value) * slice[key].amplitude_T_rel_err[k] + 1e-6);
+        });
+      }
     });
     for (const kind of ['phase', 'line'] as const) {
       const [a, b] = [got.emf[kind], exact.emf[kind]];

@@ -1,18 +1,5 @@
-import type { Mesh, PictureCopy, Setting } from '@gapwright/fem-core';
-import type { Machine, MachineResult, SliceAnswer, Warning } from '@gapwright/machine-models';
-
-export interface ReadOptions {
-  /** How messages name the file. */
-  readonly file: string;
-  readonly settings: readonly Setting[];
-  /** Text of a file beside the machine file. */
-  readonly readBeside: (name: string) => string;
-}
-
-export interface ReadMachine {
-  readonly machine: Machine;
-  readonly warnings: readonly Warning[];
-}
+import type { Mesh, PictureCopy } from '@gapwright/fem-core';
+import type { Machine, MachineResult, ReadOptions, ReadResult, SliceAnswer, Warning } from '@gapwright/machine-models';
 
 /** The solved field of one slice, as the pictures and VTK files want it. */
 export interface SliceField {
@@ -49,6 +36,6 @@ export interface SolveOptions {
 
 /** What the commands ask of the models. */
 export interface Engine {
-  readonly read: (text: string, options: ReadOptions) => ReadMachine;
+  readonly read: (text: string, options: ReadOptions) => ReadResult;
   readonly solve: (machine: Machine, options: SolveOptions) => Promise<SolvedMachine>;
 }

@@ -1,11 +1,12 @@
 import { createHash } from 'node:crypto';
 import { dirname, join } from 'node:path';
 import { InputError, type Setting } from '@gapwright/fem-core';
-import type { Engine, ReadMachine } from './engine.js';
+import type { ReadResult } from '@gapwright/machine-models';
+import type { Engine } from './engine.js';
 import { readFileBeside, readTextFile } from './files.js';
 
 /** A machine file read and judged, with the digest of all that went into it. */
-export interface MachineInput extends ReadMachine {
+export interface MachineInput extends ReadResult {
   readonly sha256: string;
 }
 

@@ -5,7 +5,14 @@ export { readMachine } from './input/read-machine.js';
 export type { Machine, Warning, Winding } from './machine.js';
 export type { RunStamp } from './results/assemble.js';
 export { describeMachine } from './results/assemble.js';
-export type { EmfResult, MachineResult, SliceResult, VoltageResult, WindingResult } from './results/result.js';
+export type {
+  EmfResult,
+  HarmonicsResult,
+  MachineResult,
+  SliceResult,
+  VoltageResult,
+  WindingResult,
+} from './results/result.js';
 export type { Image } from './slices/images.js';
 export { imagesOfPolePair } from './slices/images.js';
 export type { Cuts, PoleSection } from './slices/pole-section.js';

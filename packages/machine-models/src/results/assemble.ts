@@ -1,11 +1,14 @@
 import type { Machine, Warning } from '../machine.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
+import type { Harmonics } from '../waves/series.js';
+import { amplitudeOf } from '../waves/series.js';
 import { findCautions, overspeedPeak } from './cautions.js';
 import { circulatingEmf, computeEmf, describeEmf } from './emf.js';
+import { harmonicBound, relative } from './error-bounds.js';
 import { describeEffectiveB, describeLeg } from './leg-wave.js';
 import { describeMasses, describePull } from './mechanical.js';
 import { describeMerit } from './merit.js';
-import type { MachineResult, SliceResult } from './result.js';
+import type { HarmonicsResult, MachineResult, SliceResult } from './result.js';
 import { describeWinding } from './winding-figures.js';
 
 /** What only the caller knows of a run. */
@@ -53,12 +56,18 @@ export function describeMachine(
   };
 }
 
+/** On the mid-plane and averaged over the winding an order has one relative error: the shape between them is exact. */
+function describeHarmonics(slice: SliceAnswer, { order, amplitude }: Harmonics): HarmonicsResult {
+  const errors = order.map((n) => relative(harmonicBound(slice, n), amplitudeOf(slice.windingB, n)));
+  return { order, amplitude_T: amplitude, amplitude_T_rel_err: errors };
+}
+
 function describeSlice(machine: Machine, slice: SliceAnswer): SliceResult {
   return {
     radius_m: slice.radius,
     pole_pitch_m: slice.polePitch,
-    mid_B: { order: slice.midB.order, amplitude_T: slice.midB.amplitude },
-    winding_B: { order: slice.windingB.order, amplitude_T: slice.windingB.amplitude },
+    mid_B: describeHarmonics(slice, slice.midB),
+    winding_B: describeHarmonics(slice, slice.windingB),
     ...describeLeg(machine, slice),
     pull_N_per_m_pole: slice.pull,
     pull_N_per_m_pole_rel_err: slice.pullRelErr,

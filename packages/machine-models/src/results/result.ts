@@ -31,11 +31,18 @@ export interface MachineResult {
   readonly warnings: readonly Warning[];
 }
 
+export interface HarmonicsResult {
+  readonly order: readonly number[];
+  /** Signed cosine coefficients about the magnet's axis. */
+  readonly amplitude_T: readonly number[];
+  readonly amplitude_T_rel_err: readonly number[];
+}
+
 export interface SliceResult {
   readonly radius_m: number;
   readonly pole_pitch_m: number;
-  readonly mid_B: { readonly order: readonly number[]; readonly amplitude_T: readonly number[] };
-  readonly winding_B: { readonly order: readonly number[]; readonly amplitude_T: readonly number[] };
+  readonly mid_B: HarmonicsResult;
+  readonly winding_B: HarmonicsResult;
   readonly leg_B: {
     readonly electrical_deg: readonly number[];
     readonly value_T: readonly number[];
