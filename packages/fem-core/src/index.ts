@@ -12,7 +12,6 @@ export { MU0 } from './base/constants.js';
 export type { Fault, Place } from './base/fault.js';
 export { formatFault, InputError } from './base/fault.js';
 export { unreachable } from './base/unreachable.js';
-export { gaussLegendre } from './elements/quadrature.js';
 export type { ErrorEstimate } from './estimate/goal-error.js';
 export { estimateGoalErrors } from './estimate/goal-error.js';
 export type { RecoveredGradient } from './estimate/recovery.js';

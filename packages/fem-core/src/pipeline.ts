@@ -1,6 +1,7 @@
 import type { Setup } from './assembly/setup.js';
 import type { System } from './assembly/system.js';
 import { buildSystem } from './assembly/system.js';
+import type { Unknowns } from './assembly/unknowns.js';
 import { numberUnknowns } from './assembly/unknowns.js';
 import { globalNode, shapeValues } from './elements/six-node.js';
 import type { ErrorEstimate } from './estimate/goal-error.js';
@@ -32,9 +33,15 @@ export interface SolvedField {
  * @throws InputError for setups that do not fit the section; a solve that does not converge is told in `field.report`
  */
 export function solveOnMesh(mesh: Mesh, setup: Setup, options: NewtonOptions = {}): SolvedField {
+  return solveFrom(undefined, mesh, setup, options);
+}
+
+/** The same, Newton's method starting from the field on an earlier mesh where there is one. */
+function solveFrom(before: Field | undefined, mesh: Mesh, setup: Setup, options: NewtonOptions): SolvedField {
   const unknowns = numberUnknowns(mesh, setup);
   const system = buildSystem(mesh, setup, unknowns);
-  const { potential, report, factor } = solveNewton(system, options);
+  const start = before === undefined ? {} : { start: carryOver(before, mesh, unknowns) };
+  const { potential, report, factor } = solveNewton(system, { ...options, ...start });
   return { field: { mesh, setup, potential, report }, system, factor };
 }
 
@@ -93,15 +100,19 @@ export function solveAdaptively(section: Section, setup: Setup, options: Adaptiv
   let newtonSteps = 0;
   let before: Field | undefined;
   for (let meshes = 1; ; meshes++) {
-    const start = before === undefined ? {} : { start: carryOver(before, mesh, setup) };
-    const { field, system, factor } = solveOnMesh(mesh, setup, { ...options.newton, ...start });
+    const { field, system, factor } = solveFrom(before, mesh, setup, options.newton ?? {});
     newtonSteps += field.report.steps;
     const functionals = options.goals.map((goal) => goal.functional(field));
     const values = options.goals.map(
       (goal, k) => goal.value?.(field) ?? applyFunctional(functionals[k], field.potential),
     );
     if (factor === undefined) {
-      const none = { goals: [], bounds: values.map(() => Infinity), energy: Infinity, recovered: new Float64Array(0) };
+      const none = {
+        goals: [],
+        bounds: values.map(() => Infinity),
+        energy: Infinity,
+        recovered: new Float64Array(12 * triangleCount(mesh)),
+      };
       return {
         field,
         estimate: none,
@@ -145,9 +156,8 @@ const RUNAWAY = 2;
 const GROWTH = 8;
 
 /** Unknowns on a new mesh of the same section, from the potential on the old one. */
-function carryOver(field: Field, mesh: Mesh, setup: Setup): Float64Array {
+function carryOver(field: Field, mesh: Mesh, unknowns: Unknowns): Float64Array {
   const locator = buildLocator(field.mesh);
-  const unknowns = numberUnknowns(mesh, setup);
   const u = new Float64Array(unknowns.count);
   const shapes = new Float64Array(6);
   for (let node = 0; node < nodeCount(mesh); node++) {

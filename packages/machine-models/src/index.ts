@@ -13,7 +13,6 @@ export type {
   VoltageResult,
   WindingResult,
 } from './results/result.js';
-export type { Image } from './slices/images.js';
 export { imagesOfPolePair } from './slices/images.js';
 export type { Cuts, PoleSection } from './slices/pole-section.js';
 export { buildPoleSection, symmetryCuts } from './slices/pole-section.js';

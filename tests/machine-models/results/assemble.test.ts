@@ -3,8 +3,8 @@ import type { Machine } from '../../../packages/machine-models/src/machine.js';
 import { describeMachine } from '../../../packages/machine-models/src/results/assemble.js';
 import { lineResistanceHot } from '../../../packages/machine-models/src/results/merit.js';
 import { windingFactor } from '../../../packages/machine-models/src/results/winding-figures.js';
-import { singleToothWindingFactor } from '../../../packages/machine-models/src/winding/factors.js';
 import { closedFormSlices, hutHydro, overlappedHydro, relativeError, withWinding } from '../../helpers/machines.js';
+import { singleToothWindingFactor } from '../../helpers/single-tooth.js';
 
 const stamp = { version: '0.1.0', inputSha256: 'abc' };
 const solve = (machine: Machine): ReturnType<typeof describeMachine> =>

@@ -7,7 +7,6 @@ import { windingFactor } from '../../../packages/machine-models/src/results/wind
 import type { SliceAnswer } from '../../../packages/machine-models/src/slices/slice-answer.js';
 import { evaluate, peak, rms } from '../../../packages/machine-models/src/waves/series.js';
 import { coilPlaces } from '../../../packages/machine-models/src/winding/coil-places.js';
-import { singleToothWindingFactor } from '../../../packages/machine-models/src/winding/factors.js';
 import { legCut } from '../../../packages/machine-models/src/winding/leg-cut.js';
 import {
   closedFormSlices,
@@ -17,6 +16,7 @@ import {
   simpson,
   withWinding,
 } from '../../helpers/machines.js';
+import { singleToothWindingFactor } from '../../helpers/single-tooth.js';
 
 /**
  * Machine G1 of the project's check values (C2 there): pole pitch 50 mm at its one radius, hole 24 mm and leg 20 mm along

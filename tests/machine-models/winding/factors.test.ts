@@ -6,8 +6,8 @@ import {
   distributionFactor,
   legSpreadFactor,
   pitchFactor,
-  singleToothWindingFactor,
 } from '../../../packages/machine-models/src/winding/factors.js';
+import { singleToothWindingFactor } from '../../helpers/single-tooth.js';
 
 describe('single-tooth winding factors', () => {
   // Star of slots: Bianchi and Dai Pre, IEE Proc. EPA 2006 [title second-hand]; tables of Cros and Viarouge 2002 and of

@@ -54,24 +54,3 @@ export function subdivided(rule: TriangleRule, cuts: number): TriangleRule {
   }
   return { degree: rule.degree, points: Float64Array.from(points), weights: Float64Array.from(weights) };
 }
-
-/** Gauss-Legendre points on [0, 1] with n = 2 ... 8 points: exact to degree 2 n - 1. */
-export function gaussLegendre(n: number): { readonly points: Float64Array; readonly weights: Float64Array } {
-  const points = new Float64Array(n);
-  const weights = new Float64Array(n);
-  for (let i = 0; i < n; i++) {
-    let x = Math.cos((Math.PI * (i + 0.75)) / (n + 0.5));
-    let slope = 1;
-    for (let step = 0; step < 100; step++) {
-      let [p0, p1] = [1, x];
-      for (let k = 2; k <= n; k++) [p0, p1] = [p1, ((2 * k - 1) * x * p1 - (k - 1) * p0) / k];
-      slope = (n * (x * p1 - p0)) / (x * x - 1);
-      const change = p1 / slope;
-      x -= change;
-      if (Math.abs(change) < 1e-16) break;
-    }
-    points[n - 1 - i] = 0.5 * (1 + x);
-    weights[n - 1 - i] = 1 / ((1 - x * x) * slope * slope);
-  }
-  return { points, weights };
-}

@@ -1,4 +1,4 @@
-import { type CoilPlace, starOfSlots } from './coil-places.js';
+import type { CoilPlace } from './coil-places.js';
 
 /**
  * Sum of the coils' unit vectors of one phase for an odd harmonic, angles measured from `origin`:
@@ -60,13 +60,4 @@ export function pitchFactor(halfSpan: number, order: number): number {
 export function legSpreadFactor(width: number, polePitch: number, order: number): number {
   const x = (order * Math.PI * width) / (2 * polePitch);
   return x === 0 ? 1 : Math.sin(x) / x;
-}
-
-/**
- * Winding factor |kd kp| of concentrated coils exactly one slot wide, kp = sin(order pi poles / (2 coils)); the figure
- * the published tables give, before leg spread and the true span of an air-cored coil.
- */
-export function singleToothWindingFactor(coils: number, poles: number, order: number): number {
-  const kd = distributionFactor(starOfSlots(coils, poles), poles, order);
-  return Math.abs(kd * pitchFactor((Math.PI * poles) / (2 * coils), order));
 }
