@@ -14,7 +14,7 @@ const houses: readonly (readonly [SourcePackage, Floors])[] = [
   [
     femCore,
     [
-      ['base'],
+      ['base', 'kernels'],
       ['geometry', 'materials', 'sparse'],
       ['mesh'],
       ['elements'],

@@ -1,0 +1,77 @@
+/** The part of the WebAssembly interface used here; declared because no library of types of a platform is. */
+interface WasmMemory {
+  readonly buffer: ArrayBuffer;
+  grow(pages: number): number;
+}
+interface WasmHost {
+  readonly Module: new (bytes: Uint8Array) => object;
+  readonly Instance: new (module: object, imports: object) => { readonly exports: Readonly<Record<string, unknown>> };
+  readonly Memory: new (options: { readonly initial: number; readonly maximum: number }) => WasmMemory;
+  validate(bytes: Uint8Array): boolean;
+}
+declare const WebAssembly: WasmHost | undefined;
+
+/** Compiled kernels; code without state, made once. */
+export interface CompiledKernels {
+  readonly module: object;
+}
+
+/** Kernels with memory of their own: what one holder does to its instance no other sees. */
+export interface KernelInstance<Exports> {
+  readonly exports: Exports;
+  /** At least this many bytes from now on; earlier views of the buffer are void after it. Throws RangeError beyond 4 GiB. */
+  readonly reserve: (bytes: number) => ArrayBuffer;
+  /** The memory as it is; ask again after every `reserve`. */
+  readonly buffer: () => ArrayBuffer;
+}
+
+const PAGE = 65_536;
+/** Pages a 32-bit address reaches. */
+const MOST = 65_536;
+
+/** Compiles kernels; undefined where the host has no WebAssembly, or none with SIMD: then the plain twins serve. */
+export function compileKernels(base64: string): CompiledKernels | undefined {
+  if (typeof WebAssembly === 'undefined') return undefined;
+  const bytes = decodeBase64(base64);
+  return WebAssembly.validate(bytes) ? { module: new WebAssembly.Module(bytes) } : undefined;
+}
+
+/** A new instance with at least so many bytes of memory. Throws RangeError where the host cannot give them. */
+export function instantiate<Exports>(compiled: CompiledKernels, bytes: number): KernelInstance<Exports> {
+  if (typeof WebAssembly === 'undefined') throw new Error('instantiate: compiled without WebAssembly');
+  const memory = new WebAssembly.Memory({ initial: Math.max(1, Math.ceil(bytes / PAGE)), maximum: MOST });
+  const instance = new WebAssembly.Instance(compiled.module, { env: { memory, abort: fail } });
+  return {
+    exports: instance.exports as Exports, // the names and signatures are those of the kernel's source
+    buffer: () => memory.buffer,
+    reserve: (wanted) => {
+      const missing = Math.ceil((wanted - memory.buffer.byteLength) / PAGE);
+      if (missing > 0) memory.grow(missing);
+      return memory.buffer;
+    },
+  };
+}
+
+function fail(): never {
+  throw new Error('a kernel stopped');
+}
+
+/** Bytes of standard base64 text (RFC 4648); browsers and Node share no decoder. */
+function decodeBase64(text: string): Uint8Array {
+  const alphabet = 'ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789+/';
+  const values = new Uint8Array(128);
+  for (let i = 0; i < 64; i++) values[alphabet.charCodeAt(i)] = i;
+  const length = Math.floor((3 * text.replace(/=+$/, '').length) / 4);
+  const bytes = new Uint8Array(length);
+  for (let i = 0, at = 0; at < length; i += 4) {
+    const group =
+      (values[text.charCodeAt(i)] << 18) |
+      (values[text.charCodeAt(i + 1)] << 12) |
+      (values[text.charCodeAt(i + 2)] << 6) |
+      values[text.charCodeAt(i + 3)];
+    bytes[at++] = group >> 16;
+    if (at < length) bytes[at++] = (group >> 8) & 255;
+    if (at < length) bytes[at++] = group & 255;
+  }
+  return bytes;
+}
