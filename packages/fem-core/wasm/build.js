@@ -8,7 +8,8 @@ const target = (name) => new URL(`../src/kernels/${name}.wasm.ts`, here);
 const changedAt = (url) => statSync(url, { throwIfNoEntry: false })?.mtimeMs ?? 0;
 
 /** Memory comes from the caller, who lays out all arrays; the kernels allocate nothing and know no objects. */
-const FLAGS = '-O3 --noAssert --runtime stub --enable simd --importMemory --maximumMemory 65536 --initialMemory 1'.split(' ');
+const FLAGS =
+  '-O3 --noAssert --runtime stub --enable simd --importMemory --maximumMemory 65536 --initialMemory 1'.split(' ');
 
 for (const file of readdirSync(here).filter((name) => name.endsWith('.ts'))) {
   const name = file.slice(0, -3);

@@ -1,3 +1,4 @@
+import { BEYOND_REGION, OUTSIDE_REGION } from '../geometry/unbounded.js';
 import type { Material } from '../materials/material.js';
 
 /** What happens on a side of the outline. Sides that are not named are closed. */
@@ -20,6 +21,16 @@ export interface Setup {
   readonly materials: Readonly<Record<string, Material>>;
   /** Current density out of the page, A/m^2, by region; absent regions carry none. */
   readonly currentDensity?: Readonly<Record<string, number>>;
+  /** Current out of the page through a whole region, A (turns x current), spread evenly over its area; adds to the density. */
+  readonly current?: Readonly<Record<string, number>>;
   /** By side name; sides not named are closed. */
   readonly edges?: Readonly<Record<string, EdgeCondition>>;
 }
+
+/** What fills the region of that name: as set up, or vacuum round an open outline; undefined where nothing is said. */
+export function materialOf(setup: Setup, region: string): Material | undefined {
+  const open = region === OUTSIDE_REGION || region === BEYOND_REGION;
+  return setup.materials[region] ?? (open ? VACUUM : undefined);
+}
+
+const VACUUM: Material = { kind: 'linear', muR: 1 };

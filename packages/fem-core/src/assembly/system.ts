@@ -1,15 +1,18 @@
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
 import type { ElementRule } from '../elements/six-node.js';
-import { FULL_RULE, globalNode, gradients, nodeCoordinates, STRAIGHT_RULE } from '../elements/six-node.js';
+import { FULL_RULE, globalNode, gradients, nodeCoordinates, placeOf, STRAIGHT_RULE } from '../elements/six-node.js';
 import type { LocalLaw } from '../materials/constitutive.js';
-import { evaluateMaterial, remanenceOf } from '../materials/constitutive.js';
+import { evaluateMaterial, newLaw, remanenceAt } from '../materials/constitutive.js';
 import type { Material } from '../materials/material.js';
+import { isNonlinear } from '../materials/material.js';
 import type { Mesh } from '../mesh/mesh.js';
 import { nodeCount, triangleCount } from '../mesh/mesh.js';
 import type { SymmetricPattern } from '../sparse/pattern.js';
 import { multiply } from '../sparse/pattern.js';
+import { currentDensities } from './currents.js';
 import type { Setup } from './setup.js';
+import { materialOf } from './setup.js';
 import type { Unknowns } from './unknowns.js';
 
 /**
@@ -27,8 +30,8 @@ export interface System {
   readonly scatter: Int32Array;
   /** Material by region number. */
   readonly materials: readonly Material[];
-  /** Triangles whose material is a curve. */
-  readonly curved: Int32Array;
+  /** Triangles whose reluctivity depends on the field. */
+  readonly nonlinear: Int32Array;
   /** Float64Array(entries): what the triangles of constant reluctivity add to the tangent, whatever the field. */
   readonly linearValues: Float64Array;
   /** Float64Array(nodes): integral of J N + nu Br . curl N. */
@@ -42,20 +45,20 @@ export interface System {
 export function buildSystem(mesh: Mesh, setup: Setup, unknowns: Unknowns): System {
   const materials = materialsOf(mesh, setup);
   const { pattern, scatter } = patternOf(mesh, unknowns);
-  const curved: number[] = [];
+  const nonlinear: number[] = [];
   const linearValues = new Float64Array(pattern.row.length);
   const source = new Float64Array(nodeCount(mesh));
-  const density = mesh.regionNames.map((name) => setup.currentDensity?.[name] ?? 0);
+  const density = currentDensities(mesh, setup);
   const work = newWork();
   for (let t = 0; t < triangleCount(mesh); t++) {
     const region = mesh.triangleToRegion[t];
     const material = materials[region];
     addSource(mesh, t, material, density[region], source, work);
-    if (material.kind === 'curve') {
-      curved.push(t);
+    if (isNonlinear(material)) {
+      nonlinear.push(t);
       continue;
     }
-    const { nu } = evaluateMaterial(material, 0, 0, work.law);
+    const { nu } = evaluateMaterial(material, 0, 0, 0, 0, work.law);
     work.matrix.fill(0);
     nodeCoordinates(mesh, t, work.coordinates);
     const rule = ruleFor(mesh, t, false);
@@ -69,7 +72,7 @@ export function buildSystem(mesh: Mesh, setup: Setup, unknowns: Unknowns): Syste
   if (unknowns.fixed.some((value) => value !== 0)) {
     for (let t = 0; t < triangleCount(mesh); t++) {
       const material = materials[mesh.triangleToRegion[t]];
-      if (material.kind !== 'curve') addResidual(mesh, t, material, unknowns.fixed, nodal, work);
+      if (!isNonlinear(material)) addResidual(mesh, t, material, unknowns.fixed, nodal, work);
     }
   }
   return {
@@ -78,7 +81,7 @@ export function buildSystem(mesh: Mesh, setup: Setup, unknowns: Unknowns): Syste
     pattern,
     scatter,
     materials,
-    curved: Int32Array.from(curved),
+    nonlinear: Int32Array.from(nonlinear),
     linearValues,
     source,
     offset: gatherToUnknowns(unknowns, nodal, new Float64Array(unknowns.count)),
@@ -112,7 +115,7 @@ const newWork = (): Work => ({
   grad: new Float64Array(12),
   matrix: new Float64Array(21),
   local: new Float64Array(6),
-  law: { nu: 0, spread: 0, energy: 0 },
+  law: newLaw(),
 });
 
 function addOuter(grad: Float64Array, weight: number, matrix: Float64Array): void {
@@ -148,15 +151,18 @@ function scatterMatrix(
   }
 }
 
+/** Currents, and the remanence of magnets of constant reluctivity. */
 function addSource(mesh: Mesh, t: number, material: Material, density: number, source: Float64Array, work: Work): void {
-  const [rx, ry] = remanenceOf(material);
-  if (density === 0 && rx === 0 && ry === 0) return;
-  const { nu } = evaluateMaterial(material, 0, 0, work.law);
-  nodeCoordinates(mesh, t, work.coordinates);
+  const magnetic = (material.kind === 'magnet' || material.kind === 'directed-magnet') && !isNonlinear(material);
+  if (density === 0 && !magnetic) return;
+  const { coordinates, grad } = work;
+  const { nu } = evaluateMaterial(material, 0, 0, 0, 0, work.law);
+  nodeCoordinates(mesh, t, coordinates);
   for (let q = 0; q < FULL_RULE.count; q++) {
-    const weight = FULL_RULE.weights[q] * gradients(work.coordinates, FULL_RULE.slopes, 12 * q, work.grad);
+    const weight = FULL_RULE.weights[q] * gradients(coordinates, FULL_RULE.slopes, 12 * q, grad);
+    const [rx, ry] = magnetic ? remanenceAt(material, ...placeOf(coordinates, q)) : [0, 0];
     for (let i = 0; i < 6; i++) {
-      const curl = rx * work.grad[6 + i] - ry * work.grad[i];
+      const curl = rx * grad[6 + i] - ry * grad[i];
       source[globalNode(mesh, t, i)] += weight * (density * FULL_RULE.values[6 * q + i] + nu * curl);
     }
   }
@@ -165,7 +171,7 @@ function addSource(mesh: Mesh, t: number, material: Material, density: number, s
 function materialsOf(mesh: Mesh, setup: Setup): Material[] {
   const faults: Fault[] = [];
   const materials = mesh.regionNames.map((name, region): Material => {
-    const material = setup.materials[name];
+    const material = materialOf(setup, name);
     if (material !== undefined) return material;
     if (mesh.triangleToRegion.includes(region)) {
       faults.push({ code: 'no-material', key: name, wrong: 'has no material', remedy: 'name it in the setup' });
@@ -266,7 +272,7 @@ export function assemble(
   const nodal = new Float64Array(potential.length);
   const work = newWork();
   tangent?.set(system.linearValues);
-  for (const t of system.curved) {
+  for (const t of system.nonlinear) {
     work.matrix.fill(0);
     addResidual(mesh, t, materials[mesh.triangleToRegion[t]], potential, nodal, work);
     if (tangent !== undefined) scatterMatrix(mesh, unknowns, system.scatter, t, work.matrix, tangent);
@@ -275,7 +281,10 @@ export function assemble(
   for (let i = 0; i < residual.length; i++) residual[i] += linear[i] + offset[i];
 }
 
-/** Adds integral nu grad A . grad N_i (the remanence is in `source`), and for curves the tangent to work.matrix. */
+/**
+ * Adds the triangle's residual: for constant reluctivity integral nu grad A . grad N_i (the remanence is in `source`), else
+ * integral H . curl N_i, and then the tangent integral curl N_i . dH/dB curl N_j to work.matrix.
+ */
 function addResidual(
   mesh: Mesh,
   t: number,
@@ -285,7 +294,7 @@ function addResidual(
   work: Work,
 ): void {
   const { coordinates, grad, local, law } = work;
-  const varies = material.kind === 'curve';
+  const varies = isNonlinear(material);
   const rule = ruleFor(mesh, t, varies);
   nodeCoordinates(mesh, t, coordinates);
   for (let i = 0; i < 6; i++) local[i] = potential[globalNode(mesh, t, i)];
@@ -297,20 +306,21 @@ function addResidual(
       gx += local[i] * grad[i];
       gy += local[i] * grad[6 + i];
     }
-    evaluateMaterial(material, gy, -gx, law);
-    const flux = weight * law.nu;
-    for (let i = 0; i < 6; i++) nodal[globalNode(mesh, t, i)] += flux * (gx * grad[i] + gy * grad[6 + i]);
-    if (!varies) continue;
-    addOuter(grad, flux, work.matrix);
-    addRankOne(grad, gx, gy, weight * law.spread, work.matrix);
+    const [x, y] = material.kind === 'directed-magnet' && varies ? placeOf(coordinates, q) : [0, 0];
+    evaluateMaterial(material, gy, -gx, x, y, law);
+    const [hx, hy] = varies ? [law.hx, law.hy] : [law.nu * gy, -law.nu * gx];
+    for (let i = 0; i < 6; i++) nodal[globalNode(mesh, t, i)] += weight * (hx * grad[6 + i] - hy * grad[i]);
+    if (varies) addTangent(grad, law, weight, work.matrix);
   }
 }
 
-/** The part of the tangent from d nu: spread (B . curl N_i)(B . curl N_j) = spread (grad A . grad N_i)(grad A . grad N_j). */
-function addRankOne(grad: Float64Array, gx: number, gy: number, weight: number, matrix: Float64Array): void {
+/** weight x curl N_i . dH/dB curl N_j, curl N = (dN/dy, -dN/dx). */
+function addTangent(grad: Float64Array, law: LocalLaw, weight: number, matrix: Float64Array): void {
+  const [xx, xy, yy] = [weight * law.xx, weight * law.xy, weight * law.yy];
   let p = 0;
   for (let i = 0; i < 6; i++) {
-    const di = weight * (gx * grad[i] + gy * grad[6 + i]);
-    for (let j = 0; j <= i; j++) matrix[p++] += di * (gx * grad[j] + gy * grad[6 + j]);
+    const cx = xx * grad[6 + i] - xy * grad[i];
+    const cy = xy * grad[6 + i] - yy * grad[i];
+    for (let j = 0; j <= i; j++) matrix[p++] += cx * grad[6 + j] - cy * grad[j];
   }
 }

@@ -1,8 +1,9 @@
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
-import { FULL_RULE, gradients, nodeCoordinates } from '../elements/six-node.js';
+import { regionAreas } from '../elements/areas.js';
 import type { Mesh } from '../mesh/mesh.js';
-import { cornerCount, edgeCount, nodeCount, nodePoint, triangleCount } from '../mesh/mesh.js';
+import { cornerCount, edgeCount, nodeCount, nodePoint } from '../mesh/mesh.js';
+import { currentDensities } from './currents.js';
 import type { EdgeCondition, Setup } from './setup.js';
 
 /**
@@ -43,6 +44,7 @@ export function numberUnknowns(mesh: Mesh, setup: Setup): Unknowns {
       });
     } else for (const node of edgeNodes) held.set(node, heldValue(condition, ...nodePoint(mesh, node)));
   }
+  if (mesh.beyond !== undefined) held.set(mesh.beyond.infinity, 0);
   return collect(mesh, setup, tie, held);
 }
 
@@ -60,6 +62,15 @@ function heldValue(condition: EdgeCondition, x: number, y: number): number {
 function conditionsOf(mesh: Mesh, setup: Setup): EdgeCondition[] {
   const faults: Fault[] = [];
   for (const side of Object.keys(setup.edges ?? {})) {
+    if (mesh.beyond !== undefined) {
+      faults.push({
+        code: 'no-side',
+        key: `edges.${side}`,
+        wrong: 'the section lies in unbounded space and has no sides',
+        remedy: 'leave the condition out, or let the section be bounded',
+      });
+      continue;
+    }
     if (mesh.sideNames.includes(side)) continue;
     faults.push({
       code: 'unknown-side',
@@ -68,7 +79,10 @@ function conditionsOf(mesh: Mesh, setup: Setup): EdgeCondition[] {
       remedy: `sides here are: ${mesh.sideNames.join(', ')}`,
     });
   }
-  const conditions = mesh.sideNames.map((side): EdgeCondition => setup.edges?.[side] ?? { kind: 'closed' });
+  const conditions = mesh.sideNames.map((side): EdgeCondition => {
+    if (mesh.beyond !== undefined) return { kind: 'repeating' }; // the rim and its image
+    return setup.edges?.[side] ?? { kind: 'closed' };
+  });
   for (let e = 0; e < edgeCount(mesh); e++) {
     const side = mesh.edgeToSide[e];
     if (side < 0) continue;
@@ -173,19 +187,12 @@ const onlyRepeating = (setup: Setup): boolean =>
 
 /** With natural and repeating sides alone the currents must sum to zero, or no field exists (Ampere's law). */
 function checkReturn(mesh: Mesh, setup: Setup): void {
-  const density = mesh.regionNames.map((name) => setup.currentDensity?.[name] ?? 0);
+  const areas = regionAreas(mesh);
   let [net, gross] = [0, 0];
-  const coordinates = new Float64Array(12);
-  const grad = new Float64Array(12);
-  for (let t = 0; t < triangleCount(mesh); t++) {
-    nodeCoordinates(mesh, t, coordinates);
-    let area = 0;
-    for (let q = 0; q < FULL_RULE.count; q++) {
-      area += FULL_RULE.weights[q] * gradients(coordinates, FULL_RULE.slopes, 12 * q, grad);
-    }
-    net += density[mesh.triangleToRegion[t]] * area;
-    gross += Math.abs(density[mesh.triangleToRegion[t]]) * area;
-  }
+  currentDensities(mesh, setup).forEach((density, region) => {
+    net += density * areas[region];
+    gross += Math.abs(density) * areas[region];
+  });
   // Eight edges round a circle miss 8e-4 of its area: no reason to refuse bars that carry the same current.
   if (Math.abs(net) <= 1e-3 * gross) return;
   throw new InputError([

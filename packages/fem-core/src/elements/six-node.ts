@@ -64,6 +64,18 @@ export const STRAIGHT_RULE = tabulate(RULE_2);
 /** For curved triangles, varying reluctivity, and integrals of values. */
 export const FULL_RULE = tabulate(RULE_5);
 
+/** Where point q of the full rule lies in the triangle of these nodes. */
+export function placeOf(coordinates: Float64Array, q: number): readonly [x: number, y: number] {
+  let x = 0;
+  let y = 0;
+  for (let i = 0; i < 6; i++) {
+    const n = FULL_RULE.values[6 * q + i];
+    x += n * coordinates[2 * i];
+    y += n * coordinates[2 * i + 1];
+  }
+  return [x, y];
+}
+
 /** Coordinates of the six nodes of triangle t, written into `out` (Float64Array(12), x y x y ...) and returned. */
 export function nodeCoordinates(mesh: Mesh, t: number, out: Float64Array): Float64Array {
   for (let k = 0; k < 3; k++) {

@@ -1,10 +1,10 @@
+import { materialOf } from '../assembly/setup.js';
 import type { System } from '../assembly/system.js';
 import { gatherToUnknowns, potentialOf } from '../assembly/system.js';
-import { FULL_RULE, globalNode, gradients, nodeCoordinates } from '../elements/six-node.js';
+import { FULL_RULE, globalNode, gradients, nodeCoordinates, placeOf } from '../elements/six-node.js';
 import type { Field } from '../field/field.js';
 import type { Functional } from '../field/functionals.js';
-import type { LocalLaw } from '../materials/constitutive.js';
-import { evaluateMaterial } from '../materials/constitutive.js';
+import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import type { Material } from '../materials/material.js';
 import { triangleCount } from '../mesh/mesh.js';
 import type { Factor } from '../sparse/cholesky.js';
@@ -39,7 +39,7 @@ export interface ErrorEstimate {
  * K z = g under the tangent K at the solution, J(A) - J(A_h) = K(e_A, e_z) for the errors of both (Galerkin orthogonality),
  * and both errors are read off the gap between recovered and element gradients:
  *
- *   share of triangle T = | integral over T of  e_z . (nu + spread g g^T) e_A |.
+ *   share of triangle T = | integral over T of  curl e_z . dH/dB curl e_A |.
  *
  * Becker, Rannacher, An optimal control approach to a posteriori error estimation, Acta Numerica 10, 2001; gradients by
  * `recoverGradients`.
@@ -57,7 +57,7 @@ export function estimateGoalErrors(
   const shares = goals.map(() => new Float64Array(m));
   const at = new Float64Array(12);
   const grad = new Float64Array(12);
-  const law: LocalLaw = { nu: 0, spread: 0, energy: 0 };
+  const law = newLaw();
   let energy = 0;
   for (let t = 0; t < m; t++) {
     const material = system.materials[mesh.triangleToRegion[t]];
@@ -65,12 +65,14 @@ export function estimateGoalErrors(
     for (let q = 0; q < FULL_RULE.count; q++) {
       const weight = FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
       const [gx, gy, ex, ey] = gradientError(field, field.potential, recovered, t, q, grad);
-      evaluateMaterial(material, gy, -gx, law);
-      const along = gx * ex + gy * ey;
-      energy += 0.5 * weight * (law.nu * (ex * ex + ey * ey) + law.spread * along * along);
+      evaluateMaterial(material, gy, -gx, ...placeOf(at, q), law);
+      // dH of the error: dB = (ey, -ex), and the same for the duals.
+      const hx = law.xx * ey - law.xy * ex;
+      const hy = law.xy * ey - law.yy * ex;
+      energy += 0.5 * weight * (hx * ey - hy * ex);
       for (let k = 0; k < goals.length; k++) {
         const [, , zx, zy] = gradientError(field, duals[k], recoveredDuals[k], t, q, grad);
-        shares[k][t] += weight * (law.nu * (ex * zx + ey * zy) + law.spread * along * (gx * zx + gy * zy));
+        shares[k][t] += weight * (hx * zy - hy * zx);
       }
     }
     for (const share of shares) share[t] = Math.abs(share[t]);
@@ -121,7 +123,7 @@ function smoothParts(field: Field): Int32Array {
   const { mesh, setup } = field;
   const seen: Material[] = [];
   const partOf = mesh.regionNames.map((name) => {
-    const material = setup.materials[name];
+    const material = materialOf(setup, name);
     if (material === undefined) return -1;
     const known = seen.findIndex((other) => sameLaw(other, material));
     return known >= 0 ? known : seen.push(material) - 1;
@@ -135,5 +137,5 @@ function sameLaw(a: Material, b: Material): boolean {
   if (a.kind === 'magnet' && b.kind === 'magnet') {
     return a.recoil === b.recoil && a.remanence[0] === b.remanence[0] && a.remanence[1] === b.remanence[1];
   }
-  return false;
+  return a === b;
 }

@@ -1,6 +1,8 @@
+import { materialOf } from '../assembly/setup.js';
 import { MU0 } from '../base/constants.js';
 import { InputError } from '../base/fault.js';
 import { globalNode } from '../elements/six-node.js';
+import { BEYOND_REGION } from '../geometry/unbounded.js';
 import { cornerCount, nodeCount, triangleCount } from '../mesh/mesh.js';
 import type { Field } from './field.js';
 import type { Functional } from './functionals.js';
@@ -57,8 +59,10 @@ export function forceOn(field: Field, regions: readonly string[], about: readonl
 function airRegions(field: Field): string[] {
   const { mesh, setup } = field;
   return mesh.regionNames.filter((name) => {
-    const material = setup.materials[name];
-    return material?.kind === 'linear' && material.muR === 1 && (setup.currentDensity?.[name] ?? 0) === 0;
+    if (name === BEYOND_REGION) return false; // an image: distances there are not those of space
+    const material = materialOf(setup, name);
+    const current = (setup.currentDensity?.[name] ?? 0) !== 0 || (setup.current?.[name] ?? 0) !== 0;
+    return material?.kind === 'linear' && material.muR === 1 && !current;
   });
 }
 

@@ -1,9 +1,8 @@
+import { materialOf } from '../assembly/setup.js';
 import { MU0 } from '../base/constants.js';
 import { FULL_RULE, globalNode, gradients, nodeCoordinates } from '../elements/six-node.js';
-import type { LocalLaw } from '../materials/constitutive.js';
-import { evaluateMaterial, remanenceOf } from '../materials/constitutive.js';
+import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import type { Material } from '../materials/material.js';
-import type { Mesh } from '../mesh/mesh.js';
 import { triangleCount } from '../mesh/mesh.js';
 import type { Field } from './field.js';
 
@@ -22,8 +21,8 @@ export interface FieldSample {
   hy: number;
   /** J/m^3. */
   energy: number;
+  /** Chord reluctivity, m/H. */
   nu: number;
-  spread: number;
   material: Material;
   /** Float64Array(12): d/dx of the six shape functions here, then d/dy, 1/m. */
   readonly grad: Float64Array;
@@ -42,7 +41,7 @@ export function forEachSample(
   const wanted = mesh.regionNames.map((name) => regions === 'all' || regions.includes(name));
   const at = new Float64Array(12);
   const grad = new Float64Array(12);
-  const law: LocalLaw = { nu: 0, spread: 0, energy: 0 };
+  const law = newLaw();
   const sample: FieldSample = {
     triangle: 0,
     x: 0,
@@ -55,15 +54,13 @@ export function forEachSample(
     hy: 0,
     energy: 0,
     nu: 0,
-    spread: 0,
-    material: { kind: 'linear', muR: 1 },
+    material: VACUUM,
     grad,
   };
   for (let t = 0; t < triangleCount(mesh); t++) {
     if (!wanted[mesh.triangleToRegion[t]]) continue;
     nodeCoordinates(mesh, t, at);
-    const material = setup.materials[mesh.regionNames[mesh.triangleToRegion[t]]];
-    const [rx, ry] = remanenceOf(material);
+    const material = materialOf(setup, mesh.regionNames[mesh.triangleToRegion[t]]) ?? VACUUM;
     for (let q = 0; q < FULL_RULE.count; q++) {
       const det = gradients(at, FULL_RULE.slopes, 12 * q, grad);
       let x = 0;
@@ -80,7 +77,7 @@ export function forEachSample(
         gx += value * grad[i];
         gy += value * grad[6 + i];
       }
-      evaluateMaterial(material, gy, -gx, law);
+      evaluateMaterial(material, gy, -gx, x, y, law);
       sample.triangle = t;
       sample.x = x;
       sample.y = y;
@@ -88,16 +85,17 @@ export function forEachSample(
       sample.a = a;
       sample.bx = gy;
       sample.by = -gx;
-      sample.hx = law.nu * (gy - rx);
-      sample.hy = law.nu * (-gx - ry);
+      sample.hx = law.hx;
+      sample.hy = law.hy;
       sample.energy = law.energy;
       sample.nu = law.nu;
-      sample.spread = law.spread;
       sample.material = material;
       visit(sample);
     }
   }
 }
+
+const VACUUM: Material = { kind: 'linear', muR: 1 };
 
 export interface RegionMeans {
   /** m^2. */
@@ -160,20 +158,6 @@ export function exceededIn(field: Field, regions: readonly string[], share: numb
     if (passed >= share * total) return b;
   }
   return samples.at(-1)?.b ?? 0; // the whole area, but for rounding
-}
-
-/** Area of each region, m^2, curved edges included. */
-export function regionAreas(mesh: Mesh): number[] {
-  const areas = mesh.regionNames.map(() => 0);
-  const at = new Float64Array(12);
-  const grad = new Float64Array(12);
-  for (let t = 0; t < triangleCount(mesh); t++) {
-    nodeCoordinates(mesh, t, at);
-    for (let q = 0; q < FULL_RULE.count; q++) {
-      areas[mesh.triangleToRegion[t]] += FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
-    }
-  }
-  return areas;
 }
 
 /** Means of the field triangle by triangle. */

@@ -1,6 +1,8 @@
-import { globalNode, shapeValues } from '../elements/six-node.js';
-import type { LocalLaw } from '../materials/constitutive.js';
-import { evaluateMaterial, remanenceOf } from '../materials/constitutive.js';
+import { materialOf } from '../assembly/setup.js';
+import { MU0 } from '../base/constants.js';
+import { globalNode, nodeCoordinates, shapeValues } from '../elements/six-node.js';
+import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
+import type { Material } from '../materials/material.js';
 import type { Field } from './field.js';
 import type { Locator, Spot } from './locate.js';
 import { gradientsAt } from './locate.js';
@@ -15,38 +17,84 @@ export interface FieldValue {
   /** Field strength, A/m. */
   readonly hx: number;
   readonly hy: number;
+  /** Relative permeability: B/(mu0 H), of magnets that of the recoil. */
+  readonly muR: number;
+  /** J/m^3: integral of H dB (magnets: from the remanence), and H . B less that. */
+  readonly energy: number;
+  readonly coenergy: number;
 }
 
-const shapes = new Float64Array(6);
-const grad = new Float64Array(12);
-const law: LocalLaw = { nu: 0, spread: 0, energy: 0 };
-
-/** A, B and H at a spot of a triangle, straight from the elements. */
-export function valueAtSpot(field: Field, spot: Spot): FieldValue {
-  const { mesh, potential, setup } = field;
-  shapeValues(spot.xi, spot.eta, shapes);
-  gradientsAt(mesh, spot, grad);
-  let a = 0;
-  let gx = 0;
-  let gy = 0;
+/**
+ * A, B and H at a spot of a triangle.
+ * @param recovered  gradient of A as `recoverGradients` gives it, Float64Array(12 m): B is read from it; straight from the
+ * elements where it is absent
+ */
+export function valueAtSpot(field: Field, spot: Spot, recovered?: Float64Array): FieldValue {
+  const { mesh, potential } = field;
+  const shapes = shapeValues(spot.xi, spot.eta, new Float64Array(6));
+  const grad = new Float64Array(12);
+  if (recovered === undefined) gradientsAt(mesh, spot, grad);
+  const at = nodeCoordinates(mesh, spot.triangle, new Float64Array(12));
+  let [a, gx, gy, x, y] = [0, 0, 0, 0, 0];
   for (let i = 0; i < 6; i++) {
     const value = potential[globalNode(mesh, spot.triangle, i)];
     a += value * shapes[i];
-    gx += value * grad[i];
-    gy += value * grad[6 + i];
+    x += at[2 * i] * shapes[i];
+    y += at[2 * i + 1] * shapes[i];
+    gx += recovered === undefined ? value * grad[i] : shapes[i] * recovered[12 * spot.triangle + i];
+    gy += recovered === undefined ? value * grad[6 + i] : shapes[i] * recovered[12 * spot.triangle + 6 + i];
   }
-  const bx = gy;
-  const by = -gx;
-  const material = setup.materials[mesh.regionNames[mesh.triangleToRegion[spot.triangle]]];
-  evaluateMaterial(material, bx, by, law);
-  const [rx, ry] = remanenceOf(material);
-  return { a, bx, by, hx: law.nu * (bx - rx), hy: law.nu * (by - ry) };
+  const material = materialOf(field.setup, mesh.regionNames[mesh.triangleToRegion[spot.triangle]]) ?? VACUUM;
+  return describePoint(material, a, gy, -gx, x, y);
 }
 
-/** The field at (x, y) in metres; undefined outside the section. */
-export function valueAt(field: Field, locator: Locator, x: number, y: number): FieldValue | undefined {
+function describePoint(material: Material, a: number, bx: number, by: number, x: number, y: number): FieldValue {
+  const { hx, hy, nu, energy } = evaluateMaterial(material, bx, by, x, y, newLaw());
+  return { a, bx, by, hx, hy, muR: 1 / (MU0 * nu), energy, coenergy: hx * bx + hy * by - energy };
+}
+
+const VACUUM: Material = { kind: 'linear', muR: 1 };
+
+/**
+ * The field at (x, y) in metres; undefined outside the section. In unbounded space every point has a value.
+ * @param recovered  see `valueAtSpot`
+ */
+export function valueAt(
+  field: Field,
+  locator: Locator,
+  x: number,
+  y: number,
+  recovered?: Float64Array,
+): FieldValue | undefined {
+  const { beyond } = field.mesh;
+  if (beyond !== undefined && Math.hypot(x - beyond.centre[0], y - beyond.centre[1]) > beyond.radius) {
+    return valueBeyond(field, beyond, locator, x, y, recovered);
+  }
   const spot = locator.find(x, y);
-  return spot === undefined ? undefined : valueAtSpot(field, spot);
+  return spot === undefined ? undefined : valueAtSpot(field, spot, recovered);
+}
+
+/**
+ * Outside the circle of an unbounded section, by its image: the point at distance r lies at R^2/r there, under the same
+ * angle, with the same A. Of the gradient the part round the circle keeps its sign and the radial part changes it; both
+ * shrink by (R/r)^2.
+ */
+function valueBeyond(
+  field: Field,
+  { centre, radius, imageCentre }: NonNullable<Field['mesh']['beyond']>,
+  locator: Locator,
+  x: number,
+  y: number,
+  recovered?: Float64Array,
+): FieldValue | undefined {
+  const [dx, dy] = [x - centre[0], y - centre[1]];
+  const shrink = (radius / Math.hypot(dx, dy)) ** 2;
+  const spot = locator.find(imageCentre[0] + shrink * dx, imageCentre[1] + shrink * dy);
+  if (spot === undefined) return undefined;
+  const image = valueAtSpot(field, spot, recovered);
+  const [gx, gy] = [-image.by, image.bx];
+  const radial = (2 * (gx * dx + gy * dy)) / (dx * dx + dy * dy);
+  return describePoint(VACUUM, image.a, shrink * (gy - radial * dy), -shrink * (gx - radial * dx), x, y);
 }
 
 /** The field at `count` equally spaced points from one end to the other, ends included; undefined for points outside. */
@@ -56,10 +104,11 @@ export function valuesAlong(
   from: readonly [number, number],
   to: readonly [number, number],
   count: number,
+  recovered?: Float64Array,
 ): (FieldValue | undefined)[] {
   return Array.from({ length: count }, (_, i) => {
     const s = count === 1 ? 0.5 : i / (count - 1);
-    return valueAt(field, locator, from[0] + s * (to[0] - from[0]), from[1] + s * (to[1] - from[1]));
+    return valueAt(field, locator, from[0] + s * (to[0] - from[0]), from[1] + s * (to[1] - from[1]), recovered);
   });
 }
 

@@ -1,6 +1,8 @@
 import { MU0 } from '../base/constants.js';
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
+import type { CubicPoint } from './monotone-cubic.js';
+import { evaluatePiece, integralsAtRows, monotoneSlopes, pieceOf } from './monotone-cubic.js';
 
 /**
  * A magnetisation curve as H(B), odd in B: piecewise cubic through the rows of a table, going on with slope mu0 beyond
@@ -33,12 +35,7 @@ export function buildBHCurve(rows: readonly (readonly [H: number, B: number])[])
   const h = Float64Array.from(all, (row) => row[0]);
   const b = Float64Array.from(all, (row) => row[1]);
   const slope = slopesOf(b, h);
-  const energy = new Float64Array(b.length);
-  for (let i = 1; i < b.length; i++) {
-    const d = b[i] - b[i - 1]; // integral of the cubic Hermite piece
-    energy[i] = energy[i - 1] + d * (0.5 * (h[i - 1] + h[i]) + (d / 12) * (slope[i - 1] - slope[i]));
-  }
-  return { b, h, slope, energy };
+  return { b, h, slope, energy: integralsAtRows(b, h, slope) };
 }
 
 /** Everything wrong with a B-H table; `key` of a fault is `row N`, counted from 1. */
@@ -72,34 +69,17 @@ export function findTableFaults(rows: readonly (readonly [H: number, B: number])
         );
       }
     }
-    [h0, b0] = [h, b];
+    if (Number.isFinite(h) && Number.isFinite(b)) [h0, b0] = [h, b];
   });
   return faults;
 }
 
+/** As `monotoneSlopes`, but at 0, where H(B) is odd: its chord over [-b1, b1] is the first; and never steeper than vacuum at the end. */
 function slopesOf(b: Float64Array, h: Float64Array): Float64Array {
-  const last = b.length - 1;
-  const slope = new Float64Array(last + 1);
-  const chord = (i: number): number => (h[i + 1] - h[i]) / (b[i + 1] - b[i]);
-  for (let i = 1; i < last; i++) {
-    const d0 = b[i] - b[i - 1];
-    const d1 = b[i + 1] - b[i];
-    const w0 = 2 * d1 + d0;
-    const w1 = d1 + 2 * d0;
-    slope[i] = (w0 + w1) / (w0 / chord(i - 1) + w1 / chord(i));
-  }
-  // H(B) is odd, so its chord over [-b1, b1] is the first chord; the rows next to 0 pull towards it.
-  slope[0] = chord(0);
-  slope[last] = endSlope(b, chord, last);
+  const slope = monotoneSlopes(b, h);
+  slope[0] = h[1] / b[1];
+  slope[slope.length - 1] = Math.min(1 / MU0, slope[slope.length - 1]);
   return slope;
-}
-
-/** Slope of the parabola through the last three rows, kept between a quarter and three times the last chord, and to 1/mu0. */
-function endSlope(b: Float64Array, chord: (i: number) => number, last: number): number {
-  const d1 = chord(last - 1);
-  if (last < 2) return d1;
-  const share = (b[last] - b[last - 1]) / (b[last] - b[last - 2]);
-  return Math.min(1 / MU0, Math.max(0.25 * d1, Math.min(3 * d1, d1 + share * (d1 - chord(last - 2)))));
 }
 
 /** H in A/m and dH/dB in m/H at flux density b >= 0, and the energy density integral of H dB in J/m^3. */
@@ -119,24 +99,11 @@ export function evaluateCurve(curve: BHCurve, b: number, out: CurvePoint): Curve
     out.energy = curve.energy[last] + d * (curve.h[last] + (0.5 * d) / MU0);
     return out;
   }
-  let low = 0;
-  let high = last;
-  while (high - low > 1) {
-    const middle = (low + high) >> 1;
-    if (curve.b[middle] <= b) low = middle;
-    else high = middle;
-  }
-  const d = curve.b[high] - curve.b[low];
-  const s = (b - curve.b[low]) / d;
-  const h0 = curve.h[low];
-  const h1 = curve.h[high];
-  const m0 = d * curve.slope[low];
-  const m1 = d * curve.slope[high];
-  // Hermite piece h0 + s (m0 + s (c + s e)) with value and slope given at both ends.
-  const c = 3 * (h1 - h0) - 2 * m0 - m1;
-  const e = 2 * (h0 - h1) + m0 + m1;
-  out.h = h0 + s * (m0 + s * (c + s * e));
-  out.slope = (m0 + s * (2 * c + 3 * s * e)) / d;
-  out.energy = curve.energy[low] + d * s * (h0 + s * (m0 / 2 + s * (c / 3 + (s * e) / 4)));
+  evaluatePiece(curve.b, curve.h, curve.slope, curve.energy, pieceOf(curve.b, b), b, piece);
+  out.h = piece.value;
+  out.slope = piece.slope;
+  out.energy = piece.integral;
   return out;
 }
+
+const piece: CubicPoint = { value: 0, slope: 0, integral: 0 };

@@ -33,6 +33,23 @@ export interface Mesh {
   readonly edgeToMatch: Int32Array;
   /** Uint8Array(m): 1 where an edge of the triangle follows an arc, so that its map is quadratic. */
   readonly curved: Uint8Array;
+  /** Where the section lies in unbounded space: the circle the mesh of the space at hand ends on, and the image of the rest. */
+  readonly beyond?: Beyond;
+}
+
+/**
+ * What lies beyond a circle, turned inside out: the point at distance r from `centre` stands at R^2/r from `imageCentre`,
+ * under the same angle, with the same A (Kelvin transformation). The far rim of the image is tied to the rim of the circle.
+ */
+export interface Beyond {
+  readonly centre: Point;
+  /** R, metres. */
+  readonly radius: number;
+  readonly imageCentre: Point;
+  /** Number of the region of the image. */
+  readonly region: number;
+  /** Corner at `imageCentre`: infinity. */
+  readonly infinity: number;
 }
 
 export const cornerCount = (mesh: Mesh): number => mesh.xy.length / 2;

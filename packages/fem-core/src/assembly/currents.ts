@@ -1,0 +1,22 @@
+import { regionAreas } from '../elements/areas.js';
+import type { Mesh } from '../mesh/mesh.js';
+import type { Setup } from './setup.js';
+
+/**
+ * Current density of each region out of the page, A/m^2: Float64Array(regions). Currents given as a whole are spread over
+ * the area that the mesh covers, so that they are met exactly. In unbounded space the net current returns evenly through the
+ * image of what lies beyond: by Gauss's law that changes nothing but a constant of A within the circle.
+ */
+export function currentDensities(mesh: Mesh, setup: Setup): Float64Array {
+  const areas = regionAreas(mesh);
+  const density = Float64Array.from(mesh.regionNames, (name, region) => {
+    const whole = setup.current?.[name] ?? 0;
+    return (setup.currentDensity?.[name] ?? 0) + (whole === 0 || areas[region] === 0 ? 0 : whole / areas[region]);
+  });
+  if (mesh.beyond === undefined) return density;
+  const { region } = mesh.beyond;
+  density[region] = 0;
+  const net = density.reduce((sum, value, k) => sum + value * areas[k], 0);
+  density[region] = -net / areas[region];
+  return density;
+}
