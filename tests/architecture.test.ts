@@ -24,6 +24,8 @@ const houses: readonly (readonly [SourcePackage, Floors])[] = [
       ['estimate'],
       ['io'],
       ['pipeline.ts'],
+      ['probes'],
+      ['verify'],
       ['index.ts'],
     ],
   ],
