@@ -3,9 +3,12 @@ import type { System } from './assembly/system.js';
 import { buildSystem } from './assembly/system.js';
 import type { Unknowns } from './assembly/unknowns.js';
 import { numberUnknowns } from './assembly/unknowns.js';
+import type { Steps } from './base/steps.js';
+import { finish } from './base/steps.js';
 import { globalNode, shapeValues } from './elements/six-node.js';
 import type { ErrorEstimate } from './estimate/goal-error.js';
 import { estimateGoalErrors } from './estimate/goal-error.js';
+import type { RecoveredGradient } from './estimate/recovery.js';
 import { wantedSizes } from './estimate/wanted-sizes.js';
 import type { Field } from './field/field.js';
 import type { Functional } from './field/functionals.js';
@@ -16,8 +19,8 @@ import type { Mesh } from './mesh/mesh.js';
 import { nodeCount, nodePoint, triangleCount } from './mesh/mesh.js';
 import { meshSection, refineMesh } from './mesh/mesh-section.js';
 import { DEFAULT_LIMITS } from './mesh/refine.js';
-import type { NewtonOptions } from './solve/newton.js';
-import { solveNewton } from './solve/newton.js';
+import type { NewtonOptions, NewtonProgress } from './solve/newton.js';
+import { newtonSteps } from './solve/newton.js';
 import type { Factor } from './sparse/cholesky.js';
 
 /** A field with what is needed to go on from it. */
@@ -33,15 +36,20 @@ export interface SolvedField {
  * @throws InputError for setups that do not fit the section; a solve that does not converge is told in `field.report`
  */
 export function solveOnMesh(mesh: Mesh, setup: Setup, options: NewtonOptions = {}): SolvedField {
-  return solveFrom(undefined, mesh, setup, options);
+  return finish(solveFrom(undefined, mesh, setup, options));
 }
 
 /** The same, Newton's method starting from the field on an earlier mesh where there is one. */
-function solveFrom(before: Field | undefined, mesh: Mesh, setup: Setup, options: NewtonOptions): SolvedField {
+function* solveFrom(
+  before: Field | undefined,
+  mesh: Mesh,
+  setup: Setup,
+  options: NewtonOptions,
+): Steps<NewtonProgress, SolvedField> {
   const unknowns = numberUnknowns(mesh, setup);
   const system = buildSystem(mesh, setup, unknowns);
   const start = before === undefined ? {} : { start: carryOver(before, mesh, unknowns) };
-  const { potential, report, factor } = solveNewton(system, { ...options, ...start });
+  const { potential, report, factor } = yield* newtonSteps(system, { ...options, ...start });
   return { field: { mesh, setup, potential, report }, system, factor };
 }
 
@@ -58,20 +66,44 @@ export interface Goal {
   readonly value?: (field: Field) => number;
 }
 
+/** A goal at a field. */
+export interface GoalAt {
+  readonly value: number;
+  /** Derivative of the answer with respect to A. */
+  readonly functional: Functional;
+  /** Of its error bound in the relative error that steers the mesh; 0 steers nothing, and the bound is told all the same. */
+  readonly weight: number;
+  /**
+   * Of an answer that is not linear: what the error of B adds beyond the derivative, by triangle, in the answer's unit, not
+   * negative.
+   */
+  readonly remainder?: (recovered: RecoveredGradient) => Float64Array;
+}
+
 export interface AdaptiveOptions {
-  readonly goals: readonly Goal[];
+  /** Goals of constant form, to be weighed by `weights`, or all goals of a field, weights and all. */
+  readonly goals: readonly Goal[] | ((field: Field) => readonly GoalAt[]);
   /**
    * Weight of each goal's error bound in the relative error that steers the mesh, from the goals' values. The usual choice
-   * is 1/|value|; of several harmonics, 1/|the first|.
+   * is 1/|value|; of several harmonics, 1/|the first|. All 1 where absent.
    */
-  readonly weights: (values: readonly number[]) => readonly number[];
-  /** Wanted sum of weight x bound. */
+  readonly weights?: (values: readonly number[]) => readonly number[];
+  /** Wanted sum of weight x bound, or the largest of them. */
   readonly accuracy: number;
+  readonly combine?: 'sum' | 'largest';
   readonly maxMeshes?: number;
   readonly maxTriangles?: number;
   readonly newton?: NewtonOptions;
   /** Called after each mesh is solved. */
-  readonly onMesh?: (progress: { readonly mesh: number; readonly triangles: number; readonly error: number }) => void;
+  readonly onMesh?: (progress: MeshProgress) => void;
+}
+
+/** Told after each mesh. */
+export interface MeshProgress {
+  readonly mesh: number;
+  readonly triangles: number;
+  /** Estimated, as a share. */
+  readonly error: number;
 }
 
 export interface AdaptiveSolution {
@@ -80,71 +112,103 @@ export interface AdaptiveSolution {
   readonly values: readonly number[];
   /** Estimated bound of each value's error, in its unit. */
   readonly bounds: readonly number[];
-  /** Sum of weight x bound. */
+  /** Sum, or largest, of weight x bound. */
   readonly error: number;
   /** The wanted accuracy was met. */
   readonly accurate: boolean;
   readonly meshes: number;
   /** Newton steps over all meshes. */
   readonly newtonSteps: number;
+  /** Of the last mesh: what further solves on it can use. */
+  readonly system: System;
+  readonly factor: Factor | undefined;
+}
+
+/** `adaptiveSteps`, driven to the end. */
+export function solveAdaptively(section: Section, setup: Setup, options: AdaptiveOptions): AdaptiveSolution {
+  return finish(adaptiveSteps(section, setup, options));
 }
 
 /**
  * Solves, estimates, refines where the goals' errors come from, until the wanted accuracy is met, or a limit is.
  * Where Newton's method does not converge it stops at once; `field.report` tells.
  */
-export function solveAdaptively(section: Section, setup: Setup, options: AdaptiveOptions): AdaptiveSolution {
+export function* adaptiveSteps(
+  section: Section,
+  setup: Setup,
+  options: AdaptiveOptions,
+): Steps<NewtonProgress | MeshProgress, AdaptiveSolution> {
   const { maxMeshes = 12, maxTriangles = 200_000 } = options;
   const limits = { ...DEFAULT_LIMITS, maxTriangles: RUNAWAY * maxTriangles };
   let mesh = meshSection(section, limits);
   let newtonSteps = 0;
   let before: Field | undefined;
   for (let meshes = 1; ; meshes++) {
-    const { field, system, factor } = solveFrom(before, mesh, setup, options.newton ?? {});
+    const { field, system, factor } = yield* solveFrom(before, mesh, setup, options.newton ?? {});
     newtonSteps += field.report.steps;
-    const functionals = options.goals.map((goal) => goal.functional(field));
-    const values = options.goals.map(
-      (goal, k) => goal.value?.(field) ?? applyFunctional(functionals[k], field.potential),
-    );
+    const goals = goalsAt(options, field);
+    const values = goals.map((goal) => goal.value);
+    const found = { field, values, meshes, newtonSteps, system, factor };
     if (factor === undefined) {
-      const none = {
-        goals: [],
-        bounds: values.map(() => Infinity),
-        energy: Infinity,
-        recovered: new Float64Array(12 * triangleCount(mesh)),
-      };
-      return {
-        field,
-        estimate: none,
-        values,
-        bounds: none.bounds,
-        error: Infinity,
-        accurate: false,
-        meshes,
-        newtonSteps,
-      };
+      const bounds = values.map(() => Infinity);
+      const estimate = { goals: [], bounds, energy: Infinity, recovered: new Float64Array(12 * triangleCount(mesh)) };
+      return { ...found, estimate, bounds, error: Infinity, accurate: false };
     }
-    const estimate = estimateGoalErrors(system, field, factor, functionals);
-    const weights = options.weights(values);
-    const error = estimate.bounds.reduce((sum, bound, k) => sum + weighed(weights[k], bound), 0);
+    const linear = estimateGoalErrors(
+      system,
+      field,
+      factor,
+      goals.map((goal) => goal.functional),
+    );
+    const estimate = withRemainders(goals, linear);
+    const error = combined(options, goals, estimate.bounds);
+    yield { mesh: meshes, triangles: triangleCount(mesh), error };
     options.onMesh?.({ mesh: meshes, triangles: triangleCount(mesh), error });
     const accurate = field.report.converged && error <= options.accuracy; // the estimate is of a solved field
     const stuck = meshes >= maxMeshes || triangleCount(mesh) >= maxTriangles || !field.report.converged;
-    if (accurate || stuck) {
-      return { field, estimate, values, bounds: estimate.bounds, error, accurate, meshes, newtonSteps };
-    }
-    const shares = new Float64Array(triangleCount(mesh));
-    estimate.goals.forEach((share, k) => {
-      for (let t = 0; t < shares.length; t++) shares[t] += weighed(weights[k], share[t]);
-    });
+    if (accurate || stuck) return { ...found, estimate, bounds: estimate.bounds, error, accurate };
+    const shares = Float64Array.from({ length: triangleCount(mesh) }, (_, t) =>
+      combined(
+        options,
+        goals,
+        estimate.goals.map((share) => share[t]),
+      ),
+    );
     const most = Math.min(maxTriangles, GROWTH * triangleCount(mesh));
     mesh = refineMesh(mesh, wantedSizes(mesh, shares, AIM * options.accuracy, most), limits);
     before = field;
   }
 }
 
-/** No error is none under any weight: 1/|value| is infinite where there are no sources and so no field. */
-const weighed = (weight: number, error: number): number => (error === 0 ? 0 : weight * error);
+function goalsAt({ goals, weights }: AdaptiveOptions, field: Field): readonly GoalAt[] {
+  if (typeof goals === 'function') return goals(field);
+  const functionals = goals.map((goal) => goal.functional(field));
+  const values = goals.map((goal, k) => goal.value?.(field) ?? applyFunctional(functionals[k], field.potential));
+  const weight = weights?.(values);
+  return goals.map((_, k) => ({ value: values[k], functional: functionals[k], weight: weight?.[k] ?? 1 }));
+}
+
+function withRemainders(goals: readonly GoalAt[], estimate: ErrorEstimate): ErrorEstimate {
+  const bounds = [...estimate.bounds];
+  const shares = estimate.goals.map((share, k) => {
+    const remainder = goals[k].remainder?.(estimate.recovered);
+    if (remainder === undefined) return share;
+    bounds[k] += remainder.reduce((sum, part) => sum + part, 0);
+    return share.map((part, t) => part + remainder[t]);
+  });
+  return { ...estimate, goals: shares, bounds };
+}
+
+function combined({ combine }: AdaptiveOptions, goals: readonly GoalAt[], errors: readonly number[]): number {
+  let [sum, largest] = [0, 0];
+  for (let k = 0; k < errors.length; k++) {
+    // No error is none under any weight: 1/|value| is infinite where there are no sources and so no field.
+    const weighed = errors[k] === 0 || goals[k].weight === 0 ? 0 : goals[k].weight * errors[k];
+    sum += weighed;
+    largest = Math.max(largest, weighed);
+  }
+  return combine === 'largest' ? largest : sum;
+}
 
 /** Share of the wanted error the next mesh aims at: near singular corners errors fall slower than `wantedSizes` supposes. */
 const AIM = 0.6;

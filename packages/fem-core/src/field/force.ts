@@ -1,11 +1,10 @@
-import { materialOf } from '../assembly/setup.js';
 import { MU0 } from '../base/constants.js';
-import { InputError } from '../base/fault.js';
-import { globalNode } from '../elements/six-node.js';
-import { BEYOND_REGION } from '../geometry/unbounded.js';
-import { cornerCount, nodeCount, triangleCount } from '../mesh/mesh.js';
+import { FULL_RULE, globalNode } from '../elements/six-node.js';
+import { nodeCount, triangleCount } from '../mesh/mesh.js';
+import { airLayer, airRegions } from './air-layer.js';
 import type { Field } from './field.js';
 import type { Functional } from './functionals.js';
+import type { FieldSample } from './integrals.js';
 import { forEachSample } from './integrals.js';
 
 /** Per metre of depth. */
@@ -18,33 +17,26 @@ export interface Force {
 }
 
 /**
- * Force on the named regions by Maxwell's stress averaged over a layer of air round them, three elements deep where there
- * is room:
+ * Force on the named regions by Maxwell's stress averaged over the air round them:
  *
  *   F_i = - integral T_ij dw/dx_j,   T_ij = (B_i B_j - delta_ij B^2/2)/mu0,
  *
- * with w = 1 on the body and 0 beyond the layer; no path enters. Coulomb, A methodology for the determination of global
- * electromechanical quantities, IEEE Trans. Magn. 19, 1983.
+ * with w = 1 on the body and 0 on all else (`airLayer`); no path enters. Coulomb, A methodology for the determination of
+ * global electromechanical quantities, IEEE Trans. Magn. 19, 1983.
  *
+ * @param layer  `airLayer(field, regions)`, where it is known already
  * @throws InputError where the body is not surrounded by air (linear, mu_r = 1, no current) or touches another body
  */
-export function forceOn(field: Field, regions: readonly string[], about: readonly [number, number] = [0, 0]): Force {
-  const { mesh } = field;
-  const weight = layerWeights(field, regions);
+export function forceOn(
+  field: Field,
+  regions: readonly string[],
+  about: readonly [number, number] = [0, 0],
+  layer: Float64Array = airLayer(field, regions),
+): Force {
   let fx = 0;
   let fy = 0;
   let torque = 0;
-  forEachSample(field, airRegions(field), (s) => {
-    // w is quadratic on curved triangles (middle values half-way), so that it is 1 all along a round body.
-    const w = [0, 1, 2].map((k) => weight[mesh.triangles[3 * s.triangle + k]]);
-    if (w[0] === w[1] && w[1] === w[2]) return;
-    let wx = 0;
-    let wy = 0;
-    for (let i = 0; i < 6; i++) {
-      const value = i < 3 ? w[i] : 0.5 * (w[(i + 1) % 3] + w[(i + 2) % 3]);
-      wx += value * s.grad[i];
-      wy += value * s.grad[6 + i];
-    }
+  forEachLayerSample(field, layer, (s, wx, wy) => {
     const half = 0.5 * (s.bx * s.bx + s.by * s.by);
     const px = (-s.area * ((s.bx * s.bx - half) * wx + s.bx * s.by * wy)) / MU0;
     const py = (-s.area * (s.bx * s.by * wx + (s.by * s.by - half) * wy)) / MU0;
@@ -55,63 +47,98 @@ export function forceOn(field: Field, regions: readonly string[], about: readonl
   return { fx, fy, torque };
 }
 
-/** Regions of air: where Maxwell's stress has no divergence. */
-function airRegions(field: Field): string[] {
-  const { mesh, setup } = field;
-  return mesh.regionNames.filter((name) => {
-    if (name === BEYOND_REGION) return false; // an image: distances there are not those of space
-    const material = materialOf(setup, name);
-    const current = (setup.currentDensity?.[name] ?? 0) !== 0 || (setup.current?.[name] ?? 0) !== 0;
-    return material?.kind === 'linear' && material.muR === 1 && !current;
+/** Visits the samples of air where the layer's function changes, with its gradient, 1/m. */
+function forEachLayerSample(
+  field: Field,
+  layer: Float64Array,
+  visit: (sample: FieldSample, wx: number, wy: number) => void,
+): void {
+  const { mesh } = field;
+  forEachSample(field, airRegions(field), (s) => {
+    let wx = 0;
+    let wy = 0;
+    for (let i = 0; i < 6; i++) {
+      const w = layer[globalNode(mesh, s.triangle, i)];
+      wx += w * s.grad[i];
+      wy += w * s.grad[6 + i];
+    }
+    if (wx !== 0 || wy !== 0) visit(s, wx, wy);
   });
 }
 
-const DEPTH = 3;
+/** Sum of the stress all round, whichever way it pulls: what forces that balance are nought beside, N/m and N. */
+export function stressSize(
+  field: Field,
+  layer: Float64Array,
+  about: readonly [number, number],
+): { readonly force: number; readonly torque: number } {
+  let force = 0;
+  let torque = 0;
+  forEachLayerSample(field, layer, (s, wx, wy) => {
+    const pull = (s.area * Math.hypot(wx, wy) * (s.bx * s.bx + s.by * s.by)) / (2 * MU0);
+    force += pull;
+    torque += pull * Math.hypot(s.x - about[0], s.y - about[1]);
+  });
+  return { force, torque };
+}
 
-/** w at the corners: 1 on the body, falling by a third a ring of elements, 0 on whatever else is not air and on the outline. */
-function layerWeights(field: Field, regions: readonly string[]): Float64Array {
-  const { mesh, setup } = field;
-  const air = airRegions(field);
-  const kind = mesh.regionNames.map((name) => (regions.includes(name) ? 'body' : air.includes(name) ? 'air' : 'other'));
-  const n = cornerCount(mesh);
-  const ring = new Int32Array(n).fill(DEPTH);
-  const other = new Uint8Array(n);
-  for (let t = 0; t < triangleCount(mesh); t++) {
-    const k = kind[mesh.triangleToRegion[t]];
-    for (let i = 3 * t; i < 3 * t + 3; i++) {
-      if (k === 'body') ring[mesh.triangles[i]] = 0;
-      else if (k === 'other') other[mesh.triangles[i]] = 1;
+/** Derivatives of `forceOn` with respect to the potential, as functionals. */
+export function forceFunctionals(
+  field: Field,
+  about: readonly [number, number],
+  layer: Float64Array,
+): { readonly fx: Functional; readonly fy: Functional; readonly torque: Functional } {
+  const [fx, fy, torque] = [0, 1, 2].map(() => new Float64Array(nodeCount(field.mesh)));
+  forEachLayerSample(field, layer, (s, wx, wy) => {
+    const weight = -s.area / MU0;
+    // d(T w)_x = (Bx wx + By wy) dBx + (Bx wy - By wx) dBy,  d(T w)_y = (By wx - Bx wy) dBx + (Bx wx + By wy) dBy
+    const along = weight * (s.bx * wx + s.by * wy);
+    const across = weight * (s.bx * wy - s.by * wx);
+    const [rx, ry] = [s.x - about[0], s.y - about[1]];
+    for (let i = 0; i < 6; i++) {
+      const node = globalNode(field.mesh, s.triangle, i);
+      const [dBx, dBy] = [s.grad[6 + i], -s.grad[i]];
+      const px = along * dBx + across * dBy;
+      const py = along * dBy - across * dBx;
+      fx[node] += px;
+      fy[node] += py;
+      torque[node] += rx * py - ry * px;
     }
-  }
-  if (ring.every((r) => r > 0))
-    throw fault('names no region with area', `regions here are: ${mesh.regionNames.join(', ')}`);
-  if (ring.some((r, v) => r === 0 && other[v] === 1)) {
-    throw fault(
-      'touches another body',
-      'a force is defined on a body with air all round it; name all parts that move together',
-    );
-  }
-  // Stress on the outline pushes whatever lies beyond; on bound sides what leaves by the one comes in by the other.
-  for (let e = 0; e < mesh.edgeToSide.length; e++) {
-    const side = mesh.edgeToSide[e];
-    const condition = side < 0 ? undefined : (setup.edges?.[mesh.sideNames[side]]?.kind ?? 'closed');
-    if (condition === undefined || condition === 'repeating' || condition === 'reversing') continue;
-    other[mesh.edges[2 * e]] = 1;
-    other[mesh.edges[2 * e + 1]] = 1;
-  }
-  for (let depth = 1; depth < DEPTH; depth++) {
-    for (let t = 0; t < triangleCount(mesh); t++) {
-      if (kind[mesh.triangleToRegion[t]] !== 'air') continue;
-      const corners = [0, 1, 2].map((k) => mesh.triangles[3 * t + k]);
-      if (!corners.some((v) => ring[v] === depth - 1)) continue;
-      for (const v of corners) if (ring[v] > depth && other[v] === 0) ring[v] = depth;
-    }
-  }
-  return Float64Array.from(ring, (r) => 1 - r / DEPTH);
+  });
+  return { fx, fy, torque };
+}
 
-  function fault(wrong: string, remedy: string): InputError {
-    return new InputError([{ code: 'no-force', key: regions.join(', '), wrong, remedy }]);
-  }
+/**
+ * What the error of B adds to a force beyond its derivative, by triangle: integral of |grad w| |e|^2/(2 mu0), the stress of
+ * the error alone, N/m; times the distance from `about` for the torque, N.
+ * @param recovered  gradient of A as `recoverGradients` gives it
+ */
+export function forceRemainder(
+  field: Field,
+  layer: Float64Array,
+  recovered: Float64Array,
+  about?: readonly [number, number],
+): Float64Array {
+  const out = new Float64Array(triangleCount(field.mesh));
+  let point = 0;
+  let triangle = -1;
+  forEachSample(field, airRegions(field), (s) => {
+    point = s.triangle === triangle ? point + 1 : 0;
+    triangle = s.triangle;
+    let [wx, wy] = [0, 0];
+    let [ex, ey] = [s.by, -s.bx]; // less the elements' gradient of A, which is (-By, Bx)
+    for (let i = 0; i < 6; i++) {
+      const w = layer[globalNode(field.mesh, s.triangle, i)];
+      wx += w * s.grad[i];
+      wy += w * s.grad[6 + i];
+      const shape = FULL_RULE.values[6 * point + i];
+      ex += shape * recovered[12 * s.triangle + i];
+      ey += shape * recovered[12 * s.triangle + 6 + i];
+    }
+    const arm = about === undefined ? 1 : Math.hypot(s.x - about[0], s.y - about[1]);
+    out[s.triangle] += (arm * s.area * Math.hypot(wx, wy) * (ex * ex + ey * ey)) / (2 * MU0);
+  });
+  return out;
 }
 
 /**

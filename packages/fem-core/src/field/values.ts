@@ -3,6 +3,7 @@ import { MU0 } from '../base/constants.js';
 import { globalNode, nodeCoordinates, shapeValues } from '../elements/six-node.js';
 import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import type { Material } from '../materials/material.js';
+import type { Beyond } from '../mesh/mesh.js';
 import type { Field } from './field.js';
 import type { Locator, Spot } from './locate.js';
 import { gradientsAt } from './locate.js';
@@ -56,6 +57,21 @@ function describePoint(material: Material, a: number, bx: number, by: number, x:
 const VACUUM: Material = { kind: 'linear', muR: 1 };
 
 /**
+ * The triangle that holds a point: in unbounded space, of points beyond the circle, that of the image; undefined outside a
+ * bounded section.
+ */
+export function spotOf({ mesh: { beyond } }: Field, locator: Locator, x: number, y: number): Spot | undefined {
+  if (beyond === undefined || !liesBeyond(beyond, x, y)) return locator.find(x, y);
+  const { centre, radius, imageCentre } = beyond;
+  const [dx, dy] = [x - centre[0], y - centre[1]];
+  const shrink = (radius / Math.hypot(dx, dy)) ** 2;
+  return locator.find(imageCentre[0] + shrink * dx, imageCentre[1] + shrink * dy);
+}
+
+const liesBeyond = ({ centre, radius }: Beyond, x: number, y: number): boolean =>
+  Math.hypot(x - centre[0], y - centre[1]) > radius;
+
+/**
  * The field at (x, y) in metres; undefined outside the section. In unbounded space every point has a value.
  * @param recovered  see `valueAtSpot`
  */
@@ -66,34 +82,23 @@ export function valueAt(
   y: number,
   recovered?: Float64Array,
 ): FieldValue | undefined {
+  const spot = spotOf(field, locator, x, y);
+  if (spot === undefined) return undefined;
+  const value = valueAtSpot(field, spot, recovered);
   const { beyond } = field.mesh;
-  if (beyond !== undefined && Math.hypot(x - beyond.centre[0], y - beyond.centre[1]) > beyond.radius) {
-    return valueBeyond(field, beyond, locator, x, y, recovered);
-  }
-  const spot = locator.find(x, y);
-  return spot === undefined ? undefined : valueAtSpot(field, spot, recovered);
+  return beyond !== undefined && liesBeyond(beyond, x, y) ? turnedOut(value, beyond, x, y) : value;
 }
 
 /**
- * Outside the circle of an unbounded section, by its image: the point at distance r lies at R^2/r there, under the same
- * angle, with the same A. Of the gradient the part round the circle keeps its sign and the radial part changes it; both
- * shrink by (R/r)^2.
+ * From the image to the point itself. The image stands at R^2/r under the same angle, with the same A; of the gradient the
+ * part round the circle keeps its sign, the radial part changes it, and both shrink by (R/r)^2.
  */
-function valueBeyond(
-  field: Field,
-  { centre, radius, imageCentre }: NonNullable<Field['mesh']['beyond']>,
-  locator: Locator,
-  x: number,
-  y: number,
-  recovered?: Float64Array,
-): FieldValue | undefined {
+function turnedOut(image: FieldValue, { centre, radius }: Beyond, x: number, y: number): FieldValue {
   const [dx, dy] = [x - centre[0], y - centre[1]];
-  const shrink = (radius / Math.hypot(dx, dy)) ** 2;
-  const spot = locator.find(imageCentre[0] + shrink * dx, imageCentre[1] + shrink * dy);
-  if (spot === undefined) return undefined;
-  const image = valueAtSpot(field, spot, recovered);
+  const far2 = dx * dx + dy * dy;
+  const shrink = (radius * radius) / far2;
   const [gx, gy] = [-image.by, image.bx];
-  const radial = (2 * (gx * dx + gy * dy)) / (dx * dx + dy * dy);
+  const radial = (2 * (gx * dx + gy * dy)) / far2;
   return describePoint(VACUUM, image.a, shrink * (gy - radial * dy), -shrink * (gx - radial * dx), x, y);
 }
 

@@ -1,19 +1,29 @@
 import type { Setup } from '../assembly/setup.js';
+import type { System } from '../assembly/system.js';
+import type { Steps } from '../base/steps.js';
+import { finish } from '../base/steps.js';
 import type { Field } from '../field/field.js';
+import { buildLocator } from '../field/locate.js';
 import type { Section } from '../geometry/section.js';
+import type { AdaptiveSolution, GoalAt, MeshProgress } from '../pipeline.js';
+import { adaptiveSteps } from '../pipeline.js';
+import type { NewtonOptions, NewtonProgress } from '../solve/newton.js';
+import type { Factor } from '../sparse/cholesky.js';
+import { energyGoals } from './goals.js';
 import type { Answer, Probe } from './probe.js';
+import type { ProbeAt } from './probe-at.js';
+import { probeAt } from './probe-at.js';
 
 export interface ProbeOptions {
   /**
    * Wanted relative error of energy, linkages, fluxes, forces and means, each against the largest of its kind; points and
-   * lines only report their estimate.
+   * lines, and torques, only report their estimate.
    */
   readonly accuracy: number;
   readonly maxMeshes?: number;
   readonly maxTriangles?: number;
-  readonly onMesh?: (progress: { readonly mesh: number; readonly triangles: number; readonly error: number }) => void;
-  /** Stops between meshes and Newton steps once `aborted` is true (an `AbortSignal` serves). */
-  readonly signal?: { readonly aborted: boolean };
+  readonly newton?: NewtonOptions;
+  readonly onMesh?: (progress: MeshProgress) => void;
 }
 
 export interface SectionAnswer {
@@ -22,23 +32,90 @@ export interface SectionAnswer {
   readonly recovered: Float64Array;
   /** In the order of the probes. */
   readonly answers: readonly Answer[];
-  /** J/m, with the bound of its error. */
+  /** J/m; in unbounded space of all of it. */
   readonly energy: number;
   readonly coenergy: number;
+  /** Bounds of their errors, J/m. */
   readonly energyError: number;
+  readonly coenergyError: number;
   /** Largest relative error of all that the accuracy binds. */
   readonly error: number;
   readonly accurate: boolean;
   readonly meshes: number;
+  /** Over all meshes. */
   readonly newtonSteps: number;
+  /** Of the last mesh: what further solves on it can use, such as those of an inductance. */
+  readonly system: System;
+  readonly factor: Factor | undefined;
 }
 
-/** Solves a section to the wanted accuracy of its probes. */
+/**
+ * Solves a section until energy, linkages, fluxes, forces and means are as accurate as wanted, or a limit is reached.
+ * @throws InputError for drawings that cannot be meshed, setups that do not fit, and probes that ask for what is not there; a
+ * solve that does not converge, or an accuracy not met, is told in the answer
+ */
 export function solveProbes(
-  _section: Section,
-  _setup: Setup,
-  _probes: readonly Probe[],
-  _options: ProbeOptions,
+  section: Section,
+  setup: Setup,
+  probes: readonly Probe[],
+  options: ProbeOptions,
 ): SectionAnswer {
-  throw new Error('not built yet');
+  return finish(probeSteps(section, setup, probes, options));
+}
+
+/** `solveProbes` step by step: told after each Newton step and each mesh. */
+export function* probeSteps(
+  section: Section,
+  setup: Setup,
+  probes: readonly Probe[],
+  options: ProbeOptions,
+): Steps<NewtonProgress | MeshProgress, SectionAnswer> {
+  let wanted: readonly ProbeAt[] = [];
+  const solution = yield* adaptiveSteps(section, setup, {
+    ...options,
+    combine: 'largest',
+    goals: (field) => {
+      const locator = buildLocator(field.mesh);
+      wanted = probes.map((probe) => probeAt(probe, field, locator));
+      return [...energyGoals(field, inverse), ...goalsOf(wanted)];
+    },
+  });
+  return answer(solution, wanted);
+}
+
+const inverse = (size: number): number => (size === 0 ? 0 : 1 / Math.abs(size));
+
+/** Each figure is weighed against the largest of its kind. */
+function goalsOf(wanted: readonly ProbeAt[]): GoalAt[] {
+  const largest = new Map<Probe['kind'], number>();
+  for (const { kind, figures } of wanted) {
+    for (const { size = 0 } of figures) largest.set(kind, Math.max(size, largest.get(kind) ?? 0));
+  }
+  return wanted.flatMap(({ kind, figures }) =>
+    figures.map(({ size, ...goal }) => ({ ...goal, weight: size === undefined ? 0 : inverse(largest.get(kind) ?? 0) })),
+  );
+}
+
+function answer(solution: AdaptiveSolution, wanted: readonly ProbeAt[]): SectionAnswer {
+  const { field, values, bounds, estimate } = solution;
+  let at = 2; // behind energy and coenergy
+  const answers = wanted.map(({ figures, describe }) => {
+    at += figures.length;
+    return describe(bounds.slice(at - figures.length, at), estimate.recovered);
+  });
+  return {
+    field,
+    recovered: estimate.recovered,
+    answers,
+    energy: values[0],
+    coenergy: values[1],
+    energyError: bounds[0],
+    coenergyError: bounds[1],
+    error: solution.error,
+    accurate: solution.accurate,
+    meshes: solution.meshes,
+    newtonSteps: solution.newtonSteps,
+    system: solution.system,
+    factor: solution.factor,
+  };
 }

@@ -1,5 +1,7 @@
 import type { System } from '../assembly/system.js';
 import { assemble, potentialOf } from '../assembly/system.js';
+import type { Steps } from '../base/steps.js';
+import { finish } from '../base/steps.js';
 import type { Analysis } from '../sparse/analysis.js';
 import { analyse } from '../sparse/analysis.js';
 import type { Factor } from '../sparse/cholesky.js';
@@ -15,6 +17,13 @@ export interface NewtonOptions {
   readonly start?: Float64Array;
   /** The pattern's analysis, where it is known from an earlier solve. */
   readonly analysis?: Analysis;
+}
+
+/** Told after each step. */
+export interface NewtonProgress {
+  readonly step: number;
+  /** Residual over that at A = 0. */
+  readonly residual: number;
 }
 
 /** How a solve went; failure is a report, not an exception. */
@@ -53,7 +62,7 @@ const NEAR_ROUNDING = 1e-5;
  * half its start in size; where it has turned positive beyond that, its zero is sought by regula falsi (Illinois).
  * Ortega, Rheinboldt, Iterative Solution of Nonlinear Equations in Several Variables, 1970, sections 8.2 and 14.4.
  */
-export function solveNewton(system: System, options: NewtonOptions = {}): Solution {
+export function* newtonSteps(system: System, options: NewtonOptions = {}): Steps<NewtonProgress, Solution> {
   const { tolerance = 1e-8, maxSteps = 60 } = options;
   const { n } = system.pattern;
   const nodes = system.source.length;
@@ -110,8 +119,13 @@ export function solveNewton(system: System, options: NewtonOptions = {}): Soluti
     for (let i = 0; i < n; i++) step[i] = -step[i];
     stepLengths.push(searchLine(u, step, trial, residual, at));
     u.set(trial);
+    yield { step: stepLengths.length, residual: scale === 0 ? 0 : norm(residual) / scale };
   }
 }
+
+/** `newtonSteps`, driven to the end. */
+export const solveNewton = (system: System, options: NewtonOptions = {}): Solution =>
+  finish(newtonSteps(system, options));
 
 /** Leaves the accepted point in `trial`, evaluated, and returns its share of the step. */
 function searchLine(

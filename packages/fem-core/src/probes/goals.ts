@@ -1,0 +1,87 @@
+import { regionAreas } from '../elements/areas.js';
+import { FULL_RULE, globalNode } from '../elements/six-node.js';
+import type { RecoveredGradient } from '../estimate/recovery.js';
+import type { Field } from '../field/field.js';
+import type { Functional } from '../field/functionals.js';
+import { energiesOf, forEachSample } from '../field/integrals.js';
+import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
+import { nodeCount, triangleCount } from '../mesh/mesh.js';
+import type { GoalAt } from '../pipeline.js';
+
+/** The stored energy and the coenergy, whose derivatives along dA are the integrals of H . dB and of B . dH. */
+export function energyGoals(
+  field: Field,
+  weight: (energy: number) => number,
+): readonly [energy: GoalAt, coenergy: GoalAt] {
+  const { mesh } = field;
+  const byH = new Float64Array(nodeCount(mesh));
+  const byB = new Float64Array(nodeCount(mesh));
+  const law = newLaw();
+  forEachSample(field, 'all', (s) => {
+    evaluateMaterial(s.material, s.bx, s.by, s.x, s.y, law);
+    const [bx, by] = [law.xx * s.bx + law.xy * s.by, law.xy * s.bx + law.yy * s.by];
+    for (let i = 0; i < 6; i++) {
+      const node = globalNode(mesh, s.triangle, i);
+      byH[node] += s.area * (s.hx * s.grad[6 + i] - s.hy * s.grad[i]);
+      byB[node] += s.area * (bx * s.grad[6 + i] - by * s.grad[i]);
+    }
+  });
+  const { energy, coenergy } = energiesOf(field);
+  const remainder = (recovered: RecoveredGradient): Float64Array => energyOfError(field, recovered);
+  return [
+    { value: energy, functional: byH, weight: weight(energy), remainder },
+    { value: coenergy, functional: byB, weight: 0, remainder },
+  ];
+}
+
+/** By triangle: integral of e . dH/dB e / 2, with e the gap between recovered and element flux density, J/m. */
+function energyOfError(field: Field, recovered: RecoveredGradient): Float64Array {
+  const out = new Float64Array(triangleCount(field.mesh));
+  const law = newLaw();
+  forEachGap(field, recovered, (s, ex, ey) => {
+    evaluateMaterial(s.material, s.bx, s.by, s.x, s.y, law);
+    out[s.triangle] += 0.5 * s.area * (law.xx * ex * ex + 2 * law.xy * ex * ey + law.yy * ey * ey);
+  });
+  return out;
+}
+
+type Sample = Parameters<Parameters<typeof forEachSample>[2]>[0];
+
+/** Visits all samples with recovered less element flux density, T. */
+export function forEachGap(
+  field: Field,
+  recovered: RecoveredGradient,
+  visit: (sample: Sample, ex: number, ey: number) => void,
+): void {
+  let point = 0;
+  let triangle = -1;
+  forEachSample(field, 'all', (s) => {
+    point = s.triangle === triangle ? point + 1 : 0;
+    triangle = s.triangle;
+    let [ex, ey] = [-s.bx, -s.by];
+    for (let i = 0; i < 6; i++) {
+      const shape = FULL_RULE.values[6 * point + i];
+      ex += shape * recovered[12 * triangle + 6 + i];
+      ey -= shape * recovered[12 * triangle + i];
+    }
+    visit(s, ex, ey);
+  });
+}
+
+/** Area of the named regions together, m^2. */
+export function areaOf(field: Field, regions: readonly string[]): number {
+  const areas = regionAreas(field.mesh);
+  return field.mesh.regionNames.reduce((sum, name, k) => (regions.includes(name) ? sum + areas[k] : sum), 0);
+}
+
+/** Mean of |B| over regions, as derivative: integral of (B/|B|) . dB / area. */
+export function meanDensityFunctional(field: Field, regions: readonly string[], area: number): Functional {
+  const g = new Float64Array(nodeCount(field.mesh));
+  forEachSample(field, regions, (s) => {
+    const b = Math.hypot(s.bx, s.by);
+    if (b === 0) return;
+    const [wx, wy] = [(s.area * s.bx) / (b * area), (s.area * s.by) / (b * area)];
+    for (let i = 0; i < 6; i++) g[globalNode(field.mesh, s.triangle, i)] += wx * s.grad[6 + i] - wy * s.grad[i];
+  });
+  return g;
+}

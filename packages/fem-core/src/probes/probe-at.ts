@@ -1,0 +1,206 @@
+import { InputError } from '../base/fault.js';
+import { unreachable } from '../base/unreachable.js';
+import type { RecoveredGradient } from '../estimate/recovery.js';
+import { airLayer } from '../field/air-layer.js';
+import type { Field } from '../field/field.js';
+import { forceFunctionals, forceOn, forceRemainder, stressSize } from '../field/force.js';
+import type { Functional } from '../field/functionals.js';
+import { applyFunctional, pointPotential, weightedFlux, weightedIntegral } from '../field/functionals.js';
+import { meanOver } from '../field/integrals.js';
+import type { Locator } from '../field/locate.js';
+import { spotOf, valueAt, valueAtSpot } from '../field/values.js';
+import type { Point } from '../geometry/section.js';
+import { areaOf, meanDensityFunctional } from './goals.js';
+import type { Answer, Probe } from './probe.js';
+
+/** An answer's number, its derivative, and what its error is to be measured by. */
+export interface Figure {
+  readonly value: number;
+  readonly functional: Functional;
+  /** The largest of a kind is what the wanted accuracy is relative to; absent for figures that only report. */
+  readonly size?: number;
+  readonly remainder?: (recovered: RecoveredGradient) => Float64Array;
+}
+
+/** A probe at a field: its figures, and the answer once their error bounds are known. */
+export interface ProbeAt {
+  readonly kind: Probe['kind'];
+  readonly figures: readonly Figure[];
+  readonly describe: (bounds: readonly number[], recovered: RecoveredGradient) => Answer;
+}
+
+/** Places along a line at which the error of A is estimated. */
+const LINE_SAMPLES = 5;
+/** Forces below this share of the stress all round a body, and fluxes of that of all there is, are nought but for errors. */
+const BALANCED = 1e-3;
+
+/** Largest difference of A in the section: all the flux there is, Wb/m. */
+function fluxOfAll({ potential }: Field): number {
+  let [low, high] = [Infinity, -Infinity];
+  for (const a of potential) {
+    low = Math.min(low, a);
+    high = Math.max(high, a);
+  }
+  return high - low;
+}
+
+/** @throws InputError for probes of regions that cover nothing, and of forces that are not defined */
+export function probeAt(probe: Probe, field: Field, locator: Locator): ProbeAt {
+  switch (probe.kind) {
+    case 'point':
+      return pointAt(probe, field, locator);
+    case 'line':
+      return lineAt(probe, field, locator);
+    case 'force':
+      return forceAt(probe, field);
+    case 'linkage':
+      return linkageAt(probe, field);
+    case 'flux':
+      return fluxAt(probe, field, locator);
+    case 'mean':
+      return meanAt(probe, field);
+    default:
+      return unreachable(probe);
+  }
+}
+
+/** A at a place, or undefined outside the section; reports only. */
+function potentialFigure(field: Field, locator: Locator, [x, y]: Point): Figure | undefined {
+  const spot = spotOf(field, locator, x, y);
+  if (spot === undefined) return undefined;
+  const functional = pointPotential(field.mesh, spot);
+  return { value: applyFunctional(functional, field.potential), functional };
+}
+
+/** The gap between recovered and element flux density at a place: far above the error of the recovered, T. */
+function gapAt(field: Field, locator: Locator, [x, y]: Point, recovered: RecoveredGradient): number {
+  const spot = spotOf(field, locator, x, y);
+  if (spot === undefined) return Number.NaN;
+  const [fine, coarse] = [valueAtSpot(field, spot, recovered), valueAtSpot(field, spot)];
+  return Math.hypot(fine.bx - coarse.bx, fine.by - coarse.by);
+}
+
+function pointAt(probe: Extract<Probe, { kind: 'point' }>, field: Field, locator: Locator): ProbeAt {
+  const figure = potentialFigure(field, locator, probe.at);
+  return {
+    kind: 'point',
+    figures: figure === undefined ? [] : [figure],
+    describe: ([a = Number.NaN], recovered) => ({
+      kind: 'point',
+      name: probe.name,
+      value: valueAt(field, locator, ...probe.at, recovered),
+      error: { a, b: gapAt(field, locator, probe.at, recovered) },
+    }),
+  };
+}
+
+function lineAt(probe: Extract<Probe, { kind: 'line' }>, field: Field, locator: Locator): ProbeAt {
+  const { from, to, points, name } = probe;
+  const length = Math.hypot(to[0] - from[0], to[1] - from[1]);
+  const share = (i: number): number => (points === 1 ? 0.5 : i / (points - 1));
+  const place = (s: number): Point => [from[0] + s * (to[0] - from[0]), from[1] + s * (to[1] - from[1])];
+  const samples = Array.from({ length: LINE_SAMPLES }, (_, k) => (k + 0.5) / LINE_SAMPLES);
+  const sampled = samples.map((s) => potentialFigure(field, locator, place(s)));
+  const figures = sampled.filter((figure) => figure !== undefined);
+  return {
+    kind: 'line',
+    figures,
+    describe: (bounds, recovered) => {
+      const a = bounds.length === 0 ? Number.NaN : Math.max(...bounds);
+      const places = Array.from({ length: points }, (_, i) => place(share(i)));
+      return {
+        kind: 'line',
+        name,
+        distance: places.map((_, i) => share(i) * length),
+        values: places.map(([x, y]) => valueAt(field, locator, x, y, recovered)),
+        errors: places.map((at) => ({ a, b: gapAt(field, locator, at, recovered) })),
+      };
+    },
+  };
+}
+
+function forceAt({ name, on, about = [0, 0] }: Extract<Probe, { kind: 'force' }>, field: Field): ProbeAt {
+  const layer = airLayer(field, on);
+  const { fx, fy, torque } = forceOn(field, on, about, layer);
+  const by = forceFunctionals(field, about, layer);
+  const stress = stressSize(field, layer, about);
+  const size = Math.max(Math.hypot(fx, fy), BALANCED * stress.force);
+  const push = (recovered: RecoveredGradient): Float64Array => forceRemainder(field, layer, recovered);
+  const twist = (recovered: RecoveredGradient): Float64Array => forceRemainder(field, layer, recovered, about);
+  return {
+    kind: 'force',
+    figures: [
+      { value: fx, functional: by.fx, size, remainder: push },
+      { value: fy, functional: by.fy, size, remainder: push },
+      { value: torque, functional: by.torque, remainder: twist },
+    ],
+    describe: ([ex, ey, torqueError]) => ({
+      kind: 'force',
+      name,
+      fx,
+      fy,
+      torque,
+      error: { force: Math.hypot(ex, ey), torque: torqueError },
+    }),
+  };
+}
+
+function linkageAt({ name, of, turns }: Extract<Probe, { kind: 'linkage' }>, field: Field): ProbeAt {
+  const area = covered(field, name, [of]);
+  const functional = weightedIntegral(field.mesh, [of], () => turns / area);
+  const linkage = applyFunctional(functional, field.potential);
+  return {
+    kind: 'linkage',
+    figures: [
+      { value: linkage, functional, size: Math.max(Math.abs(linkage), Math.abs(turns) * BALANCED * fluxOfAll(field)) },
+    ],
+    describe: ([error]) => ({ kind: 'linkage', name, linkage, error }),
+  };
+}
+
+function fluxAt({ name, from, to }: Extract<Probe, { kind: 'flux' }>, field: Field, locator: Locator): ProbeAt {
+  const [start, end] = [potentialFigure(field, locator, from), potentialFigure(field, locator, to)];
+  if (start === undefined || end === undefined) {
+    return {
+      kind: 'flux',
+      figures: [],
+      describe: () => ({ kind: 'flux', name, flux: Number.NaN, error: Number.NaN }),
+    };
+  }
+  const flux = start.value - end.value;
+  const functional = start.functional.map((g, node) => g - end.functional[node]);
+  return {
+    kind: 'flux',
+    figures: [{ value: flux, functional, size: Math.max(Math.abs(flux), BALANCED * fluxOfAll(field)) }],
+    describe: ([error]) => ({ kind: 'flux', name, flux, error }),
+  };
+}
+
+function meanAt({ name, over }: Extract<Probe, { kind: 'mean' }>, field: Field): ProbeAt {
+  const area = covered(field, name, over);
+  const { bx, by, b } = meanOver(field, over);
+  const alongX = weightedFlux(field.mesh, over, () => [1 / area, 0]);
+  const alongY = weightedFlux(field.mesh, over, () => [0, 1 / area]);
+  return {
+    kind: 'mean',
+    figures: [
+      { value: bx, functional: alongX, size: b },
+      { value: by, functional: alongY, size: b },
+      { value: b, functional: meanDensityFunctional(field, over, area), size: b },
+    ],
+    describe: ([ex, ey, eb]) => ({ kind: 'mean', name, bx, by, b, error: Math.max(Math.hypot(ex, ey), eb) }),
+  };
+}
+
+function covered(field: Field, probe: string, regions: readonly string[]): number {
+  const area = areaOf(field, regions);
+  if (area > 0) return area;
+  throw new InputError([
+    {
+      code: 'no-region',
+      key: `probes.${probe}`,
+      wrong: `${regions.join(', ')} covers no area`,
+      remedy: `regions here are: ${field.mesh.regionNames.join(', ')}`,
+    },
+  ]);
+}
