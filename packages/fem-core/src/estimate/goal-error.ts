@@ -6,6 +6,7 @@ import type { Field } from '../field/field.js';
 import type { Functional } from '../field/functionals.js';
 import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import type { Material } from '../materials/material.js';
+import type { Mesh } from '../mesh/mesh.js';
 import { triangleCount } from '../mesh/mesh.js';
 import type { Factor } from '../sparse/cholesky.js';
 import { solve } from '../sparse/cholesky.js';
@@ -57,29 +58,34 @@ export function estimateGoalErrors(
   const shares = goals.map(() => new Float64Array(m));
   const at = new Float64Array(12);
   const grad = new Float64Array(12);
+  const gap: Gap = { gx: 0, gy: 0, ex: 0, ey: 0 };
   const law = newLaw();
   let energy = 0;
   for (let t = 0; t < m; t++) {
     const material = system.materials[mesh.triangleToRegion[t]];
+    const placed = material.kind === 'directed-magnet';
     nodeCoordinates(mesh, t, at);
     for (let q = 0; q < FULL_RULE.count; q++) {
       const weight = FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
-      const [gx, gy, ex, ey] = gradientError(field, field.potential, recovered, t, q, grad);
-      evaluateMaterial(material, gy, -gx, ...placeOf(at, q), law);
+      measureGap(mesh, field.potential, recovered, t, q, grad, gap);
+      const [x, y] = placed ? placeOf(at, q) : ORIGIN;
+      evaluateMaterial(material, gap.gy, -gap.gx, x, y, law);
       // dH of the error: dB = (ey, -ex), and the same for the duals.
-      const hx = law.xx * ey - law.xy * ex;
-      const hy = law.xy * ey - law.yy * ex;
-      energy += 0.5 * weight * (hx * ey - hy * ex);
+      const hx = law.xx * gap.ey - law.xy * gap.ex;
+      const hy = law.xy * gap.ey - law.yy * gap.ex;
+      energy += 0.5 * weight * (hx * gap.ey - hy * gap.ex);
       for (let k = 0; k < goals.length; k++) {
-        const [, , zx, zy] = gradientError(field, duals[k], recoveredDuals[k], t, q, grad);
-        shares[k][t] += weight * (hx * zy - hy * zx);
+        measureGap(mesh, duals[k], recoveredDuals[k], t, q, grad, gap);
+        shares[k][t] += weight * (hx * gap.ey - hy * gap.ex);
       }
     }
-    for (const share of shares) share[t] = Math.abs(share[t]);
+    for (let k = 0; k < goals.length; k++) shares[k][t] = Math.abs(shares[k][t]);
   }
   const bounds = shares.map((share) => MARGIN * share.reduce((a, b) => a + b, 0));
   return { goals: shares, bounds, energy, recovered };
 }
+
+const ORIGIN = [0, 0] as const;
 
 function solveAdjoint(system: System, factor: Factor, goal: Functional): Float64Array {
   const right = gatherToUnknowns(system.unknowns, goal, new Float64Array(system.unknowns.count));
@@ -88,34 +94,39 @@ function solveAdjoint(system: System, factor: Factor, goal: Functional): Float64
   return potentialOf({ ...unknowns, fixed: new Float64Array(goal.length) }, z, new Float64Array(goal.length));
 }
 
-const result: [number, number, number, number] = [0, 0, 0, 0];
-
 /** Element gradient of a nodal function at a quadrature point, and recovered less element gradient. */
-function gradientError(
-  field: Field,
+interface Gap {
+  gx: number;
+  gy: number;
+  ex: number;
+  ey: number;
+}
+
+function measureGap(
+  mesh: Mesh,
   nodal: Float64Array,
   recovered: RecoveredGradient,
   t: number,
   q: number,
   grad: Float64Array,
-): readonly [gx: number, gy: number, ex: number, ey: number] {
+  out: Gap,
+): void {
   let gx = 0;
   let gy = 0;
   let rx = 0;
   let ry = 0;
   for (let i = 0; i < 6; i++) {
-    const value = nodal[globalNode(field.mesh, t, i)];
+    const value = nodal[globalNode(mesh, t, i)];
     gx += value * grad[i];
     gy += value * grad[6 + i];
     const n = FULL_RULE.values[6 * q + i];
     rx += n * recovered[12 * t + i];
     ry += n * recovered[12 * t + 6 + i];
   }
-  result[0] = gx;
-  result[1] = gy;
-  result[2] = rx - gx;
-  result[3] = ry - gy;
-  return result;
+  out.gx = gx;
+  out.gy = gy;
+  out.ex = rx - gx;
+  out.ey = ry - gy;
 }
 
 /** Regions of one law belong to one part, across which the gradient has no jump: air and a winding without current. */

@@ -10,8 +10,8 @@ import { cornerCount, triangleCount } from '../mesh/mesh.js';
  */
 export type RecoveredGradient = Float64Array;
 
-/** Samples a patch needs for a quadratic fit of six coefficients. */
-const ENOUGH = 12;
+/** Triangles a patch should have, three samples each, for a quadratic fit of six coefficients that is not shaky. */
+const ENOUGH = 4;
 
 /**
  * Superconvergent patch recovery: round each corner, part by part, the gradient is fitted by a quadratic through its values
@@ -30,54 +30,96 @@ export function recoverGradients(
   const around = trianglesAround(mesh);
   const samples = sampleGradients(mesh, functions);
   const out = functions.map(() => new Float64Array(12 * m));
-  const hits = new Float64Array(3 * m); // fits that have reached each middle node
+  const patch = newPatch(m, functions.length);
   for (let v = 0; v < cornerCount(mesh); v++) {
-    const ring = Array.from(around.list.subarray(around.start[v], around.start[v + 1]));
-    for (const p of new Set(ring.map((t) => part[t]))) {
-      const core = ring.filter((t) => part[t] === p);
-      const patch = widened(mesh, part, core);
-      spreadFit(mesh, v, core, fitPatch(mesh, v, patch, samples), out, hits);
-    }
-  }
-  for (let t = 0; t < m; t++) {
-    for (let k = 0; k < 3; k++) {
-      for (const gradient of out) {
-        gradient[12 * t + 3 + k] /= hits[3 * t + k];
-        gradient[12 * t + 9 + k] /= hits[3 * t + k];
-      }
+    const round = ++patch.epoch;
+    for (let p = around.start[v]; p < around.start[v + 1]; p++) {
+      if (patch.stamp[around.list[p]] >= round) continue; // its part has been fitted round v
+      gatherPatch(mesh, part, around, v, part[around.list[p]], patch);
+      fitPatch(mesh, v, samples, patch);
+      spreadFit(mesh, v, patch, out);
     }
   }
   return out;
 }
 
-function trianglesAround(mesh: Mesh): { readonly start: Int32Array; readonly list: Int32Array } {
+interface Around {
+  /** Triangles at corner v: list[start[v]] ... list[start[v + 1] - 1]. */
+  readonly start: Int32Array;
+  readonly list: Int32Array;
+}
+
+function trianglesAround(mesh: Mesh): Around {
   const start = new Int32Array(cornerCount(mesh) + 1);
-  for (const v of mesh.triangles) start[v + 1]++;
+  for (let i = 0; i < mesh.triangles.length; i++) start[mesh.triangles[i] + 1]++;
   for (let v = 0; v < cornerCount(mesh); v++) start[v + 1] += start[v];
   const next = start.slice();
   const list = new Int32Array(mesh.triangles.length);
-  mesh.triangles.forEach((v, i) => {
-    list[next[v]++] = (i / 3) | 0;
-  });
+  for (let i = 0; i < mesh.triangles.length; i++) list[next[mesh.triangles[i]]++] = (i / 3) | 0;
   return { start, list };
 }
 
-/** The patch with neighbours of its own part added until it has samples enough, or no more are to be had. */
-function widened(mesh: Mesh, part: Int32Array, core: readonly number[]): number[] {
-  const patch = [...core];
-  const within = new Set(patch);
-  for (let from = 0; 3 * patch.length < ENOUGH && from < patch.length; ) {
-    const until = patch.length;
+/** The triangles of one fit, and the fit; used again for every patch. */
+interface Patch {
+  triangles: number[];
+  /** So many of the first lie at the corner itself. */
+  core: number;
+  /** Int32Array(m): epoch in which a triangle was taken into a patch. */
+  readonly stamp: Int32Array;
+  epoch: number;
+  /** Functions times two: columns of the fit. */
+  readonly columns: number;
+  /** Coefficients that were determined: 6, 3 or 1. */
+  terms: number;
+  /** Length the coordinates are scaled by, m. */
+  size: number;
+  /** Float64Array(36): normal matrix, lower triangle by rows of six, and its Cholesky factor. */
+  readonly normal: Float64Array;
+  readonly root: Float64Array;
+  /** Float64Array(6 columns): right-hand sides, then coefficients, by terms. */
+  readonly fit: Float64Array;
+  readonly basis: Float64Array;
+}
+
+const newPatch = (triangles: number, functions: number): Patch => ({
+  triangles: [],
+  core: 0,
+  stamp: new Int32Array(triangles),
+  epoch: 0,
+  columns: 2 * functions,
+  terms: 6,
+  size: 1,
+  normal: new Float64Array(36),
+  root: new Float64Array(36),
+  fit: new Float64Array(12 * functions),
+  basis: new Float64Array(6),
+});
+
+/** All triangles of one part at a corner, and neighbours of the part until there are enough, or no more are to be had. */
+function gatherPatch(mesh: Mesh, part: Int32Array, around: Around, v: number, own: number, patch: Patch): void {
+  const { triangles, stamp } = patch;
+  const epoch = ++patch.epoch;
+  triangles.length = 0;
+  for (let p = around.start[v]; p < around.start[v + 1]; p++) {
+    const t = around.list[p];
+    if (part[t] !== own) continue;
+    stamp[t] = epoch;
+    triangles.push(t);
+  }
+  patch.core = triangles.length;
+  for (let from = 0; triangles.length < ENOUGH && from < triangles.length; ) {
+    const until = triangles.length;
     for (; from < until; from++) {
       for (let k = 0; k < 3; k++) {
-        const u = mesh.neighbours[3 * patch[from] + k];
-        if (u < 0 || within.has(u) || part[u] !== part[core[0]]) continue;
-        within.add(u);
-        patch.push(u);
+        const u = mesh.neighbours[3 * triangles[from] + k];
+        if (u < 0 || stamp[u] === epoch || part[u] !== own) continue;
+        stamp[u] = epoch;
+        triangles.push(u);
       }
     }
   }
-  return patch;
+  // Triangles that only widen a patch may lie at the corner in another part's turn: their stamp must not tell they had it.
+  for (let i = patch.core; i < triangles.length; i++) stamp[triangles[i]] = 0;
 }
 
 interface Samples {
@@ -116,90 +158,125 @@ function sampleGradients(mesh: Mesh, functions: readonly Float64Array[]): Sample
   return { places, gradients: sampled };
 }
 
-/** A fit round a corner: coefficients (terms x 2 functions) of monomials in coordinates scaled to the patch. */
-interface Fit {
-  readonly terms: number;
-  readonly size: number;
-  readonly coefficients: Matrix;
-}
-
-const monomials = (x: number, y: number): readonly number[] => [1, x, y, x * x, x * y, y * y];
-
-function fitPatch(mesh: Mesh, v: number, patch: readonly number[], samples: Samples): Fit {
+/** Fits columns of gradients by monomials in coordinates from the corner, scaled to the patch. */
+function fitPatch(mesh: Mesh, v: number, samples: Samples, patch: Patch): void {
+  const { triangles } = patch;
   const x0 = mesh.xy[2 * v];
   const y0 = mesh.xy[2 * v + 1];
-  let size = 0;
-  for (const t of patch) {
-    for (let k = 0; k < 3; k++) {
-      const w = mesh.triangles[3 * t + k];
-      size = Math.max(size, Math.abs(mesh.xy[2 * w] - x0), Math.abs(mesh.xy[2 * w + 1] - y0));
+  patch.size = 0;
+  for (let i = 0; i < triangles.length; i++) {
+    for (let k = 3 * triangles[i]; k < 3 * triangles[i] + 3; k++) {
+      const w = mesh.triangles[k];
+      patch.size = Math.max(patch.size, Math.abs(mesh.xy[2 * w] - x0), Math.abs(mesh.xy[2 * w + 1] - y0));
     }
   }
-  const columns = 2 * samples.gradients.length;
-  for (let terms = 3 * patch.length >= 9 ? 6 : 3; ; terms = terms === 6 ? 3 : 1) {
-    const normal = Matrix.zeros(terms, terms);
-    const right = Matrix.zeros(terms, columns);
-    for (const t of patch) {
-      for (let p = 6 * t; p < 6 * t + 6; p += 2) {
-        const basis = monomials((samples.places[p] - x0) / size, (samples.places[p + 1] - y0) / size);
-        for (let i = 0; i < terms; i++) {
-          for (let j = 0; j <= i; j++) normal.set(i, j, normal.get(i, j) + basis[i] * basis[j]);
-          for (let f = 0; f < samples.gradients.length; f++) {
-            right.set(i, 2 * f, right.get(i, 2 * f) + basis[i] * samples.gradients[f][p]);
-            right.set(i, 2 * f + 1, right.get(i, 2 * f + 1) + basis[i] * samples.gradients[f][p + 1]);
-          }
-        }
+  sumNormalEquations(x0, y0, samples, patch);
+  patch.terms = 6;
+  if (3 * triangles.length >= 9 && factorNormal(patch)) solveNormal(patch);
+  else fitLess(patch);
+}
+
+function sumNormalEquations(x0: number, y0: number, samples: Samples, patch: Patch): void {
+  const { triangles, normal, fit, basis, columns, size } = patch;
+  normal.fill(0);
+  fit.fill(0);
+  for (let k = 0; k < triangles.length; k++) {
+    for (let p = 6 * triangles[k]; p < 6 * triangles[k] + 6; p += 2) {
+      monomials((samples.places[p] - x0) / size, (samples.places[p + 1] - y0) / size, basis);
+      for (let i = 0; i < 6; i++) {
+        const b = basis[i];
+        for (let j = 0; j <= i; j++) normal[6 * i + j] += b * basis[j];
+        for (let c = 0; c < columns; c++) fit[columns * i + c] += b * samples.gradients[c >> 1][p + (c & 1)];
       }
     }
-    for (let i = 0; i < terms; i++) for (let j = 0; j < i; j++) normal.set(j, i, normal.get(i, j));
-    const decomposition = new CholeskyDecomposition(normal);
-    // Points on one conic leave the quadratic undetermined: fall back to the linear fit, then to the mean.
-    if (terms === 1 || (decomposition.isPositiveDefinite() && wellPosed(decomposition.lowerTriangularMatrix))) {
-      return { terms, size, coefficients: decomposition.solve(right) };
+  }
+}
+
+function monomials(x: number, y: number, out: Float64Array): void {
+  out[0] = 1;
+  out[1] = x;
+  out[2] = y;
+  out[3] = x * x;
+  out[4] = x * y;
+  out[5] = y * y;
+}
+
+/** Cholesky's factor of the normal matrix; false where points on one conic leave the quadratic all but undetermined. */
+function factorNormal({ normal, root: a }: Patch): boolean {
+  a.set(normal);
+  let least = Infinity;
+  let most = 0;
+  for (let i = 0; i < 6; i++) {
+    for (let j = 0; j <= i; j++) {
+      let sum = a[6 * i + j];
+      for (let k = 0; k < j; k++) sum -= a[6 * i + k] * a[6 * j + k];
+      if (j < i) a[6 * i + j] = sum / a[7 * j];
+      else if (sum > 0) a[7 * i] = Math.sqrt(sum);
+      else return false;
+    }
+    least = Math.min(least, a[7 * i]);
+    most = Math.max(most, a[7 * i]);
+  }
+  return least > SHAKY * most;
+}
+
+const SHAKY = 1e-4;
+
+function solveNormal({ root, fit, columns }: Patch): void {
+  for (let i = 0; i < 6; i++) {
+    for (let c = 0; c < columns; c++) {
+      let sum = fit[columns * i + c];
+      for (let k = 0; k < i; k++) sum -= root[6 * i + k] * fit[columns * k + c];
+      fit[columns * i + c] = sum / root[7 * i];
+    }
+  }
+  for (let i = 5; i >= 0; i--) {
+    for (let c = 0; c < columns; c++) {
+      let sum = fit[columns * i + c];
+      for (let k = i + 1; k < 6; k++) sum -= root[6 * k + i] * fit[columns * k + c];
+      fit[columns * i + c] = sum / root[7 * i];
     }
   }
 }
 
-function wellPosed(lower: Matrix): boolean {
-  let least = Infinity;
-  let most = 0;
-  for (let i = 0; i < lower.rows; i++) {
-    least = Math.min(least, lower.get(i, i));
-    most = Math.max(most, lower.get(i, i));
+/** Where the quadratic is not determined, the linear fit, or else the mean. `fit` still holds the right-hand sides. */
+function fitLess(patch: Patch): void {
+  const { fit, normal, columns } = patch;
+  for (patch.terms = 3; ; patch.terms = 1) {
+    const { terms } = patch;
+    const at = (i: number, j: number): number => normal[6 * Math.max(i, j) + Math.min(i, j)];
+    const matrix = new Matrix(
+      Array.from({ length: terms }, (_, i) => Array.from({ length: terms }, (_, j) => at(i, j))),
+    );
+    const decomposition = new CholeskyDecomposition(matrix);
+    const diagonal = decomposition.lowerTriangularMatrix.diagonal();
+    const shaky = !decomposition.isPositiveDefinite() || Math.min(...diagonal) <= SHAKY * Math.max(...diagonal);
+    if (terms > 1 && shaky) continue;
+    const right = Matrix.from1DArray(terms, columns, fit.subarray(0, terms * columns));
+    fit.set(decomposition.solve(right).to1DArray());
+    return;
   }
-  return least > 1e-4 * most;
 }
 
-/** Writes the fit's value at the corner, and adds its values at the middles of the edges that end there. */
-function spreadFit(
-  mesh: Mesh,
-  v: number,
-  core: readonly number[],
-  fit: Fit,
-  out: readonly Float64Array[],
-  hits: Float64Array,
-): void {
-  const { terms, size, coefficients } = fit;
+/** Writes the fit's value at the corner, and half its values at the middles of the edges that end there. */
+function spreadFit(mesh: Mesh, v: number, patch: Patch, out: readonly Float64Array[]): void {
+  const { triangles, core, fit, columns, terms, size, basis } = patch;
   const x0 = mesh.xy[2 * v];
   const y0 = mesh.xy[2 * v + 1];
-  for (const t of core) {
+  for (let n = 0; n < core; n++) {
+    const t = triangles[n];
     for (let k = 0; k < 3; k++) {
       if (mesh.triangles[3 * t + k] === v) {
-        out.forEach((gradient, f) => {
-          gradient[12 * t + k] = coefficients.get(0, 2 * f);
-          gradient[12 * t + 6 + k] = coefficients.get(0, 2 * f + 1);
-        });
+        for (let c = 0; c < columns; c++) out[c >> 1][12 * t + 6 * (c & 1) + k] = fit[c];
         continue;
       }
       // The middle opposite another corner of this triangle lies on an edge that ends at v.
-      const e = mesh.triangleToEdge[3 * t + k];
-      const basis = monomials((mesh.middles[2 * e] - x0) / size, (mesh.middles[2 * e + 1] - y0) / size);
-      hits[3 * t + k]++;
-      for (let i = 0; i < terms; i++) {
-        out.forEach((gradient, f) => {
-          gradient[12 * t + 3 + k] += basis[i] * coefficients.get(i, 2 * f);
-          gradient[12 * t + 9 + k] += basis[i] * coefficients.get(i, 2 * f + 1);
-        });
+      const e = 2 * mesh.triangleToEdge[3 * t + k];
+      monomials((mesh.middles[e] - x0) / size, (mesh.middles[e + 1] - y0) / size, basis);
+      for (let c = 0; c < columns; c++) {
+        let sum = 0;
+        for (let i = 0; i < terms; i++) sum += basis[i] * fit[columns * i + c];
+        out[c >> 1][12 * t + 6 * (c & 1) + 3 + k] += 0.5 * sum;
       }
     }
   }
