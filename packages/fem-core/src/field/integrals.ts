@@ -143,23 +143,6 @@ export function energiesOf(field: Field, regions: readonly string[] | 'all' = 'a
   return { energy, coenergy: product - energy };
 }
 
-/** Flux density that |B| exceeds in the given share of the regions' area, T (corners are singular, so a maximum means nothing). */
-export function exceededIn(field: Field, regions: readonly string[], share: number): number {
-  const samples: { b: number; area: number }[] = [];
-  let total = 0;
-  forEachSample(field, regions, (s) => {
-    samples.push({ b: Math.hypot(s.bx, s.by), area: s.area });
-    total += s.area;
-  });
-  samples.sort((p, q) => q.b - p.b);
-  let passed = 0;
-  for (const { b, area } of samples) {
-    passed += area;
-    if (passed >= share * total) return b;
-  }
-  return samples.at(-1)?.b ?? 0; // the whole area, but for rounding
-}
-
 /** Means of the field triangle by triangle. */
 export interface TriangleMeans {
   /** Float64Array(2m): Bx, By, T. */
