@@ -129,8 +129,8 @@ function measureGap(
   out.ey = ry - gy;
 }
 
-/** Regions of one law belong to one part, across which the gradient has no jump: air and a winding without current. */
-function smoothParts(field: Field): Int32Array {
+/** By triangle: regions of one law belong to one part, across which the gradient has no jump: air and a winding without current. */
+export function smoothParts(field: Field): Int32Array {
   const { mesh, setup } = field;
   const seen: Material[] = [];
   const partOf = mesh.regionNames.map((name) => {

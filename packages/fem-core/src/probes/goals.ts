@@ -85,3 +85,38 @@ export function meanDensityFunctional(field: Field, regions: readonly string[], 
   });
   return g;
 }
+
+/**
+ * Sum over the triangles of |integral of e_a . dH/dB e_b|, with e the gaps between recovered and element flux densities of two
+ * potentials and dH/dB that of the field: the error of their product in energy, in practice.
+ */
+export function productOfGaps(
+  field: Field,
+  a: Float64Array,
+  recoveredA: RecoveredGradient,
+  b: Float64Array,
+  recoveredB: RecoveredGradient,
+): number {
+  const { mesh } = field;
+  const share = new Float64Array(triangleCount(mesh));
+  const law = newLaw();
+  const gap = (potential: Float64Array, recovered: RecoveredGradient, s: Sample, point: number, k: 0 | 1): number => {
+    let sum = 0;
+    for (let i = 0; i < 6; i++) {
+      sum += FULL_RULE.values[6 * point + i] * recovered[12 * s.triangle + 6 * k + i];
+      sum -= potential[globalNode(mesh, s.triangle, i)] * s.grad[6 * k + i];
+    }
+    return sum;
+  };
+  let point = 0;
+  let triangle = -1;
+  forEachSample(field, 'all', (s) => {
+    point = s.triangle === triangle ? point + 1 : 0;
+    triangle = s.triangle;
+    evaluateMaterial(s.material, s.bx, s.by, s.x, s.y, law);
+    const [ax, ay] = [gap(a, recoveredA, s, point, 1), -gap(a, recoveredA, s, point, 0)];
+    const [bx, by] = [gap(b, recoveredB, s, point, 1), -gap(b, recoveredB, s, point, 0)];
+    share[triangle] += s.area * (law.xx * ax * bx + law.xy * (ax * by + ay * bx) + law.yy * ay * by);
+  });
+  return share.reduce((sum, part) => sum + Math.abs(part), 0);
+}
