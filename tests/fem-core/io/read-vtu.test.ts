@@ -138,20 +138,34 @@ describe('other writers', () => {
   });
 });
 
-/** The Python that has the general-purpose library meshio (Debian's python3-meshio), if any has. */
-const python = ['python3', '/usr/bin/python3'].find((name) => spawnSync(name, ['-c', 'import meshio']).status === 0);
+/** The Python that has the general-purpose library VTK itself (Debian's python3-vtk9), if any has. */
+const python = ['python3', '/usr/bin/python3'].find((name) => spawnSync(name, ['-c', 'import vtk']).status === 0);
 
 test.runIf(python !== undefined)('a general reader opens the file and finds the same', () => {
   const folder = mkdtempSync(join(tmpdir(), 'vtu-'));
   try {
     const file = join(folder, 'field.vtu');
     writeFileSync(file, text);
-    const program =
-      'import meshio, sys, json\nm = meshio.read(sys.argv[1])\n' +
-      'print(json.dumps([m.points.shape[0], m.cells[0].type, len(m.cells[0].data), m.point_data["A"].tolist()]))';
+    const program = [
+      'import vtk, sys, json',
+      'reader = vtk.vtkXMLUnstructuredGridReader()',
+      'reader.SetFileName(sys.argv[1])',
+      'reader.Update()',
+      'grid = reader.GetOutput()',
+      'a = grid.GetPointData().GetArray("A")',
+      'names = grid.GetFieldData().GetAbstractArray("region_names")',
+      'print(json.dumps([grid.GetNumberOfPoints(), grid.GetNumberOfCells(), grid.GetCellType(0),',
+      '  [a.GetValue(i) for i in range(a.GetNumberOfTuples())], [names.GetValue(i) for i in range(names.GetNumberOfValues())]]))',
+    ].join('\n');
     const { stdout, stderr, status } = spawnSync(python ?? '', ['-c', program, file], { encoding: 'utf8' });
     expect([status, stderr]).toEqual([0, '']);
-    expect(JSON.parse(stdout)).toEqual([nodeCount(mesh), 'triangle6', triangleCount(mesh), [...field.potential]]);
+    expect(JSON.parse(stdout)).toEqual([
+      nodeCount(mesh),
+      triangleCount(mesh),
+      22, // VTK_QUADRATIC_TRIANGLE
+      [...field.potential],
+      mesh.regionNames,
+    ]);
   } finally {
     rmSync(folder, { recursive: true });
   }
