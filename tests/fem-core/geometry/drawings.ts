@@ -35,11 +35,13 @@ export function moved(section: Section, scale: number, angle: number, shift: Poi
     return polygon(at([x0, y0]), at([x1, y0]), at([x1, y1]), at([x0, y1]));
   };
   const side: Readonly<Record<string, string>> = { bottom: 'edge 1', right: 'edge 2', top: 'edge 3', left: 'edge 4' };
+  const renamed = (chain: string | readonly string[]) =>
+    typeof chain === 'string' ? (side[chain] ?? chain) : chain.map((name) => side[name] ?? name);
   return {
     ...section,
     outline: shapeAt(section.outline),
     regions: section.regions.map((region) => ({ ...region, shape: shapeAt(region.shape) })),
-    matched: (section.matched ?? []).map(([from, to]) => [side[from] ?? from, side[to] ?? to] as const),
+    matched: (section.matched ?? []).map(([from, to]) => [renamed(from), renamed(to)] as const),
   };
 }
 

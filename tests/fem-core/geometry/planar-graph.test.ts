@@ -219,7 +219,7 @@ describe('faults', () => {
   test.each<[string, Section]>([
     ['not-finite', one(rectangle(0.1, 0.1, Number.NaN, 0.5))],
     ['not-finite', one(circle(0.5, Number.POSITIVE_INFINITY, 0.1))],
-    ['not-finite', one(polygon())],
+    ['too-few-corners', one(polygon())],
     ['no-area', one(rectangle(0.1, 0.1, 0.1, 0.5))],
     ['no-area', one(circle(0.5, 0.5, 0))],
     ['no-area', one(circle(0.5, 0.5, -0.1))],
@@ -227,9 +227,15 @@ describe('faults', () => {
     ['too-few-corners', one(polygon([0.1, 0.1], [0.5, 0.6]))],
     ['outline-crosses-itself', one(polygon([0.1, 0.1], [0.5, 0.5], [0.5, 0.1], [0.1, 0.5]))],
     ['outline-crosses-itself', one(polygon([0.1, 0.1], [0.5, 0.1], [0.5, 0.5], [0.3, 0.1], [0.1, 0.5]))],
-    ['outline-crosses-itself', one(polygon([0.1, 0.1], [0.5, 0.1], [0.5, 0.5], [0.1, 0.1]))],
-    ['outside', one(rectangle(1.1, 0, 1.5, 0.5))],
-    ['outside', one(circle(0.5, -0.2, 0.2))],
+    ['outline-crosses-itself', one(polygon([0.1, 0.1], [0.5, 0.1], [0.5, 0.5], [0.5, 0.3]))],
+    ['coincident-corners', one(polygon([0.1, 0.1], [0.5, 0.1], [0.5, 0.1], [0.5, 0.5]))],
+    ['no-area', one(polygon([0.1, 0.1], [0.5, 0.3], [0.3, 0.2]))],
+    ['out-of-range', drawing([], { outline: rectangle(0, 0, 9e-11, 9e-11) })],
+    ['out-of-range', drawing([], { outline: rectangle(0, 0, 2e10, 1) })],
+    ['out-of-range', drawing([], { outline: rectangle(1e6, 0, 1e6 + 1, 1) })],
+    ['out-of-range', one(rectangle(0.1, 0.1, 1e6, 0.5))],
+    ['outside-outline', one(rectangle(1.1, 0, 1.5, 0.5))],
+    ['outside-outline', one(circle(0.5, -0.2, 0.2))],
     ['name-twice', { ...one(circle(0.5, 0.5, 0.2)), background: 'r0' }],
     ['bad-edge-length', one(circle(0.5, 0.5, 0.2), { maxEdge: 0 })],
     [
@@ -266,8 +272,130 @@ describe('faults', () => {
 
   test('all faults of a drawing are told at once, by the names of the regions', () => {
     const section = drawing([circle(0.5, 0.5, 0), rectangle(3, 3, 4, 4), polygon([0.1, 0.1], [0.2, 0.3])]);
-    expect(faultCodes(() => buildPlanarGraph(section))).toEqual(['no-area', 'too-few-corners', 'outside']);
-    expect(() => buildPlanarGraph(section)).toThrow(/r0: has no area; .*\nr2: has 2 corners; .*\nr1: lies outside/);
+    expect(faultCodes(() => buildPlanarGraph(section))).toEqual(['no-area', 'too-few-corners', 'outside-outline']);
+    expect(() => buildPlanarGraph(section)).toThrow(
+      /regions.r0.shape: has no area; .*\nregions.r2.shape: has 2 corners; .*\nregions.r1.shape: lies outside/,
+    );
+  });
+});
+
+describe('faults name their place', () => {
+  test('of coincident corners, the numbers and the point', () => {
+    const twin = polygon([0.1, 0.1], [0.5, 0.1], [0.5, 0.5], [0.5, 0.5]);
+    expect(() => buildPlanarGraph(drawing([twin]))).toThrow(
+      'regions.r0.shape: corners 3 and 4 are the same point, (0.5, 0.5) m; leave one of them out',
+    );
+  });
+
+  test('of a crossing, the sides and the point', () => {
+    const bow = polygon([0.1, 0.1], [0.5, 0.5], [0.5, 0.1], [0.1, 0.5]);
+    expect(() => buildPlanarGraph(drawing([bow]))).toThrow(/near \(0\.3\d*, 0\.3\d*\) m, sides 1 and 3;/);
+    const spike = polygon([0.1, 0.1], [0.5, 0.1], [0.5, 0.5], [0.5, 0.3]);
+    expect(() => buildPlanarGraph(drawing([spike]))).toThrow('runs back on itself at corner 3, (0.5, 0.5) m');
+  });
+
+  test('of crossings of many corners, found without comparing all with all', () => {
+    const round = Array.from({ length: 50_000 }, (_, k) => polar(0.5, 0.5, (360 * k) / 50_000, 0.4));
+    [round[20_000], round[20_001]] = [round[20_001], round[20_000]];
+    const codes = faultCodes(() => buildPlanarGraph(drawing([{ kind: 'polygon', corners: round }])));
+    expect(codes).toEqual(['outline-crosses-itself']);
+  });
+});
+
+describe('limits', () => {
+  const round = (count: number): Shape => ({
+    kind: 'polygon',
+    corners: Array.from({ length: count }, (_, k) => polar(0.5, 0.5, (360 * k) / count, 0.4)),
+  });
+
+  test('a million corners are refused, in one shape or in many', () => {
+    expect(() => buildPlanarGraph(drawing([round(1_000_000)]))).toThrow(
+      'regions.r0.shape: has 1000000 corners, more than the 200000 that are drawn; leave some out',
+    );
+    const many = Array.from({ length: 12_501 }, (_, i) => circle(0.5, 0.5, 0.1 + 1e-6 * i));
+    expect(faultCodes(() => buildPlanarGraph(drawing(many)))).toEqual(['too-many-corners']);
+  });
+
+  test('fifty thousand corners are drawn', () => {
+    expect(segmentCount(buildPlanarGraph(drawing([round(50_000)])))).toBe(50_004);
+  });
+
+  test('lines that meet in millions of points are refused', () => {
+    const bars = Array.from({ length: 400 }, (_, i) => (i + 0.3) / 400).flatMap((x) => [
+      rectangle(0.1, x, 0.9, x + 0.0005),
+      rectangle(x, 0.1, x + 0.0005, 0.9),
+    ]);
+    expect(faultCodes(() => buildPlanarGraph(drawing(bars)))).toEqual(['too-entangled']);
+  });
+});
+
+describe('chains of matched sides', () => {
+  /** A strip whose left border is kinked, and whose right border is the same, 2 m to the right. */
+  const kinks: readonly Point[] = [
+    [0, 0],
+    [0.3, 0.4],
+    [-0.1, 0.7],
+    [0, 1],
+  ];
+  const right = kinks.map(([x, y]): Point => [x + 2, y]);
+  const strip = (left: readonly Point[]): Shape => polygon(...right, ...[...left].reverse());
+  const matched = [
+    [
+      ['edge 1', 'edge 2', 'edge 3'],
+      ['edge 5', 'edge 6', 'edge 7'],
+    ],
+  ] as const;
+
+  test('correspond piece by piece, with the cuts of both', () => {
+    const section = drawing([rectangle(0, 0.5, 0.5, 0.6), circle(2.2, 0.4, 0.25)], { outline: strip(kinks), matched });
+    const graph = buildPlanarGraph(section);
+    expectMatched(graph, 'edge 1', [-2, 0]);
+    expectMatched(graph, 'edge 2', [-2, 0]);
+    expectMatched(graph, 'edge 3', [-2, 0]);
+    expect(clashes(graph)).toEqual([]);
+    const backwards = [
+      [
+        ['edge 3', 'edge 2', 'edge 1'],
+        ['edge 7', 'edge 6', 'edge 5'],
+      ],
+    ] as const;
+    expect(buildPlanarGraph({ ...section, matched: backwards })).toEqual(graph);
+  });
+
+  test('a corner in the middle of a straight side has its counterpart made', () => {
+    const outline = polygon([0, 0], [2, 0], [2, 0.3], [2, 1], [0, 1]);
+    const graph = buildPlanarGraph(drawing([], { outline, matched: [[['edge 2', 'edge 3'], 'edge 5']] }));
+    expect(holds(graph, 0, 0.3)).toBe(true);
+    expectMatched(graph, 'edge 2', [-2, 0]);
+    expectMatched(graph, 'edge 3', [-2, 0]);
+  });
+
+  test('that deviate are refused with the first corner that does', () => {
+    const bent = kinks.map(([x, y], i): Point => (i === 2 ? [x + 0.01, y] : [x, y]));
+    expect(() => buildPlanarGraph(drawing([], { outline: strip(bent), matched }))).toThrow(
+      /edge 1 \+ edge 2 \+ edge 3, edge 5 .*corner 3 at \(1\.9, 0\.7\) m has nothing opposite, by 0\.0\d+ m/,
+    );
+  });
+
+  test.each([
+    [
+      [
+        ['edge 1', 'edge 3'],
+        ['edge 5', 'edge 7'],
+      ],
+      /are not sides that follow each other/,
+    ],
+    [
+      [
+        ['edge 1', 'edge 9'],
+        ['edge 5', 'edge 6'],
+      ],
+      /name no side 'edge 9'/,
+    ],
+    [[['edge 1', 'edge 2'], 'edge 5'], /are not sides of equal length and direction/],
+  ] as const)('%j is refused', (pair, message) => {
+    const section = drawing([], { outline: strip(kinks), matched: [pair] as Section['matched'] & object });
+    expect(() => buildPlanarGraph(section)).toThrow(message);
   });
 });
 
@@ -276,6 +404,15 @@ describe('shapes', () => {
     expect(sidesOf(rectangle(0, 0, 1, 1))).toEqual(['bottom', 'right', 'top', 'left']);
     expect(sidesOf(polygon([0, 0], [1, 0], [0, 1]))).toEqual(['edge 1', 'edge 2', 'edge 3']);
     expect(sidesOf(circle(0, 0, 1))).toEqual(['rim']);
+  });
+
+  test('a polygon may repeat its first corner at the end, and has the same sides', () => {
+    const open = polygon([0, 0], [1, 0], [1.2, 1], [0, 1]);
+    const closed = polygon([0, 0], [1, 0], [1.2, 1], [0, 1], [1e-17, 0]);
+    expect(sidesOf(closed)).toEqual(sidesOf(open));
+    const graphs = [open, closed].map((outline) => buildPlanarGraph(drawing([circle(0.5, 0.5, 0.2)], { outline })));
+    expect(graphs[1].segments).toEqual(graphs[0].segments);
+    expect(graphs[1].segmentToSide).toEqual(graphs[0].segmentToSide);
   });
 
   test('a rectangle may be given by any two opposite corners', () => {

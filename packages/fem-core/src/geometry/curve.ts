@@ -35,7 +35,7 @@ export function chordCrossings(p: Chord, pCurve: Curve, q: Chord, qCurve: Curve,
 }
 
 function lineWithLine(p: Chord, q: Chord, snap: number, hits: Point[]): void {
-  if (boxesApart(p, q, snap)) return;
+  if (boxesApart(p, q, snap) || isBeside(p, q, snap) || isBeside(q, p, snap)) return;
   for (const end of [q.from, q.to]) if (nearLine(p, end, snap)) hits.push(end);
   for (const end of [p.from, p.to]) if (nearLine(q, end, snap)) hits.push(end);
   if (hits.length > 0) return; // they touch at an end or overlap; a further crossing would be the same point
@@ -54,6 +54,15 @@ function boxesApart(p: Chord, q: Chord, snap: number): boolean {
     Math.max(p.from[i], p.to[i]) + snap < Math.min(q.from[i], q.to[i]) ||
     Math.max(q.from[i], q.to[i]) + snap < Math.min(p.from[i], p.to[i]);
   return apart(0) || apart(1);
+}
+
+/** Both ends of q lie on one side of the line through p, farther than the snapping distance. */
+function isBeside(p: Chord, q: Chord, snap: number): boolean {
+  const [ux, uy] = [p.to[0] - p.from[0], p.to[1] - p.from[1]];
+  const off = snap * Math.hypot(ux, uy);
+  const from = ux * (q.from[1] - p.from[1]) - uy * (q.from[0] - p.from[0]);
+  const to = ux * (q.to[1] - p.from[1]) - uy * (q.to[0] - p.from[0]);
+  return (from > off && to > off) || (from < -off && to < -off);
 }
 
 function lineWithArc(

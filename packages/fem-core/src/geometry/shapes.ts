@@ -1,12 +1,10 @@
+import { SNAP } from './limits.js';
+import { orientation } from './predicates.js';
 import type { Point, Section, Shape } from './section.js';
-
-/** Points nearer than this share of the section's size are one point. */
-export const SNAP = 1e-9;
 
 /** Distance in metres within which points of the section are one. */
 export function snapOf(section: Section): number {
-  const box = boundsOf(section.outline);
-  return SNAP * Math.max(box.x1 - box.x0, box.y1 - box.y0);
+  return SNAP * sizeOf(boundsOf(section.outline));
 }
 
 export type Circle = Extract<Shape, { kind: 'circle' }>;
@@ -23,7 +21,7 @@ export function sidesOf(shape: Shape): string[] {
     case 'rectangle':
       return ['bottom', 'right', 'top', 'left'];
     case 'polygon':
-      return shape.corners.map((_, i) => `edge ${i + 1}`);
+      return cornersOf(shape).map((_, i) => `edge ${i + 1}`);
     case 'circle':
       return ['rim'];
   }
@@ -35,6 +33,11 @@ export interface Bounds {
   readonly x1: number;
   readonly y1: number;
 }
+
+/** The longer of width and height. */
+export const sizeOf = (box: Bounds): number => Math.max(box.x1 - box.x0, box.y1 - box.y0);
+
+export const centreOf = (box: Bounds): Point => [0.5 * (box.x0 + box.x1), 0.5 * (box.y0 + box.y1)];
 
 export function boundsOf(shape: Shape): Bounds {
   switch (shape.kind) {
@@ -62,9 +65,18 @@ export function boundsOf(shape: Shape): Bounds {
   }
 }
 
-/** Corners of a rectangle or polygon, counter-clockwise from the first for rectangles, as drawn for polygons. */
-export function cornersOf(shape: Exclude<Shape, { kind: 'circle' }>): readonly Point[] {
-  if (shape.kind === 'polygon') return shape.corners;
+/**
+ * Corners of a rectangle or polygon, counter-clockwise from the first for rectangles, as drawn for polygons. Of a polygon
+ * closed by its first corner the repetition is left out.
+ */
+export function cornersOf(shape: Exclude<Shape, Circle>): readonly Point[] {
+  if (shape.kind === 'polygon') {
+    const { corners } = shape;
+    const [first, last] = [corners[0], corners[corners.length - 1]];
+    const closed =
+      corners.length > 1 && Math.hypot(first[0] - last[0], first[1] - last[1]) <= SNAP * sizeOf(boundsOf(shape)); // but for rounding
+    return closed ? corners.slice(0, -1) : corners;
+  }
   const { x0, y0, x1, y1 } = boundsOf(shape);
   return [
     [x0, y0],
@@ -72,24 +84,6 @@ export function cornersOf(shape: Exclude<Shape, { kind: 'circle' }>): readonly P
     [x1, y1],
     [x0, y1],
   ];
-}
-
-/** Offset that carries side `from` onto side `to`, or undefined where they are not parallel and equal. */
-export function offsetBetween(section: Section, from: string, to: string): Point | undefined {
-  if (section.outline.kind === 'circle') return undefined;
-  const corners = cornersOf(section.outline);
-  const names = sidesOf(section.outline);
-  const i = names.indexOf(from);
-  const j = names.indexOf(to);
-  if (i < 0 || j < 0) return undefined;
-  const [a, b] = [corners[i], corners[(i + 1) % corners.length]];
-  const [c, d] = [corners[j], corners[(j + 1) % corners.length]];
-  const size = Math.hypot(b[0] - a[0], b[1] - a[1]);
-  const near = (p: Point, q: Point): boolean => Math.hypot(p[0] - q[0], p[1] - q[1]) <= 1e-9 * size;
-  const shift: Point = [d[0] - a[0], d[1] - a[1]]; // outlines run round, so the start of one meets the end of the other
-  if (near([b[0] + shift[0], b[1] + shift[1]], c)) return shift;
-  const straight: Point = [c[0] - a[0], c[1] - a[1]];
-  return near([b[0] + straight[0], b[1] + straight[1]], d) ? straight : undefined;
 }
 
 /** True when the point lies inside the shape (its border counts for neither side reliably). */
@@ -105,9 +99,9 @@ export function contains(shape: Shape, x: number, y: number): boolean {
       let inside = false; // ray towards +x, Jordan
       const { corners } = shape;
       for (let i = 0, j = corners.length - 1; i < corners.length; j = i++) {
-        const [xi, yi] = corners[i];
-        const [xj, yj] = corners[j];
-        if (yi > y !== yj > y && x < xi + ((y - yi) / (yj - yi)) * (xj - xi)) inside = !inside;
+        const [lower, upper] = corners[i][1] < corners[j][1] ? [corners[i], corners[j]] : [corners[j], corners[i]];
+        if (lower[1] > y === upper[1] > y) continue;
+        if (orientation(...lower, ...upper, x, y) > 0) inside = !inside;
       }
       return inside;
     }
