@@ -18,9 +18,9 @@ export function benchMesher(): void {
   console.log('\nmesher: square with a circle and a bar, from drawing to six-node mesh');
   const rows: string[][] = [['triangles', 'ms', 'triangles/s', 'smallest angle, deg']];
   for (const [maxEdge, runs] of [
-    [0.05, 9],
-    [0.0165, 5],
-    [0.006, 3],
+    [0.032, 15],
+    [0.0112, 7],
+    [0.0045, 3],
   ] as const) {
     const mesh = meshSection(section(maxEdge));
     checkMesh(mesh);

@@ -1,9 +1,8 @@
 import Delaunator from 'delaunator';
 import { InputError } from '../base/fault.js';
 import type { PlanarGraph } from '../geometry/planar-graph.js';
-import type { Section } from '../geometry/section.js';
 import { clearLenses } from './lenses.js';
-import { largestOf, middle, nameRegions, OUTSIDE, regionAt, regionBy, regionsBeside } from './region-parts.js';
+import { nameRegions, nameRegionsBy, OUTSIDE, regionsBeside } from './region-parts.js';
 import { tooNear } from './too-near.js';
 import type { Triangulation } from './triangulation.js';
 import {
@@ -23,18 +22,20 @@ import {
 /**
  * Constrained Delaunay triangulation of a section: `delaunator` triangulates the points, the segments are recovered by
  * flips (Sloan, A fast algorithm for generating constrained Delaunay triangulations, 1993), Lawson's flips with exact
- * predicates make it Delaunay, and each part between segments gets its region: 0 the background, i + 1 region i.
+ * predicates make it Delaunay, and each part between segments gets its region, see `nameRegions`.
  * Lines that turn out to part nothing (covered by a later region) are dropped.
+ * @throws InputError for lines too near each other, and what `nameRegions` refuses
  */
-export function triangulateGraph(section: Section, given: PlanarGraph): Triangulation {
-  const graph = clearLenses(given);
+export function triangulateGraph(given: PlanarGraph): Triangulation {
+  const drawn = given.segmentToShapes.flatMap((shapes, s) => (shapes.length > 0 ? [s] : []));
+  const graph = clearLenses(onlySegments(given, drawn));
   let tri = constrained(graph);
-  nameRegions(tri, (part) => regionAt(section, graph, ...middle(tri, largestOf(tri, part))));
+  nameRegions(tri, graph, outermostOf(tri));
   const beside = regionsBeside(tri);
-  const useful = Array.from(graph.segmentToCurve.keys()).filter((s) => beside[2 * s] !== beside[2 * s + 1]);
+  const useful = graph.segmentToShapes.flatMap((_, s) => (beside[2 * s] === beside[2 * s + 1] ? [] : [s]));
   if (useful.length < graph.segmentToCurve.length) {
     tri = constrained(onlySegments(graph, useful));
-    nameRegions(tri, (part) => regionBy(tri, part, (s) => 2 * useful[s], beside));
+    nameRegionsBy(tri, beside, (s) => useful[s]);
   }
   removeOutside(tri);
   return tri;
@@ -215,6 +216,7 @@ function lawson(tri: Triangulation): void {
   }
 }
 
+/** The graph with some of its segments alone, their points and the loose ones. */
 function onlySegments(graph: PlanarGraph, keep: readonly number[]): PlanarGraph {
   const pointTo = new Int32Array(graph.points.length / 2).fill(-1);
   const points: number[] = [];
@@ -226,16 +228,27 @@ function onlySegments(graph: PlanarGraph, keep: readonly number[]): PlanarGraph 
     return pointTo[p];
   };
   const segmentTo = new Map(keep.map((s, i) => [s, i]));
+  const segments = new Int32Array(2 * keep.length);
+  keep.forEach((s, i) => {
+    segments[2 * i] = renumber(graph.segments[2 * s]);
+    segments[2 * i + 1] = renumber(graph.segments[2 * s + 1]);
+  });
+  const loose = graph.loose.map(renumber);
   return {
     ...graph,
-    segments: Int32Array.from(
-      keep.flatMap((s) => [renumber(graph.segments[2 * s]), renumber(graph.segments[2 * s + 1])]),
-    ),
+    segments,
+    loose,
     points: Float64Array.from(points),
     segmentToCurve: Int32Array.from(keep, (s) => graph.segmentToCurve[s]),
     segmentToSide: Int32Array.from(keep, (s) => graph.segmentToSide[s]),
     segmentToMatch: Int32Array.from(keep, (s) => segmentTo.get(graph.segmentToMatch[s]) ?? -1),
+    segmentToShapes: keep.map((s) => graph.segmentToShapes[s]),
   };
+}
+
+/** A triangle at a corner of the box, which are the last four points. */
+function outermostOf(tri: Triangulation): number {
+  return triangleOf(tri.origin.findIndex((v, h) => v === tri.vertexCount - 1 && h < 3 * tri.slotCount));
 }
 
 /** Removes what lies outside the outline, the box's corners with it (they are the last four points). */

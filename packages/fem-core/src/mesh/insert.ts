@@ -114,34 +114,40 @@ export function fillCavity(
 ): number {
   const p = addVertex(tri, x, y);
   if (cavity.startsAt.length < tri.xy.length / 2) cavity.startsAt = new Int32Array(tri.xy.length / 2);
-  const { startsAt } = cavity;
-  const fan = cavity.border.map((h) => ({
-    from: tri.origin[h],
-    to: tri.origin[nextHalf(h)],
-    twin: tri.twin[h],
-    segment: tri.segment[h],
-    region: tri.region[triangleOf(h)],
-    size: tri.size[triangleOf(h)],
-  }));
+  const { startsAt, border } = cavity;
+  const count = border.length;
+  const from: number[] = [];
+  const twin: number[] = [];
+  const segment: number[] = [];
+  const region: number[] = [];
+  const size: number[] = [];
+  for (const h of border) {
+    from.push(tri.origin[h], tri.origin[nextHalf(h)]);
+    twin.push(tri.twin[h]);
+    segment.push(tri.segment[h]);
+    region.push(tri.region[triangleOf(h)]);
+    size.push(tri.size[triangleOf(h)]);
+  }
   for (const t of cavity.triangles) releaseSlot(tri, t);
   made.length = 0;
-  for (const edge of fan) {
+  for (let i = 0; i < count; i++) {
     const t = takeSlot(tri);
+    const h = 3 * t;
     made.push(t);
-    tri.region[t] = edge.region;
-    tri.size[t] = edge.size;
-    tri.origin[3 * t] = edge.from;
-    tri.origin[3 * t + 1] = edge.to;
-    tri.origin[3 * t + 2] = p;
-    tri.twin[3 * t] = edge.twin;
-    tri.segment[3 * t] = edge.segment;
-    if (edge.twin >= 0) tri.twin[edge.twin] = 3 * t;
-    if (edge.segment >= 0) tri.segments.half[edge.segment] = 3 * t;
-    for (const h of [3 * t + 1, 3 * t + 2]) {
-      tri.twin[h] = -1;
-      tri.segment[h] = -1;
-    }
-    startsAt[edge.from] = t;
+    tri.region[t] = region[i];
+    tri.size[t] = size[i];
+    tri.origin[h] = from[2 * i];
+    tri.origin[h + 1] = from[2 * i + 1];
+    tri.origin[h + 2] = p;
+    tri.twin[h] = twin[i];
+    tri.twin[h + 1] = -1;
+    tri.twin[h + 2] = -1;
+    tri.segment[h] = segment[i];
+    tri.segment[h + 1] = -1;
+    tri.segment[h + 2] = -1;
+    if (twin[i] >= 0) tri.twin[twin[i]] = h;
+    if (segment[i] >= 0) tri.segments.half[segment[i]] = h;
+    startsAt[from[2 * i]] = t;
   }
   for (const t of made) {
     const u = startsAt[tri.origin[3 * t + 1]];

@@ -1,23 +1,31 @@
 import { buildPlanarGraph } from '../geometry/planar-graph.js';
 import type { Section } from '../geometry/section.js';
 import { triangulateGraph } from './constrained-delaunay.js';
-import type { Mesh } from './mesh.js';
+import { tellCrowd } from './crowding.js';
+import type { Beyond, Mesh } from './mesh.js';
+import { cornerCount } from './mesh.js';
 import { meshOf, triangulationOf } from './mesh-triangulation.js';
+import { refineTo } from './point-sizes.js';
 import type { QualityLimits } from './refine.js';
 import { DEFAULT_LIMITS, refine } from './refine.js';
+import { unfold } from './unfold.js';
 
 /**
  * Meshes a section: planar graph, constrained Delaunay triangulation, quality refinement, six-node triangles.
- * @throws InputError for drawings that cannot be meshed, see `buildPlanarGraph` and `refine`
+ * @throws InputError for drawings that cannot be meshed, see `buildPlanarGraph`, `triangulateGraph` and `refine`
  */
 export function meshSection(section: Section, limits: QualityLimits = DEFAULT_LIMITS): Mesh {
   const graph = buildPlanarGraph(section);
-  const tri = triangulateGraph(section, graph);
-  const sizes = [section.maxEdge, ...section.regions.map((region) => region.maxEdge)];
-  for (let t = 0; t < tri.slotCount; t++) tri.size[t] = sizes[tri.region[t]] ?? Infinity;
-  refine(tri, limits);
-  const names = [section.background, ...section.regions.map((region) => region.name)];
-  return meshOf(tri, names, graph.sideNames);
+  const { regionNames, maxEdges, sideNames, beyond } = graph.drawing;
+  const tri = triangulateGraph(graph);
+  for (let t = 0; t < tri.slotCount; t++) tri.size[t] = maxEdges[tri.region[t]] ?? Infinity;
+  tellCrowd(tri, regionNames, limits, () => {
+    refine(tri, limits);
+    refineTo(tri, maxEdges, section.sizeAt ?? [], limits);
+    unfold(tri, limits);
+  });
+  const mesh = meshOf(tri, regionNames, sideNames);
+  return beyond === undefined ? mesh : withInfinity(mesh, beyond);
 }
 
 /**
@@ -26,6 +34,19 @@ export function meshSection(section: Section, limits: QualityLimits = DEFAULT_LI
  */
 export function refineMesh(mesh: Mesh, wanted: Float64Array, limits: QualityLimits = DEFAULT_LIMITS): Mesh {
   const tri = triangulationOf(mesh, wanted);
-  refine(tri, limits);
-  return meshOf(tri, mesh.regionNames, mesh.sideNames);
+  tellCrowd(tri, mesh.regionNames, limits, () => {
+    refine(tri, limits);
+    unfold(tri, limits);
+  });
+  const fine = meshOf(tri, mesh.regionNames, mesh.sideNames);
+  return mesh.beyond === undefined ? fine : withInfinity(fine, mesh.beyond);
+}
+
+/** The corner that stands for infinity was drawn there; its number changes from mesh to mesh. */
+function withInfinity(mesh: Mesh, beyond: Omit<Beyond, 'infinity'>): Mesh {
+  const [x, y] = beyond.imageCentre;
+  for (let v = 0; v < cornerCount(mesh); v++) {
+    if (mesh.xy[2 * v] === x && mesh.xy[2 * v + 1] === y) return { ...mesh, beyond: { ...beyond, infinity: v } };
+  }
+  throw new Error('withInfinity: no corner at the centre of the image');
 }

@@ -1,119 +1,154 @@
-import { pointOnCurve } from '../geometry/curve.js';
+import type { Curve } from '../geometry/curve.js';
 import type { Mesh } from './mesh.js';
 import { cornerCount, triangleCount } from './mesh.js';
+import { middleOnArc } from './middle-on-arc.js';
 import type { Triangulation } from './triangulation.js';
 import { addVertex, emptyTriangulation, inUse, nextHalf, takeSlot, triangleOf } from './triangulation.js';
 
 /** The finished triangulation as a mesh: numbers without gaps, edges numbered, arcs given their middle nodes. */
 export function meshOf(tri: Triangulation, regionNames: readonly string[], sideNames: readonly string[]): Mesh {
-  const slots: number[] = [];
-  for (let t = 0; t < tri.slotCount; t++) if (inUse(tri, t)) slots.push(t);
+  const { segments, curves } = tri;
+  const slots = usedSlots(tri);
+  const corners = numberCorners(tri, slots);
+  const edges = numberEdges(tri, slots, corners.vertexToCorner);
+  const { edgeToSegment } = edges;
+  const edgeToCurve = listed(edgeToSegment, segments.curve);
+  return {
+    xy: corners.xy,
+    triangles: corners.triangles,
+    triangleToEdge: edges.triangleToEdge,
+    neighbours: edges.neighbours,
+    triangleToRegion: listed(slots, tri.region),
+    regionNames,
+    edges: edges.edges,
+    middles: middlesOf(corners.xy, edges.edges, edgeToCurve, curves),
+    edgeToCurve,
+    curves,
+    edgeToSide: listed(edgeToSegment, segments.side),
+    sideNames,
+    edgeToMatch: listed(listed(edgeToSegment, segments.match), edges.segmentToEdge),
+    curved: curvedOf(edges.triangleToEdge, edgeToCurve, curves),
+  };
+}
+
+function usedSlots(tri: Triangulation): Int32Array {
+  const slots = new Int32Array(tri.slotCount);
+  let m = 0;
+  for (let t = 0; t < tri.slotCount; t++) if (inUse(tri, t)) slots[m++] = t;
+  return slots.slice(0, m);
+}
+
+interface Corners {
+  readonly xy: Float64Array;
+  readonly triangles: Int32Array;
+  readonly vertexToCorner: Int32Array;
+}
+
+/** Corners are numbered as the triangles come to them. */
+function numberCorners(tri: Triangulation, slots: Int32Array): Corners {
+  const { origin } = tri;
+  const m = slots.length;
+  const triangles = new Int32Array(3 * m);
+  const vertexToCorner = new Int32Array(tri.vertexCount).fill(-1);
+  const xy = new Float64Array(2 * tri.vertexCount);
+  let n = 0;
+  for (let i = 0; i < m; i++) {
+    for (let k = 0; k < 3; k++) {
+      const v = origin[3 * slots[i] + k];
+      if (vertexToCorner[v] < 0) {
+        vertexToCorner[v] = n;
+        xy[2 * n] = tri.xy[2 * v];
+        xy[2 * n + 1] = tri.xy[2 * v + 1];
+        n++;
+      }
+      triangles[3 * i + k] = vertexToCorner[v];
+    }
+  }
+  return { xy: xy.slice(0, 2 * n), triangles, vertexToCorner };
+}
+
+interface Edges {
+  readonly edges: Int32Array;
+  readonly triangleToEdge: Int32Array;
+  readonly neighbours: Int32Array;
+  readonly edgeToSegment: Int32Array;
+  readonly segmentToEdge: Int32Array;
+}
+
+/** Edges are numbered as the triangles come to them, and stored as their segments run, so that matched ends correspond. */
+function numberEdges(tri: Triangulation, slots: Int32Array, vertexToCorner: Int32Array): Edges {
+  const { origin, twin, segment, segments } = tri;
   const m = slots.length;
   const slotTo = new Int32Array(tri.slotCount).fill(-1);
-  const vertexTo = new Int32Array(tri.vertexCount).fill(-1);
-  const triangles = new Int32Array(3 * m);
-  const triangleToRegion = new Int32Array(m);
-  const xy: number[] = [];
-  slots.forEach((t, i) => {
-    slotTo[t] = i;
-    triangleToRegion[i] = tri.region[t];
-    for (let k = 0; k < 3; k++) {
-      const v = tri.origin[3 * t + k];
-      if (vertexTo[v] < 0) {
-        vertexTo[v] = xy.length / 2;
-        xy.push(tri.xy[2 * v], tri.xy[2 * v + 1]);
-      }
-      triangles[3 * i + k] = vertexTo[v];
-    }
-  });
+  for (let i = 0; i < m; i++) slotTo[slots[i]] = i;
   const triangleToEdge = new Int32Array(3 * m);
   const neighbours = new Int32Array(3 * m);
-  const edges: number[] = [];
-  const segmentToEdge = new Int32Array(tri.segments.from.length).fill(-1);
-  const edgeToSegment: number[] = [];
-  slots.forEach((t, i) => {
+  const edges = new Int32Array(6 * m);
+  const edgeToSegment = new Int32Array(3 * m);
+  const segmentToEdge = new Int32Array(segments.from.length).fill(-1);
+  let count = 0;
+  for (let i = 0; i < m; i++) {
     for (let k = 0; k < 3; k++) {
-      const h = 3 * t + ((k + 1) % 3); // the half-edge opposite corner k
-      const g = tri.twin[h];
+      const h = 3 * slots[i] + (k === 2 ? 0 : k + 1); // the half-edge opposite corner k
+      const g = twin[h];
       const u = g < 0 ? -1 : slotTo[triangleOf(g)];
       neighbours[3 * i + k] = u;
       if (u >= 0 && u < i) {
         triangleToEdge[3 * i + k] = triangleToEdge[3 * u + ((g + 2) % 3)];
         continue;
       }
-      const e = edges.length / 2;
-      const s = tri.segment[h];
-      const forward = s < 0 || tri.segments.from[s] === tri.origin[h];
-      const [a, b] = [vertexTo[tri.origin[h]], vertexTo[tri.origin[nextHalf(h)]]];
-      edges.push(forward ? a : b, forward ? b : a); // stored as the segment runs, so that matched ends correspond
-      edgeToSegment.push(s);
-      if (s >= 0) segmentToEdge[s] = e;
-      triangleToEdge[3 * i + k] = e;
-    }
-  });
-  return finish(
-    tri,
-    { xy, triangles, triangleToEdge, neighbours, triangleToRegion, edges, edgeToSegment, segmentToEdge },
-    regionNames,
-    sideNames,
-  );
-}
-
-interface Numbered {
-  readonly xy: readonly number[];
-  readonly triangles: Int32Array;
-  readonly triangleToEdge: Int32Array;
-  readonly neighbours: Int32Array;
-  readonly triangleToRegion: Int32Array;
-  readonly edges: readonly number[];
-  readonly edgeToSegment: readonly number[];
-  readonly segmentToEdge: Int32Array;
-}
-
-function finish(tri: Triangulation, n: Numbered, regionNames: readonly string[], sideNames: readonly string[]): Mesh {
-  const { segments, curves } = tri;
-  const edgeCount = n.edgeToSegment.length;
-  const middles = new Float64Array(2 * edgeCount);
-  const arcEdge = new Uint8Array(edgeCount);
-  for (let e = 0; e < edgeCount; e++) {
-    const [a, b] = [2 * n.edges[2 * e], 2 * n.edges[2 * e + 1]];
-    const s = n.edgeToSegment[e];
-    const curve = s < 0 ? undefined : curves[segments.curve[s]];
-    if (curve !== undefined && curve.kind === 'arc') {
-      arcEdge[e] = 1;
-      middles.set(pointOnCurve(curve, n.xy[a], n.xy[a + 1], n.xy[b], n.xy[b + 1], 0.5), 2 * e);
-    } else {
-      middles[2 * e] = 0.5 * (n.xy[a] + n.xy[b]);
-      middles[2 * e + 1] = 0.5 * (n.xy[a + 1] + n.xy[b + 1]);
+      const s = segment[h];
+      const forward = s < 0 || segments.from[s] === origin[h];
+      edges[2 * count + (forward ? 0 : 1)] = vertexToCorner[origin[h]];
+      edges[2 * count + (forward ? 1 : 0)] = vertexToCorner[origin[nextHalf(h)]];
+      edgeToSegment[count] = s;
+      if (s >= 0) segmentToEdge[s] = count;
+      triangleToEdge[3 * i + k] = count++;
     }
   }
-  const ofSegment = (e: number, list: readonly number[]): number =>
-    n.edgeToSegment[e] < 0 ? -1 : list[n.edgeToSegment[e]];
   return {
-    xy: Float64Array.from(n.xy),
-    triangles: n.triangles,
-    triangleToEdge: n.triangleToEdge,
-    neighbours: n.neighbours,
-    triangleToRegion: n.triangleToRegion,
-    regionNames,
-    edges: Int32Array.from(n.edges),
-    middles,
-    edgeToCurve: Int32Array.from({ length: edgeCount }, (_, e) => ofSegment(e, segments.curve)),
-    curves,
-    edgeToSide: Int32Array.from({ length: edgeCount }, (_, e) => ofSegment(e, segments.side)),
-    sideNames,
-    edgeToMatch: Int32Array.from({ length: edgeCount }, (_, e) => {
-      const mate = ofSegment(e, segments.match);
-      return mate < 0 ? -1 : n.segmentToEdge[mate];
-    }),
-    curved: Uint8Array.from({ length: n.triangleToRegion.length }, (_, t) =>
-      Math.max(
-        arcEdge[n.triangleToEdge[3 * t]],
-        arcEdge[n.triangleToEdge[3 * t + 1]],
-        arcEdge[n.triangleToEdge[3 * t + 2]],
-      ),
-    ),
+    edges: edges.slice(0, 2 * count),
+    triangleToEdge,
+    neighbours,
+    edgeToSegment: edgeToSegment.slice(0, count),
+    segmentToEdge,
   };
+}
+
+/** What the list says of each of those named, -1 for those named -1. */
+function listed(named: Int32Array, list: ArrayLike<number>): Int32Array {
+  const told = new Int32Array(named.length).fill(-1);
+  for (let i = 0; i < told.length; i++) if (named[i] >= 0) told[i] = list[named[i]];
+  return told;
+}
+
+function middlesOf(
+  xy: Float64Array,
+  edges: Int32Array,
+  edgeToCurve: Int32Array,
+  curves: readonly Curve[],
+): Float64Array {
+  const middles = new Float64Array(edges.length);
+  for (let e = 0; e < edgeToCurve.length; e++) {
+    const a = 2 * edges[2 * e];
+    const b = 2 * edges[2 * e + 1];
+    middles[2 * e] = 0.5 * (xy[a] + xy[b]);
+    middles[2 * e + 1] = 0.5 * (xy[a + 1] + xy[b + 1]);
+    if (edgeToCurve[e] < 0) continue;
+    const curve = curves[edgeToCurve[e]];
+    if (curve.kind === 'arc') middles.set(middleOnArc(curve, xy[a], xy[a + 1], xy[b], xy[b + 1]), 2 * e);
+  }
+  return middles;
+}
+
+/** 1 for triangles with an edge on an arc. */
+function curvedOf(triangleToEdge: Int32Array, edgeToCurve: Int32Array, curves: readonly Curve[]): Uint8Array {
+  const curved = new Uint8Array(triangleToEdge.length / 3);
+  for (let i = 0; i < triangleToEdge.length; i++) {
+    const curve = edgeToCurve[triangleToEdge[i]];
+    if (curve >= 0 && curves[curve].kind === 'arc') curved[(i / 3) | 0] = 1;
+  }
+  return curved;
 }
 
 /** The mesh opened for further work, with the longest edge wanted in each triangle. */

@@ -21,7 +21,10 @@ export interface Mesh {
   readonly regionNames: readonly string[];
   /** Int32Array(2e): end corners of each edge. */
   readonly edges: Int32Array;
-  /** Float64Array(2e), metres: third node of each edge; on the arc where the edge follows one, else half-way. */
+  /**
+   * Float64Array(2e), metres: third node of each edge, half-way; where the edge follows an arc so far off the chord that
+   * the parabola of the element encloses the area of the circular segment (see middle-on-arc.ts).
+   */
   readonly middles: Float64Array;
   /** Int32Array(e): index into `curves` of the drawn line the edge lies on, -1 for edges of the mesh alone. */
   readonly edgeToCurve: Int32Array;

@@ -129,20 +129,23 @@ export function flip(tri: Triangulation, h: number): void {
   const b = origin[g];
   const c = origin[hp];
   const d = origin[gp];
-  const outer = [hp, gn, gp, hn].map((e) => [twin[e], segment[e]] as const); // c-a, a-d, d-b, b-c
-  const write = (e: number, from: number, [opposite, seg]: readonly [number, number]): void => {
-    origin[e] = from;
-    twin[e] = opposite;
-    segment[e] = seg;
-    if (opposite >= 0) twin[opposite] = e;
-    if (seg >= 0) tri.segments.half[seg] = e;
-  };
-  write(3 * t, c, outer[0]);
-  write(3 * t + 1, a, outer[1]);
-  write(3 * s, d, outer[2]);
-  write(3 * s + 1, b, outer[3]);
-  write(3 * t + 2, d, [3 * s + 2, -1]);
-  write(3 * s + 2, c, [3 * t + 2, -1]);
+  const [ca, ad, db, bc] = [twin[hp], twin[gn], twin[gp], twin[hn]];
+  const [sca, sad, sdb, sbc] = [segment[hp], segment[gn], segment[gp], segment[hn]];
+  writeHalf(tri, 3 * t, c, ca, sca);
+  writeHalf(tri, 3 * t + 1, a, ad, sad);
+  writeHalf(tri, 3 * s, d, db, sdb);
+  writeHalf(tri, 3 * s + 1, b, bc, sbc);
+  writeHalf(tri, 3 * t + 2, d, 3 * s + 2, -1);
+  writeHalf(tri, 3 * s + 2, c, 3 * t + 2, -1);
   tri.stamp[t] += 2;
   tri.stamp[s] += 2;
+}
+
+/** Half-edge e from a vertex, with its twin, which is told, and on segment `seg`, which is told too. */
+function writeHalf(tri: Triangulation, e: number, from: number, opposite: number, seg: number): void {
+  tri.origin[e] = from;
+  tri.twin[e] = opposite;
+  tri.segment[e] = seg;
+  if (opposite >= 0) tri.twin[opposite] = e;
+  if (seg >= 0) tri.segments.half[seg] = e;
 }
