@@ -2,6 +2,7 @@ import { multiply } from '@gapwright/fem-core';
 import fc from 'fast-check';
 import { Matrix } from 'ml-matrix';
 import { expect, test } from 'vitest';
+import { solveLower, solveUpper } from '../../../packages/fem-core/src/sparse/pattern.js';
 import { definiteMatrices, gridLaplacian, irregular, largest, patternFrom, toDense } from './systems.js';
 
 test('the product is that of the dense matrix', () => {
@@ -39,4 +40,23 @@ test('x A y = y A x, as of every symmetric matrix', () => {
 
 test('a matrix without unknowns has an empty product', () => {
   expect(multiply(patternFrom(0, []), new Float64Array(0), new Float64Array(0), new Float64Array(0))).toHaveLength(0);
+});
+
+test('sweeps forward and backward undo the lower triangle and its transpose', () => {
+  fc.assert(
+    fc.property(definiteMatrices, ({ pattern, values }) => {
+      const { n } = pattern;
+      const lower = toDense({ pattern, values });
+      for (let i = 0; i < n; i++) for (let j = i + 1; j < n; j++) lower.set(i, j, 0);
+      const wanted = irregular(n);
+      for (const [matrix, undo] of [
+        [lower, solveLower],
+        [lower.transpose(), solveUpper],
+      ] as const) {
+        const x = Float64Array.from(matrix.mmul(Matrix.columnVector(Array.from(wanted))).to1DArray());
+        undo(pattern, values, x);
+        expect(largest(x.map((value, i) => value - wanted[i]))).toBeLessThan(1e-9);
+      }
+    }),
+  );
 });

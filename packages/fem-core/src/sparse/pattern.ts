@@ -10,7 +10,7 @@ export interface SymmetricPattern {
   readonly row: Int32Array;
 }
 
-/** y = A x for the symmetric matrix with the given lower-triangle values; writes into `y` and returns it. */
+/** y = A x for the symmetric matrix with the given lower-triangle values; writes into `y` (not `x`) and returns it. */
 export function multiply(
   pattern: SymmetricPattern,
   values: Float64Array,
@@ -19,14 +19,37 @@ export function multiply(
 ): Float64Array {
   const { n, start, row } = pattern;
   y.fill(0);
-  for (let j = 0; j < n; j++) {
-    const first = start[j];
-    let sum = values[first] * x[j];
-    for (let p = first + 1; p < start[j + 1]; p++) {
-      sum += values[p] * x[row[p]];
-      y[row[p]] += values[p] * x[j];
+  for (let j = 0, p = 0; j < n; j++) {
+    const end = start[j + 1];
+    const xj = x[j];
+    let sum = values[p++] * xj;
+    for (; p < end; p++) {
+      const i = row[p];
+      const value = values[p];
+      sum += value * x[i];
+      y[i] += value * xj;
     }
     y[j] += sum;
   }
   return y;
+}
+
+/** x becomes the solution of L y = x, L the lower triangle with the given values. */
+export function solveLower({ n, start, row }: SymmetricPattern, lower: Float64Array, x: Float64Array): void {
+  for (let j = 0, p = 0; j < n; j++) {
+    const end = start[j + 1];
+    const value = x[j] / lower[p++];
+    x[j] = value;
+    for (; p < end; p++) x[row[p]] -= lower[p] * value;
+  }
+}
+
+/** x becomes the solution of L^T y = x. */
+export function solveUpper({ n, start, row }: SymmetricPattern, lower: Float64Array, x: Float64Array): void {
+  for (let j = n - 1; j >= 0; j--) {
+    const first = start[j];
+    let sum = x[j];
+    for (let p = start[j + 1] - 1; p > first; p--) sum -= lower[p] * x[row[p]];
+    x[j] = sum / lower[first];
+  }
 }
