@@ -3,6 +3,7 @@
  * section -> mesh -> system -> field -> answer.
  */
 
+export { placementOf } from './assembly/placement.js';
 export type { EdgeCondition, Setup } from './assembly/setup.js';
 export type { System } from './assembly/system.js';
 export { assemble, buildSystem } from './assembly/system.js';
@@ -32,10 +33,11 @@ export type { Locator, Spot } from './field/locate.js';
 export { buildLocator } from './field/locate.js';
 export type { FieldStatistics } from './field/statistics.js';
 export { exceededIn, fieldStatistics } from './field/statistics.js';
+export { fieldBuffers } from './field/transfer.js';
 export type { FieldValue } from './field/values.js';
 export { fluxBetween, valueAt, valuesAlong } from './field/values.js';
 export type { Curve } from './geometry/curve.js';
-export type { Point, Region, Section, Shape } from './geometry/section.js';
+export type { Point, Region, Section, Shape, SideChain, SizeAt } from './geometry/section.js';
 export { sidesOf } from './geometry/shapes.js';
 export { BEYOND_REGION, OUTSIDE_REGION } from './geometry/unbounded.js';
 export type { Trace } from './io/contours.js';
@@ -64,9 +66,9 @@ export { buildDemagnetisationCurve, findDemagnetisationFaults } from './material
 export type { Direction } from './materials/direction.js';
 export type { Material } from './materials/material.js';
 export { stackedPermeability, stackedTable } from './materials/stacking.js';
-export type { MeshQuality } from './mesh/check-mesh.js';
+export type { MeshExpectation, MeshQuality } from './mesh/check-mesh.js';
 export { checkMesh, measureMesh } from './mesh/check-mesh.js';
-export type { Mesh } from './mesh/mesh.js';
+export type { Beyond, Mesh } from './mesh/mesh.js';
 export { cornerCount, edgeCount, nodeCount, nodePoint, triangleCount, triangleNodes } from './mesh/mesh.js';
 export { meshSection, refineMesh } from './mesh/mesh-section.js';
 export type { QualityLimits } from './mesh/refine.js';
@@ -79,10 +81,19 @@ export type { ProbeOptions, SectionAnswer } from './probes/solve-probes.js';
 export { probeSteps, solveProbes } from './probes/solve-probes.js';
 export type { NewtonOptions, NewtonProgress, Solution, SolveReport } from './solve/newton.js';
 export { newtonSteps, solveNewton } from './solve/newton.js';
+export type { IterativeTangent, Tangent } from './solve/tangent.js';
+export { analyseSystem, buildTangent, solveTangent } from './solve/tangent.js';
 export type { Analysis } from './sparse/analysis.js';
 export { analyse } from './sparse/analysis.js';
-export type { Factor, NotPositive } from './sparse/cholesky.js';
+export type { Factor, FactorOptions, NotPositive } from './sparse/cholesky.js';
 export { factor, solve } from './sparse/cholesky.js';
+export { chooseOrder } from './sparse/choose-order.js';
+export type { GradientOptions, GradientReport } from './sparse/conjugate-gradients.js';
+export { solveByConjugateGradients } from './sparse/conjugate-gradients.js';
 export { minimumDegreeOrder } from './sparse/minimum-degree.js';
+export type { Placement } from './sparse/nested-dissection.js';
+export { dissectionOrder } from './sparse/nested-dissection.js';
 export type { SymmetricPattern } from './sparse/pattern.js';
 export { multiply } from './sparse/pattern.js';
+export type { CoarseLevel } from './sparse/two-level.js';
+export { buildCoarseLevel } from './sparse/two-level.js';

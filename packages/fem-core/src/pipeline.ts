@@ -1,3 +1,4 @@
+import { netCurrent } from './assembly/currents.js';
 import type { Setup } from './assembly/setup.js';
 import type { System } from './assembly/system.js';
 import { buildSystem } from './assembly/system.js';
@@ -21,13 +22,16 @@ import { meshSection, refineMesh } from './mesh/mesh-section.js';
 import { DEFAULT_LIMITS } from './mesh/refine.js';
 import type { NewtonOptions, NewtonProgress } from './solve/newton.js';
 import { newtonSteps } from './solve/newton.js';
+import type { Tangent } from './solve/tangent.js';
 import type { Factor } from './sparse/cholesky.js';
 
 /** A field with what is needed to go on from it. */
 export interface SolvedField {
   readonly field: Field;
   readonly system: System;
-  /** Factor of the tangent at the solution; undefined where the solve failed before the first. */
+  /** The tangent at the solution; undefined where the solve failed before the first. */
+  readonly tangent: Tangent | undefined;
+  /** The same where it is a factor. */
   readonly factor: Factor | undefined;
 }
 
@@ -49,8 +53,9 @@ function* solveFrom(
   const unknowns = numberUnknowns(mesh, setup);
   const system = buildSystem(mesh, setup, unknowns);
   const start = before === undefined ? {} : { start: carryOver(before, mesh, unknowns) };
-  const { potential, report, factor } = yield* newtonSteps(system, { ...options, ...start });
-  return { field: { mesh, setup, potential, report }, system, factor };
+  const { potential, report, tangent, factor } = yield* newtonSteps(system, { ...options, ...start });
+  const far = mesh.beyond === undefined ? {} : { netCurrent: netCurrent(mesh, setup) };
+  return { field: { mesh, setup, potential, report, ...far }, system, tangent, factor };
 }
 
 /** From section to field on one mesh, as fine as the section's `maxEdge` wishes ask. */
@@ -121,7 +126,7 @@ export interface AdaptiveSolution {
   readonly newtonSteps: number;
   /** Of the last mesh: what further solves on it can use. */
   readonly system: System;
-  readonly factor: Factor | undefined;
+  readonly tangent: Tangent | undefined;
 }
 
 /** `adaptiveSteps`, driven to the end. */
@@ -144,12 +149,12 @@ export function* adaptiveSteps(
   let newtonSteps = 0;
   let before: Field | undefined;
   for (let meshes = 1; ; meshes++) {
-    const { field, system, factor } = yield* solveFrom(before, mesh, setup, options.newton ?? {});
+    const { field, system, tangent } = yield* solveFrom(before, mesh, setup, options.newton ?? {});
     newtonSteps += field.report.steps;
     const goals = goalsAt(options, field);
     const values = goals.map((goal) => goal.value);
-    const found = { field, values, meshes, newtonSteps, system, factor };
-    if (factor === undefined) {
+    const found = { field, values, meshes, newtonSteps, system, tangent };
+    if (tangent === undefined) {
       const bounds = values.map(() => Infinity);
       const estimate = { goals: [], bounds, energy: Infinity, recovered: new Float64Array(12 * triangleCount(mesh)) };
       return { ...found, estimate, bounds, error: Infinity, accurate: false };
@@ -157,7 +162,7 @@ export function* adaptiveSteps(
     const linear = estimateGoalErrors(
       system,
       field,
-      factor,
+      tangent,
       goals.map((goal) => goal.functional),
     );
     const estimate = withRemainders(goals, linear);

@@ -5,7 +5,7 @@ import type { Setup } from './setup.js';
 /**
  * Current density of each region out of the page, A/m^2: Float64Array(regions). Currents given as a whole are spread over
  * the area that the mesh covers, so that they are met exactly. In unbounded space the net current returns evenly through the
- * image of what lies beyond: by Gauss's law that changes nothing but a constant of A within the circle.
+ * image of what lies beyond: by Ampere's law that changes nothing but a constant of A within the circle.
  */
 export function currentDensities(mesh: Mesh, setup: Setup): Float64Array {
   const areas = regionAreas(mesh);
@@ -16,7 +16,16 @@ export function currentDensities(mesh: Mesh, setup: Setup): Float64Array {
   if (mesh.beyond === undefined) return density;
   const { region } = mesh.beyond;
   density[region] = 0;
-  const net = density.reduce((sum, value, k) => sum + value * areas[k], 0);
-  density[region] = -net / areas[region];
+  density[region] = -sumOf(density, areas) / areas[region];
   return density;
+}
+
+const sumOf = (density: Float64Array, areas: readonly number[]): number =>
+  density.reduce((sum, value, k) => sum + value * areas[k], 0);
+
+/** Sum of all currents out of the page, A; in unbounded space what returns beyond does not count. */
+export function netCurrent(mesh: Mesh, setup: Setup): number {
+  const density = currentDensities(mesh, setup);
+  if (mesh.beyond !== undefined) density[mesh.beyond.region] = 0;
+  return sumOf(density, regionAreas(mesh));
 }

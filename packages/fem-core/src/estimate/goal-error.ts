@@ -8,8 +8,8 @@ import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import type { Material } from '../materials/material.js';
 import type { Mesh } from '../mesh/mesh.js';
 import { triangleCount } from '../mesh/mesh.js';
-import type { Factor } from '../sparse/cholesky.js';
-import { solve } from '../sparse/cholesky.js';
+import type { Tangent } from '../solve/tangent.js';
+import { solveTangent } from '../solve/tangent.js';
 import type { RecoveredGradient } from './recovery.js';
 import { recoverGradients } from './recovery.js';
 
@@ -48,11 +48,11 @@ export interface ErrorEstimate {
 export function estimateGoalErrors(
   system: System,
   field: Field,
-  factor: Factor,
+  tangent: Tangent,
   goals: readonly Functional[],
 ): ErrorEstimate {
   const { mesh } = field;
-  const duals = goals.map((goal) => solveAdjoint(system, factor, goal));
+  const duals = goals.map((goal) => solveAdjoint(system, tangent, goal));
   const [recovered, ...recoveredDuals] = recoverGradients(mesh, smoothParts(field), [field.potential, ...duals]);
   const m = triangleCount(mesh);
   const shares = goals.map(() => new Float64Array(m));
@@ -87,9 +87,9 @@ export function estimateGoalErrors(
 
 const ORIGIN = [0, 0] as const;
 
-function solveAdjoint(system: System, factor: Factor, goal: Functional): Float64Array {
+function solveAdjoint(system: System, tangent: Tangent, goal: Functional): Float64Array {
   const right = gatherToUnknowns(system.unknowns, goal, new Float64Array(system.unknowns.count));
-  const z = solve(factor, right, right);
+  const z = solveTangent(tangent, right, right);
   const { unknowns } = system;
   return potentialOf({ ...unknowns, fixed: new Float64Array(goal.length) }, z, new Float64Array(goal.length));
 }

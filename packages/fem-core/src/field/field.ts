@@ -9,4 +9,6 @@ export interface Field {
   /** Float64Array(n + e): vector potential A out of the page at every node (corners, then edge middles), Wb/m. */
   readonly potential: Float64Array;
   readonly report: SolveReport;
+  /** In unbounded space: sum of all currents, A. Where it is not 0, A grows beyond all bounds far away. */
+  readonly netCurrent?: number;
 }

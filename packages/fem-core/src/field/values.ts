@@ -71,6 +71,12 @@ export function spotOf({ mesh: { beyond } }: Field, locator: Locator, x: number,
 const liesBeyond = ({ centre, radius }: Beyond, x: number, y: number): boolean =>
   Math.hypot(x - centre[0], y - centre[1]) > radius;
 
+/** What flux densities of the triangle that `spotOf` gives are to be multiplied by: (R/r)^2 for images, else 1. */
+export function shrinkage({ mesh: { beyond } }: Field, x: number, y: number): number {
+  if (beyond === undefined || !liesBeyond(beyond, x, y)) return 1;
+  return (beyond.radius / Math.hypot(x - beyond.centre[0], y - beyond.centre[1])) ** 2;
+}
+
 /**
  * The field at (x, y) in metres; undefined outside the section. In unbounded space every point has a value.
  * @param recovered  see `valueAtSpot`
@@ -86,20 +92,24 @@ export function valueAt(
   if (spot === undefined) return undefined;
   const value = valueAtSpot(field, spot, recovered);
   const { beyond } = field.mesh;
-  return beyond !== undefined && liesBeyond(beyond, x, y) ? turnedOut(value, beyond, x, y) : value;
+  return beyond !== undefined && liesBeyond(beyond, x, y)
+    ? turnedOut(value, beyond, field.netCurrent ?? 0, x, y)
+    : value;
 }
 
 /**
  * From the image to the point itself. The image stands at R^2/r under the same angle, with the same A; of the gradient the
- * part round the circle keeps its sign, the radial part changes it, and both shrink by (R/r)^2.
+ * part round the circle keeps its sign, the radial part changes it, and both shrink by (R/r)^2. The net current I returns
+ * evenly through the image, not at infinity: dA/dr lacks -mu0 I/(2 pi r) (1 - R^2/r^2).
  */
-function turnedOut(image: FieldValue, { centre, radius }: Beyond, x: number, y: number): FieldValue {
+function turnedOut(image: FieldValue, { centre, radius }: Beyond, net: number, x: number, y: number): FieldValue {
   const [dx, dy] = [x - centre[0], y - centre[1]];
   const far2 = dx * dx + dy * dy;
   const shrink = (radius * radius) / far2;
   const [gx, gy] = [-image.by, image.bx];
-  const radial = (2 * (gx * dx + gy * dy)) / far2;
-  return describePoint(VACUUM, image.a, shrink * (gy - radial * dy), -shrink * (gx - radial * dx), x, y);
+  const radial = (2 * (gx * dx + gy * dy)) / far2 + ((MU0 * net) / (2 * Math.PI * radius * radius)) * (1 - shrink);
+  const a = image.a - ((MU0 * net) / (4 * Math.PI)) * (Math.log(far2 / (radius * radius)) - 1 + shrink);
+  return describePoint(VACUUM, a, shrink * (gy - radial * dy), -shrink * (gx - radial * dx), x, y);
 }
 
 /** The field at `count` equally spaced points from one end to the other, ends included; undefined for points outside. */

@@ -8,9 +8,8 @@ import type { Field } from '../field/field.js';
 import type { Functional } from '../field/functionals.js';
 import { applyFunctional, weightedIntegral } from '../field/functionals.js';
 import { nodeCount } from '../mesh/mesh.js';
-import { analyse } from '../sparse/analysis.js';
-import type { Factor } from '../sparse/cholesky.js';
-import { factor, solve } from '../sparse/cholesky.js';
+import type { Tangent } from '../solve/tangent.js';
+import { analyseSystem, buildTangent, solveTangent } from '../solve/tangent.js';
 import { areaOf, productOfGaps } from './goals.js';
 
 /** A coil by the regions it runs through: turns that come out of the page count positive, those that go back negative. */
@@ -44,17 +43,18 @@ export interface Inductances {
  * @throws InputError for coils in regions that cover nothing
  */
 export function inductancesAt(
-  solved: { readonly field: Field; readonly system: System; readonly factor?: Factor | undefined },
+  solved: { readonly field: Field; readonly system: System; readonly tangent?: Tangent | undefined },
   coils: readonly Coil[],
 ): Inductances {
   const { field, system } = solved;
   const linkages = coils.map((coil) => linkageOf(field, coil));
-  const analysis = solved.factor?.analysis ?? analyse(system.pattern);
+  const known = solved.tangent !== undefined && 'blocks' in solved.tangent ? solved.tangent.analysis : undefined;
+  const analysis = known ?? analyseSystem(system);
   const values = new Float64Array(system.pattern.row.length);
   const potentials = (which: 'chord' | 'tangent'): Float64Array[] => {
-    const factored = factor(analysis, assembleFrozen(system, field.potential, which, values));
-    if ('pivot' in factored) throw new Error('inductancesAt: the frozen matrix is not positive definite');
-    return linkages.map((linkage) => potentialPerAmpere(system, factored, linkage));
+    const matrix = buildTangent(system, analysis, assembleFrozen(system, field.potential, which, values), undefined);
+    if ('failure' in matrix) throw new Error(`inductancesAt: ${matrix.failure}`);
+    return linkages.map((linkage) => potentialPerAmpere(system, matrix, linkage));
   };
   const byTangent = potentials('tangent');
   const byChord = potentials('chord');
@@ -97,11 +97,11 @@ function linkageOf(field: Field, coil: Coil): Functional {
 }
 
 /** The linkage's functional is also the source of one ampere through the coil. */
-function potentialPerAmpere(system: System, factored: Factor, linkage: Functional): Float64Array {
+function potentialPerAmpere(system: System, matrix: Tangent, linkage: Functional): Float64Array {
   const { unknowns } = system;
   const u = gatherToUnknowns(unknowns, linkage, new Float64Array(unknowns.count));
   const free = { ...unknowns, fixed: new Float64Array(linkage.length) };
-  return potentialOf(free, solve(factored, u, u), new Float64Array(linkage.length));
+  return potentialOf(free, solveTangent(matrix, u, u), new Float64Array(linkage.length));
 }
 
 /** Largest eigenvalue of the matrix scaled to a unit diagonal, less 1, over the number of other coils. */

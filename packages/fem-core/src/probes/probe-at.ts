@@ -8,7 +8,7 @@ import type { Functional } from '../field/functionals.js';
 import { applyFunctional, pointPotential, weightedFlux, weightedIntegral } from '../field/functionals.js';
 import { meanOver } from '../field/integrals.js';
 import type { Locator } from '../field/locate.js';
-import { spotOf, valueAt, valueAtSpot } from '../field/values.js';
+import { shrinkage, spotOf, valueAt, valueAtSpot } from '../field/values.js';
 import type { Point } from '../geometry/section.js';
 import { areaOf, meanDensityFunctional } from './goals.js';
 import type { Answer, Probe } from './probe.js';
@@ -72,13 +72,31 @@ function potentialFigure(field: Field, locator: Locator, [x, y]: Point): Figure 
   return { value: applyFunctional(functional, field.potential), functional };
 }
 
-/** The gap between recovered and element flux density at a place: far above the error of the recovered, T. */
+/**
+ * Error of the flux density at a place, T: the largest gap between recovered and element flux density at the nodes of its
+ * triangle. The recovered one, which is told, is usually far better.
+ */
 function gapAt(field: Field, locator: Locator, [x, y]: Point, recovered: RecoveredGradient): number {
   const spot = spotOf(field, locator, x, y);
   if (spot === undefined) return Number.NaN;
-  const [fine, coarse] = [valueAtSpot(field, spot, recovered), valueAtSpot(field, spot)];
-  return Math.hypot(fine.bx - coarse.bx, fine.by - coarse.by);
+  let most = 0;
+  for (const [xi, eta] of NODES) {
+    const node = { triangle: spot.triangle, xi, eta };
+    const [fine, coarse] = [valueAtSpot(field, node, recovered), valueAtSpot(field, node)];
+    most = Math.max(most, Math.hypot(fine.bx - coarse.bx, fine.by - coarse.by));
+  }
+  return most * shrinkage(field, x, y);
 }
+
+/** Reference coordinates of the six nodes. */
+const NODES = [
+  [0, 0],
+  [1, 0],
+  [0, 1],
+  [0.5, 0.5],
+  [0, 0.5],
+  [0.5, 0],
+] as const;
 
 function pointAt(probe: Extract<Probe, { kind: 'point' }>, field: Field, locator: Locator): ProbeAt {
   const figure = potentialFigure(field, locator, probe.at);

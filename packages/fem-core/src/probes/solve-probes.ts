@@ -8,7 +8,7 @@ import type { Section } from '../geometry/section.js';
 import type { AdaptiveSolution, GoalAt, MeshProgress } from '../pipeline.js';
 import { adaptiveSteps } from '../pipeline.js';
 import type { NewtonOptions, NewtonProgress } from '../solve/newton.js';
-import type { Factor } from '../sparse/cholesky.js';
+import type { Tangent } from '../solve/tangent.js';
 import { energyGoals } from './goals.js';
 import type { Answer, Probe } from './probe.js';
 import type { ProbeAt } from './probe-at.js';
@@ -46,7 +46,7 @@ export interface SectionAnswer {
   readonly newtonSteps: number;
   /** Of the last mesh: what further solves on it can use, such as those of an inductance. */
   readonly system: System;
-  readonly factor: Factor | undefined;
+  readonly tangent: Tangent | undefined;
 }
 
 /**
@@ -116,6 +116,6 @@ function answer(solution: AdaptiveSolution, wanted: readonly ProbeAt[]): Section
     meshes: solution.meshes,
     newtonSteps: solution.newtonSteps,
     system: solution.system,
-    factor: solution.factor,
+    tangent: solution.tangent,
   };
 }

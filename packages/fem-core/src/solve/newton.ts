@@ -3,11 +3,11 @@ import { assemble, potentialOf } from '../assembly/system.js';
 import type { Steps } from '../base/steps.js';
 import { finish } from '../base/steps.js';
 import type { Analysis } from '../sparse/analysis.js';
-import { analyse } from '../sparse/analysis.js';
 import type { Factor } from '../sparse/cholesky.js';
-import { factor, solve } from '../sparse/cholesky.js';
 import type { SymmetricPattern } from '../sparse/pattern.js';
 import { multiply } from '../sparse/pattern.js';
+import type { Tangent } from './tangent.js';
+import { analyseSystem, buildTangent, solveTangent } from './tangent.js';
 
 export interface NewtonOptions {
   /** Wanted ratio of the residual to that at A = 0 (with the held values), 2-norms. */
@@ -17,6 +17,8 @@ export interface NewtonOptions {
   readonly start?: Float64Array;
   /** The pattern's analysis, where it is known from an earlier solve. */
   readonly analysis?: Analysis;
+  /** Bytes a factor may work in; conjugate gradients take its place where it would need more. 3.9e9 if absent. */
+  readonly memory?: number;
 }
 
 /** Told after each step. */
@@ -47,7 +49,9 @@ export interface Solution {
   /** Float64Array(nodes), Wb/m. */
   readonly potential: Float64Array;
   readonly report: SolveReport;
-  /** Factor of the tangent at the last step but for the very last change: serves adjoint problems. */
+  /** Of the last step but for the very last change: serves adjoint problems. */
+  readonly tangent: Tangent | undefined;
+  /** The same where it is a factor. */
   readonly factor: Factor | undefined;
 }
 
@@ -66,8 +70,7 @@ export function* newtonSteps(system: System, options: NewtonOptions = {}): Steps
   const { tolerance = 1e-8, maxSteps = 60 } = options;
   const { n } = system.pattern;
   const nodes = system.source.length;
-  const analysis = options.analysis ?? analyse(system.pattern);
-  const blocks = new Float64Array(analysis.blockSize);
+  const analysis = options.analysis ?? analyseSystem(system);
   const tangent = new Float64Array(system.pattern.row.length);
   const u = new Float64Array(n);
   const potential = new Float64Array(nodes);
@@ -78,7 +81,7 @@ export function* newtonSteps(system: System, options: NewtonOptions = {}): Steps
   };
   const residuals: number[] = [];
   const stepLengths: number[] = [];
-  let last: Factor | undefined;
+  let last: Tangent | undefined;
   const finish = (failure?: string): Solution => ({
     u,
     potential: potentialOf(system.unknowns, u, potential),
@@ -91,7 +94,8 @@ export function* newtonSteps(system: System, options: NewtonOptions = {}): Steps
       factorEntries: analysis.blockSize,
       ...(failure === undefined ? {} : { failure }),
     },
-    factor: last,
+    tangent: last,
+    factor: last !== undefined && 'blocks' in last ? last : undefined,
   });
 
   at(u);
@@ -111,11 +115,12 @@ export function* newtonSteps(system: System, options: NewtonOptions = {}): Steps
     const reached = size <= tolerance || (size < NEAR_ROUNDING && size <= floor());
     if (reached && last !== undefined) return finish();
     if (stepLengths.length >= maxSteps) return finish(`not converged in ${maxSteps} steps`);
-    const factored = factor(analysis, tangent, blocks);
-    if (!('blocks' in factored)) return finish(`the tangent is not positive definite (pivot ${factored.pivot})`);
-    last = factored;
+    const built = buildTangent(system, analysis, tangent, last, options.memory);
+    last = undefined; // its memory is the new one's
+    if ('failure' in built) return finish(built.failure);
+    last = built;
     if (reached) return finish(); // the start was the solution; adjoint problems need the factor all the same
-    solve(factored, residual, step);
+    solveTangent(built, residual, step);
     for (let i = 0; i < n; i++) step[i] = -step[i];
     stepLengths.push(searchLine(u, step, trial, residual, at));
     u.set(trial);
