@@ -5,10 +5,10 @@ import {
   analyseOrdered,
   orderByDegree,
   orderByDissection,
-  orderForReuse,
   residualOf,
   solverOf,
   solveTimes,
+  usualOrder,
 } from './ours.js';
 import type { Answer, Peer } from './peer.js';
 import { startPeer, timerOfPeer, withPeers } from './peer.js';
@@ -94,22 +94,18 @@ async function orderings({ problem, file, runs, row, cholmod }: Case): Promise<v
     check: `fill ${(fills.degree / fills.amd).toFixed(3)} x AMD's`,
   });
 
-  // Geometric nested dissection: waits until `orderByDissection` of ours.ts is wired to the library.
   const dissection = orderByDissection(problem);
   if (n >= 18_000) {
     const columns = { part: 'nested dissection', peer: 'CHOLMOD AMD', ...targetAt(n, [[20_000, 1.8, 0.8]]) };
-    if (dissection === undefined) row({ ...columns, theirs: amdMs, check: '-' });
-    else {
-      const [oursMs, theirs] = await interleave(runs, [timerOf(() => orderByDissection(problem)), amd.timer]);
-      const check = `fill ${((await fillOf(dissection)) / fills.amd).toFixed(3)} x AMD's`;
-      row({ ...columns, ours: oursMs, theirs, check });
-    }
+    const [oursMs, theirs] = await interleave(runs, [timerOf(() => orderByDissection(problem)), amd.timer]);
+    const check = `fill ${((await fillOf(dissection)) / fills.amd).toFixed(3)} x AMD's`;
+    row({ ...columns, ours: oursMs, theirs, check });
   }
   if (n >= 45_000) {
     row({
       part: 'fill of the dissection',
       peer: 'METIS',
-      ...(dissection === undefined ? {} : { ours: await fillOf(dissection) }),
+      ours: await fillOf(dissection),
       theirs: fills.metis,
       count: true,
       must: 1.4,
@@ -164,7 +160,7 @@ async function factors({ problem, runs, row, cholmod, mumps, plain }: Case, sett
   const { n } = problem.pattern;
   await cholmod.ask('setting', ...setting);
   await mumps.ask('setting', 'scotch');
-  const analysis = analyseOrdered(problem, orderForReuse(problem));
+  const analysis = analyseOrdered(problem, usualOrder(problem));
   const solver = solverOf(problem, analysis);
   const theirs = timerOfPeer(cholmod, 'factor');
   const native = timerOfPeer(mumps, 'factor');
@@ -211,7 +207,7 @@ async function factors({ problem, runs, row, cholmod, mumps, plain }: Case, sett
 
 async function solves({ problem, runs, row, cholmod }: Case, setting: Setting): Promise<void> {
   await cholmod.ask('setting', ...setting);
-  const solver = solverOf(problem, analyseOrdered(problem, orderForReuse(problem)));
+  const solver = solverOf(problem, analyseOrdered(problem, usualOrder(problem)));
   const theirs = timerOfPeer(cholmod, 'solve');
   const [oursMs, theirsMs] = await interleave(runs, [timerOf(solver.solve), theirs.timer]);
   row({
@@ -235,7 +231,7 @@ async function wholes({ problem, runs, row, cholmod, mumps }: Case, setting: Set
   const once = timerOfPeer(cholmod, 'once');
   const [onceMs, theirOnceMs] = await interleave(runs, [
     timerOf(() => {
-      x = solveTimes(problem, 1);
+      x = solveTimes(problem, 1, usualOrder(problem));
     }),
     once.timer,
   ]);
@@ -253,7 +249,7 @@ async function wholes({ problem, runs, row, cholmod, mumps }: Case, setting: Set
   const natives = [timerOfPeer(cholmod, 'ten'), timerOfPeer(mumps, 'ten')];
   const [tenMs, ...theirTens] = await interleave(few, [
     timerOf(() => {
-      x = solveTimes(problem, 10, orderForReuse(problem));
+      x = solveTimes(problem, 10, usualOrder(problem));
     }),
     ...natives.map(({ timer }) => timer),
   ]);

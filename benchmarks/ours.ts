@@ -1,11 +1,11 @@
 /** The one place where the comparisons touch the library's solver: what is timed of ours, by public names. */
-import type { Analysis, Factor, SymmetricPattern } from '@gapwright/fem-core';
-import * as library from '@gapwright/fem-core';
+import type { Analysis, Factor } from '@gapwright/fem-core';
 import {
   analyse,
   assemble,
   buildSystem,
-  cornerCount,
+  chooseOrder,
+  dissectionOrder,
   energiesOf,
   factor,
   minimumDegreeOrder,
@@ -13,6 +13,7 @@ import {
   nodeCount,
   nodePoint,
   numberUnknowns,
+  placementOf,
   solve,
   solveNewton,
 } from '@gapwright/fem-core';
@@ -23,39 +24,13 @@ export type LinearSystem = Pick<LinearProblem, 'pattern' | 'values' | 'right'>;
 
 export const orderByDegree = ({ pattern }: LinearSystem): Int32Array => minimumDegreeOrder(pattern);
 
-/** Where the unknowns lie, and between which unknowns those of the edges' middles; as the dissection wants it. */
-interface Placement {
-  readonly points: Float64Array;
-  readonly ends: Int32Array;
-}
-/** Not among the public names yet: the rows that need it say so until it is. */
-const { dissectionOrder } = library as unknown as {
-  readonly dissectionOrder?: (pattern: SymmetricPattern, placement: Placement) => Int32Array;
-};
+/** Nested dissection by the geometry of the quadratic elements. */
+export const orderByDissection = ({ pattern, mesh, unknowns }: LinearProblem): Int32Array =>
+  dissectionOrder(pattern, placementOf(mesh, unknowns));
 
-/** Nested dissection by the geometry of the quadratic elements; undefined as long as the library offers none. */
-export function orderByDissection(problem: LinearProblem): Int32Array | undefined {
-  return dissectionOrder?.(problem.pattern, placementOf(problem));
-}
-
-function placementOf({ mesh, unknowns }: LinearProblem): Placement {
-  const corners = cornerCount(mesh);
-  const { count, unknownOf } = unknowns;
-  const points = new Float64Array(2 * count);
-  const ends = new Int32Array(2 * count);
-  for (let node = 0; node < nodeCount(mesh); node++) {
-    const i = unknownOf[node];
-    if (i < 0) continue;
-    points.set(nodePoint(mesh, node), 2 * i);
-    for (const k of [0, 1]) ends[2 * i + k] = node < corners ? i : unknownOf[mesh.edges[2 * (node - corners) + k]];
-  }
-  return { points, ends };
-}
-
-/** The ordering for a pattern that serves several factorisations; undefined leaves the choice to the library. */
-export const orderForReuse = (problem: LinearProblem): Int32Array | undefined =>
-  problem.pattern.n < DISSECTION_PAYS ? undefined : orderByDissection(problem);
-const DISSECTION_PAYS = 20_000;
+/** The order the library takes for solves of its own. */
+export const usualOrder = ({ pattern, mesh, unknowns }: LinearProblem): Int32Array =>
+  chooseOrder(pattern, placementOf(mesh, unknowns));
 
 export const analyseOrdered = ({ pattern }: LinearSystem, order?: Int32Array): Analysis => analyse(pattern, order);
 

@@ -17,10 +17,12 @@ import { cpus } from 'node:os';
 import { fileURLToPath } from 'node:url';
 import { parseArgs } from 'node:util';
 import { readMachine } from '@gapwright/machine-models';
+import { benchAssembly } from './assembly.js';
 import { benchCommand } from './command.js';
 import { compare } from './compare.js';
 import { printGrowth } from './growth.js';
 import { benchMesher } from './mesher.js';
+import { benchOrdering } from './ordering.js';
 import { benchSlices } from './slices.js';
 import { benchSparse } from './sparse.js';
 
@@ -38,13 +40,15 @@ const maxUnknowns = Number(asked['max-unknowns']);
 console.log(`Node ${process.version}, ${cpus().length} x ${cpus()[0]?.model ?? 'unknown processor'}`);
 if (asked.peers) await compare({ runs: Number(asked.runs), maxUnknowns, only: asked.only });
 if (asked.growth) await printGrowth(maxUnknowns);
-if (!asked.peers && !asked.growth) benchOurs();
+if (!asked.peers && !asked.growth) await benchOurs();
 
-function benchOurs(): void {
+async function benchOurs(): Promise<void> {
   const scenario = fileURLToPath(new URL('../../packages/cli/scenarios/hut-hydro.yaml', import.meta.url));
   const { machine } = readMachine(readFileSync(scenario, 'utf8'), { file: 'hut-hydro.yaml' });
   benchSlices(machine); // first, so that its first time is cold
   benchCommand(scenario);
+  await benchOrdering();
   benchSparse();
+  benchAssembly();
   benchMesher();
 }

@@ -1,14 +1,15 @@
-import type { Mesh, SolvedField, System } from '@gapwright/fem-core';
+import type { Factor, Mesh, NotPositive, SolvedField, System } from '@gapwright/fem-core';
 import {
   analyse,
   assemble,
   buildLocator,
   buildSystem,
+  chooseOrder,
   estimateGoalErrors,
   factor,
   meshSection,
-  minimumDegreeOrder,
   numberUnknowns,
+  placementOf,
   refineMesh,
   solve,
   solveOnMesh,
@@ -97,6 +98,11 @@ function addStages({ pole, field, answer }: SolvedSlice, sum: Times): void {
   } else addPass(pole, first, answer.newtonSteps, clock);
 }
 
+function positive(made: Factor | NotPositive): Factor {
+  if ('blocks' in made) return made;
+  throw new Error('the tangent is not positive definite');
+}
+
 /** One mesh, from its system to its estimate, with the given number of Newton steps. */
 function addPass(
   pole: PoleSection,
@@ -105,23 +111,21 @@ function addPass(
   clock: <T>(stage: keyof Times, work: () => T) => T,
 ): void {
   const system = clock('assembly', () => buildSystem(mesh, pole.setup, numberUnknowns(mesh, pole.setup)));
-  const order = clock('ordering', () => minimumDegreeOrder(system.pattern));
+  const order = clock('ordering', () => chooseOrder(system.pattern, placementOf(mesh, system.unknowns)));
   const analysis = clock('analysis', () => analyse(system.pattern, order));
   const solution = solveOnMesh(mesh, pole.setup, { analysis });
   const tangent = new Float64Array(system.pattern.row.length);
   const residual = new Float64Array(system.pattern.n);
-  const blocks = new Float64Array(analysis.blockSize);
   assemble(system, solution.field.potential, residual, tangent);
+  let factored = positive(factor(analysis, tangent));
   // A step costs a factor, a solve, and two assemblies, one of them with the tangent; one more begins.
   clock('assembly', () => {
     for (let i = 0; i <= steps; i++) assemble(system, solution.field.potential, residual, tangent);
     for (let i = 0; i < steps; i++) assemble(system, solution.field.potential, residual);
   });
   clock('factor', () => {
-    for (let i = 0; i < steps; i++) factor(analysis, tangent, blocks);
+    for (let i = 0; i < steps; i++) factored = positive(factor(analysis, tangent, { reuse: factored }));
   });
-  const factored = factor(analysis, tangent, blocks);
-  if (!('blocks' in factored)) throw new Error('the tangent is not positive definite');
   clock('solve', () => {
     for (let i = 0; i < steps; i++) solve(factored, residual, new Float64Array(system.pattern.n));
   });

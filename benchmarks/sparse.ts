@@ -9,6 +9,7 @@ import {
   multiply,
   numberUnknowns,
   solve,
+  solveMany,
 } from '@gapwright/fem-core';
 import { CholeskyDecomposition, Matrix } from 'ml-matrix';
 import { medianMs, ms, printTable } from './timing.js';
@@ -97,59 +98,59 @@ function positive(result: ReturnType<typeof factor>): Factor {
 /** Order, analysis, factor and solve against conjugate gradients in the same run. */
 export function benchSparse(): void {
   console.log('\nsparse solver: Laplacian of quadratic elements on the unit square (times in ms, medians)');
-  const rows: string[][] = [
-    [
-      'unknowns',
-      'entries',
-      'order',
-      'analysis',
-      'factor',
-      'solve',
-      'fill',
-      'Mflop/s',
-      'residual',
-      'CG',
-      'steps',
-      'all/CG',
-    ],
-  ];
+  const heads = ['unknowns', 'entries', 'order', 'analysis', 'factor', 'Gflop/s', 'plain', 'solve', 'four', 'fill'];
+  const rows: string[][] = [[...heads, 'residual', 'CG', 'steps', 'all/CG']];
   for (const [maxEdge, runs] of [
-    [0.07, 9],
-    [0.0318, 5],
-    [0.0145, 3],
+    [0.0406, 15],
+    [0.0203, 9],
+    [0.0128, 5],
   ] as const) {
-    const problem = laplacian(maxEdge);
-    const { pattern, values, right } = problem;
-    const { n } = pattern;
-    const order = minimumDegreeOrder(pattern);
-    const analysis = analyse(pattern, order);
-    const blocks = new Float64Array(analysis.blockSize);
-    const factored = positive(factor(analysis, values, blocks));
-    const x = solve(factored, right, new Float64Array(n));
-    const orderMs = medianMs(runs, () => minimumDegreeOrder(pattern), 1);
-    const analysisMs = medianMs(runs, () => analyse(pattern, order), 1);
-    const factorMs = medianMs(runs, () => factor(analysis, values, blocks), 1);
-    const solveMs = medianMs(runs, () => solve(factored, right, new Float64Array(n)), 1);
-    const gradients = solveByGradients(problem);
-    const gradientsMs = medianMs(Math.min(runs, 3), () => solveByGradients(problem), 0);
-    rows.push([
-      `${n}`,
-      `${pattern.row.length}`,
-      ms(orderMs),
-      ms(analysisMs),
-      ms(factorMs),
-      ms(solveMs),
-      (analysis.blockSize / pattern.row.length).toFixed(1),
-      (analysis.flops / factorMs / 1000).toFixed(0),
-      residualOf(problem, x).toExponential(1),
-      ms(gradientsMs),
-      `${gradients.steps}`,
-      ((orderMs + analysisMs + factorMs + solveMs) / gradientsMs).toFixed(2),
-    ]);
+    rows.push(benchProblem(laplacian(maxEdge), runs));
   }
   printTable(rows);
-  console.log('  fill: entries of the factor over those of the matrix; all/CG: order + analysis + factor + solve');
+  console.log(
+    '  plain: the factor without WebAssembly; four: right-hand sides at once; fill: entries of the factor over those',
+  );
+  console.log('  of the matrix; all/CG: order + analysis + factor + solve');
   benchDense();
+}
+
+/** A row of the table. */
+function benchProblem(problem: Problem, runs: number): string[] {
+  const { pattern, values, right } = problem;
+  const { n } = pattern;
+  const order = minimumDegreeOrder(pattern);
+  const analysis = analyse(pattern, order);
+  const orderMs = medianMs(runs, () => minimumDegreeOrder(pattern), 1);
+  const analysisMs = medianMs(runs, () => analyse(pattern, order), 1);
+  let factored = positive(factor(analysis, values, { plain: true }));
+  const again = (plain: boolean): void => {
+    factored = positive(factor(analysis, values, { reuse: factored, plain }));
+  };
+  const plainMs = medianMs(runs, () => again(true), 1);
+  const factorMs = medianMs(runs, () => again(false), 2);
+  const x = new Float64Array(n);
+  const solveMs = medianMs(3 * runs, () => solve(factored, right, x), 1);
+  const four = new Float64Array(4 * n);
+  const fourMs = medianMs(runs, () => solveMany(factored, four, four, 4), 1);
+  const gradients = solveByGradients(problem);
+  const gradientsMs = medianMs(Math.min(runs, 3), () => solveByGradients(problem), 0);
+  return [
+    `${n}`,
+    `${pattern.row.length}`,
+    ms(orderMs),
+    ms(analysisMs),
+    ms(factorMs),
+    (analysis.flops / factorMs / 1e6).toFixed(1),
+    ms(plainMs),
+    ms(solveMs),
+    ms(fourMs),
+    (analysis.factorEntries / pattern.row.length).toFixed(1),
+    residualOf(problem, x).toExponential(1),
+    ms(gradientsMs),
+    `${gradients.steps}`,
+    ((orderMs + analysisMs + factorMs + solveMs) / gradientsMs).toFixed(2),
+  ];
 }
 
 /** A system small enough for a dense general-purpose library. */

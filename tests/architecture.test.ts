@@ -14,7 +14,8 @@ const houses: readonly (readonly [SourcePackage, Floors])[] = [
   [
     femCore,
     [
-      ['base', 'kernels'],
+      ['base'],
+      ['kernels'],
       ['geometry', 'materials', 'sparse'],
       ['mesh'],
       ['elements'],
@@ -29,7 +30,10 @@ const houses: readonly (readonly [SourcePackage, Floors])[] = [
       ['index.ts'],
     ],
   ],
-  [machineModels, [['machine.ts'], ['materials', 'waves', 'winding'], ['input', 'slices'], ['results'], ['index.ts']]],
+  [
+    machineModels,
+    [['machine.ts'], ['materials', 'waves', 'winding'], ['input', 'slices'], ['results', 'section-file'], ['index.ts']],
+  ],
   [
     cli,
     [
@@ -37,14 +41,17 @@ const houses: readonly (readonly [SourcePackage, Floors])[] = [
         'engine.ts',
         'figures.ts',
         'files.ts',
+        'lines-csv.ts',
+        'magnitude.ts',
+        'near-part.ts',
         'plain-text.ts',
         'results-json.ts',
         'surroundings.ts',
         'version.ts',
         'waveforms-csv.ts',
       ],
-      ['input.ts', 'options.ts', 'sheet.ts', 'solve-machine.ts'],
-      ['datasheet.ts', 'report'],
+      ['input.ts', 'options.ts', 'section-engine.ts', 'sheet.ts', 'solve-machine.ts'],
+      ['datasheet.ts', 'outputs.ts', 'report', 'section-sheet.ts'],
       ['commands'],
       ['main.ts'],
       ['bin.ts'],

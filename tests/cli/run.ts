@@ -2,7 +2,7 @@ import { mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'n
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { type Engine, main } from '@gapwright/cli';
+import { type Engine, main, type SectionEngine } from '@gapwright/cli';
 import { afterAll } from 'vitest';
 
 export const hutHydro = fileURLToPath(new URL('../../packages/cli/scenarios/hut-hydro.yaml', import.meta.url));
@@ -15,6 +15,7 @@ export interface Run {
 
 export interface RunOptions {
   readonly engine?: Engine;
+  readonly sections?: SectionEngine;
   readonly env?: Readonly<Record<string, string>>;
   readonly signal?: AbortSignal;
   /** Both streams pass for a terminal. */
@@ -36,7 +37,7 @@ export async function run(argv: readonly string[], options: RunOptions = {}): Pr
     env: options.env ?? {},
     signal: options.signal ?? new AbortController().signal,
   };
-  const status = await main(argv, surroundings, options.engine);
+  const status = await main(argv, surroundings, options.engine, options.sections);
   return { status, ...said };
 }
 

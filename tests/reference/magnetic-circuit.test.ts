@@ -1,4 +1,4 @@
-import type { Field, Material, Section } from '@gapwright/fem-core';
+import type { Field, Material } from '@gapwright/fem-core';
 import {
   buildBHCurve,
   buildLocator,
@@ -10,51 +10,21 @@ import {
   solveSection,
 } from '@gapwright/fem-core';
 import { describe, expect, test } from 'vitest';
+import { circuitCases, saturationCases } from '../../packages/fem-core/src/verify/cases.js';
+import type { Layer } from '../../packages/fem-core/src/verify/circuits.js';
+import { seriesCircuit } from '../../packages/fem-core/src/verify/circuits.js';
+import { LAW_ROWS, lawCurve } from '../../packages/fem-core/src/verify/laws.js';
 import type { Table } from './bh-tables.js';
 import { SHEET_470, TEAM_13 } from './bh-tables.js';
+import { holdCases } from './hold-cases.js';
 import { check } from './table.js';
 
 const CIRCUIT = "Ampere's law round a one-dimensional circuit (calculated)";
-const WIDTH = 0.01;
 
-/** One layer of the circuit, all of the strip's width. */
-interface Layer {
-  readonly name: string;
-  readonly thickness: number;
-  readonly material: Material;
-}
-
-/**
- * Layers in series along y, the flux parallel to the sides. The field crosses bottom and top at right angles (H along
- * them is 0, as on ideal iron). The left side holds A = 0. On the right a thin layer that flux does not enter keeps A one
- * constant along the side, without fixing which: it settles where the sum of H times thickness over the layers is 0. What
- * enters the barrier all the same is about 1e-5 of the flux.
- */
-function solveStrip(layers: readonly Layer[]): Field {
-  const height = layers.reduce((sum, { thickness }) => sum + thickness, 0);
-  const barrier = WIDTH / 10;
-  let y = 0;
-  const regions = layers.map(({ name, thickness }): Section['regions'][number] => {
-    const from = y;
-    y += thickness;
-    return { name, shape: { kind: 'rectangle', from: [0, from], to: [WIDTH, y] } };
-  });
-  const section: Section = {
-    outline: { kind: 'rectangle', from: [0, 0], to: [WIDTH + barrier, height] },
-    background: 'barrier',
-    regions,
-  };
-  const materials = Object.fromEntries(layers.map(({ name, material }) => [name, material]));
-  const edge = { kind: 'crossing' } as const;
-  return solveSection(
-    section,
-    {
-      materials: { ...materials, barrier: { kind: 'linear', muR: 1e-6 } },
-      edges: { left: { kind: 'closed' }, right: edge, top: edge, bottom: edge },
-    },
-    { tolerance: 1e-7 }, // the barrier's reluctivity leaves rounding of about 2e-8
-  );
-}
+const solveStrip = (layers: readonly Layer[]): Field => {
+  const { section, setup } = seriesCircuit('strip', '', layers, []);
+  return solveSection(section, setup);
+};
 
 /** Mean By of a layer. */
 function fluxDensityOf(field: Field, layer: string): number {
@@ -79,33 +49,7 @@ const magnetOf = (remanence: number, recoil: number): Material => ({
   remanence: [0, remanence],
 });
 
-test.each([
-  [1.25, 1.05, 0.02, 0.016, 0.679347826, -432486.258],
-  [1.25, 1.05, 0.01, 0.009, 0.642673522, -460281.005],
-  [0.39, 1.1, 0.04, 0.014, 0.281588448, -78428.3384],
-])(
-  'magnet and gap between ideal irons, Br %s, recoil %s: B = Br h/(h + recoil g)',
-  (remanence, recoil, h, g, b, strength) => {
-    const field = solveStrip([
-      { name: 'magnet', thickness: h, material: magnetOf(remanence, recoil) },
-      { name: 'gap', thickness: g, material: air },
-    ]);
-    const label = `circuit of ${1000 * h} mm magnet, ${1000 * g} mm gap`;
-    check({ case: label, quantity: 'B', source: CIRCUIT, expected: b, got: fluxDensityOf(field, 'gap') }, 3e-5);
-    const got = fieldStrengthOf(field, 'magnet');
-    check({ case: label, quantity: 'H in the magnet', source: CIRCUIT, expected: strength, got }, 3e-5);
-  },
-);
-
-test('200 mm of iron of mu_r 1000 in series adds its share of the gap', () => {
-  const field = solveStrip([
-    { name: 'magnet', thickness: 0.02, material: magnetOf(1.25, 1.05) },
-    { name: 'gap', thickness: 0.016, material: air },
-    { name: 'iron', thickness: 0.2, material: { kind: 'linear', muR: 1000 } },
-  ]);
-  const given = { case: 'circuit with iron of mu_r 1000', quantity: 'B', source: CIRCUIT };
-  check({ ...given, expected: 0.67549311, got: fluxDensityOf(field, 'gap') }, 3e-5);
-});
+holdCases([...circuitCases, ...saturationCases]);
 
 describe.each([
   ['TEAM 13 steel', TEAM_13, 1.02921693],
@@ -196,23 +140,6 @@ describe('ring round a conductor: H = I/(2 pi r)', () => {
     return fluxBetween(field, buildLocator(field.mesh), [from, 0], [to, 0]) ?? Number.NaN;
   };
 
-  // B = mu0 H + Js H/(H + h), the law of Froehlich and Kennelly, has a closed integral over the ring.
-  const [saturation, knee] = [1.9, 250];
-  const froehlich = (strength: number): number => MU0 * strength + (saturation * strength) / (strength + knee);
-  const froehlichTable: Table = Array.from({ length: 80 }, (_, i): [number, number] => {
-    const strength = 40 * (1.13 ** i - 1);
-    return [strength, froehlich(strength)];
-  });
-
-  test.each([5, 20, 60, 200, 1000, 5000])('Froehlich steel, %s A: flux in closed form', (current) => {
-    const c = 2 * Math.PI * knee;
-    const polarised = ((saturation * current) / c) * Math.log((current + c * outer) / (current + c * inner));
-    const expected = polarised + ((MU0 * current) / (2 * Math.PI)) * Math.log(outer / inner);
-    const got = fluxOf(solveRing(froehlichTable, current, 0.006), inner, outer);
-    const source = "Ampere's law and Froehlich's B(H), integrated over the ring (calculated)";
-    check({ case: 'ring of Froehlich steel', quantity: `flux at ${current} A, Wb/m`, source, expected, got }, 5e-4);
-  });
-
   test.each([
     ['TEAM 13 steel', TEAM_13],
     ['sheet of 4.7 W/kg', SHEET_470],
@@ -259,7 +186,7 @@ describe('ring round a conductor: H = I/(2 pi r)', () => {
 
   test('Froehlich steel: a quarter between closed radii carries the same flux as the whole ring', () => {
     const current = 60;
-    const whole = fluxOf(solveRing(froehlichTable, current, 0.006), inner, outer);
+    const whole = fluxOf(solveRing(LAW_ROWS, current, 0.006), inner, outer);
     // Lines of force are circles; a cut along a radius is crossed at right angles.
     const edge = { kind: 'crossing' } as const;
     const corners: [number, number][] = [];
@@ -282,7 +209,7 @@ describe('ring round a conductor: H = I/(2 pi r)', () => {
     for (let i = 47; i <= 91; i++) edges[`edge ${i}`] = { kind: 'potential', value: () => potential };
     const field = solveSection(
       { outline: { kind: 'polygon', corners }, background: 'ring', maxEdge: 0.003, regions: [] },
-      { materials: { ring: { kind: 'curve', curve: buildBHCurve(froehlichTable) } }, edges },
+      { materials: { ring: { kind: 'curve', curve: lawCurve() } }, edges },
     );
     // Its H times r is the current over 2 pi everywhere.
     let [sum, area] = [0, 0];

@@ -2,15 +2,19 @@ import { formatFault, InputError } from '@gapwright/fem-core';
 import { Command, CommanderError } from 'commander';
 import { runCheck } from './commands/check.js';
 import { type NewOptions, runNew } from './commands/new.js';
-import { runSolve, type SolveCommandOptions } from './commands/solve.js';
+import { runSection } from './commands/section.js';
+import { runSolve } from './commands/solve.js';
 import type { Engine } from './engine.js';
 import { addCommonOptions, type CommonOptions } from './options.js';
+import type { OutputOptions } from './outputs.js';
 import { plainLines, plainText } from './plain-text.js';
+import { type SectionEngine, sectionEngine } from './section-engine.js';
 import { machineEngine } from './solve-machine.js';
 import { exitStatus, Interrupted, type Surroundings } from './surroundings.js';
 import { ownVersion } from './version.js';
 
 export type { Engine } from './engine.js';
+export type { SectionEngine } from './section-engine.js';
 export type { Output, Surroundings } from './surroundings.js';
 
 /**
@@ -18,22 +22,29 @@ export type { Output, Surroundings } from './surroundings.js';
  *
  * @param argv          what follows the program's name
  * @param surroundings  streams, environment, interruption
- * @param engine        the models; another one only in tests
+ * @param engine        the models of machines; another one only in tests
+ * @param sections      those of sections; another one only in tests
  * @returns the exit status: 0 done, 1 own fault, 2 command line or file at fault, 3 not reached, 130 interrupted
  */
 export async function main(
   argv: readonly string[],
   surroundings: Surroundings,
   engine: Engine = machineEngine,
+  sections: SectionEngine = sectionEngine,
 ): Promise<number> {
   try {
-    return await runCommand(argv, surroundings, engine);
+    return await runCommand(argv, surroundings, engine, sections);
   } catch (error) {
     return report(error, surroundings);
   }
 }
 
-async function runCommand(argv: readonly string[], surroundings: Surroundings, engine: Engine): Promise<number> {
+async function runCommand(
+  argv: readonly string[],
+  surroundings: Surroundings,
+  engine: Engine,
+  sections: SectionEngine,
+): Promise<number> {
   let status: number = exitStatus.done;
   const program = new Command('gapwright')
     .description('Designs small axial-flux permanent-magnet machines from a text file.')
@@ -57,18 +68,26 @@ async function runCommand(argv: readonly string[], surroundings: Surroundings, e
       status = runNew(directory, options, surroundings);
     });
   addCommonOptions(program.command('check'))
-    .description('read and judge a machine file without solving it')
-    .argument('<FILE>', 'machine file')
+    .description('read and judge a machine file or a section file without solving it')
+    .argument('<FILE>', 'machine file or section file')
     .action((file: string, options: CommonOptions) => {
-      status = runCheck(engine, file, options, surroundings);
+      status = runCheck(engine, sections, file, options, surroundings);
     });
   addCommonOptions(program.command('solve'))
     .description('the main job: slices, EMF, winding, forces, cautions')
     .argument('<FILE>', 'machine file')
     .option('--out <DIR>', 'write results.json, waveforms.csv, report.html and a picture of each slice there')
     .option('--vtu', 'with --out: also each slice as VTK XML')
-    .action(async (file: string, options: SolveCommandOptions) => {
+    .action(async (file: string, options: OutputOptions) => {
       status = await runSolve(engine, file, options, surroundings);
+    });
+  addCommonOptions(program.command('section'))
+    .description('one planar section of any kind: field, energy, forces, fluxes, linkages')
+    .argument('<FILE>', 'section file')
+    .option('--out <DIR>', 'write results.json, lines.csv and a picture of the section there')
+    .option('--vtu', 'with --out: also the section as VTK XML')
+    .action(async (file: string, options: OutputOptions) => {
+      status = await runSection(sections, file, options, surroundings);
     });
   await program.parseAsync(argv, { from: 'user' });
   return status;

@@ -2,6 +2,7 @@ import { triangleMeans } from '@gapwright/fem-core';
 import type { Machine, SolvedSlice } from '@gapwright/machine-models';
 import { describeMachine, imagesOfPolePair, readMachine, solveSlice } from '@gapwright/machine-models';
 import type { Engine, SliceField } from './engine.js';
+import { magnitudeOf } from './magnitude.js';
 import { stopIfInterrupted } from './surroundings.js';
 
 /** The models as the commands use them. */
@@ -32,16 +33,12 @@ const airShown = 0.35;
 
 function pictured({ rotor }: Machine, { field, recovered, pole }: SolvedSlice): SliceField {
   const { mesh, potential } = field;
-  const magnitude = new Float64Array(recovered.length / 2);
-  for (let t = 0; t < magnitude.length / 6; t++) {
-    for (let k = 0; k < 6; k++) magnitude[6 * t + k] = Math.hypot(recovered[12 * t + k], recovered[12 * t + 6 + k]);
-  }
   const rear = rotor.gap / 2 + rotor.magnets.thickness + (rotor.disc?.thickness ?? 0);
   const height = rear + airShown * pole.polePitch;
   return {
     mesh,
     potential,
-    magnitude,
+    magnitude: magnitudeOf(recovered),
     ...triangleMeans(field),
     copies: imagesOfPolePair(pole),
     heights: [-height, height],

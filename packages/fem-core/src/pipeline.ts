@@ -39,8 +39,8 @@ export interface SolvedField {
  * From mesh to field. `setup` says what fills each region and binds each side, by the names the section gave them.
  * @throws InputError for setups that do not fit the section; a solve that does not converge is told in `field.report`
  */
-export function solveOnMesh(mesh: Mesh, setup: Setup, options: NewtonOptions = {}): SolvedField {
-  return finish(solveFrom(undefined, mesh, setup, options));
+export function solveOnMesh(mesh: Mesh, setup: Setup, options: NewtonOptions = {}, order?: 1 | 2): SolvedField {
+  return finish(solveFrom(undefined, mesh, setup, options, order));
 }
 
 /** The same, Newton's method starting from the field on an earlier mesh where there is one. */
@@ -49,8 +49,9 @@ function* solveFrom(
   mesh: Mesh,
   setup: Setup,
   options: NewtonOptions,
+  order?: 1 | 2,
 ): Steps<NewtonProgress, SolvedField> {
-  const unknowns = numberUnknowns(mesh, setup);
+  const unknowns = numberUnknowns(mesh, setup, order);
   const system = buildSystem(mesh, setup, unknowns);
   const start = before === undefined ? {} : { start: carryOver(before, mesh, unknowns) };
   const { potential, report, tangent, factor } = yield* newtonSteps(system, { ...options, ...start });
@@ -96,6 +97,8 @@ export interface AdaptiveOptions {
   /** Wanted sum of weight x bound, or the largest of them. */
   readonly accuracy: number;
   readonly combine?: 'sum' | 'largest';
+  /** Of the elements: 1 linear, 2 quadratic (if absent). */
+  readonly order?: 1 | 2;
   readonly maxMeshes?: number;
   readonly maxTriangles?: number;
   readonly newton?: NewtonOptions;
@@ -149,7 +152,7 @@ export function* adaptiveSteps(
   let newtonSteps = 0;
   let before: Field | undefined;
   for (let meshes = 1; ; meshes++) {
-    const { field, system, tangent } = yield* solveFrom(before, mesh, setup, options.newton ?? {});
+    const { field, system, tangent } = yield* solveFrom(before, mesh, setup, options.newton ?? {}, options.order);
     newtonSteps += field.report.steps;
     const goals = goalsAt(options, field);
     const values = goals.map((goal) => goal.value);

@@ -27,6 +27,8 @@ export type LibraryMaterial =
       readonly kind: 'magnet';
       /** At 20 degC, T. */
       readonly remanence: number;
+      /** Demagnetisation curve at 20 degC where one is given: rows [H in A/m, B in T], one of them [0, remanence]. */
+      readonly demagnetisation?: readonly (readonly [H: number, B: number])[];
       readonly recoil: number;
       /** Relative change per kelvin, -0.0012 for -0.12 %/K. */
       readonly remanenceSlope: number;

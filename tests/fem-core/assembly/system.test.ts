@@ -1,4 +1,4 @@
-import type { EdgeCondition, Material, Setup, Unknowns } from '@gapwright/fem-core';
+import type { EdgeCondition, Material, Mesh, Setup, Unknowns } from '@gapwright/fem-core';
 import {
   assemble,
   buildSystem,
@@ -12,7 +12,7 @@ import {
 } from '@gapwright/fem-core';
 import { EigenvalueDecomposition, Matrix } from 'ml-matrix';
 import { describe, expect, test } from 'vitest';
-import { gatherToUnknowns } from '../../../packages/fem-core/src/assembly/system.js';
+import { gatherToUnknowns } from '../../../packages/fem-core/src/assembly/unknowns.js';
 import { AIR, STEEL } from '../../laws/sections.js';
 import {
   functionalAt,
@@ -33,13 +33,15 @@ const mesh = meshSection(tile);
 const nodes = nodeCount(mesh);
 
 /** All nodes unknown: what the equations are before any side is bound. */
-const freeOf = (count: number): Unknowns => ({
-  count,
-  unknownOf: Int32Array.from({ length: count }, (_, i) => i),
-  sign: new Int8Array(count).fill(1),
-  fixed: new Float64Array(count),
+const freeOf = (of: Mesh): Unknowns => ({
+  order: 2,
+  count: nodeCount(of),
+  unknownOf: Int32Array.from({ length: nodeCount(of) }, (_, i) => i),
+  sign: new Int8Array(nodeCount(of)).fill(1),
+  fixed: new Float64Array(nodeCount(of)),
+  edges: of.edges,
 });
-const allFree = freeOf(nodes);
+const allFree = freeOf(mesh);
 
 /** Eigenvalues of a symmetric matrix, rising. */
 function spectrum(square: Float64Array): number[] {
@@ -56,7 +58,7 @@ const conditions: readonly (readonly [string, Readonly<Record<string, EdgeCondit
     'held at values other than 0',
     {
       left: { kind: 'applied', field: [0.2, 1.4] },
-      right: { kind: 'potential', value: (x, y) => 0.03 * Math.sin(90 * y) + 0.5 * x },
+      right: { kind: 'potential', value: (_, y) => 0.03 * Math.sin(90 * y) },
       top: { kind: 'crossing' },
     },
   ],
@@ -95,7 +97,7 @@ describe('the stiffness of constant reluctivity', () => {
   test('once a side is held it is positive definite; before, the uniform potential is its only null', () => {
     const small = meshSection({ ...tile, regions: tile.regions.slice(0, 2) });
     const n = nodeCount(small);
-    const free = buildSystem(small, linear, freeOf(n));
+    const free = buildSystem(small, linear, freeOf(small));
     const [loose, bound] = [free, systemOf(small, linear)].map((one) => spectrum(squareOf(one, one.linearValues)));
     const top = loose[n - 1];
     expect(Math.abs(loose[0])).toBeLessThan(1e-12 * top);

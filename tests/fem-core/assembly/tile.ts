@@ -8,7 +8,7 @@ import {
   numberUnknowns,
   triangleCount,
 } from '@gapwright/fem-core';
-import { potentialOf } from '../../../packages/fem-core/src/assembly/system.js';
+import { potentialOf } from '../../../packages/fem-core/src/assembly/unknowns.js';
 import { AIR, box, STEEL } from '../../laws/sections.js';
 
 /** A rectangle with a saturable block, a slanted magnet and a round bar: every kind of material, straight and curved. */
@@ -163,8 +163,17 @@ export function doubleUp(mesh: Mesh, width: number): { mesh: Mesh; copyOf: Int32
     curved: Uint8Array.from([...mesh.curved, ...mesh.curved]),
   };
   joinNeighbours(joined, m);
+  halveStraightEdges(joined);
   const copyOf = Int32Array.from([...cornerTo, ...Array.from(edgeTo, (k) => cornerCount(joined) + k)]);
   return { mesh: joined, copyOf };
+}
+
+/** Shifted middles are half-way but for rounding; a mesh promises them to the last bit. */
+function halveStraightEdges({ xy, edges, middles, edgeToCurve, curves }: Mesh): void {
+  edgeToCurve.forEach((curve, k) => {
+    if (curve >= 0 && curves[curve].kind === 'arc') return;
+    for (const i of [0, 1]) middles[2 * k + i] = 0.5 * (xy[2 * edges[2 * k] + i] + xy[2 * edges[2 * k + 1] + i]);
+  });
 }
 
 /** Triangles of the first and of the copy that share an edge become neighbours. */

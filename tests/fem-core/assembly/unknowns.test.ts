@@ -258,6 +258,64 @@ describe('conditions that cannot be are refused', () => {
   });
 });
 
+describe('sides that hold different values at one place are refused', () => {
+  const potential = (value: number): EdgeCondition => ({ kind: 'potential', value: () => value });
+
+  test('two potentials that part at their corner, with both sides and values', () => {
+    const [fault, ...more] = faultsOf(withEdges({ ...naturalSides, left: potential(0.3), top: potential(0.2) }));
+    expect(more).toEqual([]);
+    expect(fault.code).toBe('contradictory-edges');
+    expect(`${fault.key} ${fault.wrong}`).toMatch(/edges\.(left|top) .*edges\.(left|top)/);
+    for (const text of ['0.3 Wb/m', '0.2 Wb/m', '(0, 0.04)']) expect(fault.wrong).toContain(text);
+  });
+
+  test('a closed side, named or not, beside one that holds another value', () => {
+    const applied = { kind: 'applied', field: [0.5, 0] } as const; // A = 0.5 y
+    expect(faultsOf(withEdges({ left: applied, right: applied })).map(({ code }) => code)).toEqual([
+      'contradictory-edges',
+      'contradictory-edges',
+    ]);
+    // The bottom is closed where the applied field has A = 0: that agrees.
+    expect(faultsOf(withEdges({ left: applied, right: applied, top: { kind: 'crossing' } }))).toEqual([]);
+  });
+
+  test('not the same applied field on sides that meet, nor what differs by rounding alone', () => {
+    const applied: EdgeCondition = { kind: 'applied', field: [0.3, -0.7] };
+    expect(faultsOf(withEdges(Object.fromEntries(mesh.sideNames.map((side) => [side, applied]))))).toEqual([]);
+    const close = { ...naturalSides, left: potential(0.3), top: potential(0.3 * (1 + 1e-12)) };
+    expect(faultsOf(withEdges(close))).toEqual([]);
+    expect(faultsOf(withEdges({ ...close, top: potential(0.3 * (1 + 1e-8)) }))).toHaveLength(1);
+  });
+
+  test('repeating sides cannot tie two values, nor reversing sides what is not opposite', () => {
+    for (const [kind, right] of [
+      ['repeating', 1],
+      ['reversing', -1],
+    ] as const) {
+      const tied = (value: (x: number) => number): Setup =>
+        withEdges({ left: { kind }, right: { kind }, top: { kind: 'crossing' }, bottom: { kind: 'potential', value } });
+      expect(faultsOf(tied((x) => 0.1 + ((right - 1) * 0.1 * x) / width))).toEqual([]);
+      const [fault] = faultsOf(tied((x) => 0.1 + (0.3 * x) / width));
+      expect(fault).toMatchObject({ code: 'contradictory-edges', key: 'edges.bottom' });
+      expect(fault.wrong).toContain('0.1 Wb/m at (0, 0)');
+    }
+  });
+
+  test('a node tied to its own negative cannot hold anything but 0', () => {
+    const lone = meshSection({ ...tile, regions: [] });
+    const reversing = Object.fromEntries(lone.sideNames.map((side) => [side, { kind: 'reversing' } as const]));
+    expect(faultsOf({ materials: sources.materials, edges: reversing }, lone)).toEqual([]);
+  });
+
+  test('in linear elements too, and values that are no numbers in either', () => {
+    const setup = withEdges({ ...naturalSides, left: potential(0.3), top: potential(0.2) });
+    expect(() => numberUnknowns(mesh, setup, 1)).toThrow(/edges\.(left|top) holds 0\.[23] Wb\/m/);
+    const [fault, ...more] = faultsOf(withEdges({ left: potential(Number.NaN), top: { kind: 'crossing' } }));
+    expect(fault).toMatchObject({ code: 'not-finite', key: 'edges.left' });
+    expect(more).toEqual([]);
+  });
+});
+
 describe('a section under matched sides is half of one twice as wide', () => {
   const { mesh: joined, copyOf } = doubleUp(mesh, width);
   const twice = (sign: 1 | -1): Setup => {

@@ -1,36 +1,29 @@
-import { colourScaleEnd, drawField, InputError, writeVtu } from '@gapwright/fem-core';
-import type { Machine, MachineResult, SliceAnswer, Warning } from '@gapwright/machine-models';
+import { colourScaleEnd, drawField, writeVtu } from '@gapwright/fem-core';
+import type { Machine, MachineResult, SliceAnswer } from '@gapwright/machine-models';
 import { sheetText } from '../datasheet.js';
 import type { Engine, SliceField, SolvedMachine } from '../engine.js';
 import { figure, given, givenMm, percent } from '../figures.js';
-import { checkOutputFolder, writeFiles } from '../files.js';
+import { checkOutputFolder } from '../files.js';
 import { readMachineFile } from '../input.js';
-import { type CommonOptions, colourWanted } from '../options.js';
+import { colourWanted } from '../options.js';
+import { type OutputOptions, refuseVtuAlone, showWarnings, writeOutputs } from '../outputs.js';
 import { plainText } from '../plain-text.js';
 import { resultJson } from '../results-json.js';
 import { datasheet } from '../sheet.js';
-import { exitStatus, type Surroundings, stopIfInterrupted } from '../surroundings.js';
+import { exitStatus, type Surroundings } from '../surroundings.js';
 import { ownVersion } from '../version.js';
 import { waveformsCsv } from '../waveforms-csv.js';
-
-export interface SolveCommandOptions extends CommonOptions {
-  readonly out?: string;
-  readonly vtu?: boolean;
-}
 
 /** `gapwright solve FILE`: the main job, from a machine file to its datasheet. */
 export async function runSolve(
   engine: Engine,
   file: string,
-  options: SolveCommandOptions,
+  options: OutputOptions,
   surroundings: Surroundings,
 ): Promise<number> {
   const { stdout, stderr, signal } = surroundings;
   const begun = performance.now();
-  if (options.vtu === true && options.out === undefined) {
-    const remedy = 'name a folder with --out DIR';
-    throw new InputError([{ code: 'no-folder', key: '--vtu', wrong: 'has nowhere to write to', remedy }]);
-  }
+  refuseVtuAlone(options);
   const { machine, warnings, sha256 } = readMachineFile(engine, file, options.set);
   if (options.out !== undefined) checkOutputFolder(options.out, outputNames(machine, options.vtu === true), file);
   if (!options.quiet) showWarnings(warnings, options, surroundings);
@@ -50,18 +43,10 @@ export async function runSolve(
   );
   if (options.out !== undefined) {
     const files = await outputFiles(machine, solved, options.vtu === true);
-    stopIfInterrupted(signal);
-    writeFiles(options.out, files);
-    if (!options.quiet) stderr.write(`${files.size} files written to ${plainText(options.out)}\n`);
+    writeOutputs(options.out, files, options, surroundings);
   }
   if (!options.quiet) stderr.write(`${timeLine(machine, solvedMs, performance.now() - begun)}\n`);
   return judge(machine, solved.answers, surroundings);
-}
-
-/** A terminal that shows the datasheet shows the warnings there; anywhere else they would be missed. */
-function showWarnings(warnings: readonly Warning[], options: CommonOptions, { stdout, stderr }: Surroundings): void {
-  if (!options.json && stdout.isTTY === true && stderr.isTTY === true) return;
-  for (const { key, text } of warnings) stderr.write(`warning: ${plainText(`${key}: ${text}`)}\n`);
 }
 
 function progressLine(answer: SliceAnswer, index: number, machine: Machine): string {

@@ -26,6 +26,9 @@ function symmetricRule(degree: number, orbits: readonly (readonly [share: number
 
 const root15 = Math.sqrt(15);
 
+/** The centroid: exact to degree 1. */
+export const RULE_1 = symmetricRule(1, [[1 / 3, 1]]);
+
 /** Strang, Fix, An Analysis of the Finite Element Method, 1973: three inner points, exact to degree 2. */
 export const RULE_2 = symmetricRule(2, [[1 / 6, 1 / 3]]);
 

@@ -1,7 +1,7 @@
 import type { Mesh } from '../mesh/mesh.js';
 import { cornerCount } from '../mesh/mesh.js';
 import type { TriangleRule } from './quadrature.js';
-import { RULE_2, RULE_5 } from './quadrature.js';
+import { RULE_1, RULE_2, RULE_5 } from './quadrature.js';
 
 /**
  * Shape functions of the six-node triangle at (xi, eta), with L0 = 1 - xi - eta, L1 = xi, L2 = eta:
@@ -59,6 +59,8 @@ export function tabulate(rule: TriangleRule): ElementRule {
   return { count, weights: rule.weights, values, slopes };
 }
 
+/** Exact for what is uniform on straight triangles. */
+export const CENTRE_RULE = tabulate(RULE_1);
 /** Exact for the stiffness of straight triangles with one reluctivity. */
 export const STRAIGHT_RULE = tabulate(RULE_2);
 /** For curved triangles, varying reluctivity, and integrals of values. */
@@ -122,6 +124,20 @@ export function gradients(coordinates: Float64Array, slopes: Float64Array, from:
     out[6 + i] = (xXi * b - xEta * a) / det;
   }
   return det;
+}
+
+/**
+ * Turns tabulated values or slopes of the six functions into those of the three linear functions L0, L1, L2: a potential
+ * that is half-way between the ends at each middle node is their sum, Li = Ni + (Nj + Nk)/2 with the middles beside corner i.
+ * Holds on curved triangles as well.
+ *
+ * @param of  six numbers from `from` on; the first three are overwritten
+ */
+export function foldToCorners(of: Float64Array, from: number): void {
+  const [a, b, c] = [0.5 * of[from + 3], 0.5 * of[from + 4], 0.5 * of[from + 5]];
+  of[from] += b + c;
+  of[from + 1] += c + a;
+  of[from + 2] += a + b;
 }
 
 /** Global node number of local node k of triangle t. */

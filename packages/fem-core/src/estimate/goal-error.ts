@@ -1,6 +1,6 @@
 import { materialOf } from '../assembly/setup.js';
 import type { System } from '../assembly/system.js';
-import { gatherToUnknowns, potentialOf } from '../assembly/system.js';
+import { gatherToUnknowns, potentialOf } from '../assembly/unknowns.js';
 import { FULL_RULE, globalNode, gradients, nodeCoordinates, placeOf } from '../elements/six-node.js';
 import type { Field } from '../field/field.js';
 import type { Functional } from '../field/functionals.js';

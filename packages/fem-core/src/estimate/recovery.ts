@@ -11,7 +11,7 @@ import { cornerCount, triangleCount } from '../mesh/mesh.js';
 export type RecoveredGradient = Float64Array;
 
 /** Triangles a patch should have, three samples each, for a quadratic fit of six coefficients that is not shaky. */
-const ENOUGH = 4;
+const ENOUGH = 5;
 
 /**
  * Superconvergent patch recovery: round each corner, part by part, the gradient is fitted by a quadratic through its values

@@ -1,6 +1,7 @@
 import { EigenvalueDecomposition, Matrix } from 'ml-matrix';
 import type { System } from '../assembly/system.js';
-import { assembleFrozen, gatherToUnknowns, potentialOf } from '../assembly/system.js';
+import { assembleFrozen } from '../assembly/system.js';
+import { gatherToUnknowns, potentialOf } from '../assembly/unknowns.js';
 import { InputError } from '../base/fault.js';
 import { smoothParts } from '../estimate/goal-error.js';
 import { recoverGradients } from '../estimate/recovery.js';

@@ -31,8 +31,10 @@ export interface ProbeAt {
 
 /** Places along a line at which the error of A is estimated. */
 const LINE_SAMPLES = 5;
-/** Forces below this share of the stress all round a body, and fluxes of that of all there is, are nought but for errors. */
-const BALANCED = 1e-3;
+/** A force below this share of the stress all round its body is measured by that instead: most of the stress cancels. */
+const BALANCED = 0.1;
+/** The same for fluxes, by all the flux there is. */
+const NO_FLUX = 1e-3;
 
 /** Largest difference of A in the section: all the flux there is, Wb/m. */
 function fluxOfAll({ potential }: Field): number {
@@ -170,7 +172,7 @@ function linkageAt({ name, of, turns }: Extract<Probe, { kind: 'linkage' }>, fie
   return {
     kind: 'linkage',
     figures: [
-      { value: linkage, functional, size: Math.max(Math.abs(linkage), Math.abs(turns) * BALANCED * fluxOfAll(field)) },
+      { value: linkage, functional, size: Math.max(Math.abs(linkage), Math.abs(turns) * NO_FLUX * fluxOfAll(field)) },
     ],
     describe: ([error]) => ({ kind: 'linkage', name, linkage, error }),
   };
@@ -189,7 +191,7 @@ function fluxAt({ name, from, to }: Extract<Probe, { kind: 'flux' }>, field: Fie
   const functional = start.functional.map((g, node) => g - end.functional[node]);
   return {
     kind: 'flux',
-    figures: [{ value: flux, functional, size: Math.max(Math.abs(flux), BALANCED * fluxOfAll(field)) }],
+    figures: [{ value: flux, functional, size: Math.max(Math.abs(flux), NO_FLUX * fluxOfAll(field)) }],
     describe: ([error]) => ({ kind: 'flux', name, flux, error }),
   };
 }

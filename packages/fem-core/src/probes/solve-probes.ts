@@ -20,6 +20,8 @@ export interface ProbeOptions {
    * lines, and torques, only report their estimate.
    */
   readonly accuracy: number;
+  /** Of the elements: 1 linear, 2 quadratic (if absent). */
+  readonly order?: 1 | 2;
   readonly maxMeshes?: number;
   readonly maxTriangles?: number;
   readonly newton?: NewtonOptions;

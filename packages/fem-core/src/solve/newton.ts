@@ -1,5 +1,6 @@
 import type { System } from '../assembly/system.js';
-import { assemble, potentialOf } from '../assembly/system.js';
+import { assemble } from '../assembly/system.js';
+import { potentialOf } from '../assembly/unknowns.js';
 import type { Steps } from '../base/steps.js';
 import { finish } from '../base/steps.js';
 import type { Analysis } from '../sparse/analysis.js';

@@ -1,12 +1,19 @@
+import { arenaLayout } from './arena-layout.js';
+import type { Couplings } from './elimination-tree.js';
+import { columnCounts, eliminationTree, postorder, reorderedCouplings, sumUp } from './elimination-tree.js';
+import { blockSize, rowStartInBlock, tileCount, updateSize } from './front-layout.js';
+import type { Fronts } from './fronts.js';
+import { gatherFronts } from './fronts.js';
 import { minimumDegreeOrder } from './minimum-degree.js';
 import type { SymmetricPattern } from './pattern.js';
 
 /**
- * Everything about a factor that depends on the pattern alone; serves any number of factorisations.
+ * Everything about a factor that depends on the pattern alone; serves any number of factorisations. Plain data.
  *
- * Columns with (nearly) the same rows below the diagonal form supernodes: supernode s holds the columns
- * first[s] ... first[s + 1] - 1 of the reordered matrix and the rows rows[rowStart[s]] ... rows[rowStart[s + 1] - 1], its
- * own columns among them and first. Its block of the factor is dense, by columns, from blockStart[s].
+ * The factor is made front by front, children before parents (multifrontal method; Duff, Reid, The multifrontal solution of
+ * indefinite sparse symmetric linear equations, 1983): front s eliminates the places first[s] ... first[s + 1] - 1 of the
+ * reordered matrix, has below[s] rows more, and leaves its block of the factor and an update for its parent, laid out as
+ * `front-layout.ts` tells.
  */
 export interface Analysis {
   readonly pattern: SymmetricPattern;
@@ -14,291 +21,213 @@ export interface Analysis {
   readonly order: Int32Array;
   /** Int32Array(n): place[i] is where unknown i went. */
   readonly place: Int32Array;
+  /** Int32Array(f + 1) and Int32Array(f): columns of each front, and the number of rows below them. */
   readonly first: Int32Array;
+  readonly below: Int32Array;
+  /** Int32Array(f): first child of each front and next child of the same parent, -1 where there is none. */
+  readonly child: Int32Array;
+  readonly sibling: Int32Array;
+  /**
+   * Rows below the columns of front s: rows[rowStart[s]] ... rows[rowStart[s] + below[s] - 1], rising, then n up to the next
+   * multiple of four; and, beside each, its place among the rows of the parent's front.
+   */
   readonly rowStart: Int32Array;
   readonly rows: Int32Array;
-  readonly blockStart: Float64Array;
-  /** Int32Array(n): supernode of each column. */
-  readonly supernodeOf: Int32Array;
-  /** Int32Array(z): where in the blocks each entry of the matrix goes. */
+  readonly relative: Int32Array;
+  /** Entries of the matrix by fronts, entryStart[s] ...: number in the pattern, and where it goes in the blocks. */
+  readonly entryStart: Int32Array;
+  readonly source: Int32Array;
   readonly target: Int32Array;
-  /** Entries of the blocks, explicit zeros included. */
+  /** Int32Array(f + 1): where the block of each front starts. */
+  readonly blockStart: Int32Array;
+  /** Int32Array(f): where its update starts; it lasts until its parent has taken it. */
+  readonly updateStart: Int32Array;
+  /** Numbers in all blocks, explicit zeros included, and room for the updates that live at one time. */
   readonly blockSize: number;
-  /** Multiplications and additions of one factorisation, about. */
+  readonly updateSize: number;
+  /** Entries of the factor's lower triangle that are not zero but by cancellation. */
+  readonly factorEntries: number;
+  /** Multiplications and additions that these take: the sum of the squares of the columns' entries. */
   readonly flops: number;
+  /** Memory a factorisation works in: maps, factor and updates. `factor` refuses what 32-bit addresses cannot reach. */
+  readonly peakBytes: number;
 }
 
-/** Explicit zeros a merge of two supernodes may bring, as a share of the merged block, by columns of the merged one. */
-const RELAX: readonly (readonly [columns: number, zeros: number])[] = [
-  [4, 1],
-  [16, 0.4],
-  [48, 0.1],
-];
-const relaxed = (columns: number): number => RELAX.find(([limit]) => columns <= limit)?.[1] ?? 0.05;
-
 /**
- * Order, elimination tree (Liu, The role of elimination trees in sparse factorization, 1990), rows of the factor, and
- * relaxed supernodes (Ashcraft, Grimes, The influence of relaxed supernode partitions on the multifrontal method, 1989).
+ * @param wanted  Int32Array(n): unknowns in the order of elimination. Kept but for moves that change no entry and no
+ *                operation: subtrees of the elimination tree are brought together.
  */
 export function analyse(pattern: SymmetricPattern, wanted: Int32Array = minimumDegreeOrder(pattern)): Analysis {
   const { n } = pattern;
-  const upper = upperOf(pattern, inverseOf(wanted));
-  const parent = eliminationTree(n, upper);
+  const wantedPlace = inverseOf(wanted);
+  const couplings = reorderedCouplings(pattern, wantedPlace);
+  const parent = eliminationTree(n, couplings);
   const post = postorder(parent);
-  const order = Int32Array.from(post, (k) => wanted[k]);
-  const place = inverseOf(order);
-  const sorted = upperOf(pattern, place);
-  const tree = eliminationTree(n, sorted);
-  const count = columnCounts(n, sorted, tree);
-  const { first, rowStart, rows } = supernodes(n, pattern, place, tree, count);
-  const supernodeOf = new Int32Array(n);
-  const superCount = first.length - 1;
-  const blockStart = new Float64Array(superCount + 1);
-  let flops = 0;
-  for (let s = 0; s < superCount; s++) {
-    const width = first[s + 1] - first[s];
-    const height = rowStart[s + 1] - rowStart[s];
-    blockStart[s + 1] = blockStart[s] + width * height;
-    for (let j = 0; j < width; j++) {
-      supernodeOf[first[s] + j] = s;
-      flops += (height - j) ** 2;
-    }
-  }
-  const target = targets(pattern, place, { first, rowStart, rows, blockStart, supernodeOf });
-  return {
+  const count = columnCounts(couplings, parent, post);
+  const fronts = gatherFronts(parent, post, count);
+  const { first, below } = fronts;
+  const order = new Int32Array(n);
+  for (let j = 0; j < n; j++) order[fronts.place[j]] = wanted[j];
+  const { rowStart, rows } = rowsOf(fronts, couplings);
+  const { child, sibling } = childrenOf(fronts.parent);
+  const blockStart = new Int32Array(below.length + 1);
+  const blocksEnd = placeBlocks(first, below, blockStart);
+  const shape = {
     pattern,
     order,
-    place,
-    first,
-    rowStart,
-    rows,
-    blockStart,
-    supernodeOf,
-    target,
-    blockSize: blockStart[superCount],
-    flops,
+    place: inverseOf(order),
+    ...{ first, below, child, sibling, rowStart, rows, blockStart },
+    relative: relativeRows(fronts, child, sibling, rowStart, rows),
+    ...entriesOf(pattern, wanted, fronts, couplings, { rowStart, rows, blockStart }),
+    ...placeUpdates(fronts),
+    blockSize: blocksEnd,
+    ...totals(count),
   };
+  return { ...shape, peakBytes: arenaLayout(shape).end };
+}
+
+function totals(count: Int32Array): { factorEntries: number; flops: number } {
+  let factorEntries = 0;
+  let flops = 0;
+  for (let j = 0; j < count.length; j++) {
+    factorEntries += count[j];
+    flops += count[j] * count[j];
+  }
+  return { factorEntries, flops };
 }
 
 function inverseOf(order: Int32Array): Int32Array {
   const inverse = new Int32Array(order.length);
-  order.forEach((i, k) => {
-    inverse[i] = k;
-  });
+  for (let k = 0; k < order.length; k++) inverse[order[k]] = k;
   return inverse;
 }
 
-/** Rows above the diagonal of the reordered matrix, by columns: start Int32Array(n + 1), row lists unsorted. */
-interface Upper {
-  readonly start: Int32Array;
-  readonly row: Int32Array;
-}
-
-function upperOf(pattern: SymmetricPattern, place: Int32Array): Upper {
-  const { n } = pattern;
-  const start = new Int32Array(n + 1);
-  const each = (visit: (low: number, high: number) => void): void => {
-    for (let j = 0; j < n; j++) {
-      for (let p = pattern.start[j] + 1; p < pattern.start[j + 1]; p++) {
-        const a = place[j];
-        const b = place[pattern.row[p]];
-        if (a < b) visit(a, b);
-        else visit(b, a);
-      }
-    }
-  };
-  each((_, high) => start[high + 1]++);
-  for (let j = 0; j < n; j++) start[j + 1] += start[j];
-  const row = new Int32Array(start[n]);
-  const next = start.slice();
-  each((low, high) => {
-    row[next[high]++] = low;
-  });
-  return { start, row };
-}
-
-/** parent[j] is the row of the first entry below the diagonal in column j of the factor, -1 for a root. */
-function eliminationTree(n: number, upper: Upper): Int32Array {
-  const parent = new Int32Array(n).fill(-1);
-  const ancestor = new Int32Array(n).fill(-1); // path compression
-  for (let j = 0; j < n; j++) {
-    for (let p = upper.start[j]; p < upper.start[j + 1]; p++) {
-      for (let i = upper.row[p]; i >= 0 && i < j; ) {
-        const up = ancestor[i];
-        ancestor[i] = j;
-        if (up < 0) parent[i] = j;
-        i = up;
-      }
-    }
+/** Writes where each block starts and returns where the last ends, which alone is right beyond 2^31. */
+function placeBlocks(first: Int32Array, below: Int32Array, blockStart: Int32Array): number {
+  let end = 0;
+  for (let s = 0; s < below.length; s++) {
+    end += blockSize(first[s + 1] - first[s], below[s]);
+    blockStart[s + 1] = end;
   }
-  return parent;
+  return end;
 }
 
-/** Children before parents, subtrees together. */
-function postorder(parent: Int32Array): Int32Array {
-  const n = parent.length;
-  const head = new Int32Array(n + 1).fill(-1); // slot n gathers the roots
-  const next = new Int32Array(n);
-  for (let j = n - 1; j >= 0; j--) {
-    const p = parent[j] < 0 ? n : parent[j];
-    next[j] = head[p];
-    head[p] = j;
+function childrenOf(parent: Int32Array): { child: Int32Array; sibling: Int32Array } {
+  const child = new Int32Array(parent.length).fill(-1);
+  const sibling = new Int32Array(parent.length).fill(-1);
+  for (let s = parent.length - 1; s >= 0; s--) {
+    if (parent[s] < 0) continue;
+    sibling[s] = child[parent[s]];
+    child[parent[s]] = s;
   }
-  const post = new Int32Array(n);
-  const stack: number[] = [];
-  let k = 0;
-  for (let root = head[n]; root >= 0; root = next[root]) {
-    stack.push(root);
-    while (stack.length > 0) {
-      const j = stack[stack.length - 1];
-      const child = head[j];
-      if (child < 0) {
-        post[k++] = j;
-        stack.pop();
-      } else {
-        head[j] = next[child];
-        stack.push(child);
-      }
-    }
-  }
-  return post;
+  return { child, sibling };
 }
 
-/** Entries of each column of the factor, diagonal included, by walking each row's subtree. */
-function columnCounts(n: number, upper: Upper, parent: Int32Array): Int32Array {
-  const count = new Int32Array(n).fill(1);
-  const seen = new Int32Array(n).fill(-1);
+/**
+ * Rows of all fronts at once: place k is a row of the fronts of its earlier couplings and of all on the way from there to its
+ * own. Taken in rising order, so that each front's rows rise.
+ */
+function rowsOf(fronts: Fronts, couplings: Couplings): { rowStart: Int32Array; rows: Int32Array } {
+  const { place, frontOf, below, parent } = fronts;
+  const { earlierStart, earlier } = couplings;
+  const n = place.length;
+  const frontCount = below.length;
+  const rowStart = new Int32Array(frontCount + 1);
+  for (let s = 0; s < frontCount; s++) rowStart[s + 1] = 4 * tileCount(below[s]);
+  sumUp(rowStart);
+  const rows = new Int32Array(rowStart[frontCount]).fill(n);
+  const next = rowStart.slice(0, frontCount);
+  const seen = new Int32Array(frontCount).fill(-1);
+  const columns = inverseOf(place);
   for (let k = 0; k < n; k++) {
-    seen[k] = k;
-    for (let p = upper.start[k]; p < upper.start[k + 1]; p++) {
-      for (let i = upper.row[p]; seen[i] !== k; i = parent[i]) {
-        count[i]++;
-        seen[i] = k;
+    const j = columns[k];
+    seen[frontOf[j]] = k;
+    for (let p = earlierStart[j]; p < earlierStart[j + 1]; p++) {
+      for (let s = frontOf[earlier[p]]; seen[s] !== k; s = parent[s]) {
+        rows[next[s]++] = k;
+        seen[s] = k;
       }
     }
-  }
-  return count;
-}
-
-interface Supernodes {
-  readonly first: Int32Array;
-  readonly rowStart: Int32Array;
-  readonly rows: Int32Array;
-}
-
-/** Groups a child with its parent where it comes right before it and few explicit zeros arise; then gathers the rows. */
-function supernodes(
-  n: number,
-  pattern: SymmetricPattern,
-  place: Int32Array,
-  parent: Int32Array,
-  count: Int32Array,
-): Supernodes {
-  // Groups of consecutive columns, merged from the left; each knows its first column and the zeros it already holds.
-  const start: number[] = [];
-  const zeros: number[] = [];
-  for (let j = 0; j < n; j++) {
-    start.push(j);
-    zeros.push(0);
-    // The last column of the group before must be a child of this one's first column.
-    while (start.length > 1) {
-      const a = start[start.length - 2];
-      const b = start[start.length - 1];
-      if (parent[b - 1] !== b) break;
-      const left = b - a;
-      const right = j + 1 - b;
-      const height = right - 1 + count[j]; // rows of the right group: its columns and what lies below them
-      const before = left - 1 + count[b - 1];
-      const merged = left + height;
-      const added = left * (merged - before);
-      const held = zeros[zeros.length - 2] + zeros[zeros.length - 1] + added;
-      const size = (left + right) * merged;
-      if (added > 0 && held > relaxed(left + right) * size) break;
-      start.pop();
-      zeros.pop();
-      zeros[zeros.length - 1] = held;
-    }
-  }
-  const first = Int32Array.from([...start, n]);
-  return { first, ...rowsOf(first, pattern, place, parent) };
-}
-
-/** Rows of each supernode: its columns, then the rows of the matrix and of its children's blocks below them, rising. */
-function rowsOf(
-  first: Int32Array,
-  pattern: SymmetricPattern,
-  place: Int32Array,
-  parent: Int32Array,
-): { rowStart: Int32Array; rows: Int32Array } {
-  const superCount = first.length - 1;
-  const n = pattern.n;
-  const below: number[][] = Array.from({ length: n }, () => []); // rows below the diagonal by column of the reordered matrix
-  for (let j = 0; j < n; j++) {
-    for (let p = pattern.start[j] + 1; p < pattern.start[j + 1]; p++) {
-      const a = place[j];
-      const b = place[pattern.row[p]];
-      below[Math.min(a, b)].push(Math.max(a, b));
-    }
-  }
-  const superOf = new Int32Array(n);
-  for (let s = 0; s < superCount; s++) superOf.fill(s, first[s], first[s + 1]);
-  const children: number[][] = Array.from({ length: superCount }, () => []);
-  const lists: number[][] = [];
-  const mark = new Int32Array(n).fill(-1);
-  for (let s = 0; s < superCount; s++) {
-    const a = first[s];
-    const end = first[s + 1];
-    const list: number[] = [];
-    const take = (i: number): void => {
-      if (i < end || mark[i] === s) return;
-      mark[i] = s;
-      list.push(i);
-    };
-    for (let j = a; j < end; j++) below[j].forEach(take);
-    for (const child of children[s]) lists[child].forEach(take);
-    list.sort((i, j) => i - j);
-    lists.push(list);
-    const up = parent[end - 1];
-    if (up >= 0) children[superOf[up]].push(s);
-  }
-  const rowStart = new Int32Array(superCount + 1);
-  for (let s = 0; s < superCount; s++) rowStart[s + 1] = rowStart[s] + (first[s + 1] - first[s]) + lists[s].length;
-  const rows = new Int32Array(rowStart[superCount]);
-  for (let s = 0; s < superCount; s++) {
-    let at = rowStart[s];
-    for (let j = first[s]; j < first[s + 1]; j++) rows[at++] = j;
-    rows.set(lists[s], at);
   }
   return { rowStart, rows };
 }
 
-function targets(
-  pattern: SymmetricPattern,
-  place: Int32Array,
-  blocks: Pick<Analysis, 'first' | 'rowStart' | 'rows' | 'blockStart' | 'supernodeOf'>,
+/** The rows of each front among those of its parent's. */
+function relativeRows(
+  { place, first, below }: Fronts,
+  child: Int32Array,
+  sibling: Int32Array,
+  rowStart: Int32Array,
+  rows: Int32Array,
 ): Int32Array {
-  const { first, rowStart, rows, blockStart, supernodeOf } = blocks;
-  const { n, start, row } = pattern;
-  const target = new Int32Array(row.length);
-  // Entries grouped by supernode, so that a table row -> position is filled once for each.
-  const bySuper: number[][] = Array.from({ length: first.length - 1 }, () => []);
-  const columnOfEntry = new Int32Array(row.length);
-  for (let j = 0; j < n; j++) {
-    for (let p = start[j]; p < start[j + 1]; p++) {
-      columnOfEntry[p] = j;
-      bySuper[supernodeOf[Math.min(place[j], place[row[p]])]].push(p);
+  const relative = new Int32Array(rows.length);
+  const among = new Int32Array(place.length + 1); // the row of the present front at each place
+  for (let s = 0; s < below.length; s++) {
+    if (child[s] < 0) continue;
+    const width = first[s + 1] - first[s];
+    for (let c = 0; c < width; c++) among[first[s] + c] = c;
+    for (let i = 0; i < below[s]; i++) among[rows[rowStart[s] + i]] = width + i;
+    for (let c = child[s]; c >= 0; c = sibling[c]) {
+      for (let p = rowStart[c]; p < rowStart[c] + below[c]; p++) relative[p] = among[rows[p]];
     }
   }
-  const position = new Int32Array(n);
-  bySuper.forEach((entries, s) => {
-    const height = rowStart[s + 1] - rowStart[s];
-    for (let r = 0; r < height; r++) position[rows[rowStart[s] + r]] = r;
-    for (const p of entries) {
-      const a = place[columnOfEntry[p]];
-      const b = place[row[p]];
-      const [column, down] = a < b ? [a, b] : [b, a];
-      target[p] = blockStart[s] + (column - first[s]) * height + position[down];
+  return relative;
+}
+
+/** Entries of the matrix by fronts and columns, and where each goes in the front's block. */
+function entriesOf(
+  pattern: SymmetricPattern,
+  wanted: Int32Array,
+  { place, first, below }: Fronts,
+  { laterStart, later, laterEntry }: Couplings,
+  { rowStart, rows, blockStart }: Pick<Analysis, 'rowStart' | 'rows' | 'blockStart'>,
+): Pick<Analysis, 'entryStart' | 'source' | 'target'> {
+  const entryStart = new Int32Array(first.length);
+  const source = new Int32Array(pattern.row.length);
+  const target = new Int32Array(pattern.row.length);
+  const columns = inverseOf(place);
+  const inBlock = new Int32Array(pattern.n); // by wanted places: where the row of the present front starts
+  let e = 0;
+  for (let s = 0; s < below.length; s++) {
+    const width = first[s + 1] - first[s];
+    for (let c = 0; c < width; c++) inBlock[columns[first[s] + c]] = rowStartInBlock(c, width);
+    for (let i = 0; i < below[s]; i++) inBlock[columns[rows[rowStart[s] + i]]] = rowStartInBlock(width + i, width);
+    for (let c = 0; c < width; c++) {
+      const j = columns[first[s] + c];
+      const column = blockStart[s] + 4 * c;
+      source[e] = pattern.start[wanted[j]];
+      target[e++] = column + inBlock[j];
+      for (let q = laterStart[j]; q < laterStart[j + 1]; q++) {
+        source[e] = laterEntry[q];
+        target[e++] = column + inBlock[later[q]];
+      }
     }
-  });
-  return target;
+    entryStart[s + 1] = e;
+  }
+  return { entryStart, source, target };
+}
+
+/**
+ * Updates stand on two stacks, one for the fronts at even and one for those at odd depth of the tree: when a front makes
+ * its own, its children's are the uppermost of the other stack.
+ */
+function placeUpdates({ below, parent }: Fronts): { updateStart: Int32Array; updateSize: number } {
+  const frontCount = below.length;
+  const odd = new Uint8Array(frontCount);
+  for (let s = frontCount - 1; s >= 0; s--) odd[s] = parent[s] < 0 ? 0 : 1 - odd[parent[s]];
+  const updateStart = new Int32Array(frontCount);
+  const childrens = new Float64Array(frontCount); // room the children's updates take
+  const height = [0, 0];
+  const highest = [0, 0];
+  for (let s = 0; s < frontCount; s++) {
+    const stack = odd[s];
+    const size = updateSize(below[s]);
+    updateStart[s] = height[stack];
+    height[stack] += size;
+    highest[stack] = Math.max(highest[stack], height[stack]);
+    height[1 - stack] -= childrens[s];
+    if (parent[s] >= 0) childrens[parent[s]] += size;
+  }
+  for (let s = 0; s < frontCount; s++) if (odd[s] === 1) updateStart[s] += highest[0];
+  return { updateStart, updateSize: highest[0] + highest[1] };
 }

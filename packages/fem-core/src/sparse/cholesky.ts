@@ -1,227 +1,178 @@
+import { bytes } from '../kernels/cholesky.wasm.js';
+import { compileKernels } from '../kernels/instantiate.js';
 import type { Analysis } from './analysis.js';
+import type { Arena } from './arena.js';
+import { arenaFor } from './arena.js';
+import { factorPlain, solvePlain } from './cholesky-plain.js';
+import { rowStartInBlock } from './front-layout.js';
 
-/** A = L L^T in the order of the analysis: the dense blocks of L. */
+/** A = L L^T in the order of the analysis. Serves until its memory is given to another. */
 export interface Factor {
   readonly analysis: Analysis;
-  /** Float64Array(blockSize): see `Analysis`. Above the diagonal of a block the content has no meaning. */
+  /** Float64Array(blockSize): L by fronts, as `front-layout.ts` tells, the diagonal by its reciprocals. */
   readonly blocks: Float64Array;
+  readonly memory: FactorMemory;
 }
 
-/** Column (in the order of the matrix) at which the factorisation met a pivot that is not positive, and that pivot. */
+/** What a factor lives in. Only `factor` and the solves look into it. */
+interface FactorMemory {
+  /** Given on to another factor: this one is void. */
+  given: boolean;
+  /** Undefined where the plain twin serves. */
+  readonly arena: Arena | undefined;
+  /** Of the plain twin. */
+  readonly updates: Float64Array;
+}
+
+/** Unknown whose pivot the factorisation found not positive, and that pivot. */
 export interface NotPositive {
   readonly unknown: number;
   readonly pivot: number;
 }
 
+export interface FactorOptions {
+  /** A factor no longer needed: its memory serves the new one, and it is void from now on. */
+  readonly reuse?: Factor | undefined;
+  /** Without WebAssembly; the answers are the same. */
+  readonly plain?: boolean;
+}
+
+const compiled = compileKernels(bytes);
+/** Operations below which making an instance takes longer than the factorisation. */
+const SMALL = 30_000;
+
 /**
- * Left-looking supernodal Cholesky factorisation (Ng, Peyton, Block sparse Cholesky algorithms on advanced uniprocessor
- * computers, 1993): each block gathers the outer products of the blocks before it, then is factored as a dense one.
+ * Numeric factorisation.
  *
  * @param values  Float64Array(z): the lower triangle in the order of the pattern
- * @param blocks  Float64Array(analysis.blockSize) to be overwritten; made if absent
  * @returns the factor, or where the matrix was found not positive definite
+ * Throws RangeError where that takes more memory than 32-bit addresses reach, or than the host can give, and Error where the
+ * memory to be used again was given to another factor before.
  */
-export function factor(
-  analysis: Analysis,
-  values: Float64Array,
-  blocks = new Float64Array(analysis.blockSize),
-): Factor | NotPositive {
-  const { first, rowStart, rows, blockStart, supernodeOf, target, order, pattern } = analysis;
-  const superCount = first.length - 1;
-  blocks.fill(0);
-  for (let p = 0; p < target.length; p++) blocks[target[p]] += values[p];
-
-  // For each supernode the earlier ones whose next unused row lies in it.
-  const head = new Int32Array(superCount).fill(-1);
-  const next = new Int32Array(superCount).fill(-1);
-  const used = new Int32Array(superCount);
-  const position = new Int32Array(pattern.n);
-  const tallest = Array.from({ length: superCount }, (_, s) => rowStart[s + 1] - rowStart[s]).reduce(
-    (a, b) => Math.max(a, b),
-    0,
+export function factor(analysis: Analysis, values: Float64Array, options: FactorOptions = {}): Factor | NotPositive {
+  const { reuse, plain = reuse?.memory.arena === undefined && analysis.flops < SMALL } = options;
+  expectRoom(analysis);
+  if (reuse !== undefined) {
+    expectHeld(reuse);
+    reuse.memory.given = true;
+  }
+  if (plain || compiled === undefined) return factorInNumbers(analysis, values, reuse);
+  const arena = arenaFor(compiled, analysis, reuse?.memory.arena);
+  const { layout, instance } = arena;
+  const memory = instance.buffer();
+  new Float64Array(memory, layout.values, values.length).set(values);
+  const failed = instance.exports.factorise(
+    layout.records,
+    analysis.below.length,
+    layout.source,
+    layout.target,
+    layout.values,
+    layout.blocks,
   );
-  const strip = new Float64Array(2 * tallest);
-
-  for (let s = 0; s < superCount; s++) {
-    const height = rowStart[s + 1] - rowStart[s];
-    const width = first[s + 1] - first[s];
-    for (let r = 0; r < height; r++) position[rows[rowStart[s] + r]] = r;
-    for (let k = head[s]; k >= 0; ) {
-      const following = next[k];
-      used[k] = addUpdate(analysis, blocks, s, k, used[k], position, strip);
-      enqueue(k);
-      k = following;
-    }
-    const bad = factorBlock(blocks, blockStart[s], height, width);
-    if (bad >= 0) {
-      return { unknown: order[first[s] + bad], pivot: blocks[blockStart[s] + bad * (height + 1)] };
-    }
-    used[s] = width;
-    enqueue(s);
-  }
-  return { analysis, blocks };
-
-  function enqueue(k: number): void {
-    const at = rowStart[k] + used[k];
-    if (at >= rowStart[k + 1]) return;
-    const s = supernodeOf[rows[at]];
-    next[k] = head[s];
-    head[s] = k;
-  }
+  const blocks = new Float64Array(memory, layout.blocks, analysis.blockSize);
+  if (failed >= 0) return notPositive(analysis, blocks, failed);
+  return { analysis, blocks, memory: { given: false, arena, updates: new Float64Array(0) } };
 }
 
-/**
- * Subtracts from block s the outer product of the rows of block k from `from` on, as far as they meet the columns of s.
- * Columns are taken in pairs, gathered in `strip` and spread by `position`. Returns the first row of k beyond block s.
- */
-function addUpdate(
-  analysis: Analysis,
-  blocks: Float64Array,
-  s: number,
-  k: number,
-  from: number,
-  position: Int32Array,
-  strip: Float64Array,
-): number {
-  const { first, rowStart, rows, blockStart } = analysis;
-  const heightK = rowStart[k + 1] - rowStart[k];
-  const widthK = first[k + 1] - first[k];
-  const heightS = rowStart[s + 1] - rowStart[s];
-  const baseK = blockStart[k];
-  const rowsK = rowStart[k];
-  let end = from;
-  while (end < heightK && rows[rowsK + end] < first[s + 1]) end++;
-  for (let c = from; c < end; c += 2) {
-    const two = c + 1 < end;
-    outerColumns(blocks, baseK, heightK, widthK, c, two, strip);
-    const size = heightK - c;
-    spread(blocks, blockStart[s] + (rows[rowsK + c] - first[s]) * heightS, rows, rowsK + c, size, position, strip, 0);
-    if (two) {
-      spread(
-        blocks,
-        blockStart[s] + (rows[rowsK + c + 1] - first[s]) * heightS,
-        rows,
-        rowsK + c + 1,
-        size - 1,
-        position,
-        strip,
-        size + 1,
-      );
-    }
-  }
-  return end;
+/** Bytes; a little below the 4 GiB that 32-bit addresses reach. */
+const MOST_BYTES = 3.9 * 2 ** 30;
+
+function expectRoom({ pattern, peakBytes }: Analysis): void {
+  if (peakBytes <= MOST_BYTES) return;
+  const gib = (peakBytes / 2 ** 30).toFixed(1);
+  throw new RangeError(`the factor of ${pattern.n} unknowns takes ${gib} GiB of memory; at most 3.9 GiB can be had`);
 }
 
-/** strip = rows c ... of block k times its row c (and its row c + 1, in the second half of the strip). */
-function outerColumns(
-  blocks: Float64Array,
-  base: number,
-  height: number,
-  width: number,
-  c: number,
-  two: boolean,
-  strip: Float64Array,
-): void {
-  const size = height - c;
-  strip.fill(0, 0, 2 * size);
-  let j = 0;
-  for (; j + 1 < width; j += 2) {
-    const p = base + j * height + c;
-    const q = p + height;
-    const a0 = blocks[p];
-    const b0 = blocks[q];
-    if (two) {
-      const a1 = blocks[p + 1];
-      const b1 = blocks[q + 1];
-      for (let i = 0; i < size; i++) {
-        const x = blocks[p + i];
-        const y = blocks[q + i];
-        strip[i] += a0 * x + b0 * y;
-        strip[size + i] += a1 * x + b1 * y;
-      }
-    } else for (let i = 0; i < size; i++) strip[i] += a0 * blocks[p + i] + b0 * blocks[q + i];
-  }
-  if (j < width) {
-    const p = base + j * height + c;
-    const a0 = blocks[p];
-    const a1 = two ? blocks[p + 1] : 0;
-    for (let i = 0; i < size; i++) {
-      const x = blocks[p + i];
-      strip[i] += a0 * x;
-      if (two) strip[size + i] += a1 * x;
-    }
-  }
+/** By the plain twin. */
+function factorInNumbers(analysis: Analysis, values: Float64Array, reuse: Factor | undefined): Factor | NotPositive {
+  const old = reuse?.memory.arena === undefined ? reuse : undefined;
+  const blocks = old?.blocks.length === analysis.blockSize ? old.blocks : new Float64Array(analysis.blockSize);
+  const updates =
+    old !== undefined && old.memory.updates.length >= analysis.updateSize
+      ? old.memory.updates
+      : new Float64Array(analysis.updateSize);
+  const failed = factorPlain(analysis, values, blocks, updates);
+  if (failed >= 0) return notPositive(analysis, blocks, failed);
+  return { analysis, blocks, memory: { given: false, arena: undefined, updates } };
 }
 
-function spread(
-  blocks: Float64Array,
-  column: number,
-  rows: Int32Array,
-  rowsFrom: number,
-  size: number,
-  position: Int32Array,
-  strip: Float64Array,
-  stripFrom: number,
-): void {
-  for (let i = 0; i < size; i++) blocks[column + position[rows[rowsFrom + i]]] -= strip[stripFrom + i];
-}
-
-/** Dense Cholesky of the top square of a block and the triangular solve of what lies below; -1, or the failing column. */
-function factorBlock(blocks: Float64Array, base: number, height: number, width: number): number {
-  for (let j = 0; j < width; j++) {
-    const column = base + j * height;
-    let k = 0;
-    for (; k + 1 < j; k += 2) {
-      const p = base + k * height;
-      const q = p + height;
-      const a = blocks[p + j];
-      const b = blocks[q + j];
-      for (let i = j; i < height; i++) blocks[column + i] -= a * blocks[p + i] + b * blocks[q + i];
-    }
-    if (k < j) {
-      const p = base + k * height;
-      const a = blocks[p + j];
-      for (let i = j; i < height; i++) blocks[column + i] -= a * blocks[p + i];
-    }
-    const pivot = blocks[column + j];
-    if (!(pivot > 0)) return j;
-    const scale = 1 / Math.sqrt(pivot);
-    for (let i = j; i < height; i++) blocks[column + i] *= scale;
-  }
-  return -1;
+function notPositive({ order, first, blockStart }: Analysis, blocks: Float64Array, place: number): NotPositive {
+  let s = 0;
+  while (first[s + 1] <= place) s++;
+  const column = place - first[s];
+  const pivot = blocks[blockStart[s] + rowStartInBlock(column, first[s + 1] - first[s]) + 4 * column];
+  return { unknown: order[place], pivot };
 }
 
 /**
  * Solves A x = b with the factor.
  * @param b  Float64Array(n); may be the same array as x
  * @param x  Float64Array(n); overwritten and returned
+ * Throws Error for a factor whose memory was given to another.
  */
 export function solve(factored: Factor, b: Float64Array, x: Float64Array): Float64Array {
-  const { analysis, blocks } = factored;
-  const { order, first, rowStart, rows, blockStart } = analysis;
-  const y = Float64Array.from(order, (i) => b[i]);
-  const superCount = first.length - 1;
-  for (let s = 0; s < superCount; s++) {
-    const height = rowStart[s + 1] - rowStart[s];
-    for (let j = first[s], column = blockStart[s]; j < first[s + 1]; j++, column += height) {
-      const d = j - first[s];
-      const value = y[j] / blocks[column + d];
-      y[j] = value;
-      for (let r = d + 1; r < height; r++) y[rows[rowStart[s] + r]] -= blocks[column + r] * value;
-    }
+  expectHeld(factored);
+  const { analysis, blocks, memory } = factored;
+  const { order, pattern, below } = analysis;
+  if (memory.arena === undefined) {
+    const y = new Float64Array(pattern.n + 1);
+    for (let k = 0; k < pattern.n; k++) y[k] = b[order[k]];
+    solvePlain(analysis, blocks, y);
+    for (let k = 0; k < pattern.n; k++) x[order[k]] = y[k];
+    return x;
   }
-  for (let s = superCount - 1; s >= 0; s--) {
-    const height = rowStart[s + 1] - rowStart[s];
-    for (let j = first[s + 1] - 1; j >= first[s]; j--) {
-      const d = j - first[s];
-      const column = blockStart[s] + d * height;
-      let sum = y[j];
-      for (let r = d + 1; r < height; r++) sum -= blocks[column + r] * y[rows[rowStart[s] + r]];
-      y[j] = sum / blocks[column + d];
-    }
-  }
-  order.forEach((i, k) => {
-    x[i] = y[k];
-  });
+  const { layout, instance } = memory.arena;
+  const y = new Float64Array(instance.buffer(), layout.y, pattern.n + 1);
+  y[pattern.n] = 0;
+  for (let k = 0; k < pattern.n; k++) y[k] = b[order[k]];
+  instance.exports.solveOne(layout.records, below.length, layout.y, layout.sums);
+  for (let k = 0; k < pattern.n; k++) x[order[k]] = y[k];
   return x;
+}
+
+/**
+ * Solves A X = B for several right-hand sides, four at a time.
+ * @param b      Float64Array(count n): the right-hand sides one after another; may be the same array as x
+ * @param x      Float64Array(count n): the solutions likewise; overwritten and returned
+ * Throws Error for a factor whose memory was given to another.
+ */
+export function solveMany(factored: Factor, b: Float64Array, x: Float64Array, count: number): Float64Array {
+  expectHeld(factored);
+  const { n } = factored.analysis.pattern;
+  const { arena } = factored.memory;
+  let done = 0;
+  if (arena !== undefined) {
+    for (; count - done > 1; done += Math.min(4, count - done)) {
+      solveUpToFour(factored.analysis, arena, b, x, done, Math.min(4, count - done));
+    }
+  }
+  for (; done < count; done++) {
+    solve(factored, b.subarray(n * done, n * (done + 1)), x.subarray(n * done, n * (done + 1)));
+  }
+  return x;
+}
+
+/** Right-hand sides number `from` ... `from` + count - 1 of b, side by side in the arena's memory. */
+function solveUpToFour(
+  { order, pattern: { n }, below }: Analysis,
+  { layout, instance }: Arena,
+  b: Float64Array,
+  x: Float64Array,
+  from: number,
+  count: number,
+): void {
+  const y = new Float64Array(instance.buffer(), layout.y, 4 * (n + 1)).fill(0);
+  for (let r = 0; r < count; r++) {
+    const at = n * (from + r);
+    for (let k = 0; k < n; k++) y[4 * k + r] = b[at + order[k]];
+  }
+  instance.exports.solveFour(layout.records, below.length, layout.y);
+  for (let r = 0; r < count; r++) {
+    const at = n * (from + r);
+    for (let k = 0; k < n; k++) x[at + order[k]] = y[4 * k + r];
+  }
+}
+
+function expectHeld({ memory }: Factor): void {
+  if (memory.given) throw new Error('the memory of this factor was given to another one');
 }

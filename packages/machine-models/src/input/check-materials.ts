@@ -1,13 +1,24 @@
-import { editDistance, type Fault, findTableFaults, InputError, MU0, showText } from '@gapwright/fem-core';
+import {
+  editDistance,
+  type Fault,
+  findDemagnetisationFaults,
+  findTableFaults,
+  InputError,
+  MU0,
+  type Path,
+  showText,
+  stackedPermeability,
+  stackedTable,
+} from '@gapwright/fem-core';
 import type { LibraryMaterial } from '../machine.js';
 import { MATERIAL_LIBRARY } from '../materials/library.js';
 import { type BhRow, readBhCsv } from './bh-csv.js';
 import { figure } from './format-figure.js';
 import type { Report } from './report.js';
-import type { MachineFile } from './schema.js';
 import type { UserMaterial } from './schema-materials.js';
 
-type Materials = Readonly<Record<string, LibraryMaterial>>;
+export type Materials = Readonly<Record<string, LibraryMaterial>>;
+type UserMaterials = Readonly<Record<string, UserMaterial>>;
 type BhTable = readonly (readonly [H: number, B: number])[];
 
 /** The text of a file beside the machine file; throws, with a reason for its author, where it cannot be read. */
@@ -21,8 +32,12 @@ const USUAL_REMANENCE_SLOPE = -0.0012;
 const HIGH_RECOIL = 1.3;
 
 /** The library with the file's own materials added or in its place; a faulty one is there too, so that it is known. */
-export function gatherMaterials(file: MachineFile, readBeside: ReadBeside | undefined, report: Report): Materials {
-  const own = Object.entries(file.materials ?? {}).map(([name, material]): [string, LibraryMaterial] => [
+export function gatherMaterials(
+  given: UserMaterials | undefined,
+  readBeside: ReadBeside | undefined,
+  report: Report,
+): Materials {
+  const own = Object.entries(given ?? {}).map(([name, material]): [string, LibraryMaterial] => [
     name,
     ownMaterial(name, material, readBeside, report),
   ]);
@@ -43,7 +58,8 @@ function ownMaterial(
     case 'steel':
       return { ...ownSteel(name, material, readBeside, report), ...common };
     case 'magnet': {
-      const { remanence, coercivity_intrinsic, coercivity_slope } = material;
+      const { demagnetisation, coercivity_intrinsic, coercivity_slope } = material;
+      const remanence = ownRemanence(name, material, report);
       const recoil = material.recoil ?? USUAL_RECOIL;
       if (recoil > HIGH_RECOIL) {
         report.warn(
@@ -54,6 +70,7 @@ function ownMaterial(
       return {
         kind: 'magnet',
         remanence,
+        ...(demagnetisation === undefined ? {} : { demagnetisation }),
         recoil,
         remanenceSlope: material.remanence_slope ?? USUAL_REMANENCE_SLOPE,
         ...(coercivity_intrinsic === undefined ? {} : { coercivityIntrinsic: coercivity_intrinsic }),
@@ -62,6 +79,42 @@ function ownMaterial(
       };
     }
   }
+}
+
+/** T; no magnet known today comes near it. */
+const MOST_REMANENCE = 2;
+
+/** Given as such, or by the curve's row [0, Br]; NaN where something is wrong, which is told. */
+function ownRemanence(name: string, magnet: UserMaterial & { readonly kind: 'magnet' }, report: Report): number {
+  const path = ['materials', name];
+  const { remanence, demagnetisation: rows } = magnet;
+  if (rows === undefined) {
+    if (remanence !== undefined) return remanence;
+    const remedy = 'give the remanence at 20 degC, for example 1.30 T, or a curve under demagnetisation';
+    report.fault([...path, 'remanence'], 'missing', 'is missing', remedy);
+    return Number.NaN;
+  }
+  if (remanence !== undefined) {
+    const wrong = 'gives remanence and demagnetisation at once';
+    report.fault(path, 'one-of', wrong, 'leave out the remanence: it is that of the row [0, Br]');
+  }
+  if (rows.length === 0 || rows.flat().some(Number.isNaN)) return Number.NaN; // told already
+  for (const { key, code, wrong, remedy } of findDemagnetisationFaults(rows)) {
+    report.fault([...path, 'demagnetisation', rowOf(key)], code, wrong, remedy);
+  }
+  const row = rows.findIndex(([h]) => h === 0);
+  const found = rows[row]?.[1] ?? Number.NaN;
+  if (found > MOST_REMANENCE) {
+    const wrong = `${figure(found)} T is more than any magnet's remanence`;
+    report.fault([...path, 'demagnetisation', row], 'implausible-remanence', wrong, 'give H in A/m, then B in T');
+  }
+  return found;
+}
+
+/** Whether the file leaves the remanence slope of this material to us; it matters away from 20 degC. */
+export function hasUsualSlope(own: UserMaterials | undefined, name: string): boolean {
+  const material = own && Object.hasOwn(own, name) ? own[name] : undefined;
+  return material?.kind === 'magnet' && material.remanence_slope === undefined;
 }
 
 function ownSteel(
@@ -76,9 +129,15 @@ function ownSteel(
     const wrong = given.length === 0 ? 'says nothing of its magnetisation' : `gives ${given.join(' and ')} at once`;
     report.fault(path, 'one-of', wrong, 'give exactly one of mu_r, bh and bh_file');
   }
-  if (steel.bh !== undefined) return { kind: 'steel-curve', bh: checkRows(steel.bh, [...path, 'bh'], report) };
-  if (steel.bh_file === undefined) return { kind: 'steel', muR: steel.mu_r ?? Number.NaN };
-  return { kind: 'steel-curve', bh: readTable(steel.bh_file, [...path, 'bh_file'], readBeside, report) };
+  const factor = steel.stacking_factor ?? 1;
+  const stacked = (bh: BhTable) => ({
+    kind: 'steel-curve' as const,
+    bh: Number.isNaN(factor) ? bh : stackedTable(bh, factor),
+  });
+  if (steel.bh !== undefined) return stacked(checkRows(steel.bh, [...path, 'bh'], report));
+  if (steel.bh_file !== undefined) return stacked(readTable(steel.bh_file, [...path, 'bh_file'], readBeside, report));
+  const solid = steel.mu_r ?? Number.NaN;
+  return { kind: 'steel', muR: Number.isNaN(factor) ? solid : stackedPermeability(solid, factor) };
 }
 
 function checkRows(rows: BhTable, path: readonly string[], report: Report): BhTable {
@@ -108,9 +167,12 @@ function readTable(name: string, path: readonly string[], readBeside: ReadBeside
 }
 
 function tableFaults(rows: BhTable): readonly (Fault & { readonly row: number })[] {
-  const faults = findTableFaults(rows).map((fault) => ({ ...fault, row: Number(/\d+/.exec(fault.key)) - 1 }));
+  const faults = findTableFaults(rows).map((fault) => ({ ...fault, row: rowOf(fault.key) }));
   return faults.length > 0 ? faults : implausible(rows);
 }
+
+/** From 'row 3' to the entry of the list, counted from 0. */
+const rowOf = (key: string): number => Number(/\d+/.exec(key)) - 1;
 
 /** T; iron-cobalt has 2.45 T (Bozorth, Ferromagnetism, 1951; from memory), the most there is. */
 const MOST_POLARISATION = 2.6;
@@ -153,7 +215,7 @@ export function findMaterial<K extends LibraryMaterial['kind']>(
   name: string,
   kinds: readonly K[],
   wanted: string,
-  path: readonly string[],
+  path: Path,
   report: Report,
 ): (LibraryMaterial & { readonly kind: K }) | undefined {
   if (name === '') return undefined; // told already
@@ -180,10 +242,4 @@ function nearestNames(name: string, known: readonly string[]): readonly string[]
     .sort((a, b) => a.slips - b.slips)
     .slice(0, 3)
     .map(({ candidate }) => showText(candidate));
-}
-
-/** Whether the file leaves the remanence slope of this material to us; it matters away from 20 degC. */
-export function hasUsualSlope(file: MachineFile, name: string): boolean {
-  const own = file.materials && Object.hasOwn(file.materials, name) ? file.materials[name] : undefined;
-  return own?.kind === 'magnet' && own.remanence_slope === undefined;
 }

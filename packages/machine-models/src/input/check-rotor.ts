@@ -68,7 +68,13 @@ function checkMagnetMaterial(
     const remedy = 'give the temperature the magnets work at, or a grade for it';
     report.fault(['rotor', 'magnets', 'temperature'], 'no-coercivity', wrong, remedy);
   }
-  if (temperature !== 20 && hasUsualSlope(file, name)) {
+  if (material.demagnetisation !== undefined) {
+    report.warn(
+      path,
+      'its demagnetisation curve is not followed by the slices: they take the line of remanence and recoil',
+    );
+  }
+  if (temperature !== 20 && hasUsualSlope(file.materials, name)) {
     report.warn(['materials', name, 'remanence_slope'], 'not given; -0.12 %/K, as usual for NdFeB, is taken');
   }
 }

@@ -7,6 +7,7 @@ import { checkOperation } from './check-operation.js';
 import { checkRotor, magnetRadii } from './check-rotor.js';
 import { checkWinding } from './check-winding.js';
 import { chooseSlices } from './choose-slices.js';
+import { refuseOtherFormat, SECTION_FORMAT } from './file-format.js';
 import { refuseUnsolved, warnLeftOut } from './not-solved-yet.js';
 import { readSchema } from './read-schema.js';
 import { type OpenReport, openReport } from './report.js';
@@ -40,6 +41,7 @@ export function readMachine(text: string, options: ReadOptions): ReadResult {
   const document = applySettings(readDocument(text, options.file), options.settings ?? []);
   const report = openReport(document);
   const raw = plainValue(document.root);
+  refuseOtherFormat(raw, SECTION_FORMAT, ['says that this is a section file', 'use gapwright section'], report);
   if (isMeasuredOnly(raw)) {
     for (const found of readSchema(measuredFile, raw).problems) report.add(found);
     const remedy = 'describe its rotor and winding';
@@ -68,7 +70,7 @@ function judge(file: MachineFile, options: ReadOptions, report: OpenReport): Mac
   refuseUnsolved(file, report);
   warnLeftOut(file, report);
   checkOperation(file, report);
-  const materials = gatherMaterials(file, options.readBeside, report);
+  const materials = gatherMaterials(file.materials, options.readBeside, report);
   checkRotor(file, materials, report);
   const { rotor, model } = file;
   if (rotor.magnets.shape === 'round') return undefined; // refused

@@ -1,5 +1,5 @@
 import * as z from 'zod';
-import { field, group, optional, variants } from './fields.js';
+import { group, optional, variants } from './fields.js';
 import { list, pair, quantity, text } from './readers.js';
 
 const number = (value: unknown) => quantity('ratio', {}, 'a bare number')(value);
@@ -10,20 +10,31 @@ const density = optional(
 
 const nonmagnetic = group({ kind: z.literal('nonmagnetic'), density });
 
+const rows = list(
+  pair(number, number, 'H in A/m and B in T, for example [200, 0.5]'),
+  1,
+  10_000,
+  'rows [H in A/m, B in T]',
+);
+
 const steel = group({
   kind: z.literal('steel'),
   mu_r: optional(quantity('ratio', { from: '1', to: '1e7' }, 'the relative permeability, for example 2000')),
-  bh: optional(
-    list(pair(number, number, 'H in A/m and B in T, for example [200, 0.5]'), 1, 10_000, 'rows [H in A/m, B in T]'),
-  ),
+  bh: optional(rows),
   bh_file: optional(text('the name of a CSV file beside this one')),
+  stacking_factor: optional(
+    quantity('ratio', { above: '0', to: '1' }, 'the share of the depth that the sheets fill, for example 0.96'),
+  ),
   density,
 });
 
 const magnet = group({
   kind: z.literal('magnet'),
-  remanence: field(
+  remanence: optional(
     quantity('fluxDensity', { above: '0 T', to: '2 T' }, 'the remanence at 20 degC, for example 1.30 T'),
+  ),
+  demagnetisation: optional(
+    list(pair(number, number, 'H in A/m and B in T, for example [-800e3, 0.3]'), 2, 10_000, 'rows [H in A/m, B in T]'),
   ),
   recoil: optional(quantity('ratio', { from: '1', to: '2' }, 'the relative recoil permeability, for example 1.05')),
   remanence_slope: optional(

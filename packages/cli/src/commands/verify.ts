@@ -1,0 +1,161 @@
+import { percent } from '../figures.js';
+import { resultJson } from '../results-json.js';
+import { exitStatus, type Surroundings, stopIfInterrupted } from '../surroundings.js';
+import { ownVersion } from '../version.js';
+
+/** A figure held against its closed form; errors are shares of its scale. */
+export interface VerifiedFigure {
+  readonly name: string;
+  readonly quantity: string;
+  readonly formula: string;
+  readonly source: string;
+  readonly expected: number;
+  readonly got: number;
+  readonly relativeError: number;
+  readonly estimatedError: number;
+  readonly bound: number;
+  /** By which the section itself differs from what the formula describes. */
+  readonly slack: number;
+  readonly nodes: number;
+  readonly ms: number;
+  readonly holds: boolean;
+}
+
+/** How fast errors fall with the element size: of A and of B, both in L2, with what theory promises. */
+export interface VerifiedOrder {
+  readonly elements: string;
+  readonly potential: number;
+  readonly field: number;
+  readonly expected: { readonly potential: number; readonly field: number };
+  readonly holds: boolean;
+}
+
+/** The solver's cases, as the command runs them; others only in tests. */
+export interface Verifier {
+  readonly caseCount: number;
+  /** The figures of case k, timed by the clock (ms). */
+  readonly runCase: (k: number, now: () => number) => readonly VerifiedFigure[];
+  readonly measureOrders: () => readonly VerifiedOrder[];
+  readonly measureHonesty: (figures: readonly VerifiedFigure[]) => Honesty;
+}
+
+interface Honesty {
+  readonly figures: number;
+  readonly covered: number;
+  readonly median: number;
+}
+
+export interface VerifyOptions {
+  readonly json?: boolean;
+  readonly quiet?: boolean;
+}
+
+/** `gapwright verify`: the solver against closed forms, figure by figure. The one command that prints times among its results. */
+export async function runVerify(
+  verifier: Verifier,
+  options: VerifyOptions,
+  { stdout, stderr, signal }: Surroundings,
+): Promise<number> {
+  const begun = performance.now();
+  const figures: VerifiedFigure[] = [];
+  for (let k = 0; k < verifier.caseCount; k++) {
+    await new Promise((go) => setImmediate(go)); // lets an interruption in
+    stopIfInterrupted(signal);
+    figures.push(...verifier.runCase(k, () => performance.now()));
+    const name = figures.at(-1)?.name ?? '';
+    if (options.quiet !== true && stderr.isTTY === true)
+      stderr.write(`case ${k + 1} of ${verifier.caseCount}: ${name}\n`);
+  }
+  const orders = verifier.measureOrders();
+  const honesty = verifier.measureHonesty(figures);
+  const text = options.json === true ? verifyJson(figures, orders, honesty) : verifyText(figures, orders, honesty);
+  stdout.write(text);
+  if (options.quiet !== true) stderr.write(`all done in ${((performance.now() - begun) / 1000).toFixed(1)} s\n`);
+  return [...figures, ...orders].every(({ holds }) => holds) ? exitStatus.done : exitStatus.notReached;
+}
+
+function verifyJson(figures: readonly VerifiedFigure[], orders: readonly VerifiedOrder[], honesty: Honesty): string {
+  return resultJson({
+    format: 'gapwright-verify/1',
+    gapwright: ownVersion(),
+    cases: figures.map((figure) => ({
+      name: figure.name,
+      quantity: figure.quantity,
+      formula: figure.formula,
+      source: figure.source,
+      expected: figure.expected,
+      got: figure.got,
+      rel_err: figure.relativeError,
+      estimated_rel_err: figure.estimatedError,
+      bound: figure.bound,
+      nodes: figure.nodes,
+      ms: figure.ms,
+      holds: figure.holds,
+    })),
+    orders: orders.map(({ elements, potential, field, expected, holds }) => ({
+      elements,
+      A_order: potential,
+      A_order_expected: expected.potential,
+      B_order: field,
+      B_order_expected: expected.field,
+      holds,
+    })),
+    honesty: { figures: honesty.figures, covered: honesty.covered, median: honesty.median },
+  });
+}
+
+const HEAD = ['case', 'quantity', 'expected', 'got', 'error', 'estimate', 'bound', 'nodes', 'ms', 'verdict'] as const;
+/** Columns of text; the others hold numbers and are set to the right. */
+const TEXT = ['case', 'quantity', 'verdict'];
+
+function verifyText(figures: readonly VerifiedFigure[], orders: readonly VerifiedOrder[], honesty: Honesty): string {
+  const rows = figures.map((figure, i) => {
+    const first = figures[i - 1]?.name !== figure.name;
+    return [
+      first ? figure.name : '',
+      figure.quantity,
+      shortNumber(figure.expected),
+      shortNumber(figure.got),
+      ...[figure.relativeError, figure.estimatedError, figure.bound].map((share) => share.toExponential(1)),
+      first ? String(figure.nodes) : '',
+      first ? figure.ms.toFixed(0) : '',
+      figure.holds ? 'holds' : 'OUT',
+    ];
+  });
+  const orderLine = ({ elements, potential, field, expected, holds }: VerifiedOrder): string =>
+    `${elements.padEnd(18)}A ${potential.toFixed(2)} (${expected.potential})   B ${field.toFixed(2)} (${expected.field})   ${holds ? 'holds' : 'OUT'}`;
+  return [
+    ...alignColumns([HEAD, ...rows]),
+    '',
+    'orders of convergence by elements, of A and of B in L2 (the energy norm), with what theory promises:',
+    ...orders.map(orderLine),
+    '',
+    `honesty: the true error is within the estimate in ${percent(honesty.covered)} of ${honesty.figures} figures, ` +
+      `in the median ${honesty.median.toPrecision(2)} of it`,
+    countLine(figures, orders),
+    '',
+  ].join('\n');
+}
+
+function alignColumns(rows: readonly (readonly string[])[]): string[] {
+  const widths = HEAD.map((_, c) => Math.max(...rows.map((row) => row[c].length)));
+  return rows.map((row) =>
+    row
+      .map((cell, c) => (TEXT.includes(HEAD[c]) ? cell.padEnd(widths[c]) : cell.padStart(widths[c])))
+      .join('  ')
+      .trimEnd(),
+  );
+}
+
+/** Seven digits; small and large numbers with an exponent. */
+function shortNumber(value: number): string {
+  const size = Math.abs(value);
+  if (size !== 0 && size < 1e-12) return '0'; // zero but for rounding: no figure of a case is that small
+  return size === 0 || (size >= 1e-3 && size < 1e6) ? String(Number(value.toPrecision(7))) : value.toExponential(6);
+}
+
+function countLine(figures: readonly VerifiedFigure[], orders: readonly VerifiedOrder[]): string {
+  const cases = new Set(figures.map(({ name }) => name)).size;
+  const out = [...figures, ...orders].filter(({ holds }) => !holds).length;
+  return `${cases} cases, ${figures.length} figures, ${orders.length} orders: ${out === 0 ? 'all hold' : `${out} OUT`}`;
+}

@@ -1,0 +1,873 @@
+/**
+ * Multifrontal Cholesky factorisation and its triangular solves; src/sparse/cholesky-plain.ts is the twin in TypeScript
+ * and gives the same bits. All arguments named after arrays are byte addresses; the layout of a front's block and of its
+ * update is told in src/sparse/front-layout.ts, that of a record below in src/sparse/arena.ts.
+ */
+
+// A record: unsigned 32-bit words about one front.
+const RECORD: usize = 48;
+const WIDTH: usize = 0; // columns
+const BELOW: usize = 4; // rows below them
+const BLOCK: usize = 8; // address of the block
+const UPDATE: usize = 12; // address of the update
+const RELATIVE: usize = 16; // address of the places of the rows below among the parent's rows, times eight
+const ROWS: usize = 20; // address of the rows below, to a multiple of four
+const ENTRIES: usize = 24; // entries of the matrix in the block
+const CHILD: usize = 28; // address of the record of the first child, or 0
+const SIBLING: usize = 32; // of the next child of the same parent, or 0
+const UNDER: usize = 36; // address of the block's rows below
+const SHARED: usize = 40; // how many of the rows below are columns of the parent
+const OFFSETS: usize = 44; // address of the bytes from the parent's block to each of the rows below
+
+/** Bytes of a row of tiles that may stay in the nearest cache while others run past it. */
+const CHUNK: i32 = 24576;
+
+function word(count: i32): usize {
+  return (<usize>count) << 2;
+}
+
+function number(count: i32): usize {
+  return (<usize>count) << 3;
+}
+
+/** Bytes from the block's start to row tile `tile` of its triangle. */
+function triangleAt(tile: i32): usize {
+  return (<usize>(8 * tile * (tile + 1))) << 3;
+}
+
+/**
+ * Factors all fronts, children before parents.
+ *
+ * @param records  a record a front
+ * @param source   Int32 an entry, grouped by front: its place in `values`
+ * @param target   Int32 an entry: its place in `blocks`, counted in numbers
+ * @returns -1, or the column whose pivot is not positive; the pivot stands on the diagonal
+ */
+export function factorise(
+  records: usize,
+  frontCount: i32,
+  source: usize,
+  target: usize,
+  values: usize,
+  blocks: usize,
+): i32 {
+  const end = records + <usize>frontCount * RECORD;
+  let column = 0;
+  let entry: usize = 0;
+  for (let front = records; front < end; front += RECORD) {
+    const width = load<i32>(front + WIDTH);
+    const below = load<i32>(front + BELOW);
+    const block = <usize>load<u32>(front + BLOCK);
+    const under = <usize>load<u32>(front + UNDER);
+    const tiles = (below + 3) >> 2;
+    clear(block, under + ((<usize>(tiles * width)) << 5));
+    const last = entry + ((<usize>load<u32>(front + ENTRIES)) << 2);
+    for (; entry < last; entry += 4) {
+      const to = blocks + ((<usize>load<u32>(target + entry)) << 3);
+      store<f64>(to, load<f64>(values + ((<usize>load<u32>(source + entry)) << 3)));
+    }
+    for (let child = <usize>load<u32>(front + CHILD); child !== 0; child = <usize>load<u32>(child + SIBLING)) {
+      addToColumns(child, block);
+    }
+    const failed = factorTriangle(block, width);
+    if (failed >= 0) return column + failed;
+    if (tiles > 0) {
+      const update = <usize>load<u32>(front + UPDATE);
+      solveBelow(block, under, width, tiles);
+      formUpdate(under, update, width, below);
+      for (let child = <usize>load<u32>(front + CHILD); child !== 0; child = <usize>load<u32>(child + SIBLING)) {
+        addToUpdate(child, width, update, tiles);
+      }
+    }
+    column += width;
+  }
+  return -1;
+}
+
+/** Zeros from `at` to `end`, a multiple of 32 bytes. */
+function clear(at: usize, end: usize): void {
+  const zero = f64x2.splat(0);
+  for (; at < end; at += 32) {
+    v128.store(at, zero);
+    v128.store(at, zero, 16);
+  }
+}
+
+/** Adds to the parent's columns the columns of a child's update that belong there. */
+function addToColumns(child: usize, block: usize): void {
+  const below = load<i32>(child + BELOW);
+  const relative = <usize>load<u32>(child + RELATIVE);
+  const offsets = <usize>load<u32>(child + OFFSETS);
+  const update = <usize>load<u32>(child + UPDATE);
+  const end = load<i32>(child + SHARED);
+  const tiles = (below + 3) >> 2;
+  let j = 0;
+  for (; j + 4 <= end; j += 4) {
+    const c0 = columnInBlock(block, relative, j);
+    const c1 = columnInBlock(block, relative, j + 1);
+    const c2 = columnInBlock(block, relative, j + 2);
+    const c3 = columnInBlock(block, relative, j + 3);
+    addPanel(columnAt(update, j, tiles), number(4 * tiles - j), j, below, offsets, c0, c1, c2, c3);
+  }
+  for (; j < end; j++) addColumn(columnAt(update, j, tiles), j, below, offsets, columnInBlock(block, relative, j));
+}
+
+/** Adds the rest of a child's update to the parent's. */
+function addToUpdate(child: usize, width: i32, update: usize, parentTiles: i32): void {
+  const below = load<i32>(child + BELOW);
+  const relative = <usize>load<u32>(child + RELATIVE);
+  const tiles = (below + 3) >> 2;
+  const own = <usize>load<u32>(child + UPDATE);
+  let j = load<i32>(child + SHARED);
+  for (const aligned = min(below, (j + 3) & ~3); j < aligned; j++) {
+    addColumn(columnAt(own, j, tiles), j, below, relative, columnInUpdate(update, relative, j, width, parentTiles));
+  }
+  for (; j + 4 <= below; j += 4) {
+    const c0 = columnInUpdate(update, relative, j, width, parentTiles);
+    const c1 = columnInUpdate(update, relative, j + 1, width, parentTiles);
+    const c2 = columnInUpdate(update, relative, j + 2, width, parentTiles);
+    const c3 = columnInUpdate(update, relative, j + 3, width, parentTiles);
+    addPanel(columnAt(own, j, tiles), number(4 * tiles - j), j, below, relative, c0, c1, c2, c3);
+  }
+  for (; j < below; j++) {
+    addColumn(columnAt(own, j, tiles), j, below, relative, columnInUpdate(update, relative, j, width, parentTiles));
+  }
+}
+
+/** Address of column j of an update, as if it began at row 0. */
+function columnAt(update: usize, j: i32, tiles: i32): usize {
+  const J = j >> 2;
+  return update + number(16 * tiles * J - 8 * J * (J - 1) + (j & 3) * 4 * (tiles - J)) - number(4 * J);
+}
+
+/** Address of the column in the parent's block that column j of the child goes to. */
+function columnInBlock(block: usize, relative: usize, j: i32): usize {
+  return block + ((<usize>load<u32>(relative + word(j))) << 2);
+}
+
+/** The same in the parent's update, as if it began at the first row of the front. */
+function columnInUpdate(update: usize, relative: usize, j: i32, width: i32, tiles: i32): usize {
+  return columnAt(update, (load<i32>(relative + word(j)) >> 3) - width, tiles) - number(width);
+}
+
+/** to[offsets[i]] += from[i] for i = first ... end - 1; offsets in bytes. */
+function addColumn(from: usize, first: i32, end: i32, offsets: usize, to: usize): void {
+  let at = offsets + word(first);
+  from += number(first);
+  const last = offsets + word(end);
+  for (; at + 4 < last; at += 8, from += 16) {
+    const a = to + <usize>load<u32>(at);
+    const b = to + <usize>load<u32>(at, 4);
+    const x = load<f64>(a) + load<f64>(from);
+    const y = load<f64>(b) + load<f64>(from, 8);
+    store<f64>(a, x);
+    store<f64>(b, y);
+  }
+  if (at < last) addNumber(to + <usize>load<u32>(at), from);
+}
+
+/** `addColumn` for four columns `stride` bytes apart, the first of which begins at row `first`, a multiple of four. */
+function addPanel(
+  from: usize,
+  stride: usize,
+  first: i32,
+  end: i32,
+  offsets: usize,
+  c0: usize,
+  c1: usize,
+  c2: usize,
+  c3: usize,
+): void {
+  let at = offsets + word(first);
+  const last = offsets + word(end);
+  from += number(first);
+  let from1 = from + stride;
+  let from2 = from1 + stride;
+  let from3 = from2 + stride;
+  // The tile on the diagonal: its lower triangle.
+  const o0 = <usize>load<u32>(at);
+  const o1 = <usize>load<u32>(at, 4);
+  const o2 = <usize>load<u32>(at, 8);
+  const o3 = <usize>load<u32>(at, 12);
+  addNumber(c0 + o0, from);
+  addNumber(c0 + o1, from + 8);
+  addNumber(c1 + o1, from1 + 8);
+  addNumber(c0 + o2, from + 16);
+  addNumber(c1 + o2, from1 + 16);
+  addNumber(c2 + o2, from2 + 16);
+  addNumber(c0 + o3, from + 24);
+  addNumber(c1 + o3, from1 + 24);
+  addNumber(c2 + o3, from2 + 24);
+  addNumber(c3 + o3, from3 + 24);
+  from += 32;
+  from1 += 32;
+  from2 += 32;
+  from3 += 32;
+  for (at += 16; at + 4 < last; at += 8) {
+    const a = <usize>load<u32>(at);
+    const b = <usize>load<u32>(at, 4);
+    if (b - a === 8) {
+      addPair(c0 + a, from);
+      addPair(c1 + a, from1);
+      addPair(c2 + a, from2);
+      addPair(c3 + a, from3);
+    } else {
+      addNumber(c0 + a, from);
+      addNumber(c1 + a, from1);
+      addNumber(c2 + a, from2);
+      addNumber(c3 + a, from3);
+      addNumber(c0 + b, from + 8);
+      addNumber(c1 + b, from1 + 8);
+      addNumber(c2 + b, from2 + 8);
+      addNumber(c3 + b, from3 + 8);
+    }
+    from += 16;
+    from1 += 16;
+    from2 += 16;
+    from3 += 16;
+  }
+  if (at < last) {
+    const a = <usize>load<u32>(at);
+    addNumber(c0 + a, from);
+    addNumber(c1 + a, from1);
+    addNumber(c2 + a, from2);
+    addNumber(c3 + a, from3);
+  }
+}
+
+function addNumber(to: usize, from: usize): void {
+  store<f64>(to, load<f64>(to) + load<f64>(from));
+}
+
+function addPair(to: usize, from: usize): void {
+  v128.store(to, f64x2.add(v128.load(to), v128.load(from)));
+}
+
+/**
+ * Cholesky factor of the triangle, reciprocals on its diagonal: row tiles take what comes from the left, a chunk of them at a
+ * time. Returns -1, or the column that failed.
+ */
+function factorTriangle(block: usize, width: i32): i32 {
+  const tiles = (width + 3) >> 2;
+  const chunk = max(4, CHUNK / (32 * width));
+  for (let first = 0; first < tiles; first += chunk) {
+    const end = min(tiles, first + chunk);
+    for (let K = 0; K < end; K++) {
+      const pivots = block + triangleAt(K);
+      const columns = min(4, width - 4 * K);
+      if (K >= first) {
+        if (K > 0) reduceTile(pivots, 4 * K, columns);
+        const failed = factorTile(pivots + ((<usize>K) << 7), columns);
+        if (failed >= 0) return 4 * K + failed;
+      }
+      for (let I = max(first, K + 1); I < end; I++) solveTile(block + triangleAt(I), pivots, 4 * K, columns);
+    }
+  }
+  return -1;
+}
+
+/** The same forward substitution for all row tiles below the triangle, a chunk of them at a time. */
+function solveBelow(block: usize, under: usize, width: i32, tiles: i32): void {
+  const chunk = max(4, CHUNK / (32 * width));
+  const size = (<usize>width) << 5;
+  for (let first = 0; first < tiles; first += chunk) {
+    const end = min(tiles, first + chunk);
+    for (let k = 0; k < width; k += 4) {
+      const pivots = block + triangleAt(k >> 2);
+      const columns = min(4, width - k);
+      for (let I = first; I < end; I++) solveTile(under + <usize>I * size, pivots, k, columns);
+    }
+  }
+}
+
+/** update = - (rows below) (rows below)^T, its lower triangle by panels of four columns. */
+function formUpdate(under: usize, update: usize, width: i32, below: i32): void {
+  const tiles = (below + 3) >> 2;
+  const full = (below + 1) >> 2; // row tiles with more than two rows
+  const chunk = max(4, CHUNK / (32 * width));
+  const size = (<usize>width) << 5;
+  for (let first = 0; first < tiles; first += chunk) {
+    const end = min(tiles, first + chunk);
+    for (let J = 0; J < end; J++) {
+      const stride = (<usize>(tiles - J)) << 5;
+      const panel = update + number(16 * tiles * J - 8 * J * (J - 1));
+      const b = under + <usize>J * size;
+      if (J >= first) multiplyByItself(b, width, panel, stride);
+      let I = max(first, J + 1);
+      for (const last = min(end, full); I < last; I++) {
+        multiplyTiles(under + <usize>I * size, b, width, panel + ((<usize>(I - J)) << 5), stride);
+      }
+      if (I < end) multiplyHalf(under + <usize>I * size, b, width, panel + ((<usize>(I - J)) << 5), stride);
+    }
+  }
+}
+
+/** c = -(a b^T), 4 x 4, for row tiles of `count` columns; `stride` bytes lie between the columns of c. */
+function multiplyTiles(a: usize, b: usize, count: i32, c: usize, stride: usize): void {
+  let c00 = f64x2.splat(0);
+  let c01 = f64x2.splat(0);
+  let c10 = f64x2.splat(0);
+  let c11 = f64x2.splat(0);
+  let c20 = f64x2.splat(0);
+  let c21 = f64x2.splat(0);
+  let c30 = f64x2.splat(0);
+  let c31 = f64x2.splat(0);
+  const end = a + ((<usize>count) << 5);
+  for (; a < end; a += 32, b += 32) {
+    const a0 = v128.load(a);
+    const a1 = v128.load(a, 16);
+    const b0 = v128.load64_splat(b);
+    c00 = f64x2.sub(c00, f64x2.mul(a0, b0));
+    c01 = f64x2.sub(c01, f64x2.mul(a1, b0));
+    const b1 = v128.load64_splat(b, 8);
+    c10 = f64x2.sub(c10, f64x2.mul(a0, b1));
+    c11 = f64x2.sub(c11, f64x2.mul(a1, b1));
+    const b2 = v128.load64_splat(b, 16);
+    c20 = f64x2.sub(c20, f64x2.mul(a0, b2));
+    c21 = f64x2.sub(c21, f64x2.mul(a1, b2));
+    const b3 = v128.load64_splat(b, 24);
+    c30 = f64x2.sub(c30, f64x2.mul(a0, b3));
+    c31 = f64x2.sub(c31, f64x2.mul(a1, b3));
+  }
+  v128.store(c, c00);
+  v128.store(c, c01, 16);
+  c += stride;
+  v128.store(c, c10);
+  v128.store(c, c11, 16);
+  c += stride;
+  v128.store(c, c20);
+  v128.store(c, c21, 16);
+  c += stride;
+  v128.store(c, c30);
+  v128.store(c, c31, 16);
+}
+
+/** The first two rows of the same. */
+function multiplyHalf(a: usize, b: usize, count: i32, c: usize, stride: usize): void {
+  let c0 = f64x2.splat(0);
+  let c1 = f64x2.splat(0);
+  let c2 = f64x2.splat(0);
+  let c3 = f64x2.splat(0);
+  const end = a + ((<usize>count) << 5);
+  for (; a < end; a += 32, b += 32) {
+    const a0 = v128.load(a);
+    c0 = f64x2.sub(c0, f64x2.mul(a0, v128.load64_splat(b)));
+    c1 = f64x2.sub(c1, f64x2.mul(a0, v128.load64_splat(b, 8)));
+    c2 = f64x2.sub(c2, f64x2.mul(a0, v128.load64_splat(b, 16)));
+    c3 = f64x2.sub(c3, f64x2.mul(a0, v128.load64_splat(b, 24)));
+  }
+  v128.store(c, c0);
+  c += stride;
+  v128.store(c, c1);
+  c += stride;
+  v128.store(c, c2);
+  c += stride;
+  v128.store(c, c3);
+}
+
+/** The same for a tile on the diagonal, where a = b: the upper two rows of the last two columns have no meaning. */
+function multiplyByItself(a: usize, count: i32, c: usize, stride: usize): void {
+  let c00 = f64x2.splat(0);
+  let c01 = f64x2.splat(0);
+  let c10 = f64x2.splat(0);
+  let c11 = f64x2.splat(0);
+  let c2 = f64x2.splat(0);
+  let c3 = f64x2.splat(0);
+  for (const end = a + ((<usize>count) << 5); a < end; a += 32) {
+    const a0 = v128.load(a);
+    const a1 = v128.load(a, 16);
+    const b0 = v128.load64_splat(a);
+    c00 = f64x2.sub(c00, f64x2.mul(a0, b0));
+    c01 = f64x2.sub(c01, f64x2.mul(a1, b0));
+    const b1 = v128.load64_splat(a, 8);
+    c10 = f64x2.sub(c10, f64x2.mul(a0, b1));
+    c11 = f64x2.sub(c11, f64x2.mul(a1, b1));
+    c2 = f64x2.sub(c2, f64x2.mul(a1, v128.load64_splat(a, 16)));
+    c3 = f64x2.sub(c3, f64x2.mul(a1, v128.load64_splat(a, 24)));
+  }
+  v128.store(c, c00);
+  v128.store(c, c01, 16);
+  c += stride;
+  v128.store(c, c10);
+  v128.store(c, c11, 16);
+  c += stride;
+  v128.store(c, c2, 16);
+  c += stride;
+  v128.store(c, c3, 16);
+}
+
+/**
+ * Row tile `a` has its first `count` columns solved; takes their product with those of `pivots` from the next `columns`
+ * columns (one to four) and solves these by the triangle that stands there in `pivots`.
+ */
+function solveTile(a: usize, pivots: usize, count: i32, columns: i32): void {
+  let b = pivots;
+  const at = a + ((<usize>count) << 5);
+  let c00 = v128.load(at);
+  let c01 = v128.load(at, 16);
+  let c10 = v128.load(at, 32);
+  let c11 = v128.load(at, 48);
+  let c20 = v128.load(at, 64);
+  let c21 = v128.load(at, 80);
+  let c30 = v128.load(at, 96);
+  let c31 = v128.load(at, 112);
+  for (; a < at; a += 32, b += 32) {
+    const a0 = v128.load(a);
+    const a1 = v128.load(a, 16);
+    const b0 = v128.load64_splat(b);
+    c00 = f64x2.sub(c00, f64x2.mul(a0, b0));
+    c01 = f64x2.sub(c01, f64x2.mul(a1, b0));
+    const b1 = v128.load64_splat(b, 8);
+    c10 = f64x2.sub(c10, f64x2.mul(a0, b1));
+    c11 = f64x2.sub(c11, f64x2.mul(a1, b1));
+    const b2 = v128.load64_splat(b, 16);
+    c20 = f64x2.sub(c20, f64x2.mul(a0, b2));
+    c21 = f64x2.sub(c21, f64x2.mul(a1, b2));
+    const b3 = v128.load64_splat(b, 24);
+    c30 = f64x2.sub(c30, f64x2.mul(a0, b3));
+    c31 = f64x2.sub(c31, f64x2.mul(a1, b3));
+  }
+  // b stands at the triangle now: column c of it at b + 32 c, its row r at + 8 r; the diagonal holds reciprocals.
+  let d = v128.load64_splat(b);
+  c00 = f64x2.mul(c00, d);
+  c01 = f64x2.mul(c01, d);
+  v128.store(at, c00);
+  v128.store(at, c01, 16);
+  if (columns === 1) return;
+  let l = v128.load64_splat(b, 8);
+  d = v128.load64_splat(b, 40);
+  c10 = f64x2.mul(f64x2.sub(c10, f64x2.mul(c00, l)), d);
+  c11 = f64x2.mul(f64x2.sub(c11, f64x2.mul(c01, l)), d);
+  v128.store(at, c10, 32);
+  v128.store(at, c11, 48);
+  if (columns === 2) return;
+  l = v128.load64_splat(b, 16);
+  c20 = f64x2.sub(c20, f64x2.mul(c00, l));
+  c21 = f64x2.sub(c21, f64x2.mul(c01, l));
+  l = v128.load64_splat(b, 48);
+  d = v128.load64_splat(b, 80);
+  c20 = f64x2.mul(f64x2.sub(c20, f64x2.mul(c10, l)), d);
+  c21 = f64x2.mul(f64x2.sub(c21, f64x2.mul(c11, l)), d);
+  v128.store(at, c20, 64);
+  v128.store(at, c21, 80);
+  if (columns === 3) return;
+  l = v128.load64_splat(b, 24);
+  c30 = f64x2.sub(c30, f64x2.mul(c00, l));
+  c31 = f64x2.sub(c31, f64x2.mul(c01, l));
+  l = v128.load64_splat(b, 56);
+  c30 = f64x2.sub(c30, f64x2.mul(c10, l));
+  c31 = f64x2.sub(c31, f64x2.mul(c11, l));
+  l = v128.load64_splat(b, 88);
+  d = v128.load64_splat(b, 120);
+  c30 = f64x2.mul(f64x2.sub(c30, f64x2.mul(c20, l)), d);
+  c31 = f64x2.mul(f64x2.sub(c31, f64x2.mul(c21, l)), d);
+  v128.store(at, c30, 96);
+  v128.store(at, c31, 112);
+}
+
+/** Takes from the diagonal tile at the end of row tile `a` the product of its first `count` columns with themselves. */
+function reduceTile(a: usize, count: i32, columns: i32): void {
+  const at = a + ((<usize>count) << 5);
+  for (let c: usize = 0; c < <usize>columns; c++) {
+    const to = at + (c << 5);
+    let low = v128.load(to);
+    let high = v128.load(to, 16);
+    for (let from = a; from < at; from += 32) {
+      const b = v128.load64_splat(from + (c << 3));
+      low = f64x2.sub(low, f64x2.mul(v128.load(from), b));
+      high = f64x2.sub(high, f64x2.mul(v128.load(from, 16), b));
+    }
+    v128.store(to, low);
+    v128.store(to, high, 16);
+  }
+}
+
+/**
+ * Cholesky factor of the diagonal tile at `d`, reciprocals on its diagonal. Returns -1, or the column that failed. Column c
+ * stands at d + 32 c, its row r at + 8 r.
+ */
+function factorTile(d: usize, columns: i32): i32 {
+  const d0 = load<f64>(d);
+  if (!(d0 > 0)) return 0;
+  const r0 = 1 / sqrt(d0);
+  const l10 = load<f64>(d, 8) * r0;
+  const l20 = load<f64>(d, 16) * r0;
+  const l30 = load<f64>(d, 24) * r0;
+  store<f64>(d, r0);
+  store<f64>(d, l10, 8);
+  store<f64>(d, l20, 16);
+  store<f64>(d, l30, 24);
+  if (columns === 1) return -1;
+  const d1 = load<f64>(d, 40) - l10 * l10;
+  store<f64>(d, d1, 40);
+  if (!(d1 > 0)) return 1;
+  const r1 = 1 / sqrt(d1);
+  const l21 = (load<f64>(d, 48) - l20 * l10) * r1;
+  const l31 = (load<f64>(d, 56) - l30 * l10) * r1;
+  store<f64>(d, r1, 40);
+  store<f64>(d, l21, 48);
+  store<f64>(d, l31, 56);
+  if (columns === 2) return -1;
+  const d2 = load<f64>(d, 80) - l20 * l20 - l21 * l21;
+  store<f64>(d, d2, 80);
+  if (!(d2 > 0)) return 2;
+  const r2 = 1 / sqrt(d2);
+  const l32 = (load<f64>(d, 88) - l30 * l20 - l31 * l21) * r2;
+  store<f64>(d, r2, 80);
+  store<f64>(d, l32, 88);
+  if (columns === 3) return -1;
+  const d3 = load<f64>(d, 120) - l30 * l30 - l31 * l31 - l32 * l32;
+  store<f64>(d, d3, 120);
+  if (!(d3 > 0)) return 3;
+  store<f64>(d, 1 / sqrt(d3), 120);
+  return -1;
+}
+
+/**
+ * Overwrites y with the solution of L L^T x = y, unknowns in the order of the factor.
+ *
+ * @param y     Float64 x (n + 1); what stands at n is of no account
+ * @param sums  room for two Float64 a column of the widest front
+ */
+export function solveOne(records: usize, frontCount: i32, y: usize, sums: usize): void {
+  const end = records + <usize>frontCount * RECORD;
+  let x = y;
+  for (let front = records; front < end; front += RECORD) {
+    const width = load<i32>(front + WIDTH);
+    forwardTriangle(<usize>load<u32>(front + BLOCK), x, width);
+    forwardBelow(front, x, y, width);
+    x += (<usize>width) << 3;
+  }
+  for (let front = end; front > records; ) {
+    front -= RECORD;
+    const width = load<i32>(front + WIDTH);
+    x -= (<usize>width) << 3;
+    backwardBelow(front, x, y, width, sums);
+    backwardTriangle(<usize>load<u32>(front + BLOCK), x, width);
+  }
+}
+
+function forwardTriangle(block: usize, x: usize, width: i32): void {
+  for (let k = 0; k < width; k += 4) {
+    const columns = min(4, width - k);
+    let low = f64x2.splat(0);
+    let high = f64x2.splat(0);
+    const end = block + ((<usize>k) << 5);
+    for (let from = x; block < end; block += 32, from += 8) {
+      const value = v128.load64_splat(from);
+      low = f64x2.add(low, f64x2.mul(v128.load(block), value));
+      high = f64x2.add(high, f64x2.mul(v128.load(block, 16), value));
+    }
+    let at = x + ((<usize>k) << 3);
+    const x0 = (load<f64>(at) - f64x2.extract_lane(low, 0)) * load<f64>(block);
+    store<f64>(at, x0);
+    if (columns > 1) {
+      const x1 = (load<f64>(at, 8) - f64x2.extract_lane(low, 1) - load<f64>(block, 8) * x0) * load<f64>(block, 40);
+      store<f64>(at, x1, 8);
+      if (columns > 2) {
+        const x2 =
+          (load<f64>(at, 16) - f64x2.extract_lane(high, 0) - load<f64>(block, 16) * x0 - load<f64>(block, 48) * x1) *
+          load<f64>(block, 80);
+        store<f64>(at, x2, 16);
+        if (columns > 3) {
+          const x3 =
+            (load<f64>(at, 24) -
+              f64x2.extract_lane(high, 1) -
+              load<f64>(block, 24) * x0 -
+              load<f64>(block, 56) * x1 -
+              load<f64>(block, 88) * x2) *
+            load<f64>(block, 120);
+          store<f64>(at, x3, 24);
+        }
+      }
+    }
+    block += (<usize>columns) << 5;
+  }
+}
+
+/** y[rows below] -= block times x, two row tiles at a time. */
+function forwardBelow(front: usize, x: usize, y: usize, width: i32): void {
+  let tiles = (load<i32>(front + BELOW) + 3) >> 2;
+  let rows = <usize>load<u32>(front + ROWS);
+  const size = (<usize>width) << 5;
+  let a = <usize>load<u32>(front + UNDER);
+  const end = x + ((<usize>width) << 3);
+  for (; tiles > 1; tiles -= 2) {
+    let s0 = f64x2.splat(0);
+    let s1 = f64x2.splat(0);
+    let s2 = f64x2.splat(0);
+    let s3 = f64x2.splat(0);
+    let b = a + size;
+    for (let from = x; from < end; from += 8, a += 32, b += 32) {
+      const value = v128.load64_splat(from);
+      s0 = f64x2.add(s0, f64x2.mul(v128.load(a), value));
+      s1 = f64x2.add(s1, f64x2.mul(v128.load(a, 16), value));
+      s2 = f64x2.add(s2, f64x2.mul(v128.load(b), value));
+      s3 = f64x2.add(s3, f64x2.mul(v128.load(b, 16), value));
+    }
+    a = b;
+    takePair(y, rows, s0);
+    takePair(y, rows + 8, s1);
+    takePair(y, rows + 16, s2);
+    takePair(y, rows + 24, s3);
+    rows += 32;
+  }
+  if (tiles > 0) {
+    let s0 = f64x2.splat(0);
+    let s1 = f64x2.splat(0);
+    for (let from = x; from < end; from += 8, a += 32) {
+      const value = v128.load64_splat(from);
+      s0 = f64x2.add(s0, f64x2.mul(v128.load(a), value));
+      s1 = f64x2.add(s1, f64x2.mul(v128.load(a, 16), value));
+    }
+    takePair(y, rows, s0);
+    takePair(y, rows + 8, s1);
+  }
+}
+
+/** y[rows[0]] -= sums[0], y[rows[1]] -= sums[1] */
+function takePair(y: usize, rows: usize, sums: v128): void {
+  const first = y + ((<usize>load<u32>(rows)) << 3);
+  store<f64>(first, load<f64>(first) - f64x2.extract_lane(sums, 0));
+  const second = y + ((<usize>load<u32>(rows, 4)) << 3);
+  store<f64>(second, load<f64>(second) - f64x2.extract_lane(sums, 1));
+}
+
+/** x -= (rows below)^T y[rows below]; the products of even and of odd rows are summed apart. */
+function backwardBelow(front: usize, x: usize, y: usize, width: i32, sums: usize): void {
+  let tiles = (load<i32>(front + BELOW) + 3) >> 2;
+  if (tiles === 0) return;
+  let rows = <usize>load<u32>(front + ROWS);
+  let a = <usize>load<u32>(front + UNDER);
+  const end = sums + ((<usize>width) << 4);
+  memory.fill(sums, 0, (<usize>width) << 4);
+  const size = (<usize>width) << 5;
+  for (; tiles > 1; tiles -= 2, rows += 32) {
+    const y0 = pairOf(y, rows);
+    const y1 = pairOf(y, rows + 8);
+    const y2 = pairOf(y, rows + 16);
+    const y3 = pairOf(y, rows + 24);
+    let b = a + size;
+    for (let sum = sums; sum < end; sum += 16, a += 32, b += 32) {
+      const s = f64x2.add(f64x2.mul(v128.load(a), y0), f64x2.mul(v128.load(a, 16), y1));
+      const t = f64x2.add(f64x2.mul(v128.load(b), y2), f64x2.mul(v128.load(b, 16), y3));
+      v128.store(sum, f64x2.add(v128.load(sum), f64x2.add(s, t)));
+    }
+    a = b;
+  }
+  if (tiles > 0) {
+    const y0 = pairOf(y, rows);
+    const y1 = pairOf(y, rows + 8);
+    for (let sum = sums; sum < end; sum += 16, a += 32) {
+      const s = f64x2.add(f64x2.mul(v128.load(a), y0), f64x2.mul(v128.load(a, 16), y1));
+      v128.store(sum, f64x2.add(v128.load(sum), s));
+    }
+  }
+  for (let sum = sums; sum < end; sum += 16, x += 8) {
+    store<f64>(x, load<f64>(x) - (load<f64>(sum) + load<f64>(sum, 8)));
+  }
+}
+
+function pairOf(y: usize, rows: usize): v128 {
+  const first = v128.load64_zero(y + ((<usize>load<u32>(rows)) << 3));
+  return v128.load_lane<f64>(y + ((<usize>load<u32>(rows, 4)) << 3), first, 1);
+}
+
+/** Solves with the transposed triangle, row tiles from the last: each takes its part from the columns before it. */
+function backwardTriangle(block: usize, x: usize, width: i32): void {
+  for (let k = (width - 1) & ~3; k >= 0; k -= 4) {
+    const columns = min(4, width - k);
+    const tile = block + triangleAt(k >> 2);
+    const d = tile + ((<usize>k) << 5);
+    const at = x + ((<usize>k) << 3);
+    let x1 = 0.0;
+    let x2 = 0.0;
+    let x3 = 0.0;
+    if (columns > 3) {
+      x3 = load<f64>(at, 24) * load<f64>(d, 120);
+      store<f64>(at, x3, 24);
+    }
+    if (columns > 2) {
+      x2 = (load<f64>(at, 16) - load<f64>(d, 88) * x3) * load<f64>(d, 80);
+      store<f64>(at, x2, 16);
+    }
+    if (columns > 1) {
+      x1 = (load<f64>(at, 8) - load<f64>(d, 48) * x2 - load<f64>(d, 56) * x3) * load<f64>(d, 40);
+      store<f64>(at, x1, 8);
+    }
+    const x0 = (load<f64>(at) - load<f64>(d, 8) * x1 - load<f64>(d, 16) * x2 - load<f64>(d, 24) * x3) * load<f64>(d);
+    store<f64>(at, x0);
+    const low = f64x2.replace_lane(f64x2.splat(x0), 1, x1);
+    const high = f64x2.replace_lane(f64x2.splat(x2), 1, x3);
+    let from = tile;
+    for (let to = x; to < at; to += 8, from += 32) {
+      const s = f64x2.add(f64x2.mul(v128.load(from), low), f64x2.mul(v128.load(from, 16), high));
+      store<f64>(to, load<f64>(to) - (f64x2.extract_lane(s, 0) + f64x2.extract_lane(s, 1)));
+    }
+  }
+}
+
+/**
+ * As `solveOne`, for four right-hand sides at a time.
+ *
+ * @param y  Float64 x 4 (n + 1): the four numbers of an unknown together
+ */
+export function solveFour(records: usize, frontCount: i32, y: usize): void {
+  const end = records + <usize>frontCount * RECORD;
+  let x = y;
+  for (let front = records; front < end; front += RECORD) {
+    const width = load<i32>(front + WIDTH);
+    const block = <usize>load<u32>(front + BLOCK);
+    for (let k = 0; k < width; k += 4) forwardFour(block + triangleAt(k >> 2), x, k, min(4, width - k));
+    forwardBelowFour(front, x, y, width);
+    x += (<usize>width) << 5;
+  }
+  for (let front = end; front > records; ) {
+    front -= RECORD;
+    const width = load<i32>(front + WIDTH);
+    const block = <usize>load<u32>(front + BLOCK);
+    x -= (<usize>width) << 5;
+    backwardBelowFour(front, x, y, width);
+    for (let k = (width - 1) & ~3; k >= 0; k -= 4) backwardFour(block + triangleAt(k >> 2), x, k, min(4, width - k));
+  }
+}
+
+/** y[0 ... 3] -= a x for a row tile `a` of `count` columns; the rows of y are at the four addresses. */
+function takeTile(a: usize, x: usize, count: i32, y0: usize, y1: usize, y2: usize, y3: usize): void {
+  let c00 = v128.load(y0);
+  let c01 = v128.load(y0, 16);
+  let c10 = v128.load(y1);
+  let c11 = v128.load(y1, 16);
+  let c20 = v128.load(y2);
+  let c21 = v128.load(y2, 16);
+  let c30 = v128.load(y3);
+  let c31 = v128.load(y3, 16);
+  const end = a + ((<usize>count) << 5);
+  for (; a < end; a += 32, x += 32) {
+    const x0 = v128.load(x);
+    const x1 = v128.load(x, 16);
+    const a0 = v128.load64_splat(a);
+    c00 = f64x2.sub(c00, f64x2.mul(x0, a0));
+    c01 = f64x2.sub(c01, f64x2.mul(x1, a0));
+    const a1 = v128.load64_splat(a, 8);
+    c10 = f64x2.sub(c10, f64x2.mul(x0, a1));
+    c11 = f64x2.sub(c11, f64x2.mul(x1, a1));
+    const a2 = v128.load64_splat(a, 16);
+    c20 = f64x2.sub(c20, f64x2.mul(x0, a2));
+    c21 = f64x2.sub(c21, f64x2.mul(x1, a2));
+    const a3 = v128.load64_splat(a, 24);
+    c30 = f64x2.sub(c30, f64x2.mul(x0, a3));
+    c31 = f64x2.sub(c31, f64x2.mul(x1, a3));
+  }
+  v128.store(y0, c00);
+  v128.store(y0, c01, 16);
+  v128.store(y1, c10);
+  v128.store(y1, c11, 16);
+  v128.store(y2, c20);
+  v128.store(y2, c21, 16);
+  v128.store(y3, c30);
+  v128.store(y3, c31, 16);
+}
+
+/** Row tile `a` of the triangle: takes the part of the k columns before it, then solves by the small triangle at its end. */
+function forwardFour(a: usize, x: usize, k: i32, columns: i32): void {
+  const at = x + ((<usize>k) << 5);
+  const d = a + ((<usize>k) << 5);
+  for (let r: usize = 0; r < <usize>columns; r++) takeRow(a + (r << 3), x, k, at + (r << 5));
+  for (let r: usize = 0; r < <usize>columns; r++) {
+    takeRow(d + (r << 3), at, <i32>r, at + (r << 5));
+    scaleRow(at + (r << 5), d + 40 * r);
+  }
+}
+
+/** y -= a x for one row of a row tile, `count` columns. */
+function takeRow(a: usize, x: usize, count: i32, y: usize): void {
+  let low = v128.load(y);
+  let high = v128.load(y, 16);
+  for (const end = x + ((<usize>count) << 5); x < end; x += 32, a += 32) {
+    const l = v128.load64_splat(a);
+    low = f64x2.sub(low, f64x2.mul(v128.load(x), l));
+    high = f64x2.sub(high, f64x2.mul(v128.load(x, 16), l));
+  }
+  v128.store(y, low);
+  v128.store(y, high, 16);
+}
+
+function scaleRow(y: usize, by: usize): void {
+  const d = v128.load64_splat(by);
+  v128.store(y, f64x2.mul(v128.load(y), d));
+  v128.store(y, f64x2.mul(v128.load(y, 16), d), 16);
+}
+
+function forwardBelowFour(front: usize, x: usize, y: usize, width: i32): void {
+  const tiles = (load<i32>(front + BELOW) + 3) >> 2;
+  let rows = <usize>load<u32>(front + ROWS);
+  let a = <usize>load<u32>(front + UNDER);
+  for (let I = 0; I < tiles; I++, rows += 16, a += (<usize>width) << 5) {
+    // The rows that fill up the last tile share one place in y; what they bring is zero.
+    takeTile(a, x, width, rowOf(y, rows), rowOf(y, rows + 4), rowOf(y, rows + 8), rowOf(y, rows + 12));
+  }
+}
+
+function rowOf(y: usize, rows: usize): usize {
+  return y + ((<usize>load<u32>(rows)) << 5);
+}
+
+function backwardBelowFour(front: usize, x: usize, y: usize, width: i32): void {
+  const tiles = (load<i32>(front + BELOW) + 3) >> 2;
+  let rows = <usize>load<u32>(front + ROWS);
+  let a = <usize>load<u32>(front + UNDER);
+  for (let I = 0; I < tiles; I++, rows += 16, a += (<usize>width) << 5) {
+    takeTransposed(a, x, width, rowOf(y, rows), rowOf(y, rows + 4), rowOf(y, rows + 8), rowOf(y, rows + 12));
+  }
+}
+
+/** x -= a^T y for a row tile `a` of `count` columns; the rows of y are at the four addresses. */
+function takeTransposed(a: usize, x: usize, count: i32, y0: usize, y1: usize, y2: usize, y3: usize): void {
+  const c00 = v128.load(y0);
+  const c01 = v128.load(y0, 16);
+  const c10 = v128.load(y1);
+  const c11 = v128.load(y1, 16);
+  const c20 = v128.load(y2);
+  const c21 = v128.load(y2, 16);
+  const c30 = v128.load(y3);
+  const c31 = v128.load(y3, 16);
+  for (const end = a + ((<usize>count) << 5); a < end; a += 32, x += 32) {
+    const a0 = v128.load64_splat(a);
+    const a1 = v128.load64_splat(a, 8);
+    const a2 = v128.load64_splat(a, 16);
+    const a3 = v128.load64_splat(a, 24);
+    const low = f64x2.add(
+      f64x2.add(f64x2.mul(c00, a0), f64x2.mul(c10, a1)),
+      f64x2.add(f64x2.mul(c20, a2), f64x2.mul(c30, a3)),
+    );
+    const high = f64x2.add(
+      f64x2.add(f64x2.mul(c01, a0), f64x2.mul(c11, a1)),
+      f64x2.add(f64x2.mul(c21, a2), f64x2.mul(c31, a3)),
+    );
+    v128.store(x, f64x2.sub(v128.load(x), low));
+    v128.store(x, f64x2.sub(v128.load(x, 16), high), 16);
+  }
+}
+
+function backwardFour(a: usize, x: usize, k: i32, columns: i32): void {
+  const at = x + ((<usize>k) << 5);
+  const d = a + ((<usize>k) << 5);
+  for (let c = columns - 1; c >= 0; c--) {
+    const own = at + ((<usize>c) << 5);
+    for (let r = c + 1; r < columns; r++)
+      takeRow(d + ((<usize>c) << 5) + ((<usize>r) << 3), at + ((<usize>r) << 5), 1, own);
+    scaleRow(own, d + 40 * <usize>c);
+  }
+  for (let r = 0; r < columns; r++) {
+    const from = at + ((<usize>r) << 5);
+    const low = v128.load(from);
+    const high = v128.load(from, 16);
+    let l = a + ((<usize>r) << 3);
+    for (let to = x; to < at; to += 32, l += 32) {
+      const value = v128.load64_splat(l);
+      v128.store(to, f64x2.sub(v128.load(to), f64x2.mul(low, value)));
+      v128.store(to, f64x2.sub(v128.load(to, 16), f64x2.mul(high, value)), 16);
+    }
+  }
+}

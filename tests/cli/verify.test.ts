@@ -1,0 +1,132 @@
+import { describe, expect, test } from 'vitest';
+import type { VerifiedFigure, Verifier } from '../../packages/cli/src/commands/verify.js';
+import { runVerify } from '../../packages/cli/src/commands/verify.js';
+import { bodyCases, circuitCases } from '../../packages/fem-core/src/verify/cases.js';
+import { measureHonesty } from '../../packages/fem-core/src/verify/honesty.js';
+import { runCase } from '../../packages/fem-core/src/verify/verification-case.js';
+
+const figure = (name: string, quantity: string, error: number, bound: number): VerifiedFigure => ({
+  name,
+  quantity,
+  formula: 'B = 1',
+  source: 'computed here',
+  expected: 1,
+  got: 1 + error,
+  relativeError: error,
+  estimatedError: 2 * error,
+  bound,
+  slack: 0,
+  nodes: 7,
+  ms: 3.4,
+  holds: error <= bound,
+});
+
+const made = (cases: readonly (readonly VerifiedFigure[])[], orderHolds = true): Verifier => ({
+  caseCount: cases.length,
+  runCase: (k) => cases[k],
+  measureOrders: () => [
+    { elements: 'linear', potential: 2, field: 1, expected: { potential: 2, field: 1 }, holds: orderHolds },
+  ],
+  measureHonesty: () => ({ figures: 3, covered: 1, median: 0.5 }),
+});
+
+async function say(
+  verifier: Verifier,
+  options: { readonly json?: boolean; readonly quiet?: boolean } = {},
+  signal: AbortSignal = new AbortController().signal,
+): Promise<{ status: number; out: string; err: string }> {
+  const said = { out: '', err: '' };
+  const stream = (name: 'out' | 'err') => ({
+    write: (text: string) => {
+      said[name] += text;
+    },
+  });
+  const status = await runVerify(verifier, options, {
+    stdout: stream('out'),
+    stderr: stream('err'),
+    env: {},
+    signal,
+  });
+  return { status, ...said };
+}
+
+const sound = [
+  [figure('wire', 'B, T', 1e-4, 1e-3), figure('wire', 'L, H/m', 2e-4, 1e-3)],
+  [figure('ring', 'A', 0, 1e-3)],
+];
+const unsound = [...sound, [figure('slot', 'k', 2e-3, 1e-3)]];
+
+describe('gapwright verify', () => {
+  test('ends with 0 where every figure holds, with 3 where one figure or one order is out', async () => {
+    expect((await say(made(sound))).status).toBe(0);
+    expect((await say(made(unsound))).status).toBe(3);
+    expect((await say(made(sound, false))).status).toBe(3);
+  });
+
+  test('prints a line a figure, the orders, the honesty, and counts at the end', async () => {
+    const { out } = await say(made(unsound));
+    const lines = out.trimEnd().split('\n');
+    expect(lines[0]).toMatch(/^case +quantity +expected +got +error +estimate +bound +nodes +ms +verdict$/);
+    expect(lines[1]).toMatch(/^wire +B, T +1 +1\.0001 +1\.0e-4 +2\.0e-4 +1\.0e-3 +7 +3 +holds$/);
+    expect(lines[2]).toMatch(/^ +L, H\/m .*holds$/); // the case is named once
+    expect(lines[4]).toMatch(/^slot .*OUT$/);
+    expect(out).toMatch(/^linear +A 2\.00 \(2\) +B 1\.00 \(1\) +holds$/m);
+    expect(out).toContain('100 % of 3 figures');
+    expect(lines.at(-1)).toBe('3 cases, 4 figures, 1 orders: 1 OUT');
+    expect((await say(made(sound))).out).toMatch(/2 cases, 3 figures, 1 orders: all hold\n$/);
+  });
+
+  test('as JSON gives the keys that are promised, for each figure', async () => {
+    const { out, err } = await say(made(unsound), { json: true, quiet: true });
+    const result = JSON.parse(out);
+    expect(result.format).toBe('gapwright-verify/1');
+    expect(result.cases.map((one: { name: string }) => one.name)).toEqual(['wire', 'wire', 'ring', 'slot']);
+    expect(result.cases[3]).toEqual({
+      name: 'slot',
+      quantity: 'k',
+      formula: 'B = 1',
+      source: 'computed here',
+      expected: 1,
+      got: 1.002,
+      rel_err: 2e-3,
+      estimated_rel_err: 4e-3,
+      bound: 1e-3,
+      nodes: 7,
+      ms: 3.4,
+      holds: false,
+    });
+    expect(err).toBe('');
+  });
+
+  test('stops between cases when it is interrupted, and prints no table', async () => {
+    const controller = new AbortController();
+    const verifier = made(sound);
+    const stopping = {
+      ...verifier,
+      runCase: (k: number) => {
+        controller.abort();
+        return sound[k];
+      },
+    };
+    await expect(say(stopping, {}, controller.signal)).rejects.toThrow('interrupted');
+  });
+
+  test('real cases pass through it with their times', async () => {
+    const cases = [bodyCases[0], circuitCases[0]];
+    let clock = 0;
+    const verifier: Verifier = {
+      caseCount: cases.length,
+      runCase: (k) => runCase(cases[k], { now: () => clock++ }),
+      measureOrders: () => [],
+      measureHonesty,
+    };
+    const { status, out } = await say(verifier, { json: true });
+    expect(status).toBe(0);
+    const figures: { name: string; ms: number; nodes: number }[] = JSON.parse(out).cases;
+    expect(new Set(figures.map(({ name }) => name))).toEqual(new Set(cases.map(({ name }) => name)));
+    for (const { ms, nodes } of figures) {
+      expect(ms).toBe(1);
+      expect(nodes).toBeGreaterThan(6);
+    }
+  });
+});
