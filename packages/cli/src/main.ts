@@ -1,9 +1,10 @@
-import { formatFault, InputError } from '@gapwright/fem-core';
+import { formatFault, InputError, verification } from '@gapwright/fem-core';
 import { Command, CommanderError } from 'commander';
 import { runCheck } from './commands/check.js';
 import { type NewOptions, runNew } from './commands/new.js';
 import { runSection } from './commands/section.js';
 import { runSolve } from './commands/solve.js';
+import { runVerify, type VerifyOptions } from './commands/verify.js';
 import type { Engine } from './engine.js';
 import { addCommonOptions, type CommonOptions } from './options.js';
 import type { OutputOptions } from './outputs.js';
@@ -88,6 +89,15 @@ async function runCommand(
     .option('--vtu', 'with --out: also the section as VTK XML')
     .action(async (file: string, options: OutputOptions) => {
       status = await runSection(sections, file, options, surroundings);
+    });
+  program
+    .command('verify')
+    .description('the solver against closed forms, error by error')
+    .option('--json', 'print the result alone, as JSON')
+    .option('--quiet', 'print no progress and no time')
+    .option('--no-colour', 'print without colours')
+    .action(async (options: VerifyOptions) => {
+      status = await runVerify(verification, options, surroundings);
     });
   await program.parseAsync(argv, { from: 'user' });
   return status;

@@ -97,3 +97,6 @@ export type { SymmetricPattern } from './sparse/pattern.js';
 export { multiply } from './sparse/pattern.js';
 export type { CoarseLevel } from './sparse/two-level.js';
 export { buildCoarseLevel } from './sparse/two-level.js';
+export type { MeasuredOrder } from './verify/orders.js';
+export { verification } from './verify/verification.js';
+export type { FigureResult } from './verify/verification-case.js';
