@@ -162,24 +162,29 @@ export function* adaptiveSteps(
       const estimate = { goals: [], bounds, energy: Infinity, recovered: new Float64Array(12 * triangleCount(mesh)) };
       return { ...found, estimate, bounds, error: Infinity, accurate: false };
     }
-    const linear = estimateGoalErrors(
-      system,
-      field,
-      tangent,
-      goals.map((goal) => goal.functional),
-    );
-    const estimate = withRemainders(goals, linear);
-    const error = combined(options, goals, estimate.bounds);
+    const steering = goals.filter((goal) => goal.weight !== 0);
+    const steered = estimateGoals(system, field, tangent, steering);
+    const error = combined(options, steering, steered.bounds);
     yield { mesh: meshes, triangles: triangleCount(mesh), error };
     options.onMesh?.({ mesh: meshes, triangles: triangleCount(mesh), error });
     const accurate = field.report.converged && error <= options.accuracy; // the estimate is of a solved field
     const stuck = meshes >= maxMeshes || triangleCount(mesh) >= maxTriangles || !field.report.converged;
-    if (accurate || stuck) return { ...found, estimate, bounds: estimate.bounds, error, accurate };
+    if (accurate || stuck) {
+      const estimate = inOrder(goals, steered, () =>
+        estimateGoals(
+          system,
+          field,
+          tangent,
+          goals.filter((goal) => goal.weight === 0),
+        ),
+      );
+      return { ...found, estimate, bounds: estimate.bounds, error, accurate };
+    }
     const shares = Float64Array.from({ length: triangleCount(mesh) }, (_, t) =>
       combined(
         options,
-        goals,
-        estimate.goals.map((share) => share[t]),
+        steering,
+        steered.goals.map((share) => share[t]),
       ),
     );
     const most = Math.min(maxTriangles, GROWTH * triangleCount(mesh));
@@ -196,7 +201,13 @@ function goalsAt({ goals, weights }: AdaptiveOptions, field: Field): readonly Go
   return goals.map((_, k) => ({ value: values[k], functional: functionals[k], weight: weight?.[k] ?? 1 }));
 }
 
-function withRemainders(goals: readonly GoalAt[], estimate: ErrorEstimate): ErrorEstimate {
+function estimateGoals(system: System, field: Field, tangent: Tangent, goals: readonly GoalAt[]): ErrorEstimate {
+  const estimate = estimateGoalErrors(
+    system,
+    field,
+    tangent,
+    goals.map((goal) => goal.functional),
+  );
   const bounds = [...estimate.bounds];
   const shares = estimate.goals.map((share, k) => {
     const remainder = goals[k].remainder?.(estimate.recovered);
@@ -205,6 +216,21 @@ function withRemainders(goals: readonly GoalAt[], estimate: ErrorEstimate): Erro
     return share.map((part, t) => part + remainder[t]);
   });
   return { ...estimate, goals: shares, bounds };
+}
+
+/** The estimate of all goals in their order: of those that steer, and of those that only report, found at the end alone. */
+function inOrder(goals: readonly GoalAt[], steered: ErrorEstimate, report: () => ErrorEstimate): ErrorEstimate {
+  if (goals.every((goal) => goal.weight !== 0)) return steered;
+  const reported = report();
+  const [steeredAt, reportedAt] = [{ next: 0 }, { next: 0 }];
+  const source = goals.map(({ weight }) =>
+    weight !== 0 ? { from: steered, k: steeredAt.next++ } : { from: reported, k: reportedAt.next++ },
+  );
+  return {
+    ...steered,
+    goals: source.map(({ from, k }) => from.goals[k]),
+    bounds: source.map(({ from, k }) => from.bounds[k]),
+  };
 }
 
 function combined({ combine }: AdaptiveOptions, goals: readonly GoalAt[], errors: readonly number[]): number {

@@ -1,7 +1,10 @@
 import { materialOf } from '../assembly/setup.js';
 import { InputError } from '../base/fault.js';
+import { newHeap, popHeap, pushHeap } from '../base/heap.js';
+import { globalNode } from '../elements/six-node.js';
 import { BEYOND_REGION } from '../geometry/unbounded.js';
-import { cornerCount, edgeCount, nodeCount, triangleCount } from '../mesh/mesh.js';
+import type { Mesh } from '../mesh/mesh.js';
+import { cornerCount, edgeCount, nodeCount, nodePoint, triangleCount } from '../mesh/mesh.js';
 import type { Field } from './field.js';
 
 /** Regions of air: where Maxwell's stress has no divergence. */
@@ -14,56 +17,52 @@ export function airRegions({ mesh, setup }: Field): string[] {
   });
 }
 
-/** Elements between the body and where the layer ends, where there is room. */
-const DEPTH = 3;
-
 /**
- * A function that is 1 on the named regions and 0 on all else that is not air, and on the outline: it falls by a third a ring
- * of elements round the body.
+ * A function of the air that is 1 on the named regions and 0 on all else that is not air, and on the outline: a smooth step of
+ * d0/(d1 + d0), with d1 and d0 the distances from either, so that it changes midway, away from the singular corners of both, and
+ * is the same whatever the mesh.
  *
- * @returns Float64Array(nodes): its value at every node, at middles the mean of the ends, so that it is 1 all along a round
- * body too; quadratic in between
+ * @returns Float64Array(nodes): its value at every node; quadratic in between
  * @throws InputError where the body is not surrounded by air (linear, mu_r = 1, no current) or touches another body
  */
 export function airLayer(field: Field, regions: readonly string[]): Float64Array {
   const { mesh } = field;
   const place = placesOf(field, regions);
-  const n = cornerCount(mesh);
-  const ring = Int32Array.from(place, (at) => (at === BODY ? 0 : DEPTH));
-  for (let depth = 1; depth < DEPTH; depth++) {
-    for (let t = 0; t < triangleCount(mesh); t++) {
-      const [a, b, c] = mesh.triangles.subarray(3 * t, 3 * t + 3);
-      if (ring[a] !== depth - 1 && ring[b] !== depth - 1 && ring[c] !== depth - 1) continue;
-      for (const v of [a, b, c]) if (place[v] === AIR && ring[v] > depth) ring[v] = depth;
-    }
-  }
-  const layer = new Float64Array(nodeCount(mesh));
-  for (let v = 0; v < n; v++) layer[v] = 1 - ring[v] / DEPTH;
-  for (let e = 0; e < edgeCount(mesh); e++) {
-    layer[n + e] = 0.5 * (layer[mesh.edges[2 * e]] + layer[mesh.edges[2 * e + 1]]);
-  }
-  return layer;
+  const surroundings = surroundingsOf(field);
+  const fromBody = distancesFrom(mesh, surroundings, place, BODY);
+  const fromOther = distancesFrom(mesh, surroundings, place, OTHER);
+  return fromBody.map((d1, node) =>
+    d1 === 0 ? 1 : fromOther[node] === Infinity ? 1 : smoothStep(fromOther[node] / (d1 + fromOther[node])),
+  );
+}
+
+/** 0 up to a tenth, 1 from nine tenths on, with two continuous derivatives between. */
+function smoothStep(w: number): number {
+  const s = Math.min(1, Math.max(0, 1.25 * w - 0.125));
+  return s * s * s * (10 + s * (6 * s - 15));
 }
 
 const AIR = 0;
 const BODY = 1;
 const OTHER = 2;
 
-/** What each corner lies on: the body, other things (the outline too, where it is not bound), or air alone. */
+/** What each node lies on: the body, other things (the outline too, where it is not bound), or air alone. */
 function placesOf(field: Field, regions: readonly string[]): Uint8Array {
   const { mesh } = field;
   const air = airRegions(field);
   const kind = mesh.regionNames.map((name) => (regions.includes(name) ? BODY : air.includes(name) ? AIR : OTHER));
-  const place = new Uint8Array(cornerCount(mesh));
-  const other = new Uint8Array(cornerCount(mesh));
-  for (let i = 0; i < mesh.triangles.length; i++) {
-    const k = kind[mesh.triangleToRegion[(i / 3) | 0]];
-    if (k === BODY) place[mesh.triangles[i]] = BODY;
-    else if (k === OTHER) other[mesh.triangles[i]] = 1;
+  const place = new Uint8Array(nodeCount(mesh));
+  const other = new Uint8Array(nodeCount(mesh));
+  for (let t = 0; t < triangleCount(mesh); t++) {
+    const k = kind[mesh.triangleToRegion[t]];
+    for (let i = 0; i < 6; i++) {
+      if (k === BODY) place[globalNode(mesh, t, i)] = BODY;
+      else if (k === OTHER) other[globalNode(mesh, t, i)] = 1;
+    }
   }
   if (!place.includes(BODY))
     throw fault('names no region with area', `regions here are: ${mesh.regionNames.join(', ')}`);
-  if (place.some((at, v) => at === BODY && other[v] === 1)) {
+  if (place.some((at, node) => at === BODY && other[node] === 1)) {
     throw fault(
       'touches another body',
       'a force is defined on a body with air all round it; name all parts that move together',
@@ -73,17 +72,107 @@ function placesOf(field: Field, regions: readonly string[]): Uint8Array {
   for (let e = 0; e < edgeCount(mesh); e++) {
     const side = mesh.edgeToSide[e];
     if (side < 0 || isBound(field, side)) continue;
-    other[mesh.edges[2 * e]] = 1;
-    other[mesh.edges[2 * e + 1]] = 1;
+    for (const node of nodesOfEdge(mesh, e)) other[node] = 1;
   }
-  return place.map((at, v) => (at === AIR && other[v] === 1 ? OTHER : at));
+  return place.map((at, node) => (at === AIR && other[node] === 1 ? OTHER : at));
 
   function fault(wrong: string, remedy: string): InputError {
     return new InputError([{ code: 'no-force', key: regions.join(', '), wrong, remedy }]);
   }
 }
 
+const nodesOfEdge = (mesh: Mesh, e: number): readonly [number, number, number] => [
+  mesh.edges[2 * e],
+  mesh.edges[2 * e + 1],
+  cornerCount(mesh) + e,
+];
+
 function isBound({ mesh, setup }: Field, side: number): boolean {
   const kind = setup.edges?.[mesh.sideNames[side]]?.kind;
   return mesh.beyond === undefined && (kind === 'repeating' || kind === 'reversing');
+}
+
+/** Triangles round each node, and the node each is one with on a bound side, -1 where there is none. */
+interface Surroundings {
+  readonly start: Int32Array;
+  readonly triangles: Int32Array;
+  readonly mate: Int32Array;
+}
+
+function surroundingsOf(field: Field): Surroundings {
+  const { mesh } = field;
+  const nodes = nodeCount(mesh);
+  const start = new Int32Array(nodes + 1);
+  const m = triangleCount(mesh);
+  for (let t = 0; t < m; t++) for (let i = 0; i < 6; i++) start[globalNode(mesh, t, i) + 1]++;
+  for (let node = 0; node < nodes; node++) start[node + 1] += start[node];
+  const next = start.slice();
+  const triangles = new Int32Array(6 * m);
+  for (let t = 0; t < m; t++) for (let i = 0; i < 6; i++) triangles[next[globalNode(mesh, t, i)]++] = t;
+  const mate = new Int32Array(nodes).fill(-1);
+  for (let e = 0; e < edgeCount(mesh); e++) {
+    if (mesh.edgeToMatch[e] < 0 || !isBound(field, mesh.edgeToSide[e])) continue;
+    const mates = nodesOfEdge(mesh, mesh.edgeToMatch[e]);
+    nodesOfEdge(mesh, e).forEach((node, k) => {
+      mate[node] = mates[k];
+    });
+  }
+  return { start, triangles, mate };
+}
+
+/**
+ * Distance of every node from the edges that lie wholly on `kind`, through the mesh: each node hands the edge nearest to it on to
+ * its neighbours, the nearest node first (Dijkstra, A note on two problems in connexion with graphs, 1959, with true distances
+ * from the edge in place of lengths of the way). Over a bound side the edge is handed on shifted.
+ */
+function distancesFrom(
+  mesh: Mesh,
+  { start, triangles, mate }: Surroundings,
+  place: Uint8Array,
+  kind: number,
+): Float64Array {
+  const nodes = nodeCount(mesh);
+  const distance = new Float64Array(nodes).fill(Infinity);
+  const nearest = new Int32Array(nodes).fill(-1);
+  const shift = new Float64Array(2 * nodes);
+  const heap = newHeap();
+  const offer = (node: number, e: number, dx: number, dy: number): void => {
+    const d = place[node] === kind ? 0 : distanceToEdge(mesh, e, node, dx, dy);
+    if (!(d < distance[node])) return;
+    distance[node] = d;
+    nearest[node] = e;
+    shift[2 * node] = dx;
+    shift[2 * node + 1] = dy;
+    pushHeap(heap, node, d);
+  };
+  for (let e = 0; e < edgeCount(mesh); e++) {
+    const ends = nodesOfEdge(mesh, e);
+    if (ends.every((node) => place[node] === kind)) for (const node of ends) offer(node, e, 0, 0);
+  }
+  for (let node = popHeap(heap); node >= 0; node = popHeap(heap)) {
+    const [dx, dy] = [shift[2 * node], shift[2 * node + 1]];
+    if (mate[node] >= 0) {
+      const [x, y] = nodePoint(mesh, node);
+      const [mx, my] = nodePoint(mesh, mate[node]);
+      offer(mate[node], nearest[node], dx + mx - x, dy + my - y);
+    }
+    for (let p = start[node]; p < start[node + 1]; p++) {
+      for (let i = 0; i < 6; i++) {
+        const other = globalNode(mesh, triangles[p], i);
+        if (place[other] !== kind) offer(other, nearest[node], dx, dy);
+      }
+    }
+  }
+  return distance;
+}
+
+/** Distance of a node from an edge, taken as straight, shifted by (dx, dy). */
+function distanceToEdge(mesh: Mesh, e: number, node: number, dx: number, dy: number): number {
+  const { xy, edges } = mesh;
+  const [a, b] = [2 * edges[2 * e], 2 * edges[2 * e + 1]];
+  const [x, y] = nodePoint(mesh, node);
+  const [ux, uy] = [xy[b] - xy[a], xy[b + 1] - xy[a + 1]];
+  const [px, py] = [x - dx - xy[a], y - dy - xy[a + 1]];
+  const s = Math.min(1, Math.max(0, (px * ux + py * uy) / (ux * ux + uy * uy)));
+  return Math.hypot(px - s * ux, py - s * uy);
 }

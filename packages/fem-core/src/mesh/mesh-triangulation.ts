@@ -1,4 +1,5 @@
 import type { Curve } from '../geometry/curve.js';
+import { hilbertOrder } from './hilbert-order.js';
 import type { Mesh } from './mesh.js';
 import { cornerCount, triangleCount } from './mesh.js';
 import { middleOnArc } from './middle-on-arc.js';
@@ -8,7 +9,7 @@ import { addVertex, emptyTriangulation, inUse, nextHalf, takeSlot, triangleOf } 
 /** The finished triangulation as a mesh: numbers without gaps, edges numbered, arcs given their middle nodes. */
 export function meshOf(tri: Triangulation, regionNames: readonly string[], sideNames: readonly string[]): Mesh {
   const { segments, curves } = tri;
-  const slots = usedSlots(tri);
+  const slots = orderedSlots(tri);
   const corners = numberCorners(tri, slots);
   const edges = numberEdges(tri, slots, corners.vertexToCorner);
   const { edgeToSegment } = edges;
@@ -31,11 +32,25 @@ export function meshOf(tri: Triangulation, regionNames: readonly string[], sideN
   };
 }
 
-function usedSlots(tri: Triangulation): Int32Array {
-  const slots = new Int32Array(tri.slotCount);
+/**
+ * Slots in use, along a Hilbert curve through the middles of their triangles: what is worked on together then lies together
+ * in memory, and in the matrix, whose corners and edges are numbered after the triangles.
+ */
+function orderedSlots(tri: Triangulation): Int32Array {
+  const { xy, origin, slotCount } = tri;
+  const slots = new Int32Array(slotCount);
+  const middles = new Float64Array(2 * slotCount);
   let m = 0;
-  for (let t = 0; t < tri.slotCount; t++) if (inUse(tri, t)) slots[m++] = t;
-  return slots.slice(0, m);
+  for (let t = 0; t < slotCount; t++) {
+    if (!inUse(tri, t)) continue;
+    const a = 2 * origin[3 * t];
+    const b = 2 * origin[3 * t + 1];
+    const c = 2 * origin[3 * t + 2];
+    middles[2 * m] = xy[a] + xy[b] + xy[c];
+    middles[2 * m + 1] = xy[a + 1] + xy[b + 1] + xy[c + 1];
+    slots[m++] = t;
+  }
+  return listed(hilbertOrder(middles.subarray(0, 2 * m)), slots);
 }
 
 interface Corners {

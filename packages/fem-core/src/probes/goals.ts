@@ -1,5 +1,5 @@
 import { regionAreas } from '../elements/areas.js';
-import { FULL_RULE, globalNode } from '../elements/six-node.js';
+import { FULL_RULE, globalNode, gradients, nodeCoordinates } from '../elements/six-node.js';
 import type { RecoveredGradient } from '../estimate/recovery.js';
 import type { Field } from '../field/field.js';
 import type { Functional } from '../field/functionals.js';
@@ -8,10 +8,14 @@ import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import { nodeCount, triangleCount } from '../mesh/mesh.js';
 import type { GoalAt } from '../pipeline.js';
 
-/** The stored energy and the coenergy, whose derivatives along dA are the integrals of H . dB and of B . dH. */
+/**
+ * The stored energy and the coenergy, whose derivatives along dA are the integrals of H . dB and of B . dH. The energy is
+ * weighed by its size, or a hundredth of what the magnets would store without flux where it is less: in a closed circuit they
+ * store none.
+ */
 export function energyGoals(
   field: Field,
-  weight: (energy: number) => number,
+  weight: (size: number) => number,
 ): readonly [energy: GoalAt, coenergy: GoalAt] {
   const { mesh } = field;
   const byH = new Float64Array(nodeCount(mesh));
@@ -27,9 +31,13 @@ export function energyGoals(
     }
   });
   const { energy, coenergy } = energiesOf(field);
+  let remanent = 0;
+  forEachSample(field, 'all', (s) => {
+    remanent += s.area * evaluateMaterial(s.material, 0, 0, s.x, s.y, law).energy;
+  });
   const remainder = (recovered: RecoveredGradient): Float64Array => energyOfError(field, recovered);
   return [
-    { value: energy, functional: byH, weight: weight(energy), remainder },
+    { value: energy, functional: byH, weight: weight(Math.max(energy, 0.01 * remanent)), remainder },
     { value: coenergy, functional: byB, weight: 0, remainder },
   ];
 }
@@ -72,6 +80,28 @@ export function forEachGap(
 export function areaOf(field: Field, regions: readonly string[]): number {
   const areas = regionAreas(field.mesh);
   return field.mesh.regionNames.reduce((sum, name, k) => (regions.includes(name) ? sum + areas[k] : sum), 0);
+}
+
+/** Means of Bx and of By over one triangle. */
+export function meanInTriangle({ mesh }: Field, t: number): readonly [bx: Functional, by: Functional] {
+  const bx = new Float64Array(nodeCount(mesh));
+  const by = new Float64Array(nodeCount(mesh));
+  const at = nodeCoordinates(mesh, t, new Float64Array(12));
+  const grad = new Float64Array(12);
+  let area = 0;
+  for (let q = 0; q < FULL_RULE.count; q++) {
+    const weight = FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
+    area += weight;
+    for (let i = 0; i < 6; i++) {
+      bx[globalNode(mesh, t, i)] += weight * grad[6 + i];
+      by[globalNode(mesh, t, i)] -= weight * grad[i];
+    }
+  }
+  for (let i = 0; i < 6; i++) {
+    bx[globalNode(mesh, t, i)] /= area;
+    by[globalNode(mesh, t, i)] /= area;
+  }
+  return [bx, by];
 }
 
 /** Mean of |B| over regions, as derivative: integral of (B/|B|) . dB / area. */

@@ -10,7 +10,7 @@ import { meanOver } from '../field/integrals.js';
 import type { Locator } from '../field/locate.js';
 import { shrinkage, spotOf, valueAt, valueAtSpot } from '../field/values.js';
 import type { Point } from '../geometry/section.js';
-import { areaOf, meanDensityFunctional } from './goals.js';
+import { areaOf, meanDensityFunctional, meanInTriangle } from './goals.js';
 import type { Answer, Probe } from './probe.js';
 
 /** An answer's number, its derivative, and what its error is to be measured by. */
@@ -75,19 +75,19 @@ function potentialFigure(field: Field, locator: Locator, [x, y]: Point): Figure 
 }
 
 /**
- * Error of the flux density at a place, T: the largest gap between recovered and element flux density at the nodes of its
- * triangle. The recovered one, which is told, is usually far better.
+ * Error of the flux density at a place, T: the gap between recovered and element flux density, in the root mean square of the
+ * nodes of its triangle. The recovered one, which is told, is usually far better.
  */
 function gapAt(field: Field, locator: Locator, [x, y]: Point, recovered: RecoveredGradient): number {
   const spot = spotOf(field, locator, x, y);
   if (spot === undefined) return Number.NaN;
-  let most = 0;
+  let squares = 0;
   for (const [xi, eta] of NODES) {
     const node = { triangle: spot.triangle, xi, eta };
     const [fine, coarse] = [valueAtSpot(field, node, recovered), valueAtSpot(field, node)];
-    most = Math.max(most, Math.hypot(fine.bx - coarse.bx, fine.by - coarse.by));
+    squares += (fine.bx - coarse.bx) ** 2 + (fine.by - coarse.by) ** 2;
   }
-  return most * shrinkage(field, x, y);
+  return Math.sqrt(squares / NODES.length) * shrinkage(field, x, y);
 }
 
 /** Reference coordinates of the six nodes. */
@@ -104,14 +104,27 @@ function pointAt(probe: Extract<Probe, { kind: 'point' }>, field: Field, locator
   const figure = potentialFigure(field, locator, probe.at);
   return {
     kind: 'point',
-    figures: figure === undefined ? [] : [figure],
-    describe: ([a = Number.NaN], recovered) => ({
+    figures: figure === undefined ? [] : [figure, ...densityFigures(field, locator, probe.at)],
+    describe: ([a = Number.NaN, bx = 0, by = 0], recovered) => ({
       kind: 'point',
       name: probe.name,
       value: valueAt(field, locator, ...probe.at, recovered),
-      error: { a, b: gapAt(field, locator, probe.at, recovered) },
+      error: {
+        a,
+        b: gapAt(field, locator, probe.at, recovered) + shrinkage(field, ...probe.at) * Math.hypot(bx, by),
+      },
     }),
   };
+}
+
+/** Mean flux density over the triangle that holds a place: what errors from afar do there; reports only. */
+function densityFigures(field: Field, locator: Locator, [x, y]: Point): readonly Figure[] {
+  const spot = spotOf(field, locator, x, y);
+  if (spot === undefined) return [];
+  return meanInTriangle(field, spot.triangle).map((functional) => ({
+    value: applyFunctional(functional, field.potential),
+    functional,
+  }));
 }
 
 function lineAt(probe: Extract<Probe, { kind: 'line' }>, field: Field, locator: Locator): ProbeAt {

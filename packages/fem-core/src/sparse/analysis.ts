@@ -1,9 +1,8 @@
+import { bytes } from '../kernels/analysis.wasm.js';
+import type { CompiledKernels } from '../kernels/instantiate.js';
+import { compileKernels, instantiate } from '../kernels/instantiate.js';
+import { analysePlain } from './analysis-plain.js';
 import { arenaLayout } from './arena-layout.js';
-import type { Couplings } from './elimination-tree.js';
-import { columnCounts, eliminationTree, postorder, reorderedCouplings, sumUp } from './elimination-tree.js';
-import { blockSize, rowStartInBlock, tileCount, updateSize } from './front-layout.js';
-import type { Fronts } from './fronts.js';
-import { gatherFronts } from './fronts.js';
 import { minimumDegreeOrder } from './minimum-degree.js';
 import type { SymmetricPattern } from './pattern.js';
 
@@ -53,181 +52,121 @@ export interface Analysis {
   readonly peakBytes: number;
 }
 
+const compiled = compileKernels(bytes);
+
 /**
  * @param wanted  Int32Array(n): unknowns in the order of elimination. Kept but for moves that change no entry and no
  *                operation: subtrees of the elimination tree are brought together.
  */
 export function analyse(pattern: SymmetricPattern, wanted: Int32Array = minimumDegreeOrder(pattern)): Analysis {
-  const { n } = pattern;
-  const wantedPlace = inverseOf(wanted);
-  const couplings = reorderedCouplings(pattern, wantedPlace);
-  const parent = eliminationTree(n, couplings);
-  const post = postorder(parent);
-  const count = columnCounts(couplings, parent, post);
-  const fronts = gatherFronts(parent, post, count);
-  const { first, below } = fronts;
-  const order = new Int32Array(n);
-  for (let j = 0; j < n; j++) order[fronts.place[j]] = wanted[j];
-  const { rowStart, rows } = rowsOf(fronts, couplings);
-  const { child, sibling } = childrenOf(fronts.parent);
-  const blockStart = new Int32Array(below.length + 1);
-  const blocksEnd = placeBlocks(first, below, blockStart);
-  const shape = {
-    pattern,
-    order,
-    place: inverseOf(order),
-    ...{ first, below, child, sibling, rowStart, rows, blockStart },
-    relative: relativeRows(fronts, child, sibling, rowStart, rows),
-    ...entriesOf(pattern, wanted, fronts, couplings, { rowStart, rows, blockStart }),
-    ...placeUpdates(fronts),
-    blockSize: blocksEnd,
-    ...totals(count),
-  };
+  if (compiled === undefined) return plainAnalyse(pattern, wanted);
+  const shape = analyseByKernels(compiled, pattern, wanted);
   return { ...shape, peakBytes: arenaLayout(shape).end };
 }
 
-function totals(count: Int32Array): { factorEntries: number; flops: number } {
-  let factorEntries = 0;
-  let flops = 0;
-  for (let j = 0; j < count.length; j++) {
-    factorEntries += count[j];
-    flops += count[j] * count[j];
-  }
-  return { factorEntries, flops };
+/** The same analysis without WebAssembly. */
+export function plainAnalyse(pattern: SymmetricPattern, wanted: Int32Array): Analysis {
+  const shape = analysePlain(pattern, wanted);
+  return { ...shape, peakBytes: arenaLayout(shape).end };
 }
 
-function inverseOf(order: Int32Array): Int32Array {
-  const inverse = new Int32Array(order.length);
-  for (let k = 0; k < order.length; k++) inverse[order[k]] = k;
-  return inverse;
-}
+/** A kernel of wasm/analysis.ts: first a count or two, then byte addresses. */
+type Step<Result> = (...sizesAndAddresses: number[]) => Result;
+interface Kernels
+  extends Record<
+      | 'invert'
+      | 'reorder'
+      | 'eliminationTree'
+      | 'postorder'
+      | 'columnCounts'
+      | 'gatherSupernodes'
+      | 'mergeChildren'
+      | 'arrange'
+      | 'childrenOf'
+      | 'listRows'
+      | 'makeMaps',
+      Step<void>
+    >,
+    Record<'numberFronts' | 'startRows' | 'placeBlocks' | 'placeUpdates' | 'sumOf' | 'sumOfSquares', Step<number>> {}
 
-/** Writes where each block starts and returns where the last ends, which alone is right beyond 2^31. */
-function placeBlocks(first: Int32Array, below: Int32Array, blockStart: Int32Array): number {
-  let end = 0;
-  for (let s = 0; s < below.length; s++) {
-    end += blockSize(first[s + 1] - first[s], below[s]);
-    blockStart[s + 1] = end;
-  }
-  return end;
-}
-
-function childrenOf(parent: Int32Array): { child: Int32Array; sibling: Int32Array } {
-  const child = new Int32Array(parent.length).fill(-1);
-  const sibling = new Int32Array(parent.length).fill(-1);
-  for (let s = parent.length - 1; s >= 0; s--) {
-    if (parent[s] < 0) continue;
-    sibling[s] = child[parent[s]];
-    child[parent[s]] = s;
-  }
-  return { child, sibling };
-}
-
-/**
- * Rows of all fronts at once: place k is a row of the fronts of its earlier couplings and of all on the way from there to its
- * own. Taken in rising order, so that each front's rows rise.
- */
-function rowsOf(fronts: Fronts, couplings: Couplings): { rowStart: Int32Array; rows: Int32Array } {
-  const { place, frontOf, below, parent } = fronts;
-  const { earlierStart, earlier } = couplings;
-  const n = place.length;
-  const frontCount = below.length;
-  const rowStart = new Int32Array(frontCount + 1);
-  for (let s = 0; s < frontCount; s++) rowStart[s + 1] = 4 * tileCount(below[s]);
-  sumUp(rowStart);
-  const rows = new Int32Array(rowStart[frontCount]).fill(n);
-  const next = rowStart.slice(0, frontCount);
-  const seen = new Int32Array(frontCount).fill(-1);
-  const columns = inverseOf(place);
-  for (let k = 0; k < n; k++) {
-    const j = columns[k];
-    seen[frontOf[j]] = k;
-    for (let p = earlierStart[j]; p < earlierStart[j + 1]; p++) {
-      for (let s = frontOf[earlier[p]]; seen[s] !== k; s = parent[s]) {
-        rows[next[s]++] = k;
-        seen[s] = k;
-      }
-    }
-  }
-  return { rowStart, rows };
-}
-
-/** The rows of each front among those of its parent's. */
-function relativeRows(
-  { place, first, below }: Fronts,
-  child: Int32Array,
-  sibling: Int32Array,
-  rowStart: Int32Array,
-  rows: Int32Array,
-): Int32Array {
-  const relative = new Int32Array(rows.length);
-  const among = new Int32Array(place.length + 1); // the row of the present front at each place
-  for (let s = 0; s < below.length; s++) {
-    if (child[s] < 0) continue;
-    const width = first[s + 1] - first[s];
-    for (let c = 0; c < width; c++) among[first[s] + c] = c;
-    for (let i = 0; i < below[s]; i++) among[rows[rowStart[s] + i]] = width + i;
-    for (let c = child[s]; c >= 0; c = sibling[c]) {
-      for (let p = rowStart[c]; p < rowStart[c] + below[c]; p++) relative[p] = among[rows[p]];
-    }
-  }
-  return relative;
-}
-
-/** Entries of the matrix by fronts and columns, and where each goes in the front's block. */
-function entriesOf(
+/** One step after the other in the memory of one instance, which grows as lengths become known. */
+function analyseByKernels(
+  kernels: CompiledKernels,
   pattern: SymmetricPattern,
-  wanted: Int32Array,
-  { place, first, below }: Fronts,
-  { laterStart, later, laterEntry }: Couplings,
-  { rowStart, rows, blockStart }: Pick<Analysis, 'rowStart' | 'rows' | 'blockStart'>,
-): Pick<Analysis, 'entryStart' | 'source' | 'target'> {
-  const entryStart = new Int32Array(first.length);
-  const source = new Int32Array(pattern.row.length);
-  const target = new Int32Array(pattern.row.length);
-  const columns = inverseOf(place);
-  const inBlock = new Int32Array(pattern.n); // by wanted places: where the row of the present front starts
-  let e = 0;
-  for (let s = 0; s < below.length; s++) {
-    const width = first[s + 1] - first[s];
-    for (let c = 0; c < width; c++) inBlock[columns[first[s] + c]] = rowStartInBlock(c, width);
-    for (let i = 0; i < below[s]; i++) inBlock[columns[rows[rowStart[s] + i]]] = rowStartInBlock(width + i, width);
-    for (let c = 0; c < width; c++) {
-      const j = columns[first[s] + c];
-      const column = blockStart[s] + 4 * c;
-      source[e] = pattern.start[wanted[j]];
-      target[e++] = column + inBlock[j];
-      for (let q = laterStart[j]; q < laterStart[j + 1]; q++) {
-        source[e] = laterEntry[q];
-        target[e++] = column + inBlock[later[q]];
-      }
-    }
-    entryStart[s + 1] = e;
-  }
-  return { entryStart, source, target };
-}
+  wantedOrder: Int32Array,
+): Omit<Analysis, 'peakBytes'> {
+  const { n, start, row } = pattern;
+  const entries = row.length;
+  let end = 0;
+  const take = (count: number): number => {
+    const at = end;
+    end += 8 * Math.ceil(count / 2);
+    return at;
+  };
+  const takeSome = (many: number, count: number): number[] => Array.from({ length: many }, () => take(count));
+  const [starts, patternRows] = [take(n + 1), take(entries)];
+  const [later, laterEntry, earlier] = takeSome(3, entries - n);
+  const [laterStart, earlierStart, wanted, columns, parent, post, count, frontOf] = takeSome(8, n + 2);
+  const [first, below, parentFront, top, width, w0, w1, w2, w3, w4] = takeSome(10, n + 1);
+  const time = take(2 * n);
+  const { exports: run, buffer, reserve } = instantiate<Kernels>(kernels, end);
+  const put = (array: Int32Array, at: number): void => new Int32Array(buffer(), at, array.length).set(array);
+  put(start, starts);
+  put(row, patternRows);
+  put(wantedOrder, wanted);
 
-/**
- * Updates stand on two stacks, one for the fronts at even and one for those at odd depth of the tree: when a front makes
- * its own, its children's are the uppermost of the other stack.
- */
-function placeUpdates({ below, parent }: Fronts): { updateStart: Int32Array; updateSize: number } {
-  const frontCount = below.length;
-  const odd = new Uint8Array(frontCount);
-  for (let s = frontCount - 1; s >= 0; s--) odd[s] = parent[s] < 0 ? 0 : 1 - odd[parent[s]];
-  const updateStart = new Int32Array(frontCount);
-  const childrens = new Float64Array(frontCount); // room the children's updates take
-  const height = [0, 0];
-  const highest = [0, 0];
-  for (let s = 0; s < frontCount; s++) {
-    const stack = odd[s];
-    const size = updateSize(below[s]);
-    updateStart[s] = height[stack];
-    height[stack] += size;
-    highest[stack] = Math.max(highest[stack], height[stack]);
-    height[1 - stack] -= childrens[s];
-    if (parent[s] >= 0) childrens[parent[s]] += size;
-  }
-  for (let s = 0; s < frontCount; s++) if (odd[s] === 1) updateStart[s] += highest[0];
-  return { updateStart, updateSize: highest[0] + highest[1] };
+  run.invert(n, wanted, w0);
+  run.reorder(n, starts, patternRows, w0, earlierStart, earlier, laterStart, later, laterEntry);
+  run.eliminationTree(n, earlierStart, earlier, parent, w0);
+  run.postorder(n, parent, post, w0, w1);
+  run.columnCounts(n, laterStart, later, parent, post, count, w0, w1, w2, w3);
+  run.gatherSupernodes(n, parent, post, count, top, width);
+  run.mergeChildren(n, parent, post, count, top, width, w0, w1, time);
+  const placeOf = time; // no longer needed
+  const f = run.numberFronts(
+    ...[n, parent, post, count, top, width, placeOf, frontOf, first, below, parentFront],
+    ...[w0, w1, w2, w3, w4],
+  );
+  run.invert(n, placeOf, columns);
+  const [order, place] = [post, placeOf];
+  run.arrange(n, wanted, columns, order);
+  run.invert(n, order, place);
+
+  const [child, sibling, rowStart, blockStart, entryStart, updateStart] = takeSome(6, f + 1);
+  const [source, target, room] = [take(entries), take(entries), take(2 * f)];
+  reserve(end);
+  const rowCount = run.startRows(f, below, rowStart);
+  const [rows, relative] = takeSome(2, rowCount);
+  reserve(end);
+  run.childrenOf(f, parentFront, child, sibling);
+  const blockSize = run.placeBlocks(f, first, below, blockStart);
+  run.listRows(n, f, columns, frontOf, below, parentFront, earlierStart, earlier, rowStart, rows, w0, w1);
+  run.makeMaps(
+    ...[f, starts, wanted, columns, first, below, child, sibling, laterStart, later, laterEntry],
+    ...[rowStart, rows, blockStart, relative, entryStart, source, target, w0, w1],
+  );
+  const updateSize = run.placeUpdates(f, below, parentFront, updateStart, w0, room);
+  const memory = buffer();
+  const copy = (at: number, length: number): Int32Array => new Int32Array(memory, at, length).slice();
+  return {
+    pattern,
+    order: copy(order, n),
+    place: copy(place, n),
+    first: copy(first, f + 1),
+    below: copy(below, f),
+    child: copy(child, f),
+    sibling: copy(sibling, f),
+    rowStart: copy(rowStart, f + 1),
+    rows: copy(rows, rowCount),
+    relative: copy(relative, rowCount),
+    entryStart: copy(entryStart, f + 1),
+    source: copy(source, entries),
+    target: copy(target, entries),
+    blockStart: copy(blockStart, f + 1),
+    updateStart: copy(updateStart, f),
+    blockSize,
+    updateSize,
+    factorEntries: run.sumOf(n, count),
+    flops: run.sumOfSquares(n, count),
+  };
 }

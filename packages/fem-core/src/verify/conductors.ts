@@ -55,7 +55,7 @@ export function roundConductor(): VerificationCase {
 export const POINT = 5e-3;
 
 /** Wanted of cases with forces: these are far better than their estimates, so that finer meshes prove nothing. */
-export const FORCE = 2e-2;
+export const FORCE = 3e-3;
 /** What is held of a force. */
 export const FORCE_BOUND = 1e-3;
 

@@ -1,0 +1,182 @@
+/** The steps of an analysis in plain TypeScript: the twin of wasm/analysis.ts, which gives the same numbers. */
+import type { Analysis } from './analysis.js';
+import type { Couplings } from './elimination-tree.js';
+import { columnCounts, eliminationTree, postorder, reorderedCouplings, sumUp } from './elimination-tree.js';
+import { blockSize, rowStartInBlock, tileCount, updateSize } from './front-layout.js';
+import type { Fronts } from './fronts.js';
+import { gatherFronts } from './fronts.js';
+import type { SymmetricPattern } from './pattern.js';
+
+export function analysePlain(pattern: SymmetricPattern, wanted: Int32Array): Omit<Analysis, 'peakBytes'> {
+  const { n } = pattern;
+  const wantedPlace = inverseOf(wanted);
+  const couplings = reorderedCouplings(pattern, wantedPlace);
+  const parent = eliminationTree(n, couplings);
+  const post = postorder(parent);
+  const count = columnCounts(couplings, parent, post);
+  const fronts = gatherFronts(parent, post, count);
+  const { first, below } = fronts;
+  const order = new Int32Array(n);
+  for (let j = 0; j < n; j++) order[fronts.place[j]] = wanted[j];
+  const { rowStart, rows } = rowsOf(fronts, couplings);
+  const { child, sibling } = childrenOf(fronts.parent);
+  const blockStart = new Int32Array(below.length + 1);
+  const blocksEnd = placeBlocks(first, below, blockStart);
+  return {
+    pattern,
+    order,
+    place: inverseOf(order),
+    ...{ first, below, child, sibling, rowStart, rows, blockStart },
+    relative: relativeRows(fronts, child, sibling, rowStart, rows),
+    ...entriesOf(pattern, wanted, fronts, couplings, { rowStart, rows, blockStart }),
+    ...placeUpdates(fronts),
+    blockSize: blocksEnd,
+    ...totals(count),
+  };
+}
+
+function totals(count: Int32Array): { factorEntries: number; flops: number } {
+  let factorEntries = 0;
+  let flops = 0;
+  for (let j = 0; j < count.length; j++) {
+    factorEntries += count[j];
+    flops += count[j] * count[j];
+  }
+  return { factorEntries, flops };
+}
+
+function inverseOf(order: Int32Array): Int32Array {
+  const inverse = new Int32Array(order.length);
+  for (let k = 0; k < order.length; k++) inverse[order[k]] = k;
+  return inverse;
+}
+
+/** Writes where each block starts and returns where the last ends, which alone is right beyond 2^31. */
+function placeBlocks(first: Int32Array, below: Int32Array, blockStart: Int32Array): number {
+  let end = 0;
+  for (let s = 0; s < below.length; s++) {
+    end += blockSize(first[s + 1] - first[s], below[s]);
+    blockStart[s + 1] = end;
+  }
+  return end;
+}
+
+function childrenOf(parent: Int32Array): { child: Int32Array; sibling: Int32Array } {
+  const child = new Int32Array(parent.length).fill(-1);
+  const sibling = new Int32Array(parent.length).fill(-1);
+  for (let s = parent.length - 1; s >= 0; s--) {
+    if (parent[s] < 0) continue;
+    sibling[s] = child[parent[s]];
+    child[parent[s]] = s;
+  }
+  return { child, sibling };
+}
+
+/**
+ * Rows of all fronts at once: place k is a row of the fronts of its earlier couplings and of all on the way from there to its
+ * own. Taken in rising order, so that each front's rows rise.
+ */
+function rowsOf(fronts: Fronts, couplings: Couplings): { rowStart: Int32Array; rows: Int32Array } {
+  const { place, frontOf, below, parent } = fronts;
+  const { earlierStart, earlier } = couplings;
+  const n = place.length;
+  const frontCount = below.length;
+  const rowStart = new Int32Array(frontCount + 1);
+  for (let s = 0; s < frontCount; s++) rowStart[s + 1] = 4 * tileCount(below[s]);
+  sumUp(rowStart);
+  const rows = new Int32Array(rowStart[frontCount]).fill(n);
+  const next = rowStart.slice(0, frontCount);
+  const seen = new Int32Array(frontCount).fill(-1);
+  const columns = inverseOf(place);
+  for (let k = 0; k < n; k++) {
+    const j = columns[k];
+    seen[frontOf[j]] = k;
+    for (let p = earlierStart[j]; p < earlierStart[j + 1]; p++) {
+      for (let s = frontOf[earlier[p]]; seen[s] !== k; s = parent[s]) {
+        rows[next[s]++] = k;
+        seen[s] = k;
+      }
+    }
+  }
+  return { rowStart, rows };
+}
+
+/** The rows of each front among those of its parent's. */
+function relativeRows(
+  { place, first, below }: Fronts,
+  child: Int32Array,
+  sibling: Int32Array,
+  rowStart: Int32Array,
+  rows: Int32Array,
+): Int32Array {
+  const relative = new Int32Array(rows.length);
+  const among = new Int32Array(place.length + 1); // the row of the present front at each place
+  for (let s = 0; s < below.length; s++) {
+    if (child[s] < 0) continue;
+    const width = first[s + 1] - first[s];
+    for (let c = 0; c < width; c++) among[first[s] + c] = c;
+    for (let i = 0; i < below[s]; i++) among[rows[rowStart[s] + i]] = width + i;
+    for (let c = child[s]; c >= 0; c = sibling[c]) {
+      for (let p = rowStart[c]; p < rowStart[c] + below[c]; p++) relative[p] = among[rows[p]];
+    }
+  }
+  return relative;
+}
+
+/** Entries of the matrix by fronts and columns, and where each goes in the front's block. */
+function entriesOf(
+  pattern: SymmetricPattern,
+  wanted: Int32Array,
+  { place, first, below }: Fronts,
+  { laterStart, later, laterEntry }: Couplings,
+  { rowStart, rows, blockStart }: Pick<Analysis, 'rowStart' | 'rows' | 'blockStart'>,
+): Pick<Analysis, 'entryStart' | 'source' | 'target'> {
+  const entryStart = new Int32Array(first.length);
+  const source = new Int32Array(pattern.row.length);
+  const target = new Int32Array(pattern.row.length);
+  const columns = inverseOf(place);
+  const inBlock = new Int32Array(pattern.n); // by wanted places: where the row of the present front starts
+  let e = 0;
+  for (let s = 0; s < below.length; s++) {
+    const width = first[s + 1] - first[s];
+    for (let c = 0; c < width; c++) inBlock[columns[first[s] + c]] = rowStartInBlock(c, width);
+    for (let i = 0; i < below[s]; i++) inBlock[columns[rows[rowStart[s] + i]]] = rowStartInBlock(width + i, width);
+    for (let c = 0; c < width; c++) {
+      const j = columns[first[s] + c];
+      const column = blockStart[s] + 4 * c;
+      source[e] = pattern.start[wanted[j]];
+      target[e++] = column + inBlock[j];
+      for (let q = laterStart[j]; q < laterStart[j + 1]; q++) {
+        source[e] = laterEntry[q];
+        target[e++] = column + inBlock[later[q]];
+      }
+    }
+    entryStart[s + 1] = e;
+  }
+  return { entryStart, source, target };
+}
+
+/**
+ * Updates stand on two stacks, one for the fronts at even and one for those at odd depth of the tree: when a front makes
+ * its own, its children's are the uppermost of the other stack.
+ */
+function placeUpdates({ below, parent }: Fronts): { updateStart: Int32Array; updateSize: number } {
+  const frontCount = below.length;
+  const odd = new Uint8Array(frontCount);
+  for (let s = frontCount - 1; s >= 0; s--) odd[s] = parent[s] < 0 ? 0 : 1 - odd[parent[s]];
+  const updateStart = new Int32Array(frontCount);
+  const childrens = new Float64Array(frontCount); // room the children's updates take
+  const height = [0, 0];
+  const highest = [0, 0];
+  for (let s = 0; s < frontCount; s++) {
+    const stack = odd[s];
+    const size = updateSize(below[s]);
+    updateStart[s] = height[stack];
+    height[stack] += size;
+    highest[stack] = Math.max(highest[stack], height[stack]);
+    height[1 - stack] -= childrens[s];
+    if (parent[s] >= 0) childrens[parent[s]] += size;
+  }
+  for (let s = 0; s < frontCount; s++) if (odd[s] === 1) updateStart[s] += highest[0];
+  return { updateStart, updateSize: highest[0] + highest[1] };
+}
