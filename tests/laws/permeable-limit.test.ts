@@ -8,11 +8,11 @@ const [HALF_PITCH, GAP, HEIGHT, DISC] = [0.025, 0.008, 0.01, 0.015];
 /** Quarter of a pole with a disc of the given permeability, or with the natural condition in its place. */
 function solvePole(muR: number | 'natural'): Field {
   const top = GAP + HEIGHT;
-  const disc = muR === 'natural' ? [] : [box('disc', 0, top, HALF_PITCH, DISC, 0.0025)];
+  const disc = muR === 'natural' ? [] : [box('disc', 0, top, HALF_PITCH, DISC, 0.0018)];
   const section: Section = {
     outline: { kind: 'rectangle', from: [0, 0], to: [HALF_PITCH, muR === 'natural' ? top : top + DISC] },
     background: 'air',
-    maxEdge: 0.0025,
+    maxEdge: 0.0018,
     regions: [box('winding', 0, 0, 0.01, 0.006), box('magnet', 0, GAP, 0.018, HEIGHT), ...disc],
   };
   const setup: Setup = {

@@ -21,17 +21,17 @@ function drawPair(move: (p: Point) => Point, scale: number): Section {
   return {
     outline: polygon(rectangle(-SIZE, -SIZE, SIZE, SIZE)),
     background: 'air',
-    maxEdge: 0.008 * scale,
+    maxEdge: 0.006 * scale,
     regions: [
       {
         name: 'magnet',
         shape: polygon(rectangle(-0.008, 0.002, 0.006, 0.008)),
-        maxEdge: 0.002 * scale,
+        maxEdge: 0.0014 * scale,
       },
       {
         name: 'plate',
         shape: polygon(rectangle(-0.012, -0.007, 0.012, -0.002)),
-        maxEdge: 0.002 * scale,
+        maxEdge: 0.0014 * scale,
       },
     ],
   };

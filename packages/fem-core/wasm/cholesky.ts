@@ -22,6 +22,11 @@ const OFFSETS: usize = 44; // address of the bytes from the parent's block to ea
 /** Bytes of a row of tiles that may stay in the nearest cache while others run past it. */
 const CHUNK: i32 = 24576;
 
+/** How far beyond the present front blocks are cleared at most, bytes: what comes next is to wait in a near cache. */
+const AHEAD: usize = 65536;
+/** Bytes cleared ahead at each tile of an update. */
+const STEP: usize = 128;
+
 function word(count: i32): usize {
   return (<usize>count) << 2;
 }
@@ -41,6 +46,7 @@ function triangleAt(tile: i32): usize {
  * @param records  a record a front
  * @param source   Int32 an entry, grouped by front: its place in `values`
  * @param target   Int32 an entry: its place in `blocks`, counted in numbers
+ * @param blocksEnd  blocks end there, one after another; a tile's room beyond may be written
  * @returns -1, or the column whose pivot is not positive; the pivot stands on the diagonal
  */
 export function factorise(
@@ -50,17 +56,21 @@ export function factorise(
   target: usize,
   values: usize,
   blocks: usize,
+  blocksEnd: usize,
 ): i32 {
   const end = records + <usize>frontCount * RECORD;
   let column = 0;
   let entry: usize = 0;
+  let cleared = blocks;
   for (let front = records; front < end; front += RECORD) {
     const width = load<i32>(front + WIDTH);
     const below = load<i32>(front + BELOW);
     const block = <usize>load<u32>(front + BLOCK);
     const under = <usize>load<u32>(front + UNDER);
     const tiles = (below + 3) >> 2;
-    clear(block, under + ((<usize>(tiles * width)) << 5));
+    const blockEnd = under + ((<usize>(tiles * width)) << 5);
+    clear(cleared, blockEnd);
+    cleared = max(cleared, blockEnd);
     const last = entry + ((<usize>load<u32>(front + ENTRIES)) << 2);
     for (; entry < last; entry += 4) {
       const to = blocks + ((<usize>load<u32>(target + entry)) << 3);
@@ -74,7 +84,7 @@ export function factorise(
     if (tiles > 0) {
       const update = <usize>load<u32>(front + UPDATE);
       solveBelow(block, under, width, tiles);
-      formUpdate(under, update, width, below);
+      cleared = formUpdate(under, update, width, below, cleared, min(blockEnd + AHEAD, blocksEnd));
       for (let child = <usize>load<u32>(front + CHILD); child !== 0; child = <usize>load<u32>(child + SIBLING)) {
         addToUpdate(child, width, update, tiles);
       }
@@ -280,8 +290,12 @@ function solveBelow(block: usize, under: usize, width: i32, tiles: i32): void {
   }
 }
 
-/** update = - (rows below) (rows below)^T, its lower triangle by panels of four columns. */
-function formUpdate(under: usize, update: usize, width: i32, below: i32): void {
+/**
+ * update = - (rows below) (rows below)^T, its lower triangle by panels of four columns. Meanwhile clears blocks to come, from
+ * `cleared` on but not beyond `limit`: that waits for memory while this keeps the arithmetic units at work. Returns how
+ * far it came.
+ */
+function formUpdate(under: usize, update: usize, width: i32, below: i32, cleared: usize, limit: usize): usize {
   const tiles = (below + 3) >> 2;
   const full = (below + 1) >> 2; // row tiles with more than two rows
   const chunk = max(4, CHUNK / (32 * width));
@@ -296,10 +310,15 @@ function formUpdate(under: usize, update: usize, width: i32, below: i32): void {
       let I = max(first, J + 1);
       for (const last = min(end, full); I < last; I++) {
         multiplyTiles(under + <usize>I * size, b, width, panel + ((<usize>(I - J)) << 5), stride);
+        if (cleared < limit) {
+          clear(cleared, cleared + STEP);
+          cleared += STEP;
+        }
       }
       if (I < end) multiplyHalf(under + <usize>I * size, b, width, panel + ((<usize>(I - J)) << 5), stride);
     }
   }
+  return cleared;
 }
 
 /** c = -(a b^T), 4 x 4, for row tiles of `count` columns; `stride` bytes lie between the columns of c. */

@@ -2,6 +2,7 @@ import type { Analysis, SymmetricPattern } from '@gapwright/fem-core';
 import { analyse, factor, minimumDegreeOrder, solve } from '@gapwright/fem-core';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
+import { plainAnalyse } from '../../../packages/fem-core/src/sparse/analysis.js';
 import { blockSize, rowStartInBlock, updateSize } from '../../../packages/fem-core/src/sparse/front-layout.js';
 import { backwardError, gridCouplings, gridLaplacian, irregular, patternFrom, patterns } from './systems.js';
 
@@ -129,6 +130,26 @@ describe('fronts, maps and counts keep their promises', () => {
     const analysis = analyse(patternFrom(0, []));
     expect([analysis.blockSize, analysis.updateSize, analysis.factorEntries, analysis.flops]).toEqual([0, 0, 0, 0]);
   });
+});
+
+test('with WebAssembly and without, every number of an analysis is the same', () => {
+  fc.assert(
+    fc.property(patterns, fc.infiniteStream(fc.nat()), (pattern, draws) => {
+      const keys = Array.from({ length: pattern.n }, () => draws.next().value as number);
+      const order = natural(pattern.n).sort((a, b) => keys[a] - keys[b]);
+      expect(analyse(pattern, order)).toEqual(plainAnalyse(pattern, order));
+    }),
+  );
+  for (const [columns, rows] of [
+    [64, 50],
+    [3000, 1],
+    [1, 1],
+  ]) {
+    const pattern = patternFrom(columns * rows, gridCouplings(columns, rows));
+    const order = minimumDegreeOrder(pattern);
+    expect(analyse(pattern, order)).toEqual(plainAnalyse(pattern, order));
+  }
+  expect(analyse(patternFrom(0, []))).toEqual(plainAnalyse(patternFrom(0, []), new Int32Array(0)));
 });
 
 test('an order of the caller is taken, but for moves within the elimination tree: entries and operations are its own', () => {

@@ -1,5 +1,5 @@
 import type { Curve } from '../geometry/curve.js';
-import { hilbertOrder } from './hilbert-order.js';
+import { zOrder } from './z-order.js';
 import type { Mesh } from './mesh.js';
 import { cornerCount, triangleCount } from './mesh.js';
 import { middleOnArc } from './middle-on-arc.js';
@@ -33,7 +33,7 @@ export function meshOf(tri: Triangulation, regionNames: readonly string[], sideN
 }
 
 /**
- * Slots in use, along a Hilbert curve through the middles of their triangles: what is worked on together then lies together
+ * Slots in use, along Morton's curve through the middles of their triangles: what is worked on together then lies together
  * in memory, and in the matrix, whose corners and edges are numbered after the triangles.
  */
 function orderedSlots(tri: Triangulation): Int32Array {
@@ -50,7 +50,7 @@ function orderedSlots(tri: Triangulation): Int32Array {
     middles[2 * m + 1] = xy[a + 1] + xy[b + 1] + xy[c + 1];
     slots[m++] = t;
   }
-  return listed(hilbertOrder(middles.subarray(0, 2 * m)), slots);
+  return listed(zOrder(middles.subarray(0, 2 * m)), slots);
 }
 
 interface Corners {

@@ -89,7 +89,10 @@ interface Kernels
     >,
     Record<'numberFronts' | 'startRows' | 'placeBlocks' | 'placeUpdates' | 'sumOf' | 'sumOfSquares', Step<number>> {}
 
-/** One step after the other in the memory of one instance, which grows as lengths become known. */
+/**
+ * One step after the other in the memory of one instance, which grows as lengths become known. Arrays no longer needed give
+ * their places to later ones: the first touch of fresh memory takes as long as the steps themselves.
+ */
 function analyseByKernels(
   kernels: CompiledKernels,
   pattern: SymmetricPattern,
@@ -105,7 +108,7 @@ function analyseByKernels(
   };
   const takeSome = (many: number, count: number): number[] => Array.from({ length: many }, () => take(count));
   const [starts, patternRows] = [take(n + 1), take(entries)];
-  const [later, laterEntry, earlier] = takeSome(3, entries - n);
+  const [later, laterEntry, earlier] = takeSome(3, entries);
   const [laterStart, earlierStart, wanted, columns, parent, post, count, frontOf] = takeSome(8, n + 2);
   const [first, below, parentFront, top, width, w0, w1, w2, w3, w4] = takeSome(10, n + 1);
   const time = take(2 * n);
@@ -122,7 +125,7 @@ function analyseByKernels(
   run.columnCounts(n, laterStart, later, parent, post, count, w0, w1, w2, w3);
   run.gatherSupernodes(n, parent, post, count, top, width);
   run.mergeChildren(n, parent, post, count, top, width, w0, w1, time);
-  const placeOf = time; // no longer needed
+  const placeOf = time;
   const f = run.numberFronts(
     ...[n, parent, post, count, top, width, placeOf, frontOf, first, below, parentFront],
     ...[w0, w1, w2, w3, w4],
@@ -133,7 +136,7 @@ function analyseByKernels(
   run.invert(n, order, place);
 
   const [child, sibling, rowStart, blockStart, entryStart, updateStart] = takeSome(6, f + 1);
-  const [source, target, room] = [take(entries), take(entries), take(2 * f)];
+  const room = take(2 * f);
   reserve(end);
   const rowCount = run.startRows(f, below, rowStart);
   const [rows, relative] = takeSome(2, rowCount);
@@ -141,6 +144,7 @@ function analyseByKernels(
   run.childrenOf(f, parentFront, child, sibling);
   const blockSize = run.placeBlocks(f, first, below, blockStart);
   run.listRows(n, f, columns, frontOf, below, parentFront, earlierStart, earlier, rowStart, rows, w0, w1);
+  const [source, target] = [earlier, patternRows];
   run.makeMaps(
     ...[f, starts, wanted, columns, first, below, child, sibling, laterStart, later, laterEntry],
     ...[rowStart, rows, blockStart, relative, entryStart, source, target, w0, w1],

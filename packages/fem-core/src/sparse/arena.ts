@@ -14,6 +14,7 @@ interface Kernels {
     target: number,
     values: number,
     blocks: number,
+    blocksEnd: number,
   ) => number;
   readonly solveOne: (records: number, frontCount: number, y: number, sums: number) => void;
   readonly solveFour: (records: number, frontCount: number, y: number) => void;

@@ -68,6 +68,7 @@ export function factor(analysis: Analysis, values: Float64Array, options: Factor
     layout.target,
     layout.values,
     layout.blocks,
+    layout.blocks + 8 * analysis.blockSize,
   );
   const blocks = new Float64Array(memory, layout.blocks, analysis.blockSize);
   if (failed >= 0) return notPositive(analysis, blocks, failed);
