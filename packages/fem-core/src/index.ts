@@ -3,6 +3,7 @@
  * section -> mesh -> system -> field -> answer.
  */
 
+export type { Derivative } from './assembly/local-equations.js';
 export { placementOf } from './assembly/placement.js';
 export type { EdgeCondition, Setup } from './assembly/setup.js';
 export type { System } from './assembly/system.js';
@@ -41,7 +42,7 @@ export type { Point, Region, Section, Shape, SideChain, SizeAt } from './geometr
 export { sidesOf } from './geometry/shapes.js';
 export { BEYOND_REGION, OUTSIDE_REGION } from './geometry/unbounded.js';
 export type { Trace } from './io/contours.js';
-export type { Document, Path, TreeNode } from './io/document.js';
+export type { Document, Entry, Path, TreeNode } from './io/document.js';
 export { formatPath, placeOf, placeOfKey, plainValue } from './io/document.js';
 export type { FieldLines } from './io/field-lines.js';
 export { fieldLines } from './io/field-lines.js';
@@ -97,6 +98,7 @@ export type { SymmetricPattern } from './sparse/pattern.js';
 export { multiply } from './sparse/pattern.js';
 export type { CoarseLevel } from './sparse/two-level.js';
 export { buildCoarseLevel } from './sparse/two-level.js';
+export type { Honesty } from './verify/honesty.js';
 export type { MeasuredOrder } from './verify/orders.js';
 export { verification } from './verify/verification.js';
 export type { FigureResult } from './verify/verification-case.js';

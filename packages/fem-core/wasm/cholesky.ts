@@ -25,7 +25,7 @@ const CHUNK: i32 = 24576;
 /** How far beyond the present front blocks are cleared at most, bytes: what comes next is to wait in a near cache. */
 const AHEAD: usize = 65536;
 /** Bytes cleared ahead at each tile of an update. */
-const STEP: usize = 128;
+const STEP: usize = 256;
 
 function word(count: i32): usize {
   return (<usize>count) << 2;
@@ -216,21 +216,14 @@ function addPanel(
   for (at += 16; at + 4 < last; at += 8) {
     const a = <usize>load<u32>(at);
     const b = <usize>load<u32>(at, 4);
-    if (b - a === 8) {
-      addPair(c0 + a, from);
-      addPair(c1 + a, from1);
-      addPair(c2 + a, from2);
-      addPair(c3 + a, from3);
-    } else {
-      addNumber(c0 + a, from);
-      addNumber(c1 + a, from1);
-      addNumber(c2 + a, from2);
-      addNumber(c3 + a, from3);
-      addNumber(c0 + b, from + 8);
-      addNumber(c1 + b, from1 + 8);
-      addNumber(c2 + b, from2 + 8);
-      addNumber(c3 + b, from3 + 8);
-    }
+    addNumber(c0 + a, from);
+    addNumber(c1 + a, from1);
+    addNumber(c2 + a, from2);
+    addNumber(c3 + a, from3);
+    addNumber(c0 + b, from + 8);
+    addNumber(c1 + b, from1 + 8);
+    addNumber(c2 + b, from2 + 8);
+    addNumber(c3 + b, from3 + 8);
     from += 16;
     from1 += 16;
     from2 += 16;
@@ -247,10 +240,6 @@ function addPanel(
 
 function addNumber(to: usize, from: usize): void {
   store<f64>(to, load<f64>(to) + load<f64>(from));
-}
-
-function addPair(to: usize, from: usize): void {
-  v128.store(to, f64x2.add(v128.load(to), v128.load(from)));
 }
 
 /**

@@ -4,15 +4,19 @@ import { fitText, grid, ink, margin, type Placement, short, textWidth, toPixels 
 import { distanceToSegment } from './svg-path.js';
 import { escapeXml } from './xml-text.js';
 
-/** Every side (triangle, local edge) beyond which another region lies. */
+/** Every side (triangle, local edge) beyond which another region lies, and those on a round outline, which no frame shows. */
 export function forEachBorder(mesh: Mesh, visit: (t: number, k: number) => void): void {
   for (let t = 0; t < triangleCount(mesh); t++) {
     for (let k = 0; k < 3; k++) {
       const across = mesh.neighbours[3 * t + k];
-      if (across >= 0 && mesh.triangleToRegion[across] !== mesh.triangleToRegion[t]) visit(t, k);
+      const parts = across < 0 ? isRound(mesh, 3 * t + k) : mesh.triangleToRegion[across] !== mesh.triangleToRegion[t];
+      if (parts) visit(t, k);
     }
   }
 }
+
+const isRound = (mesh: Mesh, side: number): boolean =>
+  mesh.curves[mesh.edgeToCurve[mesh.triangleToEdge[side]]]?.kind === 'arc';
 
 /** For each region the edges on which it borders another one, x0 y0 x1 y1 each, pixels. */
 function borderSegments({ mesh }: DrawingMesh, placement: Placement): number[][] {

@@ -1,10 +1,10 @@
 import type { Curve } from '../geometry/curve.js';
-import { zOrder } from './z-order.js';
 import type { Mesh } from './mesh.js';
 import { cornerCount, triangleCount } from './mesh.js';
 import { middleOnArc } from './middle-on-arc.js';
 import type { Triangulation } from './triangulation.js';
 import { addVertex, emptyTriangulation, inUse, nextHalf, takeSlot, triangleOf } from './triangulation.js';
+import { zOrder } from './z-order.js';
 
 /** The finished triangulation as a mesh: numbers without gaps, edges numbered, arcs given their middle nodes. */
 export function meshOf(tri: Triangulation, regionNames: readonly string[], sideNames: readonly string[]): Mesh {

@@ -82,7 +82,6 @@ function makeVertex(work: Work, t: number): void {
   const { tri, circles, fan, encroached } = work;
   const x = work.point[0];
   const y = work.point[1];
-  encroached.length = 0;
   if (!growFan(tri, circles, fan, t, x, y) || !readBorder(tri, fan, x, y, encroached)) {
     makeVertexWithCare(work, t, x, y);
     return;

@@ -29,7 +29,7 @@ export interface Work {
   readonly made: number[];
   /** Segments that a vertex encroaches on, or longer than wanted; judged again when their turn comes. */
   readonly poor: number[];
-  /** Segments that a point yet to be made would encroach on. */
+  /** Segments that a point yet to be made would encroach on; empty between points. */
   readonly encroached: number[];
   /** Triangles to treat, in this order: flat ones, long ones on the front, long ones off it, those a little too long. */
   readonly flat: Queue;

@@ -1,23 +1,25 @@
-/** Binary digits of a cell's number across the grid: 4096 cells a side; two passes of 12 digits sort the keys of 24. */
-const DIGITS = 12;
-const SIDE = 1 << DIGITS;
+/** The grid has 2^12 cells a side at most, so that keys have 24 binary digits, sorted by half of them at a time. */
+const MOST_DIGITS = 12;
 
 /**
  * Order of places along Morton's curve, which takes the quarters of a square in turn and each of them the same way, so
  * that neighbours in the list are mostly neighbours in the plane (Morton, A computer oriented geodetic data base and a new
- * technique in file sequencing, IBM, 1966). Linear time; places in one cell of a grid of 4096 a side keep their order.
+ * technique in file sequencing, IBM, 1966). Linear time: places in one cell of a grid, about as many cells a side as there
+ * are places and 4096 at most, keep their order.
  * @param xy  Float64Array(2n), finite
  * @returns Int32Array(n): the numbers of the places, first to last
  */
 export function zOrder(xy: Float64Array): Int32Array {
-  const keys = cellKeys(xy);
-  const order = new Int32Array(keys.length);
-  for (let i = 0; i < order.length; i++) order[i] = i;
-  return sortedBy(keys, DIGITS, sortedBy(keys, 0, order));
+  const n = xy.length / 2;
+  const digits = Math.min(MOST_DIGITS, 32 - Math.clz32(n));
+  const keys = cellKeys(xy, 1 << digits);
+  const order = new Int32Array(n);
+  for (let i = 0; i < n; i++) order[i] = i;
+  return sortedBy(keys, digits, digits, sortedBy(keys, 0, digits, order));
 }
 
-/** Int32Array(n): place along the curve of the cell in which each point lies. */
-function cellKeys(xy: Float64Array): Int32Array {
+/** Int32Array(n): where on the curve through a grid of `side` by `side` cells each place lies. */
+function cellKeys(xy: Float64Array, side: number): Int32Array {
   let x0 = Infinity;
   let x1 = -Infinity;
   let y0 = Infinity;
@@ -31,7 +33,7 @@ function cellKeys(xy: Float64Array): Int32Array {
     if (y > y1) y1 = y;
   }
   const size = Math.max(x1 - x0, y1 - y0);
-  const cells = size > 0 ? (SIDE - 1) / size : 0;
+  const cells = size > 0 ? (side - 1) / size : 0;
   const keys = new Int32Array(xy.length / 2);
   for (let i = 0; i < keys.length; i++) {
     keys[i] = spread((xy[2 * i] - x0) * cells) | (spread((xy[2 * i + 1] - y0) * cells) << 1);
@@ -48,12 +50,13 @@ function spread(value: number): number {
   return (digits | (digits << 1)) & 0x55555555;
 }
 
-/** The list sorted by 12 binary digits of the keys, those from `shift` on; equal ones stay in order. */
-function sortedBy(keys: Int32Array, shift: number, list: Int32Array): Int32Array {
-  const start = new Int32Array(SIDE + 1);
-  for (let i = 0; i < keys.length; i++) start[1 + ((keys[i] >> shift) & (SIDE - 1))]++;
-  for (let d = 0; d < SIDE; d++) start[d + 1] += start[d];
+/** The list sorted by so many binary digits of the keys, those from `shift` on; equal ones stay in order. */
+function sortedBy(keys: Int32Array, shift: number, digits: number, list: Int32Array): Int32Array {
+  const mask = (1 << digits) - 1;
+  const start = new Int32Array(mask + 2);
+  for (let i = 0; i < keys.length; i++) start[1 + ((keys[i] >> shift) & mask)]++;
+  for (let d = 0; d < mask; d++) start[d + 1] += start[d];
   const sorted = new Int32Array(list.length);
-  for (let i = 0; i < list.length; i++) sorted[start[(keys[list[i]] >> shift) & (SIDE - 1)]++] = list[i];
+  for (let i = 0; i < list.length; i++) sorted[start[(keys[list[i]] >> shift) & mask]++] = list[i];
   return sorted;
 }

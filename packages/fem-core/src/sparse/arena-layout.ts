@@ -1,7 +1,7 @@
 /** 32-bit words that tell the kernels of a front. */
 export const RECORD_WORDS = 12;
 /** What the kernels may read beyond a tile that is not full. */
-const SLACK = 128;
+const SLACK = 256;
 
 /** Where things lie in the memory of an arena, bytes. */
 export interface ArenaLayout {
