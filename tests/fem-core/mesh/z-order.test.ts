@@ -16,7 +16,7 @@ describe("order along Morton's curve", () => {
   // From 1024 places on the grid has 2048 cells a side; opposite corners of it make cells and whole numbers the same.
   const step = fc.constantFrom(1, 16, 128); // 128: many places share a cell
   const places = step.chain((by) => {
-    const coordinate = fc.integer({ min: 0, max: 2047 / by }).map((i) => i * by);
+    const coordinate = fc.integer({ min: 0, max: Math.floor(2047 / by) }).map((i) => i * by);
     return fc
       .array(fc.tuple(coordinate, coordinate), { minLength: 1022, maxLength: 1100 })
       .map((inner): Place[] => [[0, 0], ...inner, [2047, 2047]]);
