@@ -112,7 +112,7 @@ describe('gapwright verify', () => {
   });
 
   test('real cases pass through it with their times', async () => {
-    const cases = [bodyCases[0], circuitCases[0]];
+    const cases = [bodyCases()[0], circuitCases()[0]];
     let clock = 0;
     const verifier: Verifier = {
       caseCount: cases.length,

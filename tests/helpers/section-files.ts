@@ -49,21 +49,17 @@ const pairs: fc.Arbitrary<Pair> = fc.tuple(unit(0.05, 0.95), unit(0.05, 0.95));
 const rectangles = fc
   .tuple(pairs, unit(0.02, 0.5), unit(0.02, 0.5))
   .map(([[x, y], w, h]): Drawn => ({ kind: 'rectangle', from: [x, y], to: [x + w, y + h] }));
-const circles = fc
-  .tuple(pairs, unit(0.02, 0.3))
-  .map(([centre, radius]): Drawn => ({ kind: 'circle', centre, radius }));
+const circles = fc.tuple(pairs, unit(0.02, 0.3)).map(([centre, radius]): Drawn => ({ kind: 'circle', centre, radius }));
 /** Corners on a star round a middle point, so that no two sides cross. */
-const polygons = fc
-  .tuple(pairs, fc.array(unit(0.02, 0.3), { minLength: 3, maxLength: 9 }), unit(0, 6))
-  .map(
-    ([[x, y], reaches, turn]): Drawn => ({
-      kind: 'polygon',
-      corners: reaches.map((reach, i): Pair => {
-        const angle = turn + (2 * Math.PI * i) / reaches.length;
-        return [x + reach * Math.cos(angle), y + reach * Math.sin(angle)];
-      }),
+const polygons = fc.tuple(pairs, fc.array(unit(0.02, 0.3), { minLength: 3, maxLength: 9 }), unit(0, 6)).map(
+  ([[x, y], reaches, turn]): Drawn => ({
+    kind: 'polygon',
+    corners: reaches.map((reach, i): Pair => {
+      const angle = turn + (2 * Math.PI * i) / reaches.length;
+      return [x + reach * Math.cos(angle), y + reach * Math.sin(angle)];
     }),
-  );
+  }),
+);
 const shapes = fc.oneof(rectangles, circles, polygons);
 
 const MATERIALS = `materials:
@@ -81,19 +77,21 @@ const STEELS = ['plate', 'pack', 'soft', 'sheets', 'AISI 1008'] as const;
 const magnetised: fc.Arbitrary<(pen: Pen) => string> = fc.oneof(
   fc.integer({ min: -400, max: 400 }).map((angle) => () => `${angle} deg`),
   unit(-7, 7).map((angle) => () => `${angle.toFixed(3)} rad`),
-  fc
-    .tuple(pick('inward', 'outward'), pairs)
-    .map(([radial, at]) => (pen: Pen) => `{ radial: ${radial}, centre: ${place(pen, at)} }`),
-  fc
-    .tuple(fc.integer({ min: -5, max: 5 }), pairs)
-    .map(([turning, at]) => (pen: Pen) => `{ turning: ${turning}, angle: 30 deg, centre: ${place(pen, at)} }`),
-  fc
-    .tuple(unit(0.1, 1), pick('clockwise', 'anticlockwise'))
-    .map(
-      ([wave, sense]) =>
-        (pen: Pen) =>
-          `{ wavelength: ${length(pen, wave)}, along: 0 deg, angle: 90 deg, sense: ${sense} }`,
-    ),
+  fc.tuple(pick('inward', 'outward'), pairs).map(
+    ([radial, at]) =>
+      (pen: Pen) =>
+        `{ radial: ${radial}, centre: ${place(pen, at)} }`,
+  ),
+  fc.tuple(fc.integer({ min: -5, max: 5 }), pairs).map(
+    ([turning, at]) =>
+      (pen: Pen) =>
+        `{ turning: ${turning}, angle: 30 deg, centre: ${place(pen, at)} }`,
+  ),
+  fc.tuple(unit(0.1, 1), pick('clockwise', 'anticlockwise')).map(
+    ([wave, sense]) =>
+      (pen: Pen) =>
+        `{ wavelength: ${length(pen, wave)}, along: 0 deg, angle: 90 deg, sense: ${sense} }`,
+  ),
 );
 
 const sources = fc.oneof(
@@ -106,10 +104,16 @@ const sources = fc.oneof(
 
 const fillings: fc.Arbitrary<(pen: Pen) => string> = fc.oneof(
   pick(...STEELS).map((name) => () => `material: ${name}`),
-  fc.tuple(pick('copper', 'brass', 'air'), sources).map(([name, source]) => () => `material: ${name}${source}`),
-  fc
-    .tuple(pick(...MAGNETS), magnetised)
-    .map(([name, direction]) => (pen: Pen) => `material: ${name}, magnetised: ${direction(pen)}`),
+  fc.tuple(pick('copper', 'brass', 'air'), sources).map(
+    ([name, source]) =>
+      () =>
+        `material: ${name}${source}`,
+  ),
+  fc.tuple(pick(...MAGNETS), magnetised).map(
+    ([name, direction]) =>
+      (pen: Pen) =>
+        `material: ${name}, magnetised: ${direction(pen)}`,
+  ),
 );
 
 const applied = fc
@@ -131,9 +135,9 @@ const alone = fc.oneof(
 );
 const square = fc.oneof(
   alone,
-  fc.subarray(['left', 'right', 'top', 'bottom'], { minLength: 1 }).chain((sides) =>
-    bound.map((one) => ({ edges: [`{ side: [${sides.join(', ')}], ${one} }`], open: false })),
-  ),
+  fc
+    .subarray(['left', 'right', 'top', 'bottom'], { minLength: 1 })
+    .chain((sides) => bound.map((one) => ({ edges: [`{ side: [${sides.join(', ')}], ${one} }`], open: false }))),
   fc
     .tuple(pick('repeating', 'reversing'), pick('closed', 'crossing', 'repeating', 'reversing'))
     .map(([across, along]) => ({
@@ -177,29 +181,23 @@ const frames: fc.Arbitrary<Frame> = fc.oneof(
 /** A probe of a section of `count` regions, named r0, r1, ... */
 const probes: fc.Arbitrary<(pen: Pen, count: number) => string> = fc.oneof(
   pairs.map((at) => (pen: Pen) => `point: ${place(pen, at)}`),
-  fc
-    .tuple(pairs, pairs, fc.integer({ min: 2, max: 40 }))
-    .map(
-      ([from, to, points]) =>
-        (pen: Pen) =>
-          `line: { from: ${place(pen, from)}, to: ${place(pen, to)}, points: ${points} }`,
-    ),
+  fc.tuple(pairs, pairs, fc.integer({ min: 2, max: 40 })).map(
+    ([from, to, points]) =>
+      (pen: Pen) =>
+        `line: { from: ${place(pen, from)}, to: ${place(pen, to)}, points: ${points} }`,
+  ),
   fc.nat(20).map((r) => (_: Pen, count: number) => `force_on: r${r % count}`),
-  fc
-    .tuple(fc.nat(20), fc.nat(20), pairs)
-    .map(
-      ([q, r, about]) =>
-        (pen: Pen, count: number) =>
-          `force_on: [r${q % count}, r${r % count}], about: ${place(pen, about)}`,
-    ),
+  fc.tuple(fc.nat(20), fc.nat(20), pairs).map(
+    ([q, r, about]) =>
+      (pen: Pen, count: number) =>
+        `force_on: [r${q % count}, r${r % count}], about: ${place(pen, about)}`,
+  ),
   fc.nat(20).map((r) => (_: Pen, count: number) => `linkage_of: r${r % count}`),
-  fc
-    .tuple(pairs, pairs)
-    .map(
-      ([from, to]) =>
-        (pen: Pen) =>
-          `flux_through: { from: ${place(pen, from)}, to: ${place(pen, to)} }`,
-    ),
+  fc.tuple(pairs, pairs).map(
+    ([from, to]) =>
+      (pen: Pen) =>
+        `flux_through: { from: ${place(pen, from)}, to: ${place(pen, to)} }`,
+  ),
   fc.nat(20).map((r) => (_: Pen, count: number) => `mean_over: r${r % count}`),
 );
 
@@ -297,27 +295,62 @@ const nat = fc.nat(100_000);
 const changes: fc.Arbitrary<Change> = fc.oneof(
   // Bytes.
   fc
-    .tuple(nat, fc.oneof(fc.constant(0), fc.nat(12), fc.nat(200)), fc.oneof(pick(...SCRAPS), fc.string({ unit: 'binary', maxLength: 6 })))
-    .map(([at, cut, scrap]): Change => (text) => {
-      const start = at % (text.length + 1);
-      return text.slice(0, start) + scrap + text.slice(start + cut);
-    }),
+    .tuple(
+      nat,
+      fc.oneof(fc.constant(0), fc.nat(12), fc.nat(200)),
+      fc.oneof(pick(...SCRAPS), fc.string({ unit: 'binary', maxLength: 6 })),
+    )
+    .map(
+      ([at, cut, scrap]): Change =>
+        (text) => {
+          const start = at % (text.length + 1);
+          return text.slice(0, start) + scrap + text.slice(start + cut);
+        },
+    ),
   // Values, in place of others.
-  { weight: 4, arbitrary: fc.tuple(nat, pick(...VALUES)).map(([which, value]): Change => (text) => replaceOne(text, VALUE, which, () => value)) },
-  fc.tuple(nat, nat).map(([which, other]): Change => (text) => {
-    const all = text.match(VALUE) ?? [''];
-    return replaceOne(text, VALUE, which, () => all[other % all.length]);
-  }),
-  fc.tuple(nat, pick('-', '1e9', '0.', '1', '.', '&k ', '!!str ')).map(([which, head]): Change => (text) => replaceOne(text, VALUE, which, (old) => head + old)),
-  fc.tuple(nat, pick(...KEYS)).map(([which, key]): Change => (text) => replaceOne(text, KEY, which, () => key)),
+  {
+    weight: 4,
+    arbitrary: fc.tuple(nat, pick(...VALUES)).map(
+      ([which, value]): Change =>
+        (text) =>
+          replaceOne(text, VALUE, which, () => value),
+    ),
+  },
+  fc.tuple(nat, nat).map(
+    ([which, other]): Change =>
+      (text) => {
+        const all = text.match(VALUE) ?? [''];
+        return replaceOne(text, VALUE, which, () => all[other % all.length]);
+      },
+  ),
+  fc.tuple(nat, pick('-', '1e9', '0.', '1', '.', '&k ', '!!str ')).map(
+    ([which, head]): Change =>
+      (text) =>
+        replaceOne(text, VALUE, which, (old) => head + old),
+  ),
+  fc.tuple(nat, pick(...KEYS)).map(
+    ([which, key]): Change =>
+      (text) =>
+        replaceOne(text, KEY, which, () => key),
+  ),
   // Whole lines.
-  nat.map((at): Change => (text) => onLines(text, (lines) => lines.splice(at % lines.length, 1))),
-  nat.map((at): Change => (text) => onLines(text, (lines) => lines.splice(at % lines.length, 0, lines[at % lines.length]))),
-  fc.tuple(nat, nat).map(([p, q]): Change => (text) =>
-    onLines(text, (lines) => {
-      const [i, j] = [p % lines.length, q % lines.length];
-      [lines[i], lines[j]] = [lines[j], lines[i]];
-    }),
+  nat.map(
+    (at): Change =>
+      (text) =>
+        onLines(text, (lines) => lines.splice(at % lines.length, 1)),
+  ),
+  nat.map(
+    (at): Change =>
+      (text) =>
+        onLines(text, (lines) => lines.splice(at % lines.length, 0, lines[at % lines.length])),
+  ),
+  fc.tuple(nat, nat).map(
+    ([p, q]): Change =>
+      (text) =>
+        onLines(text, (lines) => {
+          const [i, j] = [p % lines.length, q % lines.length];
+          [lines[i], lines[j]] = [lines[j], lines[i]];
+        }),
   ),
   // The whole text.
   pick<Change>(
@@ -337,7 +370,11 @@ const changes: fc.Arbitrary<Change> = fc.oneof(
     (text) => text.replaceAll('r0', '"a.b.shape"').replaceAll('r1', '"a.b"'),
     (text) => text.replaceAll('r0', 'n'.repeat(5000)),
   ),
-  nat.map((at): Change => (text) => text.slice(0, at % (text.length + 1))),
+  nat.map(
+    (at): Change =>
+      (text) =>
+        text.slice(0, at % (text.length + 1)),
+  ),
 );
 
 /** Section files with a few things changed that no author would change on purpose. */

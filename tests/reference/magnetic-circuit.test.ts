@@ -49,7 +49,7 @@ const magnetOf = (remanence: number, recoil: number): Material => ({
   remanence: [0, remanence],
 });
 
-holdCases([...circuitCases, ...saturationCases]);
+holdCases([...circuitCases(), ...saturationCases()]);
 
 describe.each([
   ['TEAM 13 steel', TEAM_13, 1.02921693],

@@ -1,4 +1,4 @@
 import { magnetCases } from '../../packages/fem-core/src/verify/cases.js';
 import { holdCases } from './hold-cases.js';
 
-holdCases(magnetCases);
+holdCases(magnetCases());

@@ -1,4 +1,4 @@
-import { formatFault, InputError, verification } from '@gapwright/fem-core';
+import { buildVerification, formatFault, InputError } from '@gapwright/fem-core';
 import { Command, CommanderError } from 'commander';
 import { runCheck } from './commands/check.js';
 import { type NewOptions, runNew } from './commands/new.js';
@@ -97,7 +97,7 @@ async function runCommand(
     .option('--quiet', 'print no progress and no time')
     .option('--no-colour', 'print without colours')
     .action(async (options: VerifyOptions) => {
-      status = await runVerify(verification, options, surroundings);
+      status = await runVerify(buildVerification(), options, surroundings);
     });
   await program.parseAsync(argv, { from: 'user' });
   return status;

@@ -100,5 +100,6 @@ export type { CoarseLevel } from './sparse/two-level.js';
 export { buildCoarseLevel } from './sparse/two-level.js';
 export type { Honesty } from './verify/honesty.js';
 export type { MeasuredOrder } from './verify/orders.js';
-export { verification } from './verify/verification.js';
+export type { Verification } from './verify/verification.js';
+export { buildVerification } from './verify/verification.js';
 export type { FigureResult } from './verify/verification-case.js';

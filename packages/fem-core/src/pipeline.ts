@@ -162,7 +162,7 @@ export function* adaptiveSteps(
       const estimate = { goals: [], bounds, energy: Infinity, recovered: new Float64Array(12 * triangleCount(mesh)) };
       return { ...found, estimate, bounds, error: Infinity, accurate: false };
     }
-    const steering = goals.filter((goal) => goal.weight !== 0);
+    const [steering, reporting] = partGoals(goals);
     const steered = estimateGoals(system, field, tangent, steering);
     const error = combined(options, steering, steered.bounds);
     yield { mesh: meshes, triangles: triangleCount(mesh), error };
@@ -170,14 +170,8 @@ export function* adaptiveSteps(
     const accurate = field.report.converged && error <= options.accuracy; // the estimate is of a solved field
     const stuck = meshes >= maxMeshes || triangleCount(mesh) >= maxTriangles || !field.report.converged;
     if (accurate || stuck) {
-      const estimate = inOrder(goals, steered, () =>
-        estimateGoals(
-          system,
-          field,
-          tangent,
-          goals.filter((goal) => goal.weight === 0),
-        ),
-      );
+      const reported = reporting.length === 0 ? undefined : estimateGoals(system, field, tangent, reporting);
+      const estimate = reported === undefined ? steered : joined(goals, steering, steered, reporting, reported);
       return { ...found, estimate, bounds: estimate.bounds, error, accurate };
     }
     const shares = Float64Array.from({ length: triangleCount(mesh) }, (_, t) =>
@@ -218,18 +212,30 @@ function estimateGoals(system: System, field: Field, tangent: Tangent, goals: re
   return { ...estimate, goals: shares, bounds };
 }
 
-/** The estimate of all goals in their order: of those that steer, and of those that only report, found at the end alone. */
-function inOrder(goals: readonly GoalAt[], steered: ErrorEstimate, report: () => ErrorEstimate): ErrorEstimate {
-  if (goals.every((goal) => goal.weight !== 0)) return steered;
-  const reported = report();
-  const [steeredAt, reportedAt] = [{ next: 0 }, { next: 0 }];
-  const source = goals.map(({ weight }) =>
-    weight !== 0 ? { from: steered, k: steeredAt.next++ } : { from: reported, k: reportedAt.next++ },
-  );
+/** Goals to be estimated on every mesh, and those that only report and wait for the last, where they are many. */
+function partGoals(goals: readonly GoalAt[]): readonly [steering: readonly GoalAt[], reporting: readonly GoalAt[]] {
+  const reporting = goals.filter((goal) => goal.weight === 0);
+  return reporting.length <= MANY ? [goals, []] : [goals.filter((goal) => goal.weight !== 0), reporting];
+}
+
+/** Estimates of few goals more cost next to nothing; a second round costs the recovery of the field again. */
+const MANY = 2;
+
+/** The estimates of both kinds in the order of all goals. */
+function joined(
+  goals: readonly GoalAt[],
+  steering: readonly GoalAt[],
+  steered: ErrorEstimate,
+  reporting: readonly GoalAt[],
+  reported: ErrorEstimate,
+): ErrorEstimate {
+  const place = (goal: GoalAt): readonly [ErrorEstimate, number] =>
+    goal.weight !== 0 ? [steered, steering.indexOf(goal)] : [reported, reporting.indexOf(goal)];
+  const source = goals.map(place);
   return {
     ...steered,
-    goals: source.map(({ from, k }) => from.goals[k]),
-    bounds: source.map(({ from, k }) => from.bounds[k]),
+    goals: source.map(([from, k]) => from.goals[k]),
+    bounds: source.map(([from, k]) => from.bounds[k]),
   };
 }
 

@@ -108,18 +108,26 @@ function addToColumns(child: usize, block: usize): void {
   const below = load<i32>(child + BELOW);
   const relative = <usize>load<u32>(child + RELATIVE);
   const offsets = <usize>load<u32>(child + OFFSETS);
-  const update = <usize>load<u32>(child + UPDATE);
+  const own = <usize>load<u32>(child + UPDATE);
   const end = load<i32>(child + SHARED);
   const tiles = (below + 3) >> 2;
   let j = 0;
   for (; j + 4 <= end; j += 4) {
-    const c0 = columnInBlock(block, relative, j);
-    const c1 = columnInBlock(block, relative, j + 1);
-    const c2 = columnInBlock(block, relative, j + 2);
-    const c3 = columnInBlock(block, relative, j + 3);
-    addPanel(columnAt(update, j, tiles), number(4 * tiles - j), j, below, offsets, c0, c1, c2, c3);
+    addFour(
+      columnAt(own, j, tiles),
+      columnAt(own, j + 1, tiles),
+      columnAt(own, j + 2, tiles),
+      columnAt(own, j + 3, tiles),
+      j,
+      below,
+      offsets,
+      columnInBlock(block, relative, j),
+      columnInBlock(block, relative, j + 1),
+      columnInBlock(block, relative, j + 2),
+      columnInBlock(block, relative, j + 3),
+    );
   }
-  for (; j < end; j++) addColumn(columnAt(update, j, tiles), j, below, offsets, columnInBlock(block, relative, j));
+  for (; j < end; j++) addColumn(columnAt(own, j, tiles), j, below, offsets, columnInBlock(block, relative, j));
 }
 
 /** Adds the rest of a child's update to the parent's. */
@@ -129,15 +137,20 @@ function addToUpdate(child: usize, width: i32, update: usize, parentTiles: i32):
   const tiles = (below + 3) >> 2;
   const own = <usize>load<u32>(child + UPDATE);
   let j = load<i32>(child + SHARED);
-  for (const aligned = min(below, (j + 3) & ~3); j < aligned; j++) {
-    addColumn(columnAt(own, j, tiles), j, below, relative, columnInUpdate(update, relative, j, width, parentTiles));
-  }
   for (; j + 4 <= below; j += 4) {
-    const c0 = columnInUpdate(update, relative, j, width, parentTiles);
-    const c1 = columnInUpdate(update, relative, j + 1, width, parentTiles);
-    const c2 = columnInUpdate(update, relative, j + 2, width, parentTiles);
-    const c3 = columnInUpdate(update, relative, j + 3, width, parentTiles);
-    addPanel(columnAt(own, j, tiles), number(4 * tiles - j), j, below, relative, c0, c1, c2, c3);
+    addFour(
+      columnAt(own, j, tiles),
+      columnAt(own, j + 1, tiles),
+      columnAt(own, j + 2, tiles),
+      columnAt(own, j + 3, tiles),
+      j,
+      below,
+      relative,
+      columnInUpdate(update, relative, j, width, parentTiles),
+      columnInUpdate(update, relative, j + 1, width, parentTiles),
+      columnInUpdate(update, relative, j + 2, width, parentTiles),
+      columnInUpdate(update, relative, j + 3, width, parentTiles),
+    );
   }
   for (; j < below; j++) {
     addColumn(columnAt(own, j, tiles), j, below, relative, columnInUpdate(update, relative, j, width, parentTiles));
@@ -176,65 +189,42 @@ function addColumn(from: usize, first: i32, end: i32, offsets: usize, to: usize)
   if (at < last) addNumber(to + <usize>load<u32>(at), from);
 }
 
-/** `addColumn` for four columns `stride` bytes apart, the first of which begins at row `first`, a multiple of four. */
-function addPanel(
-  from: usize,
-  stride: usize,
+/**
+ * `addColumn` for four columns, the first of which begins at row `first`, and each of the others a row later. One number at
+ * a time: pairs would be rid of few instructions, but wrong guesses of where they are take longer.
+ */
+function addFour(
+  from0: usize,
+  from1: usize,
+  from2: usize,
+  from3: usize,
   first: i32,
   end: i32,
   offsets: usize,
-  c0: usize,
-  c1: usize,
-  c2: usize,
-  c3: usize,
+  to0: usize,
+  to1: usize,
+  to2: usize,
+  to3: usize,
 ): void {
   let at = offsets + word(first);
   const last = offsets + word(end);
-  from += number(first);
-  let from1 = from + stride;
-  let from2 = from1 + stride;
-  let from3 = from2 + stride;
-  // The tile on the diagonal: its lower triangle.
+  let row = number(first);
+  // The triangle at their beginning.
   const o0 = <usize>load<u32>(at);
   const o1 = <usize>load<u32>(at, 4);
   const o2 = <usize>load<u32>(at, 8);
-  const o3 = <usize>load<u32>(at, 12);
-  addNumber(c0 + o0, from);
-  addNumber(c0 + o1, from + 8);
-  addNumber(c1 + o1, from1 + 8);
-  addNumber(c0 + o2, from + 16);
-  addNumber(c1 + o2, from1 + 16);
-  addNumber(c2 + o2, from2 + 16);
-  addNumber(c0 + o3, from + 24);
-  addNumber(c1 + o3, from1 + 24);
-  addNumber(c2 + o3, from2 + 24);
-  addNumber(c3 + o3, from3 + 24);
-  from += 32;
-  from1 += 32;
-  from2 += 32;
-  from3 += 32;
-  for (at += 16; at + 4 < last; at += 8) {
-    const a = <usize>load<u32>(at);
-    const b = <usize>load<u32>(at, 4);
-    addNumber(c0 + a, from);
-    addNumber(c1 + a, from1);
-    addNumber(c2 + a, from2);
-    addNumber(c3 + a, from3);
-    addNumber(c0 + b, from + 8);
-    addNumber(c1 + b, from1 + 8);
-    addNumber(c2 + b, from2 + 8);
-    addNumber(c3 + b, from3 + 8);
-    from += 16;
-    from1 += 16;
-    from2 += 16;
-    from3 += 16;
-  }
-  if (at < last) {
-    const a = <usize>load<u32>(at);
-    addNumber(c0 + a, from);
-    addNumber(c1 + a, from1);
-    addNumber(c2 + a, from2);
-    addNumber(c3 + a, from3);
+  addNumber(to0 + o0, from0 + row);
+  addNumber(to0 + o1, from0 + row + 8);
+  addNumber(to1 + o1, from1 + row + 8);
+  addNumber(to0 + o2, from0 + row + 16);
+  addNumber(to1 + o2, from1 + row + 16);
+  addNumber(to2 + o2, from2 + row + 16);
+  for (at += 12, row += 24; at < last; at += 4, row += 8) {
+    const o = <usize>load<u32>(at);
+    addNumber(to0 + o, from0 + row);
+    addNumber(to1 + o, from1 + row);
+    addNumber(to2 + o, from2 + row);
+    addNumber(to3 + o, from3 + row);
   }
 }
 
@@ -259,7 +249,8 @@ function factorTriangle(block: usize, width: i32): i32 {
         const failed = factorTile(pivots + ((<usize>K) << 7), columns);
         if (failed >= 0) return 4 * K + failed;
       }
-      for (let I = max(first, K + 1); I < end; I++) solveTile(block + triangleAt(I), pivots, 4 * K, columns);
+      const I = max(first, K + 1);
+      solveTiles(block + triangleAt(I), (<usize>(I + 1)) << 7, 128, end - I, pivots, 4 * K, columns);
     }
   }
   return -1;
@@ -273,8 +264,7 @@ function solveBelow(block: usize, under: usize, width: i32, tiles: i32): void {
     const end = min(tiles, first + chunk);
     for (let k = 0; k < width; k += 4) {
       const pivots = block + triangleAt(k >> 2);
-      const columns = min(4, width - k);
-      for (let I = first; I < end; I++) solveTile(under + <usize>I * size, pivots, k, columns);
+      solveTiles(under + <usize>first * size, size, 0, end - first, pivots, k, min(4, width - k));
     }
   }
 }
@@ -405,12 +395,98 @@ function multiplyByItself(a: usize, count: i32, c: usize, stride: usize): void {
 }
 
 /**
- * Row tile `a` has its first `count` columns solved; takes their product with those of `pivots` from the next `columns`
- * columns (one to four) and solves these by the triangle that stands there in `pivots`.
+ * So many row tiles from `tile` on have their first `count` columns solved; takes their product with those of `pivots` from
+ * the next `columns` columns (one to four) and solves these by the triangle that stands there in `pivots`. The tiles are
+ * `stride` bytes apart, each by `growth` more than the one before.
  */
-function solveTile(a: usize, pivots: usize, count: i32, columns: i32): void {
-  let b = pivots;
+function solveTiles(
+  tile: usize,
+  stride: usize,
+  growth: usize,
+  many: i32,
+  pivots: usize,
+  count: i32,
+  columns: i32,
+): void {
+  const size = (<usize>count) << 5;
+  for (; many > 0; many--) {
+    let b = pivots;
+    const at = tile + size;
+    let c00 = v128.load(at);
+    let c01 = v128.load(at, 16);
+    let c10 = v128.load(at, 32);
+    let c11 = v128.load(at, 48);
+    let c20 = v128.load(at, 64);
+    let c21 = v128.load(at, 80);
+    let c30 = v128.load(at, 96);
+    let c31 = v128.load(at, 112);
+    for (let a = tile; a < at; a += 32, b += 32) {
+      const a0 = v128.load(a);
+      const a1 = v128.load(a, 16);
+      const b0 = v128.load64_splat(b);
+      c00 = f64x2.sub(c00, f64x2.mul(a0, b0));
+      c01 = f64x2.sub(c01, f64x2.mul(a1, b0));
+      const b1 = v128.load64_splat(b, 8);
+      c10 = f64x2.sub(c10, f64x2.mul(a0, b1));
+      c11 = f64x2.sub(c11, f64x2.mul(a1, b1));
+      const b2 = v128.load64_splat(b, 16);
+      c20 = f64x2.sub(c20, f64x2.mul(a0, b2));
+      c21 = f64x2.sub(c21, f64x2.mul(a1, b2));
+      const b3 = v128.load64_splat(b, 24);
+      c30 = f64x2.sub(c30, f64x2.mul(a0, b3));
+      c31 = f64x2.sub(c31, f64x2.mul(a1, b3));
+    }
+    // b stands at the triangle now: column c of it at b + 32 c, its row r at + 8 r; the diagonal holds reciprocals.
+    const d0 = v128.load64_splat(b);
+    c00 = f64x2.mul(c00, d0);
+    c01 = f64x2.mul(c01, d0);
+    v128.store(at, c00);
+    v128.store(at, c01, 16);
+    if (columns > 1) {
+      const l10 = v128.load64_splat(b, 8);
+      const d1 = v128.load64_splat(b, 40);
+      c10 = f64x2.mul(f64x2.sub(c10, f64x2.mul(c00, l10)), d1);
+      c11 = f64x2.mul(f64x2.sub(c11, f64x2.mul(c01, l10)), d1);
+      v128.store(at, c10, 32);
+      v128.store(at, c11, 48);
+    }
+    if (columns > 2) {
+      const l20 = v128.load64_splat(b, 16);
+      c20 = f64x2.sub(c20, f64x2.mul(c00, l20));
+      c21 = f64x2.sub(c21, f64x2.mul(c01, l20));
+      const l21 = v128.load64_splat(b, 48);
+      const d2 = v128.load64_splat(b, 80);
+      c20 = f64x2.mul(f64x2.sub(c20, f64x2.mul(c10, l21)), d2);
+      c21 = f64x2.mul(f64x2.sub(c21, f64x2.mul(c11, l21)), d2);
+      v128.store(at, c20, 64);
+      v128.store(at, c21, 80);
+    }
+    if (columns > 3) {
+      const l30 = v128.load64_splat(b, 24);
+      c30 = f64x2.sub(c30, f64x2.mul(c00, l30));
+      c31 = f64x2.sub(c31, f64x2.mul(c01, l30));
+      const l31 = v128.load64_splat(b, 56);
+      c30 = f64x2.sub(c30, f64x2.mul(c10, l31));
+      c31 = f64x2.sub(c31, f64x2.mul(c11, l31));
+      const l32 = v128.load64_splat(b, 88);
+      const d3 = v128.load64_splat(b, 120);
+      c30 = f64x2.mul(f64x2.sub(c30, f64x2.mul(c20, l32)), d3);
+      c31 = f64x2.mul(f64x2.sub(c31, f64x2.mul(c21, l32)), d3);
+      v128.store(at, c30, 96);
+      v128.store(at, c31, 112);
+    }
+    tile += stride;
+    stride += growth;
+  }
+}
+
+/** Takes from the diagonal tile at the end of row tile `a` the product of its first `count` columns with themselves. */
+function reduceTile(a: usize, count: i32, columns: i32): void {
   const at = a + ((<usize>count) << 5);
+  if (columns < 4) {
+    for (let c: usize = 0; c < <usize>columns; c++) reduceColumn(a, a + (c << 3), at, at + (c << 5));
+    return;
+  }
   let c00 = v128.load(at);
   let c01 = v128.load(at, 16);
   let c10 = v128.load(at, 32);
@@ -419,115 +495,89 @@ function solveTile(a: usize, pivots: usize, count: i32, columns: i32): void {
   let c21 = v128.load(at, 80);
   let c30 = v128.load(at, 96);
   let c31 = v128.load(at, 112);
-  for (; a < at; a += 32, b += 32) {
+  for (; a < at; a += 32) {
     const a0 = v128.load(a);
     const a1 = v128.load(a, 16);
-    const b0 = v128.load64_splat(b);
+    const b0 = v128.load64_splat(a);
     c00 = f64x2.sub(c00, f64x2.mul(a0, b0));
     c01 = f64x2.sub(c01, f64x2.mul(a1, b0));
-    const b1 = v128.load64_splat(b, 8);
+    const b1 = v128.load64_splat(a, 8);
     c10 = f64x2.sub(c10, f64x2.mul(a0, b1));
     c11 = f64x2.sub(c11, f64x2.mul(a1, b1));
-    const b2 = v128.load64_splat(b, 16);
+    const b2 = v128.load64_splat(a, 16);
     c20 = f64x2.sub(c20, f64x2.mul(a0, b2));
     c21 = f64x2.sub(c21, f64x2.mul(a1, b2));
-    const b3 = v128.load64_splat(b, 24);
+    const b3 = v128.load64_splat(a, 24);
     c30 = f64x2.sub(c30, f64x2.mul(a0, b3));
     c31 = f64x2.sub(c31, f64x2.mul(a1, b3));
   }
-  // b stands at the triangle now: column c of it at b + 32 c, its row r at + 8 r; the diagonal holds reciprocals.
-  let d = v128.load64_splat(b);
-  c00 = f64x2.mul(c00, d);
-  c01 = f64x2.mul(c01, d);
   v128.store(at, c00);
   v128.store(at, c01, 16);
-  if (columns === 1) return;
-  let l = v128.load64_splat(b, 8);
-  d = v128.load64_splat(b, 40);
-  c10 = f64x2.mul(f64x2.sub(c10, f64x2.mul(c00, l)), d);
-  c11 = f64x2.mul(f64x2.sub(c11, f64x2.mul(c01, l)), d);
   v128.store(at, c10, 32);
   v128.store(at, c11, 48);
-  if (columns === 2) return;
-  l = v128.load64_splat(b, 16);
-  c20 = f64x2.sub(c20, f64x2.mul(c00, l));
-  c21 = f64x2.sub(c21, f64x2.mul(c01, l));
-  l = v128.load64_splat(b, 48);
-  d = v128.load64_splat(b, 80);
-  c20 = f64x2.mul(f64x2.sub(c20, f64x2.mul(c10, l)), d);
-  c21 = f64x2.mul(f64x2.sub(c21, f64x2.mul(c11, l)), d);
   v128.store(at, c20, 64);
   v128.store(at, c21, 80);
-  if (columns === 3) return;
-  l = v128.load64_splat(b, 24);
-  c30 = f64x2.sub(c30, f64x2.mul(c00, l));
-  c31 = f64x2.sub(c31, f64x2.mul(c01, l));
-  l = v128.load64_splat(b, 56);
-  c30 = f64x2.sub(c30, f64x2.mul(c10, l));
-  c31 = f64x2.sub(c31, f64x2.mul(c11, l));
-  l = v128.load64_splat(b, 88);
-  d = v128.load64_splat(b, 120);
-  c30 = f64x2.mul(f64x2.sub(c30, f64x2.mul(c20, l)), d);
-  c31 = f64x2.mul(f64x2.sub(c31, f64x2.mul(c21, l)), d);
   v128.store(at, c30, 96);
   v128.store(at, c31, 112);
 }
 
-/** Takes from the diagonal tile at the end of row tile `a` the product of its first `count` columns with themselves. */
-function reduceTile(a: usize, count: i32, columns: i32): void {
-  const at = a + ((<usize>count) << 5);
-  for (let c: usize = 0; c < <usize>columns; c++) {
-    const to = at + (c << 5);
-    let low = v128.load(to);
-    let high = v128.load(to, 16);
-    for (let from = a; from < at; from += 32) {
-      const b = v128.load64_splat(from + (c << 3));
-      low = f64x2.sub(low, f64x2.mul(v128.load(from), b));
-      high = f64x2.sub(high, f64x2.mul(v128.load(from, 16), b));
-    }
-    v128.store(to, low);
-    v128.store(to, high, 16);
+/** Column at `to` -= the columns from `a` to `end` times those of the row at `b`. */
+function reduceColumn(a: usize, b: usize, end: usize, to: usize): void {
+  let low = v128.load(to);
+  let high = v128.load(to, 16);
+  for (; a < end; a += 32, b += 32) {
+    const factor = v128.load64_splat(b);
+    low = f64x2.sub(low, f64x2.mul(v128.load(a), factor));
+    high = f64x2.sub(high, f64x2.mul(v128.load(a, 16), factor));
   }
+  v128.store(to, low);
+  v128.store(to, high, 16);
 }
 
 /**
  * Cholesky factor of the diagonal tile at `d`, reciprocals on its diagonal. Returns -1, or the column that failed. Column c
- * stands at d + 32 c, its row r at + 8 r.
+ * stands at d + 32 c, its row r at + 8 r. The next pivot waits for the reciprocal of the last one, but for no root.
  */
 function factorTile(d: usize, columns: i32): i32 {
   const d0 = load<f64>(d);
   if (!(d0 > 0)) return 0;
-  const r0 = 1 / sqrt(d0);
-  const l10 = load<f64>(d, 8) * r0;
-  const l20 = load<f64>(d, 16) * r0;
-  const l30 = load<f64>(d, 24) * r0;
+  const i0 = 1 / d0;
+  const r0 = sqrt(i0);
+  const a10 = load<f64>(d, 8);
+  const a20 = load<f64>(d, 16);
+  const a30 = load<f64>(d, 24);
   store<f64>(d, r0);
-  store<f64>(d, l10, 8);
-  store<f64>(d, l20, 16);
-  store<f64>(d, l30, 24);
+  store<f64>(d, a10 * r0, 8);
+  store<f64>(d, a20 * r0, 16);
+  store<f64>(d, a30 * r0, 24);
   if (columns === 1) return -1;
-  const d1 = load<f64>(d, 40) - l10 * l10;
+  const m10 = a10 * i0;
+  const d1 = load<f64>(d, 40) - a10 * m10;
   store<f64>(d, d1, 40);
   if (!(d1 > 0)) return 1;
-  const r1 = 1 / sqrt(d1);
-  const l21 = (load<f64>(d, 48) - l20 * l10) * r1;
-  const l31 = (load<f64>(d, 56) - l30 * l10) * r1;
+  const i1 = 1 / d1;
+  const r1 = sqrt(i1);
+  const a21 = load<f64>(d, 48) - a20 * m10;
+  const a31 = load<f64>(d, 56) - a30 * m10;
   store<f64>(d, r1, 40);
-  store<f64>(d, l21, 48);
-  store<f64>(d, l31, 56);
+  store<f64>(d, a21 * r1, 48);
+  store<f64>(d, a31 * r1, 56);
   if (columns === 2) return -1;
-  const d2 = load<f64>(d, 80) - l20 * l20 - l21 * l21;
+  const m20 = a20 * i0;
+  const m21 = a21 * i1;
+  const d2 = load<f64>(d, 80) - a20 * m20 - a21 * m21;
   store<f64>(d, d2, 80);
   if (!(d2 > 0)) return 2;
-  const r2 = 1 / sqrt(d2);
-  const l32 = (load<f64>(d, 88) - l30 * l20 - l31 * l21) * r2;
+  const i2 = 1 / d2;
+  const r2 = sqrt(i2);
+  const a32 = load<f64>(d, 88) - a30 * m20 - a31 * m21;
   store<f64>(d, r2, 80);
-  store<f64>(d, l32, 88);
+  store<f64>(d, a32 * r2, 88);
   if (columns === 3) return -1;
-  const d3 = load<f64>(d, 120) - l30 * l30 - l31 * l31 - l32 * l32;
+  const d3 = load<f64>(d, 120) - a30 * (a30 * i0) - a31 * (a31 * i1) - a32 * (a32 * i2);
   store<f64>(d, d3, 120);
   if (!(d3 > 0)) return 3;
-  store<f64>(d, 1 / sqrt(d3), 120);
+  store<f64>(d, sqrt(1 / d3), 120);
   return -1;
 }
 

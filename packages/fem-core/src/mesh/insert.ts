@@ -115,40 +115,32 @@ export function fillCavity(
   const p = addVertex(tri, x, y);
   if (cavity.startsAt.length < tri.xy.length / 2) cavity.startsAt = new Int32Array(tri.xy.length / 2);
   const { startsAt, border } = cavity;
-  const count = border.length;
-  const from: number[] = [];
-  const twin: number[] = [];
-  const segment: number[] = [];
-  const region: number[] = [];
-  const size: number[] = [];
-  for (const h of border) {
-    from.push(tri.origin[h], tri.origin[nextHalf(h)]);
-    twin.push(tri.twin[h]);
-    segment.push(tri.segment[h]);
-    region.push(tri.region[triangleOf(h)]);
-    size.push(tri.size[triangleOf(h)]);
-  }
-  for (const t of cavity.triangles) releaseSlot(tri, t);
   made.length = 0;
-  for (let i = 0; i < count; i++) {
+  // The cavity's slots are given back last, so that what lies in them can be read until then.
+  for (const b of border) {
     const t = takeSlot(tri);
     const h = 3 * t;
+    const old = triangleOf(b);
+    const from = tri.origin[b];
+    const opposite = tri.twin[b];
+    const s = tri.segment[b];
     made.push(t);
-    tri.region[t] = region[i];
-    tri.size[t] = size[i];
-    tri.origin[h] = from[2 * i];
-    tri.origin[h + 1] = from[2 * i + 1];
+    tri.region[t] = tri.region[old];
+    tri.size[t] = tri.size[old];
+    tri.origin[h] = from;
+    tri.origin[h + 1] = tri.origin[nextHalf(b)];
     tri.origin[h + 2] = p;
-    tri.twin[h] = twin[i];
+    tri.twin[h] = opposite;
     tri.twin[h + 1] = -1;
     tri.twin[h + 2] = -1;
-    tri.segment[h] = segment[i];
+    tri.segment[h] = s;
     tri.segment[h + 1] = -1;
     tri.segment[h + 2] = -1;
-    if (twin[i] >= 0) tri.twin[twin[i]] = h;
-    if (segment[i] >= 0) tri.segments.half[segment[i]] = h;
-    startsAt[from[2 * i]] = t;
+    if (opposite >= 0) tri.twin[opposite] = h;
+    if (s >= 0) tri.segments.half[s] = h;
+    startsAt[from] = t;
   }
+  for (const t of cavity.triangles) releaseSlot(tri, t);
   for (const t of made) {
     const u = startsAt[tri.origin[3 * t + 1]];
     // At a split of the outline the fan is open: nothing starts where it ends.

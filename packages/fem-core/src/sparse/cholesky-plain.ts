@@ -341,19 +341,23 @@ function solveColumns(m: Float64Array, at: number, d: number, columns: number): 
   }
 }
 
-/** Cholesky factor of the diagonal tile at `d`, reciprocals on its diagonal. Returns -1, or the column that failed. */
+/**
+ * Cholesky factor of the diagonal tile at `d`, reciprocals on its diagonal. Returns -1, or the column that failed. The next
+ * pivot waits for the reciprocal of the last one, but for no root.
+ */
 function factorTile(m: Float64Array, d: number, columns: number): number {
   for (let c = 0; c < columns; c++) {
     const own = d + 4 * c;
     const pivot = m[own + c];
     if (!(pivot > 0)) return c;
-    const reciprocal = 1 / Math.sqrt(pivot);
+    const inverse = 1 / pivot;
+    for (let k = c + 1; k < columns; k++) {
+      const multiple = m[own + k] * inverse;
+      for (let r = k; r < 4; r++) m[d + 4 * k + r] -= m[own + r] * multiple;
+    }
+    const reciprocal = Math.sqrt(inverse);
     m[own + c] = reciprocal;
     for (let r = c + 1; r < 4; r++) m[own + r] *= reciprocal;
-    for (let k = c + 1; k < columns; k++) {
-      const l = m[own + k];
-      for (let r = k; r < 4; r++) m[d + 4 * k + r] -= m[own + r] * l;
-    }
   }
   return -1;
 }

@@ -23,7 +23,7 @@ import { radialFlux, saturableRing, stackedSlab } from './saturable.js';
 import { slotOppositeSmoothFace } from './slots.js';
 import type { VerificationCase } from './verification-case.js';
 
-export const conductorCases: readonly VerificationCase[] = [
+export const conductorCases = (): readonly VerificationCase[] => [
   roundConductor(),
   coaxialLine(),
   twoWireLine('held'),
@@ -37,7 +37,7 @@ export const conductorCases: readonly VerificationCase[] = [
   currentSlab(),
 ];
 
-export const bodyCases: readonly VerificationCase[] = [
+export const bodyCases = (): readonly VerificationCase[] => [
   permeableCylinder(1.05),
   permeableCylinder(10),
   permeableCylinder(1000),
@@ -49,7 +49,7 @@ export const bodyCases: readonly VerificationCase[] = [
   halbachCylinder(),
 ];
 
-export const magnetCases: readonly VerificationCase[] = [
+export const magnetCases = (): readonly VerificationCase[] => [
   blockMagnet('held'),
   blockMagnet('open'),
   facingMagnets('held', 'field'),
@@ -61,7 +61,7 @@ export const magnetCases: readonly VerificationCase[] = [
   blockHalbach(),
 ];
 
-export const gapCases: readonly VerificationCase[] = [
+export const gapCases = (): readonly VerificationCase[] => [
   slotOppositeSmoothFace(0.003, 0.001, 0.012),
   slotOppositeSmoothFace(0.008, 0.001, 0.02),
   discGap('G1', G1),
@@ -72,14 +72,14 @@ export const gapCases: readonly VerificationCase[] = [
   pullOnDisc('G4', G4),
 ];
 
-export const circuitCases: readonly VerificationCase[] = [
+export const circuitCases = (): readonly VerificationCase[] => [
   magnetAndGap(1.25, 1.05, 0.02, 0.016),
   magnetAndGap(0.39, 1.1, 0.04, 0.014),
   magnetGapAndIron(),
 ];
 
 /** Materials whose permeability depends on the field. */
-export const saturationCases: readonly VerificationCase[] = [
+export const saturationCases = (): readonly VerificationCase[] => [
   saturableRing(20),
   saturableRing(200),
   saturableRing(2000),
@@ -90,11 +90,11 @@ export const saturationCases: readonly VerificationCase[] = [
 ];
 
 /** Every case, in the order of the table. */
-export const verificationCases: readonly VerificationCase[] = [
-  ...conductorCases,
-  ...bodyCases,
-  ...magnetCases,
-  ...gapCases,
-  ...circuitCases,
-  ...saturationCases,
+export const verificationCases = (): readonly VerificationCase[] => [
+  ...conductorCases(),
+  ...bodyCases(),
+  ...magnetCases(),
+  ...gapCases(),
+  ...circuitCases(),
+  ...saturationCases(),
 ];
