@@ -94,7 +94,8 @@ function factorTriangle(blocks: Float64Array, block: number, width: number): num
       const pivots = block + triangleStart(K);
       if (K >= first) {
         const columns = Math.min(4, width - 4 * K);
-        for (let c = 0; c < columns; c++) reduceColumn(blocks, pivots, pivots + c, 4 * K, pivots + 4 * (4 * K + c));
+        if (columns === 4) reduceTile(blocks, pivots, pivots, pivots + 16 * K);
+        else for (let c = 0; c < columns; c++) reduceColumn(blocks, pivots, pivots + c, 4 * K, pivots + 16 * K + 4 * c);
         const failed = factorTile(blocks, pivots + 16 * K, columns);
         if (failed >= 0) return 4 * K + failed;
       }
@@ -227,7 +228,30 @@ function multiplyTiles(
 function solveTile(m: Float64Array, tile: number, pivots: number, count: number): void {
   const at = (tile + 4 * count) | 0;
   if (count > 0) reduceTile(m, tile, pivots, at);
-  solveColumns(m, at, pivots + 4 * count, 4);
+  solveFour(m, at, pivots + 4 * count);
+}
+
+/** Solves the four columns at `at` by the triangle at `d`, whose diagonal holds reciprocals: row by row. */
+function solveFour(m: Float64Array, at: number, d: number): void {
+  const d0 = m[d];
+  const l10 = m[d + 1];
+  const l20 = m[d + 2];
+  const l30 = m[d + 3];
+  const d1 = m[d + 5];
+  const l21 = m[d + 6];
+  const l31 = m[d + 7];
+  const d2 = m[d + 10];
+  const l32 = m[d + 11];
+  const d3 = m[d + 15];
+  for (let p = at | 0, end = (at + 4) | 0; p < end; p = (p + 1) | 0) {
+    const x0 = m[p] * d0;
+    const x1 = (m[(p + 4) | 0] - x0 * l10) * d1;
+    const x2 = (m[(p + 8) | 0] - x0 * l20 - x1 * l21) * d2;
+    m[(p + 12) | 0] = (m[(p + 12) | 0] - x0 * l30 - x1 * l31 - x2 * l32) * d3;
+    m[p] = x0;
+    m[(p + 4) | 0] = x1;
+    m[(p + 8) | 0] = x2;
+  }
 }
 
 /** Four columns at `at` -= the columns of `tile` before them times those of `pivots`. */
@@ -318,7 +342,7 @@ function reduceColumn(m: Float64Array, tile: number, other: number, count: numbe
   m[to + 3] = c3;
 }
 
-/** Solves the columns at `at` by the triangle at `d`, whose diagonal holds reciprocals. */
+/** The same for one to three columns. */
 function solveColumns(m: Float64Array, at: number, d: number, columns: number): void {
   for (let c = 0; c < columns; c++) {
     let c0 = m[at + 4 * c];
