@@ -38,7 +38,7 @@ export async function interleave(runs: number, timers: readonly Timer[]): Promis
   const times: number[] = [];
   for (const timer of timers) {
     let last = await timer(1);
-    for (let count = 1, spent = last; count < 2 || (spent < 500 && count < 10); count++, spent += last) {
+    for (let count = 1, spent = last; count < 2 || (spent < 2000 && count < 60); count++, spent += last) {
       last = await timer(1);
     }
     times.push(Math.max(1, Math.round(SAMPLE_MS / last)));

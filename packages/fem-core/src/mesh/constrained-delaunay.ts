@@ -203,7 +203,7 @@ function halfBetween(tri: Triangulation, out: Int32Array, a: number, b: number):
 /** Lawson's flips with exact in-circle tests until every edge that is no segment is locally Delaunay. */
 function lawson(tri: Triangulation): void {
   const stack: number[] = [];
-  for (let h = 0; h < 3 * tri.slotCount; h++) stack.push(h);
+  for (let h = 0; h < 3 * tri.slotCount; h++) if (tri.twin[h] > h) stack.push(h);
   while (stack.length > 0) {
     const h = stack.pop() as number;
     const g = tri.twin[h];

@@ -13,8 +13,8 @@ export interface Queue {
 }
 
 export const newQueue = (): Queue => ({
-  slots: new Int32Array(1024),
-  stamps: new Int32Array(1024),
+  slots: new Int32Array(16),
+  stamps: new Int32Array(16),
   head: 0,
   count: 0,
 });
