@@ -1,5 +1,7 @@
-/** The steps of an analysis in plain TypeScript: the twin of wasm/analysis.ts, which gives the same numbers. */
-import type { Analysis } from './analysis.js';
+/**
+ * The steps of an analysis in plain TypeScript: the twin of wasm/analysis.ts, which gives the same numbers. What they are is
+ * told at `Analysis`.
+ */
 import type { Couplings } from './elimination-tree.js';
 import { columnCounts, eliminationTree, postorder, reorderedCouplings, sumUp } from './elimination-tree.js';
 import { blockSize, rowStartInBlock, tileCount, updateSize } from './front-layout.js';
@@ -7,7 +9,8 @@ import type { Fronts } from './fronts.js';
 import { gatherFronts } from './fronts.js';
 import type { SymmetricPattern } from './pattern.js';
 
-export function analysePlain(pattern: SymmetricPattern, wanted: Int32Array): Omit<Analysis, 'peakBytes'> {
+/** All of an `Analysis` but how much memory it takes. */
+export function analysePlain(pattern: SymmetricPattern, wanted: Int32Array) {
   const { n } = pattern;
   const wantedPlace = inverseOf(wanted);
   const couplings = reorderedCouplings(pattern, wantedPlace);
@@ -129,8 +132,8 @@ function entriesOf(
   wanted: Int32Array,
   { place, first, below }: Fronts,
   { laterStart, later, laterEntry }: Couplings,
-  { rowStart, rows, blockStart }: Pick<Analysis, 'rowStart' | 'rows' | 'blockStart'>,
-): Pick<Analysis, 'entryStart' | 'source' | 'target'> {
+  { rowStart, rows, blockStart }: { rowStart: Int32Array; rows: Int32Array; blockStart: Int32Array },
+): { entryStart: Int32Array; source: Int32Array; target: Int32Array } {
   const entryStart = new Int32Array(first.length);
   const source = new Int32Array(pattern.row.length);
   const target = new Int32Array(pattern.row.length);

@@ -91,7 +91,7 @@ interface Kernels
 
 /**
  * One step after the other in the memory of one instance, which grows as lengths become known. Arrays no longer needed give
- * their places to later ones: the first touch of fresh memory takes as long as the steps themselves.
+ * their places to later ones, because the first touch of fresh memory takes time.
  */
 function analyseByKernels(
   kernels: CompiledKernels,

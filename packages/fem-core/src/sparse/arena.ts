@@ -3,10 +3,11 @@ import { instantiate } from '../kernels/instantiate.js';
 import type { Analysis } from './analysis.js';
 import type { ArenaLayout } from './arena-layout.js';
 import { arenaLayout, RECORD_WORDS } from './arena-layout.js';
-import { rowStartInBlock, triangleSize } from './front-layout.js';
+import { triangleSize } from './front-layout.js';
 
 /** The kernels of wasm/cholesky.ts; all numbers but counts are byte addresses. */
 interface Kernels {
+  readonly placeRows: (records: number, frontCount: number) => void;
   readonly factorise: (
     records: number,
     frontCount: number,
@@ -36,33 +37,18 @@ export function arenaFor(compiled: CompiledKernels, analysis: Analysis, reuse?: 
   const memory = arena.instance.reserve(layout.end);
   arena.layout = layout;
   arena.analysis = analysis;
-  for (const map of ['rows', 'source', 'target'] as const) {
+  for (const map of ['rows', 'relative', 'source', 'target'] as const) {
     new Int32Array(memory, layout[map], analysis[map].length).set(analysis[map]);
   }
-  const words = (at: number, count: number): Int32Array => new Int32Array(memory, at, count);
-  writeRows(analysis, words(layout.relative, analysis.rows.length), words(layout.offsets, analysis.rows.length));
   new Float64Array(memory, layout.y, 4 * (analysis.pattern.n + 1)).fill(0);
   writeRecords(analysis, layout, new Uint32Array(memory, layout.records, RECORD_WORDS * analysis.below.length));
+  arena.instance.exports.placeRows(layout.records, analysis.below.length);
   return arena;
 }
 
-/** Where the rows of each front are found by its parent: among all rows, and in the block. */
-function writeRows(analysis: Analysis, relativeBytes: Int32Array, offsets: Int32Array): void {
-  const { first, below, child, sibling, rowStart, relative } = analysis;
-  for (let s = 0; s < below.length; s++) {
-    const width = first[s + 1] - first[s];
-    for (let c = child[s]; c >= 0; c = sibling[c]) {
-      for (let p = rowStart[c]; p < rowStart[c] + below[c]; p++) {
-        relativeBytes[p] = 8 * relative[p];
-        offsets[p] = 8 * rowStartInBlock(relative[p], width);
-      }
-    }
-  }
-}
-
-/** What the kernels know of each front; see wasm/cholesky.ts. */
+/** What the kernels know of each front; see wasm/cholesky.ts, where `placeRows` adds how many rows are the parent's columns. */
 function writeRecords(analysis: Analysis, layout: ArenaLayout, words: Uint32Array): void {
-  const { first, below, child, sibling, rowStart, rows, entryStart, blockStart, updateStart } = analysis;
+  const { first, below, child, sibling, rowStart, entryStart, blockStart, updateStart } = analysis;
   const recordOf = (s: number): number => (s < 0 ? 0 : layout.records + 4 * RECORD_WORDS * s);
   for (let s = 0, at = 0; s < below.length; s++, at += RECORD_WORDS) {
     words[at] = first[s + 1] - first[s];
@@ -76,10 +62,5 @@ function writeRecords(analysis: Analysis, layout: ArenaLayout, words: Uint32Arra
     words[at + 8] = recordOf(sibling[s]);
     words[at + 9] = layout.blocks + 8 * (blockStart[s] + triangleSize(first[s + 1] - first[s]));
     words[at + 11] = layout.offsets + 4 * rowStart[s];
-    for (let c = child[s]; c >= 0; c = sibling[c]) {
-      let shared = 0;
-      while (shared < below[c] && rows[rowStart[c] + shared] < first[s + 1]) shared++;
-      words[RECORD_WORDS * c + 10] = shared;
-    }
   }
 }
