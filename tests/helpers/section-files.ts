@@ -381,3 +381,46 @@ const changes: fc.Arbitrary<Change> = fc.oneof(
 export const brokenSectionFiles: fc.Arbitrary<string> = fc
   .tuple(sectionFiles, fc.array(changes, { minLength: 1, maxLength: 3 }))
   .map(([text, list]) => list.reduce((before, change) => change(before), text));
+
+/** Numbers a little or far off, the other way round, or those of another place: what still reads without a fault. */
+const oddities: fc.Arbitrary<Change> = fc.oneof(
+  fc.tuple(nat, fc.integer({ min: -9, max: 9 })).map(
+    ([which, power]): Change =>
+      (text) =>
+        replaceOne(text, NUMBER, which, (old) => String(Number((Number(old) * 10 ** power).toPrecision(6)))),
+  ),
+  fc.tuple(nat, nat).map(
+    ([which, other]): Change =>
+      (text) => {
+        const all = text.match(LENGTH) ?? [''];
+        return replaceOne(text, LENGTH, which, () => all[other % all.length]);
+      },
+  ),
+  fc.tuple(nat, unit(-1e-6, 1e-6)).map(
+    ([which, share]): Change =>
+      (text) =>
+        replaceOne(text, NUMBER, which, (old) => String(Number(old) * (1 + share))),
+  ),
+  nat.map(
+    (which): Change =>
+      (text) =>
+        replaceOne(text, NUMBER, which, (old) => `${-Number(old)}`),
+  ),
+  // A region once more, on top of the others.
+  fc.tuple(nat, pick('again', 'air ', '__proto__', 'toString', 'a.b', 'r0, r1')).map(
+    ([which, name]): Change =>
+      (text) => {
+        const lines = text.match(/^ {2}- \{ name: r.*\n/gm) ?? [''];
+        const line = lines[which % lines.length];
+        return text.replace(line, () => line + line.replace(/name: \w+/, () => `name: '${name}'`));
+      },
+  ),
+);
+
+const NUMBER = /-?\d[\d.]*(?:e[+-]?\d+)?(?= ?[a-zA-Z%,\]}])/g;
+const LENGTH = /-?\d[\d.]*(?:e[+-]?\d+)? ?(?:mm|cm|um|in|mil|ft|m)\b/g;
+
+/** Section files that keep to the language and ask for odd things. */
+export const oddSectionFiles: fc.Arbitrary<string> = fc
+  .tuple(sectionFiles, fc.array(oddities, { minLength: 1, maxLength: 3 }))
+  .map(([text, list]) => list.reduce((before, change) => change(before), text));

@@ -83,7 +83,7 @@ export { probeSteps, solveProbes } from './probes/solve-probes.js';
 export type { NewtonOptions, NewtonProgress, Solution, SolveReport } from './solve/newton.js';
 export { newtonSteps, solveNewton } from './solve/newton.js';
 export type { IterativeTangent, Tangent } from './solve/tangent.js';
-export { analyseSystem, buildTangent, solveTangent } from './solve/tangent.js';
+export { analyseSystem, buildTangent, NoSolution, solveTangent } from './solve/tangent.js';
 export type { Analysis } from './sparse/analysis.js';
 export { analyse } from './sparse/analysis.js';
 export type { Factor, FactorOptions, NotPositive } from './sparse/cholesky.js';

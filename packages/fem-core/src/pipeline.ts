@@ -1,3 +1,4 @@
+import { checkSetup } from './assembly/check-setup.js';
 import { netCurrent } from './assembly/currents.js';
 import type { Setup } from './assembly/setup.js';
 import type { System } from './assembly/system.js';
@@ -51,6 +52,7 @@ function* solveFrom(
   options: NewtonOptions,
   order?: 1 | 2,
 ): Steps<NewtonProgress, SolvedField> {
+  checkSetup(mesh, setup);
   const unknowns = numberUnknowns(mesh, setup, order);
   const system = buildSystem(mesh, setup, unknowns);
   const start = before === undefined ? {} : { start: carryOver(before, mesh, unknowns) };
@@ -182,7 +184,7 @@ export function* adaptiveSteps(
       ),
     );
     const most = Math.min(maxTriangles, GROWTH * triangleCount(mesh));
-    mesh = refineMesh(mesh, wantedSizes(mesh, shares, AIM * options.accuracy, most), limits);
+    mesh = refineMesh(mesh, wantedSizes(mesh, shares, AIM * options.accuracy, most, options.order), limits);
     before = field;
   }
 }

@@ -4,6 +4,7 @@ import {
   assemble,
   buildBHCurve,
   exceededIn,
+  InputError,
   meshSection,
   multiply,
   nodeCount,
@@ -205,16 +206,35 @@ describe('stopping short is a report', () => {
   });
 
   test('a material that gives energy back', () => {
-    const { report, factor } = run({ kind: 'linear', muR: -3 }, 1e6);
+    const falling = {
+      ...buildBHCurve([
+        [100, 1],
+        [1000, 2],
+      ]),
+      h: Float64Array.of(0, -100, -1000),
+      slope: Float64Array.of(-100, -100, -900),
+    };
+    const { report, factor } = run({ kind: 'curve', curve: falling }, 1e6);
     expect(report.converged).toBe(false);
     expect(report.failure).toMatch(/not positive definite \(pivot -/);
     expect(factor).toBeUndefined();
   });
 
   test('numbers that are none', () => {
-    const { report } = run({ kind: 'magnet', recoil: 1, remanence: [Number.NaN, 0] }, 1e6);
-    expect(report.failure).toBe('the residual is not a number');
-    expect(run({ kind: 'linear', muR: Number.NaN }, 1e6).report.converged).toBe(false);
+    const none = {
+      ...buildBHCurve([
+        [100, 1],
+        [1000, 2],
+      ]),
+      h: Float64Array.of(0, Number.NaN, Number.NaN),
+    };
+    expect(run({ kind: 'curve', curve: none }, 1e6).report.converged).toBe(false);
+  });
+
+  test('materials of no sense are refused at the door', () => {
+    expect(() => run({ kind: 'linear', muR: -3 }, 1e6)).toThrow(InputError);
+    expect(() => run({ kind: 'linear', muR: Number.NaN }, 1e6)).toThrow(InputError);
+    expect(() => run({ kind: 'magnet', recoil: 1, remanence: [Number.NaN, 0] }, 1e6)).toThrow(InputError);
   });
 });
 

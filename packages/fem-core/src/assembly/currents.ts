@@ -1,6 +1,7 @@
 import { regionAreas } from '../elements/areas.js';
 import type { Mesh } from '../mesh/mesh.js';
 import type { Setup } from './setup.js';
+import { own } from './setup.js';
 
 /**
  * Current density of each region out of the page, A/m^2: Float64Array(regions). Currents given as a whole are spread over
@@ -10,8 +11,9 @@ import type { Setup } from './setup.js';
 export function currentDensities(mesh: Mesh, setup: Setup): Float64Array {
   const areas = regionAreas(mesh);
   const density = Float64Array.from(mesh.regionNames, (name, region) => {
-    const whole = setup.current?.[name] ?? 0;
-    return (setup.currentDensity?.[name] ?? 0) + (whole === 0 || areas[region] === 0 ? 0 : whole / areas[region]);
+    const whole = own(setup.current, name) ?? 0;
+    const spread = whole === 0 || areas[region] === 0 ? 0 : whole / areas[region];
+    return (own(setup.currentDensity, name) ?? 0) + spread;
   });
   if (mesh.beyond === undefined) return density;
   const { region } = mesh.beyond;

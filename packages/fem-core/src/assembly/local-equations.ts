@@ -12,6 +12,7 @@ import {
 import { referenceTensor, slopeProducts } from '../elements/straight-stiffness.js';
 import type { LocalLaw } from '../materials/constitutive.js';
 import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
+import { directionAt } from '../materials/direction.js';
 import type { Material } from '../materials/material.js';
 import { isNonlinear } from '../materials/material.js';
 import type { Mesh } from '../mesh/mesh.js';
@@ -78,10 +79,22 @@ export function formEquations(
     const [x, y] = turning ? placeOf(coordinates, q) : ORIGIN;
     evaluateMaterial(material, gy, -gx, x, y, law);
     for (let i = 0; i < functions; i++) residual[i] += weight * (law.hx * grad[6 + i] - law.hy * grad[i]);
-    if (derivative === 'tangent')
+    if (derivative === 'tangent') {
       addProducts(grad, functions, weight * law.xx, weight * law.xy, weight * law.yy, matrix);
-    else addProducts(grad, functions, weight * law.nu, 0, weight * law.nu, matrix);
+    } else {
+      const [c, s] = law.nu === law.nuAcross ? [1, 0] : axesOf(material, x, y);
+      const xx = c * c * law.nu + s * s * law.nuAcross;
+      const xy = c * s * (law.nu - law.nuAcross);
+      const yy = s * s * law.nu + c * c * law.nuAcross;
+      addProducts(grad, functions, weight * xx, weight * xy, weight * yy, matrix);
+    }
   }
+}
+
+/** Cosine and sine of the direction of magnetisation. */
+function axesOf(material: Material, x: number, y: number): readonly [cos: number, sin: number] {
+  const angle = material.kind === 'directed-magnet' ? directionAt(material.direction, x, y) : 0;
+  return [Math.cos(angle), Math.sin(angle)];
 }
 
 const ORIGIN: readonly [number, number] = [0, 0];

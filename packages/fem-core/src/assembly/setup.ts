@@ -30,7 +30,12 @@ export interface Setup {
 /** What fills the region of that name: as set up, or vacuum round an open outline; undefined where nothing is said. */
 export function materialOf(setup: Setup, region: string): Material | undefined {
   const open = region === OUTSIDE_REGION || region === BEYOND_REGION;
-  return setup.materials[region] ?? (open ? VACUUM : undefined);
+  return own(setup.materials, region) ?? (open ? VACUUM : undefined);
 }
 
-const VACUUM: Material = { kind: 'linear', muR: 1 };
+export const VACUUM: Material = { kind: 'linear', muR: 1 };
+
+/** What a record holds under a name of its own: names such as `constructor` are found in every plain object. */
+export function own<Value>(record: Readonly<Record<string, Value>> | undefined, name: string): Value | undefined {
+  return record !== undefined && Object.hasOwn(record, name) ? record[name] : undefined;
+}

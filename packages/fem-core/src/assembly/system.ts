@@ -1,5 +1,6 @@
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
+import { unreachable } from '../base/unreachable.js';
 import { globalNode } from '../elements/six-node.js';
 import type { Material } from '../materials/material.js';
 import { isNonlinear } from '../materials/material.js';
@@ -104,7 +105,11 @@ function materialsOf(mesh: Mesh, setup: Setup): Material[] {
   const faults: Fault[] = [];
   const materials = mesh.regionNames.map((name, region): Material => {
     const material = materialOf(setup, name);
-    if (material !== undefined) return material;
+    if (material !== undefined) {
+      const fault = faultOf(material, name);
+      if (fault !== undefined) faults.push(fault);
+      return material;
+    }
     if (mesh.triangleToRegion.includes(region)) {
       faults.push({ code: 'no-material', key: name, wrong: 'has no material', remedy: 'name it in the setup' });
     }
@@ -112,6 +117,35 @@ function materialsOf(mesh: Mesh, setup: Setup): Material[] {
   });
   if (faults.length > 0) throw new InputError(faults);
   return materials;
+}
+
+/** What no material can be; curves are judged where they are built. */
+function faultOf(material: Material, key: string): Fault | undefined {
+  const figures = figuresOf(material);
+  if (figures.positive > 0 && Number.isFinite(figures.positive) && figures.others.every(Number.isFinite))
+    return undefined;
+  const wrong = `is filled with ${material.kind} material of figures ${[figures.positive, ...figures.others].join(', ')}`;
+  return { code: 'no-material', key, wrong, remedy: 'give finite figures, and a permeability above 0' };
+}
+
+/** Numbers that define a material: a relative permeability, and others of either sign. */
+function figuresOf(material: Material): { readonly positive: number; readonly others: readonly number[] } {
+  switch (material.kind) {
+    case 'linear':
+      return { positive: material.muR, others: [] };
+    case 'magnet':
+      return { positive: material.recoil, others: material.remanence };
+    case 'directed-magnet': {
+      const { direction, recoil, along } = material;
+      const { angle, turns = 0, centre = [], gradient = [] } = direction;
+      const strength = typeof along === 'number' ? [along] : [];
+      return { positive: recoil, others: [angle, turns, ...centre, ...gradient, ...strength] };
+    }
+    case 'curve':
+      return { positive: 1, others: [] };
+    default:
+      return unreachable(material);
+  }
 }
 
 /** Int32Array(functions m): the unknown of each local function of each triangle, -1 where it is fixed. */

@@ -5,6 +5,7 @@ import type { Mesh } from '../mesh/mesh.js';
 import { cornerCount, edgeCount, nodeCount, nodePoint } from '../mesh/mesh.js';
 import { currentDensities } from './currents.js';
 import type { EdgeCondition, Setup } from './setup.js';
+import { own } from './setup.js';
 
 /**
  * How the potential at the nodes follows from the unknowns: A[node] = sign[node] u[unknownOf[node]] + fixed[node].
@@ -124,7 +125,7 @@ function conditionsOf(mesh: Mesh, setup: Setup): EdgeCondition[] {
   }
   const conditions = mesh.sideNames.map((side): EdgeCondition => {
     if (mesh.beyond !== undefined) return { kind: 'repeating' }; // the rim and its image
-    return setup.edges?.[side] ?? { kind: 'closed' };
+    return own(setup.edges, side) ?? { kind: 'closed' };
   });
   for (let e = 0; e < edgeCount(mesh); e++) {
     const side = mesh.edgeToSide[e];
@@ -311,8 +312,7 @@ function checkReturn(mesh: Mesh, setup: Setup): void {
     net += density * areas[region];
     gross += Math.abs(density) * areas[region];
   });
-  // Eight edges round a circle miss 8e-4 of its area: no reason to refuse bars that carry the same current.
-  if (Math.abs(net) <= 1e-3 * gross) return;
+  if (Math.abs(net) <= 1e-9 * gross) return; // rounding
   throw new InputError([
     {
       code: 'no-return',

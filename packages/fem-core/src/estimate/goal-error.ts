@@ -1,3 +1,4 @@
+import { currentDensities } from '../assembly/currents.js';
 import { materialOf } from '../assembly/setup.js';
 import type { System } from '../assembly/system.js';
 import { gatherToUnknowns, potentialOf } from '../assembly/unknowns.js';
@@ -9,7 +10,7 @@ import type { Material } from '../materials/material.js';
 import type { Mesh } from '../mesh/mesh.js';
 import { triangleCount } from '../mesh/mesh.js';
 import type { Tangent } from '../solve/tangent.js';
-import { solveTangent } from '../solve/tangent.js';
+import { solveTangents } from '../solve/tangent.js';
 import type { RecoveredGradient } from './recovery.js';
 import { recoverGradients } from './recovery.js';
 
@@ -52,7 +53,7 @@ export function estimateGoalErrors(
   goals: readonly Functional[],
 ): ErrorEstimate {
   const { mesh } = field;
-  const duals = goals.map((goal) => solveAdjoint(system, tangent, goal));
+  const duals = solveAdjoints(system, tangent, goals);
   const [recovered, ...recoveredDuals] = recoverGradients(mesh, smoothParts(field), [field.potential, ...duals]);
   const m = triangleCount(mesh);
   const shares = goals.map(() => new Float64Array(m));
@@ -87,11 +88,16 @@ export function estimateGoalErrors(
 
 const ORIGIN = [0, 0] as const;
 
-function solveAdjoint(system: System, tangent: Tangent, goal: Functional): Float64Array {
-  const right = gatherToUnknowns(system.unknowns, goal, new Float64Array(system.unknowns.count));
-  const z = solveTangent(tangent, right, right);
+function solveAdjoints(system: System, tangent: Tangent, goals: readonly Functional[]): Float64Array[] {
   const { unknowns } = system;
-  return potentialOf({ ...unknowns, fixed: new Float64Array(goal.length) }, z, new Float64Array(goal.length));
+  const n = unknowns.count;
+  const right = new Float64Array(n * goals.length);
+  goals.forEach((goal, k) => {
+    gatherToUnknowns(unknowns, goal, right.subarray(k * n, (k + 1) * n));
+  });
+  solveTangents(tangent, right, right, goals.length);
+  const free = { ...unknowns, fixed: new Float64Array(unknowns.fixed.length) };
+  return goals.map((goal, k) => potentialOf(free, right.subarray(k * n, (k + 1) * n), new Float64Array(goal.length)));
 }
 
 /** Element gradient of a nodal function at a quadrature point, and recovered less element gradient. */
@@ -129,15 +135,18 @@ function measureGap(
   out.ey = ry - gy;
 }
 
-/** By triangle: regions of one law belong to one part, across which the gradient has no jump: air and a winding without current. */
-export function smoothParts(field: Field): Int32Array {
-  const { mesh, setup } = field;
-  const seen: Material[] = [];
-  const partOf = mesh.regionNames.map((name) => {
+/**
+ * By triangle: regions of one law and one current density belong to one part, within which the gradient is smooth: air and a
+ * winding without current. Where the density jumps, the gradient has a kink.
+ */
+export function smoothParts({ mesh, setup }: Field): Int32Array {
+  const density = currentDensities(mesh, setup);
+  const seen: { readonly material: Material; readonly density: number }[] = [];
+  const partOf = mesh.regionNames.map((name, region) => {
     const material = materialOf(setup, name);
     if (material === undefined) return -1;
-    const known = seen.findIndex((other) => sameLaw(other, material));
-    return known >= 0 ? known : seen.push(material) - 1;
+    const known = seen.findIndex((other) => other.density === density[region] && sameLaw(other.material, material));
+    return known >= 0 ? known : seen.push({ material, density: density[region] }) - 1;
   });
   return Int32Array.from(mesh.triangleToRegion, (region) => partOf[region]);
 }

@@ -1,7 +1,8 @@
-import { materialOf } from '../assembly/setup.js';
+import { materialOf, own } from '../assembly/setup.js';
 import { InputError } from '../base/fault.js';
 import { newHeap, popHeap, pushHeap } from '../base/heap.js';
 import { globalNode } from '../elements/six-node.js';
+import { SNAP } from '../geometry/limits.js';
 import { BEYOND_REGION } from '../geometry/unbounded.js';
 import type { Mesh } from '../mesh/mesh.js';
 import { cornerCount, edgeCount, nodeCount, nodePoint, triangleCount } from '../mesh/mesh.js';
@@ -12,7 +13,7 @@ export function airRegions({ mesh, setup }: Field): string[] {
   return mesh.regionNames.filter((name) => {
     if (name === BEYOND_REGION) return false; // an image: distances there are not those of space
     const material = materialOf(setup, name);
-    const current = (setup.currentDensity?.[name] ?? 0) !== 0 || (setup.current?.[name] ?? 0) !== 0;
+    const current = (own(setup.currentDensity, name) ?? 0) !== 0 || (own(setup.current, name) ?? 0) !== 0;
     return material?.kind === 'linear' && material.muR === 1 && !current;
   });
 }
@@ -68,10 +69,12 @@ function placesOf(field: Field, regions: readonly string[]): Uint8Array {
       'a force is defined on a body with air all round it; name all parts that move together',
     );
   }
-  // Stress on the outline pushes whatever lies beyond; on bound sides what leaves by the one comes in by the other.
+  // Stress on the outline pushes whatever lies beyond; on bound sides what leaves by the one comes in by the other, and a
+  // side that cuts the body is a plane of symmetry, along which there is no stress.
+  const cut = sidesWith(mesh, place);
   for (let e = 0; e < edgeCount(mesh); e++) {
     const side = mesh.edgeToSide[e];
-    if (side < 0 || isBound(field, side)) continue;
+    if (side < 0 || cut.has(side) || isBound(field, side)) continue;
     for (const node of nodesOfEdge(mesh, e)) other[node] = 1;
   }
   return place.map((at, node) => (at === AIR && other[node] === 1 ? OTHER : at));
@@ -81,6 +84,33 @@ function placesOf(field: Field, regions: readonly string[]): Uint8Array {
   }
 }
 
+/** Sides of the outline that the body touches. */
+function sidesWith(mesh: Mesh, place: Uint8Array): Set<number> {
+  const sides = new Set<number>();
+  for (let e = 0; e < edgeCount(mesh); e++) {
+    if (mesh.edgeToSide[e] >= 0 && nodesOfEdge(mesh, e).some((node) => place[node] === BODY))
+      sides.add(mesh.edgeToSide[e]);
+  }
+  return sides;
+}
+
+/**
+ * Whether a side of the outline that is not bound cuts the body, and across which axes: there the body goes on as its mirror
+ * image, and the stress in the cut is not known.
+ */
+export function cutsAcross(field: Field, regions: readonly string[]): { readonly x: boolean; readonly y: boolean } {
+  const { mesh } = field;
+  const cut = [...sidesWith(mesh, placesOf(field, regions))].filter((side) => !isBound(field, side));
+  const across = (k: 0 | 1): boolean =>
+    mesh.edgeToSide.some((side, e) => {
+      if (!cut.includes(side)) return false;
+      const [a, b] = [2 * mesh.edges[2 * e], 2 * mesh.edges[2 * e + 1]];
+      const along = Math.abs(mesh.xy[b + 1 - k] - mesh.xy[a + 1 - k]);
+      return along > 1e-9 * Math.abs(mesh.xy[b + k] - mesh.xy[a + k]); // it runs along the other axis, at least in part
+    });
+  return { x: across(0), y: across(1) };
+}
+
 const nodesOfEdge = (mesh: Mesh, e: number): readonly [number, number, number] => [
   mesh.edges[2 * e],
   mesh.edges[2 * e + 1],
@@ -88,7 +118,7 @@ const nodesOfEdge = (mesh: Mesh, e: number): readonly [number, number, number] =
 ];
 
 function isBound({ mesh, setup }: Field, side: number): boolean {
-  const kind = setup.edges?.[mesh.sideNames[side]]?.kind;
+  const kind = own(setup.edges, mesh.sideNames[side])?.kind;
   return mesh.beyond === undefined && (kind === 'repeating' || kind === 'reversing');
 }
 
@@ -123,7 +153,8 @@ function surroundingsOf(field: Field): Surroundings {
 /**
  * Distance of every node from the edges that lie wholly on `kind`, through the mesh: each node hands the edge nearest to it on to
  * its neighbours, the nearest node first (Dijkstra, A note on two problems in connexion with graphs, 1959, with true distances
- * from the edge in place of lengths of the way). Over a bound side the edge is handed on shifted.
+ * from the edge in place of lengths of the way). Over a bound side the edge is handed on shifted. An edge must be nearer by a
+ * hair than the one before: shifts to and fro, rounded, may bring one nearer each time, for ever.
  */
 function distancesFrom(
   mesh: Mesh,
@@ -136,9 +167,10 @@ function distancesFrom(
   const nearest = new Int32Array(nodes).fill(-1);
   const shift = new Float64Array(2 * nodes);
   const heap = newHeap();
+  const hair = SNAP * extentOf(mesh);
   const offer = (node: number, e: number, dx: number, dy: number): void => {
     const d = place[node] === kind ? 0 : distanceToEdge(mesh, e, node, dx, dy);
-    if (!(d < distance[node])) return;
+    if (!(d < distance[node] - hair)) return;
     distance[node] = d;
     nearest[node] = e;
     shift[2 * node] = dx;
@@ -164,6 +196,17 @@ function distancesFrom(
     }
   }
   return distance;
+}
+
+/** The longer of width and height, m. */
+function extentOf(mesh: Mesh): number {
+  const low = [Infinity, Infinity];
+  const high = [-Infinity, -Infinity];
+  for (let k = 0; k < mesh.xy.length; k++) {
+    low[k % 2] = Math.min(low[k % 2], mesh.xy[k]);
+    high[k % 2] = Math.max(high[k % 2], mesh.xy[k]);
+  }
+  return Math.max(high[0] - low[0], high[1] - low[1]);
 }
 
 /** Distance of a node from an edge, taken as straight, shifted by (dx, dy). */

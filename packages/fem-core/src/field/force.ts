@@ -1,7 +1,7 @@
 import { MU0 } from '../base/constants.js';
 import { FULL_RULE, globalNode } from '../elements/six-node.js';
 import { nodeCount, triangleCount } from '../mesh/mesh.js';
-import { airLayer, airRegions } from './air-layer.js';
+import { airLayer, airRegions, cutsAcross } from './air-layer.js';
 import type { Field } from './field.js';
 import type { Functional } from './functionals.js';
 import type { FieldSample } from './integrals.js';
@@ -24,6 +24,9 @@ export interface Force {
  * with w = 1 on the body and 0 on all else (`airLayer`); no path enters. Coulomb, A methodology for the determination of
  * global electromechanical quantities, IEEE Trans. Magn. 19, 1983.
  *
+ * A body that a side of the outline cuts in two is taken for one half of a symmetric one: the force along the side is that on
+ * the half; across it, and the torque, are NaN, for the stress in the cut is not known.
+ *
  * @param layer  `airLayer(field, regions)`, where it is known already
  * @throws InputError where the body is not surrounded by air (linear, mu_r = 1, no current) or touches another body
  */
@@ -44,7 +47,12 @@ export function forceOn(
     fy += py;
     torque += (s.x - about[0]) * py - (s.y - about[1]) * px;
   });
-  return { fx, fy, torque };
+  const cut = cutsAcross(field, regions);
+  return {
+    fx: cut.x ? Number.NaN : fx,
+    fy: cut.y ? Number.NaN : fy,
+    torque: cut.x || cut.y ? Number.NaN : torque,
+  };
 }
 
 /** Visits the samples of air where the layer's function changes, with its gradient, 1/m. */

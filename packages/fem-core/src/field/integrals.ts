@@ -1,4 +1,4 @@
-import { materialOf } from '../assembly/setup.js';
+import { materialOf, VACUUM } from '../assembly/setup.js';
 import { MU0 } from '../base/constants.js';
 import { FULL_RULE, globalNode, gradients, nodeCoordinates } from '../elements/six-node.js';
 import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
@@ -94,8 +94,6 @@ export function forEachSample(
     }
   }
 }
-
-const VACUUM: Material = { kind: 'linear', muR: 1 };
 
 export interface RegionMeans {
   /** m^2. */

@@ -1,4 +1,4 @@
-import { materialOf } from '../assembly/setup.js';
+import { materialOf, VACUUM } from '../assembly/setup.js';
 import { MU0 } from '../base/constants.js';
 import { globalNode, nodeCoordinates, shapeValues } from '../elements/six-node.js';
 import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
@@ -53,8 +53,6 @@ function describePoint(material: Material, a: number, bx: number, by: number, x:
   const { hx, hy, nu, energy } = evaluateMaterial(material, bx, by, x, y, newLaw());
   return { a, bx, by, hx, hy, muR: 1 / (MU0 * nu), energy, coenergy: hx * bx + hy * by - energy };
 }
-
-const VACUUM: Material = { kind: 'linear', muR: 1 };
 
 /**
  * The triangle that holds a point: in unbounded space, of points beyond the circle, that of the image; undefined outside a

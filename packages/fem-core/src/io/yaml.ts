@@ -66,24 +66,33 @@ const REMEDIES: Partial<Readonly<Record<ErrorCode, string>>> = {
  * @throws InputError for text that is not YAML, is empty, holds several documents, or goes beyond a bound
  */
 export function readDocument(text: string, file: string): Document {
-  const lines = new LineCounter();
+  const lines = lineCounterOf(text);
   const placeAt: PlaceAt = (offset) => {
     const { line, col } = lines.linePos(offset);
     return { file, line, column: col };
   };
-  const parsed = compose(text, lines, placeAt);
+  const parsed = compose(text, placeAt);
   const faults: Fault[] = [];
   const root = buildTree(parsed, placeAt, faults);
   return { root, faults };
 }
 
-function compose(text: string, lines: LineCounter, placeAt: PlaceAt): ParsedDocument {
-  lines.addNewLine(0);
+/** Of the text itself: the parser does not tell of line ends in what it has given up on. */
+function lineCounterOf(text: string): LineCounter {
+  const lines = new LineCounter();
+  for (let start = 0; ; ) {
+    lines.addNewLine(start);
+    start = text.indexOf('\n', start) + 1;
+    if (start === 0) return lines;
+  }
+}
+
+function compose(text: string, placeAt: PlaceAt): ParsedDocument {
   if (text.length > DOCUMENT_BOUNDS.length) throw overBound('length', placeAt(0));
   // Schema and merge are fixed, so that a %YAML directive cannot bring back the rules of YAML 1.1; keys given twice are
   // found below, as the library's own search takes a time that grows with the square of their number.
   const rules = { schema: 'core', merge: false, uniqueKeys: false, prettyErrors: false, logLevel: 'silent' } as const;
-  const documents = new Composer(rules).compose(tokensOf(text, lines, placeAt), true, text.length);
+  const documents = new Composer(rules).compose(tokensOf(text, placeAt), true, text.length);
   const parsed = documents.next().value as ParsedDocument; // one at least, as asked for by `true`
   const faults = parsed.errors.map(({ code, message, pos }) => syntaxFault(placeAt(pos[0]), code, message));
   const second = documents.next().value;
@@ -106,8 +115,8 @@ function compose(text: string, lines: LineCounter, placeAt: PlaceAt): ParsedDocu
 }
 
 /** The text's tokens; stops where a bound is passed, before the library recurses into what it read. */
-function* tokensOf(text: string, lines: LineCounter, placeAt: PlaceAt) {
-  const parser = new Parser(lines.addNewLine);
+function* tokensOf(text: string, placeAt: PlaceAt) {
+  const parser = new Parser();
   let lexemes = 0;
   for (const lexeme of new Lexer().lex(text)) {
     yield* parser.next(lexeme);

@@ -18,11 +18,13 @@ export interface LocalLaw {
   yy: number;
   /** Chord reluctivity, m/H: H/B of steel, (H along)/(B along - Br) of a magnet; 1/(mu0 nu) is the relative permeability told. */
   nu: number;
+  /** The same across the magnetisation of a magnet with a knee, where it is that of the recoil; else as `nu`. */
+  nuAcross: number;
   /** J/m^3: integral of H dB from B = 0, of magnets from the remanence. */
   energy: number;
 }
 
-export const newLaw = (): LocalLaw => ({ hx: 0, hy: 0, xx: 0, xy: 0, yy: 0, nu: 0, energy: 0 });
+export const newLaw = (): LocalLaw => ({ hx: 0, hy: 0, xx: 0, xy: 0, yy: 0, nu: 0, nuAcross: 0, energy: 0 });
 
 const curvePoint: CurvePoint = { h: 0, slope: 0, energy: 0 };
 const alongPoint: DemagnetisationPoint = { h: 0, slope: 0, energy: 0 };
@@ -61,6 +63,7 @@ function isotropic(nu: number, px: number, py: number, out: LocalLaw): LocalLaw 
   out.xy = 0;
   out.yy = nu;
   out.nu = nu;
+  out.nuAcross = nu;
   out.energy = 0.5 * nu * (px * px + py * py);
   return out;
 }
@@ -78,6 +81,7 @@ function saturating(material: Extract<Material, { kind: 'curve' }>, bx: number, 
   out.xy = spread * bx * by;
   out.yy = nu + spread * by * by;
   out.nu = nu;
+  out.nuAcross = nu;
   out.energy = curvePoint.energy;
   return out;
 }
@@ -121,6 +125,7 @@ function directed(
   out.xy = c * s * (nuAlong - nuAcross);
   out.yy = s * s * nuAlong + c * c * nuAcross;
   out.nu = chord;
+  out.nuAcross = nuAcross;
   out.energy = energy + 0.5 * hAcross * across;
   return out;
 }

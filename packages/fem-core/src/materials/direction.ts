@@ -22,7 +22,3 @@ export function directionAt({ angle, centre = [0, 0], turns = 0, gradient }: Dir
   const round = turns === 0 ? 0 : turns * Math.atan2(dy, dx);
   return angle + round + (gradient === undefined ? 0 : gradient[0] * dx + gradient[1] * dy);
 }
-
-/** True where the direction is the same everywhere. */
-export const isUniform = ({ turns = 0, gradient = [0, 0] }: Direction): boolean =>
-  turns === 0 && gradient[0] === 0 && gradient[1] === 0;

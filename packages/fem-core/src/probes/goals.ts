@@ -1,3 +1,4 @@
+import { currentDensities } from '../assembly/currents.js';
 import { regionAreas } from '../elements/areas.js';
 import { FULL_RULE, globalNode, gradients, nodeCoordinates } from '../elements/six-node.js';
 import type { RecoveredGradient } from '../estimate/recovery.js';
@@ -31,15 +32,25 @@ export function energyGoals(
     }
   });
   const { energy, coenergy } = energiesOf(field);
+  const bounded = hasBound(field);
   let remanent = 0;
   forEachSample(field, 'all', (s) => {
     remanent += s.area * evaluateMaterial(s.material, 0, 0, s.x, s.y, law).energy;
   });
+  const size = Math.max(energy, 0.01 * remanent);
   const remainder = (recovered: RecoveredGradient): Float64Array => energyOfError(field, recovered);
   return [
-    { value: energy, functional: byH, weight: weight(Math.max(energy, 0.01 * remanent)), remainder },
-    { value: coenergy, functional: byB, weight: 0, remainder },
+    { value: bounded ? energy : Number.NaN, functional: byH, weight: weight(size), remainder }, // steers all the same
+    { value: bounded ? coenergy : Number.NaN, functional: byB, weight: 0, remainder },
   ];
+}
+
+/** In unbounded space the energy of a net current grows without end. */
+function hasBound({ mesh, setup, netCurrent = 0 }: Field): boolean {
+  if (netCurrent === 0) return true;
+  const areas = regionAreas(mesh);
+  const gross = currentDensities(mesh, setup).reduce((sum, density, k) => sum + Math.abs(density) * areas[k], 0);
+  return Math.abs(netCurrent) <= 1e-9 * gross;
 }
 
 /** By triangle: integral of e . dH/dB e / 2, with e the gap between recovered and element flux density, J/m. */

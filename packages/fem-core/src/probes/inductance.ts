@@ -48,6 +48,7 @@ export function inductancesAt(
   coils: readonly Coil[],
 ): Inductances {
   const { field, system } = solved;
+  for (const coil of coils) checkReturn(system, coil);
   const linkages = coils.map((coil) => linkageOf(field, coil));
   const known = solved.tangent !== undefined && 'blocks' in solved.tangent ? solved.tangent.analysis : undefined;
   const analysis = known ?? analyseSystem(system);
@@ -70,6 +71,22 @@ export function inductancesAt(
     error: byTangent.map((a, i) => byTangent.map((b, j) => productOfGaps(field, a, gradients[i], b, gradients[j]))),
     coupling: couplingOf(incremental),
   };
+}
+
+/** Where nothing but infinity, or a pinned node, holds A, a coil has an inductance only if its turns come back. */
+function checkReturn({ mesh, unknowns }: System, coil: Coil): void {
+  const net = coil.sides.reduce((sum, { turns }) => sum + turns, 0);
+  const gross = coil.sides.reduce((sum, { turns }) => sum + Math.abs(turns), 0);
+  if (!(gross > 0) || !Number.isFinite(gross)) {
+    throw fault(coil, 'has no turns', 'give turns that are finite and not all 0');
+  }
+  const fixed = unknowns.unknownOf.reduce((count, i) => count + (i < 0 ? 1 : 0), 0);
+  if ((mesh.beyond === undefined && fixed > 1) || Math.abs(net) <= 1e-9 * gross) return;
+  throw fault(coil, `has turns that sum to ${net}, and no side that holds A`, 'name the side by which it returns');
+}
+
+function fault(coil: Coil, wrong: string, remedy: string): InputError {
+  return new InputError([{ code: 'no-return', key: `coils.${coil.name}`, wrong, remedy }]);
 }
 
 /** By reciprocity L_ij = L_ji; the mean takes rounding out. */

@@ -32,7 +32,7 @@ export interface ProbeAt {
 /** Places along a line at which the error of A is estimated. */
 const LINE_SAMPLES = 5;
 /** A force below this share of the stress all round its body is measured by that instead: most of the stress cancels. */
-const BALANCED = 0.1;
+const BALANCED = 0.01;
 /** The same for fluxes, by all the flux there is. */
 const NO_FLUX = 1e-3;
 
@@ -157,14 +157,16 @@ function forceAt({ name, on, about = [0, 0] }: Extract<Probe, { kind: 'force' }>
   const { fx, fy, torque } = forceOn(field, on, about, layer);
   const by = forceFunctionals(field, about, layer);
   const stress = stressSize(field, layer, about);
-  const size = Math.max(Math.hypot(fx, fy), BALANCED * stress.force);
+  const known = (value: number): number => (Number.isNaN(value) ? 0 : value); // of a body cut in two
+  const size = Math.max(Math.hypot(known(fx), known(fy)), BALANCED * stress.force);
   const push = (recovered: RecoveredGradient): Float64Array => forceRemainder(field, layer, recovered);
   const twist = (recovered: RecoveredGradient): Float64Array => forceRemainder(field, layer, recovered, about);
+  const bound = (value: number): { readonly size?: number } => (Number.isNaN(value) ? {} : { size });
   return {
     kind: 'force',
     figures: [
-      { value: fx, functional: by.fx, size, remainder: push },
-      { value: fy, functional: by.fy, size, remainder: push },
+      { value: fx, functional: by.fx, ...bound(fx), remainder: push },
+      { value: fy, functional: by.fy, ...bound(fy), remainder: push },
       { value: torque, functional: by.torque, remainder: twist },
     ],
     describe: ([ex, ey, torqueError]) => ({
@@ -173,7 +175,10 @@ function forceAt({ name, on, about = [0, 0] }: Extract<Probe, { kind: 'force' }>
       fx,
       fy,
       torque,
-      error: { force: Math.hypot(ex, ey), torque: torqueError },
+      error: {
+        force: Math.hypot(Number.isNaN(fx) ? 0 : ex, Number.isNaN(fy) ? 0 : ey),
+        torque: Number.isNaN(torque) ? Number.NaN : torqueError,
+      },
     }),
   };
 }

@@ -9,6 +9,7 @@ import type { AdaptiveSolution, GoalAt, MeshProgress } from '../pipeline.js';
 import { adaptiveSteps } from '../pipeline.js';
 import type { NewtonOptions, NewtonProgress } from '../solve/newton.js';
 import type { Tangent } from '../solve/tangent.js';
+import { checkProbes } from './check-probes.js';
 import { energyGoals } from './goals.js';
 import type { Answer, Probe } from './probe.js';
 import type { ProbeAt } from './probe-at.js';
@@ -34,7 +35,7 @@ export interface SectionAnswer {
   readonly recovered: Float64Array;
   /** In the order of the probes. */
   readonly answers: readonly Answer[];
-  /** J/m; in unbounded space of all of it. */
+  /** J/m; in unbounded space of all of it, and NaN where the currents there do not cancel: it has no bound then. */
   readonly energy: number;
   readonly coenergy: number;
   /** Bounds of their errors, J/m. */
@@ -72,6 +73,7 @@ export function* probeSteps(
   probes: readonly Probe[],
   options: ProbeOptions,
 ): Steps<NewtonProgress | MeshProgress, SectionAnswer> {
+  checkProbes(section, probes, options.accuracy);
   let wanted: readonly ProbeAt[] = [];
   const solution = yield* adaptiveSteps(section, setup, {
     ...options,

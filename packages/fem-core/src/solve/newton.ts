@@ -8,7 +8,7 @@ import type { Factor } from '../sparse/cholesky.js';
 import type { SymmetricPattern } from '../sparse/pattern.js';
 import { multiply } from '../sparse/pattern.js';
 import type { Tangent } from './tangent.js';
-import { analyseSystem, buildTangent, solveTangent } from './tangent.js';
+import { analyseSystem, buildTangent, NoSolution, solveTangent } from './tangent.js';
 
 export interface NewtonOptions {
   /** Wanted ratio of the residual to that at A = 0 (with the held values), 2-norms. */
@@ -121,7 +121,12 @@ export function* newtonSteps(system: System, options: NewtonOptions = {}): Steps
     if ('failure' in built) return finish(built.failure);
     last = built;
     if (reached) return finish(); // the start was the solution; adjoint problems need the factor all the same
-    solveTangent(built, residual, step);
+    try {
+      solveTangent(built, residual, step);
+    } catch (error) {
+      if (error instanceof NoSolution) return finish(error.message);
+      throw error;
+    }
     for (let i = 0; i < n; i++) step[i] = -step[i];
     stepLengths.push(searchLine(u, step, trial, residual, at));
     u.set(trial);

@@ -3,7 +3,7 @@ import type { System } from '../assembly/system.js';
 import type { Analysis } from '../sparse/analysis.js';
 import { analyse } from '../sparse/analysis.js';
 import type { Factor } from '../sparse/cholesky.js';
-import { factor, solve } from '../sparse/cholesky.js';
+import { factor, solve, solveMany } from '../sparse/cholesky.js';
 import { chooseOrder } from '../sparse/choose-order.js';
 import { solveByConjugateGradients } from '../sparse/conjugate-gradients.js';
 import type { SymmetricPattern } from '../sparse/pattern.js';
@@ -46,9 +46,15 @@ export function buildTangent(
   if (analysis.peakBytes > memory || (before !== undefined && 'level' in before)) {
     return iterative(system, values, before);
   }
-  const factored = factor(analysis, values, { reuse: before !== undefined && 'blocks' in before ? before : undefined });
-  if ('blocks' in factored) return factored;
-  return { failure: `the tangent is not positive definite (pivot ${factored.pivot})` };
+  try {
+    const reuse = before !== undefined && 'blocks' in before ? before : undefined;
+    const factored = factor(analysis, values, { reuse });
+    if ('blocks' in factored) return factored;
+    return { failure: `the tangent is not positive definite (pivot ${factored.pivot})` };
+  } catch (error) {
+    if (error instanceof RangeError) return iterative(system, values, undefined); // the host has less memory than asked for
+    throw error;
+  }
 }
 
 function iterative(system: System, values: Float64Array, before: Tangent | undefined): IterativeTangent {
@@ -61,9 +67,22 @@ function iterative(system: System, values: Float64Array, before: Tangent | undef
 /** Residual to which conjugate gradients bring each system: Newton's method and the error estimates need no more. */
 const TOLERANCE = 1e-11;
 
+/** Thrown where a system has no solution to be had. */
+export class NoSolution extends Error {
+  override readonly name = 'NoSolution';
+}
+
+/** Solves with the tangent for `count` right-hand sides one after another, Float64Array(count n); see `solveTangent`. */
+export function solveTangents(tangent: Tangent, b: Float64Array, x: Float64Array, count: number): Float64Array {
+  if ('blocks' in tangent) return solveMany(tangent, b, x, count);
+  const n = b.length / Math.max(1, count);
+  for (let k = 0; k < count; k++) solveTangent(tangent, b.subarray(k * n, (k + 1) * n), x.subarray(k * n, (k + 1) * n));
+  return x;
+}
+
 /**
  * Solves with the tangent; `b` and `x`, Float64Array(n), may be the same array; `x` is overwritten and returned.
- * @throws Error where conjugate gradients fail, which they do for matrices that are not positive definite
+ * @throws NoSolution where conjugate gradients fail, which they do for matrices that are not positive definite
  */
 export function solveTangent(tangent: Tangent, b: Float64Array, x: Float64Array): Float64Array {
   if ('blocks' in tangent) return solve(tangent, b, x);
@@ -72,7 +91,7 @@ export function solveTangent(tangent: Tangent, b: Float64Array, x: Float64Array)
   const options = { tolerance: TOLERANCE, ...(level === undefined ? {} : { level }) };
   const { outcome, residual } = solveByConjugateGradients(pattern, values, b, found, options);
   if (outcome !== 'converged' && !(outcome === 'stalled' && residual < ACCEPTABLE)) {
-    throw new Error(`solveTangent: conjugate gradients ended ${outcome} at a residual of ${residual}`);
+    throw new NoSolution(`conjugate gradients ended ${outcome} at a residual of ${residual}`);
   }
   x.set(found);
   return x;

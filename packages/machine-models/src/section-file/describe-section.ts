@@ -4,7 +4,6 @@ import {
   measureMesh,
   nodeCount,
   type Probe,
-  regionAreas,
   type SectionAnswer,
   triangleCount,
 } from '@gapwright/fem-core';
@@ -189,26 +188,16 @@ function solutionWarnings(problem: SectionProblem, answer: SectionAnswer): reado
     const text = `the wanted accuracy of ${figure(100 * problem.accuracy)} % was not reached; see rel_err`;
     warnings.push({ key: 'model.accuracy', text });
   }
-  if (problem.section.open === true) warnings.push(...netCurrent(problem, answer));
+  if (problem.section.open === true) warnings.push(...netCurrent(answer));
   return warnings;
 }
 
-/** Share of all currents by which they may miss a sum of nothing: bars drawn round miss their area a little. */
-const NEGLIGIBLE_CURRENT = 1e-3;
-
 /** Currents that do not return near by: their energy grows without bound with the space that is counted. */
-function netCurrent({ section, setup }: SectionProblem, { field }: SectionAnswer): readonly Warning[] {
-  const areas = regionAreas(field.mesh);
-  let [net, gross] = [0, 0];
-  field.mesh.regionNames.forEach((name, k) => {
-    if (!section.regions.some((region) => region.name === name)) return;
-    const current = (setup.current?.[name] ?? 0) + (setup.currentDensity?.[name] ?? 0) * areas[k];
-    net += current;
-    gross += Math.abs(current);
-  });
-  if (Math.abs(net) <= NEGLIGIBLE_CURRENT * gross) return [];
+function netCurrent(answer: SectionAnswer): readonly Warning[] {
+  if (!Number.isNaN(answer.energy)) return [];
   const text =
-    `the currents sum to ${figure(net)} A, and nothing in the section returns it: in unbounded space energy, linkages and ` +
-    'A itself then have no bound; B, forces and fluxes stand within the circle round the outline, but not beyond it';
+    `the currents sum to ${figure(answer.field.netCurrent ?? 0)} A, and nothing in the section returns it: in unbounded space the ` +
+    'energy then has no bound and is left out, and A and linkages are counted from a level of their own; B, forces and ' +
+    'differences of A stand';
   return [{ key: 'regions', text }];
 }

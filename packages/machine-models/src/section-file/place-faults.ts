@@ -36,6 +36,9 @@ function pathOf({ code, key }: Fault, file: SectionFile): Path | undefined {
     case 'open':
     case 'matched':
       return ['edges'];
+    case 'current':
+    case 'currentDensity':
+      return pathOfCurrent(rest.join('.'), first, file);
   }
   return pathOfRegion(key, file) ?? pathOfProbe(key, file) ?? pathOfEdge(key, file);
 }
@@ -63,6 +66,11 @@ function pathOfRegion(key: string, file: SectionFile): Path | undefined {
   }
   const index = file.regions.findIndex(({ name }) => name === key);
   return index < 0 ? undefined : ['regions', index, 'name'];
+}
+
+function pathOfCurrent(region: string, kind: 'current' | 'currentDensity', file: SectionFile): Path | undefined {
+  const index = file.regions.findIndex(({ name }) => name === region);
+  return index < 0 ? undefined : ['regions', index, kind === 'current' ? 'current' : 'current_density'];
 }
 
 /** `corners.3` of the solver is `polygon.3` of the file. */

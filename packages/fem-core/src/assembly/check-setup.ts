@@ -1,0 +1,70 @@
+import type { Fault } from '../base/fault.js';
+import { InputError } from '../base/fault.js';
+import { regionAreas } from '../elements/areas.js';
+import type { Mesh } from '../mesh/mesh.js';
+import type { EdgeCondition, Setup } from './setup.js';
+import { materialOf } from './setup.js';
+
+const CONDITIONS: readonly EdgeCondition['kind'][] = [
+  'closed',
+  'crossing',
+  'repeating',
+  'reversing',
+  'applied',
+  'potential',
+];
+
+/**
+ * Checks what the types do not: plain JavaScript may hand over anything, and names may be mistyped.
+ * @throws InputError with everything wrong: currents of regions that do not exist or cover nothing, numbers that are not finite,
+ * unknown edge conditions, directions that do not come back to themselves
+ */
+export function checkSetup(mesh: Mesh, setup: Setup): void {
+  const faults = [...currentFaults(mesh, setup), ...edgeFaults(setup), ...directionFaults(mesh, setup)];
+  if (faults.length > 0) throw new InputError(faults);
+}
+
+function* currentFaults(mesh: Mesh, setup: Setup): Generator<Fault> {
+  const areas = regionAreas(mesh);
+  for (const group of ['current', 'currentDensity'] as const) {
+    for (const [name, value] of Object.entries(setup[group] ?? {})) {
+      const key = `${group}.${name}`;
+      const region = mesh.regionNames.indexOf(name);
+      if (typeof value !== 'number' || !Number.isFinite(value)) {
+        yield {
+          code: 'not-finite',
+          key,
+          wrong: `must be a finite number, got ${String(value)}`,
+          remedy: 'give amperes',
+        };
+      } else if (region < 0) {
+        yield {
+          code: 'no-region',
+          key,
+          wrong: 'is no region',
+          remedy: `regions here are: ${mesh.regionNames.join(', ')}`,
+        };
+      } else if (group === 'current' && value !== 0 && areas[region] === 0) {
+        const wrong = `has ${value} A to carry, but later regions cover all of it`;
+        yield { code: 'covered', key, wrong, remedy: 'draw it later, or leave its current out' };
+      }
+    }
+  }
+}
+
+function* edgeFaults(setup: Setup): Generator<Fault> {
+  for (const [side, condition] of Object.entries(setup.edges ?? {})) {
+    if (CONDITIONS.includes(condition.kind)) continue;
+    const wrong = `is of an unknown kind, ${String(condition.kind)}`;
+    yield { code: 'bad-form', key: `edges.${side}`, wrong, remedy: `kinds are: ${CONDITIONS.join(', ')}` };
+  }
+}
+
+function* directionFaults(mesh: Mesh, setup: Setup): Generator<Fault> {
+  for (const name of mesh.regionNames) {
+    const material = materialOf(setup, name);
+    if (material?.kind !== 'directed-magnet' || Number.isInteger(material.direction.turns ?? 0)) continue;
+    const wrong = `turns ${String(material.direction.turns)} times round its centre, and so has a seam`;
+    yield { code: 'bad-form', key: name, wrong, remedy: 'give a whole number of turns' };
+  }
+}

@@ -1,0 +1,67 @@
+import type { Fault } from '../base/fault.js';
+import { InputError } from '../base/fault.js';
+import type { Section } from '../geometry/section.js';
+import { BEYOND_REGION, OUTSIDE_REGION } from '../geometry/unbounded.js';
+import type { Probe } from './probe.js';
+
+/**
+ * Checks what the types do not: plain JavaScript may hand over anything, and names may be mistyped.
+ * @throws InputError with everything wrong, `probes.NAME` or `accuracy` as the key
+ */
+export function checkProbes(section: Section, probes: readonly Probe[], accuracy: number): void {
+  const regions = [section.background, ...section.regions.map(({ name }) => name), OUTSIDE_REGION, BEYOND_REGION];
+  const faults: Fault[] = [];
+  if (!(accuracy >= 0 && accuracy < Infinity)) {
+    const wrong = `must be a number from 0 on, got ${String(accuracy)}`;
+    faults.push({ code: 'out-of-range', key: 'accuracy', wrong, remedy: 'give a share, for example 0.002' });
+  }
+  for (const probe of probes) {
+    const key = `probes.${probe.name}`;
+    for (const name of namesOf(probe)) {
+      if (regions.includes(name)) continue;
+      const wrong = `${String(name)} covers no area: it is no region`;
+      faults.push({ code: 'no-region', key, wrong, remedy: `regions here are: ${regions.slice(0, -2).join(', ')}` });
+    }
+    const wrong = wrongNumber(probe);
+    if (wrong !== undefined)
+      faults.push({ code: 'out-of-range', key, wrong, remedy: 'give a number that makes sense' });
+  }
+  if (faults.length > 0) throw new InputError(faults);
+}
+
+function namesOf(probe: Probe): readonly string[] {
+  switch (probe.kind) {
+    case 'force':
+      return listed(probe.on);
+    case 'mean':
+      return listed(probe.over);
+    case 'linkage':
+      return [probe.of];
+    default:
+      return [];
+  }
+}
+
+/** A text handed over in place of a list would be searched letter by letter. */
+const listed = (names: readonly string[]): readonly string[] => (Array.isArray(names) ? names : [String(names)]);
+
+function wrongNumber(probe: Probe): string | undefined {
+  switch (probe.kind) {
+    case 'line':
+      if (Number.isInteger(probe.points) && probe.points >= 1) return pointless(probe.from) ?? pointless(probe.to);
+      return `points must be a whole number from 1 on, got ${String(probe.points)}`;
+    case 'linkage':
+      return Number.isFinite(probe.turns) ? undefined : `turns must be a finite number, got ${String(probe.turns)}`;
+    case 'point':
+      return pointless(probe.at);
+    case 'flux':
+      return pointless(probe.from) ?? pointless(probe.to);
+    case 'force':
+      return Array.isArray(probe.on) ? pointless(probe.about ?? [0, 0]) : 'on must be a list of names';
+    case 'mean':
+      return Array.isArray(probe.over) ? undefined : 'over must be a list of names';
+  }
+}
+
+const pointless = (at: readonly number[]): string | undefined =>
+  Array.isArray(at) && at.length === 2 && at.every(Number.isFinite) ? undefined : 'a place must be two finite numbers';
