@@ -84,7 +84,10 @@ async function runCommand(
     });
   addCommonOptions(program.command('section'))
     .description('one planar section of any kind: field, energy, forces, fluxes, linkages')
-    .argument('<FILE>', 'section file')
+    .argument(
+      '<FILE>',
+      'section file, of format gapwright-section/1 (README lists its keys; examples: packages/cli/sections)',
+    )
     .option('--out <DIR>', 'write results.json, lines.csv and a picture of the section there')
     .option('--vtu', 'with --out: also the section as VTK XML')
     .action(async (file: string, options: OutputOptions) => {

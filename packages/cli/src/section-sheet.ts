@@ -106,10 +106,14 @@ function probeRows(probe: Exclude<ProbeResult, { readonly kind: 'line' }>, depth
           leftOpen(probe.B_T, probe.B_T_rel_err, 'T'),
         ),
         more(`A ${engineering(probe.A_Wb_per_m)}Wb/m`, leftOpen(probe.A_Wb_per_m, probe.A_Wb_per_m_rel_err, 'Wb/m')),
-        more(`H ${vector(probe.Hx_A_per_m, probe.Hy_A_per_m)} A/m`),
+        more(
+          `H ${vector(probe.Hx_A_per_m, probe.Hy_A_per_m)} A/m`,
+          vectorError(probe.Hx_A_per_m, probe.Hy_A_per_m, probe.Hx_A_per_m_rel_err, probe.Hy_A_per_m_rel_err),
+        ),
       ];
     case 'force_on': {
       const { Fx_N_per_m: fx, Fy_N_per_m: fy, torque_Nm_per_m: torque } = probe;
+      if (!Number.isFinite(torque)) return cutForce(probe, depth);
       return [
         first(`force ${vector(fx, fy)} N/m`, vectorError(fx, fy, probe.Fx_N_per_m_rel_err, probe.Fy_N_per_m_rel_err)),
         more(`torque ${engineering(torque)}Nm/m`, leftOpen(torque, probe.torque_Nm_per_m_rel_err, 'Nm/m')),
@@ -137,6 +141,24 @@ function probeRows(probe: Exclude<ProbeResult, { readonly kind: 'line' }>, depth
         first(`|B| ${figure(probe.B_T)} T, B ${meanVector(probe)} T`, leftOpen(probe.B_T, probe.B_T_rel_err, 'T')),
       ];
   }
+}
+
+/** Of a body that the outline cuts in two only the force along the cut is known. */
+function cutForce(probe: Extract<ProbeResult, { readonly kind: 'force_on' }>, depth: number): SheetRow[] {
+  const parts = [
+    { axis: 'x', perMetre: probe.Fx_N_per_m, error: probe.Fx_N_per_m_rel_err, whole: probe.Fx_N },
+    { axis: 'y', perMetre: probe.Fy_N_per_m, error: probe.Fy_N_per_m_rel_err, whole: probe.Fy_N },
+  ].filter(({ perMetre }) => Number.isFinite(perMetre));
+  const rows = parts.flatMap(({ axis, perMetre, error, whole }, i): SheetRow[] => [
+    {
+      label: i === 0 ? label(probe.name) : '',
+      value: `force ${axis} ${figure(perMetre)} N/m, on half a body`,
+      note: errorNote(error),
+    },
+    { label: '', value: `on ${givenMm(depth)} mm: ${axis} ${figure(whole)} N` },
+  ]);
+  const why = 'the outline cuts the body: across the cut, and the torque, not known';
+  return rows.length > 0 ? [...rows, { label: '', value: why }] : [{ label: label(probe.name), value: why }];
 }
 
 /** Components may cancel in the mean: they stand beside the mean of |B|. */

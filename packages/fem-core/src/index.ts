@@ -32,6 +32,8 @@ export type { Energies, FieldSample, RegionMeans, TriangleMeans } from './field/
 export { energiesOf, forEachSample, meanOver, triangleMeans } from './field/integrals.js';
 export type { Locator, Spot } from './field/locate.js';
 export { buildLocator } from './field/locate.js';
+export type { KneeReport } from './field/past-knee.js';
+export { pastKnee } from './field/past-knee.js';
 export type { FieldStatistics } from './field/statistics.js';
 export { exceededIn, fieldStatistics } from './field/statistics.js';
 export { fieldBuffers } from './field/transfer.js';
@@ -77,7 +79,7 @@ export type { AdaptiveOptions, AdaptiveSolution, Goal, GoalAt, MeshProgress, Sol
 export { adaptiveSteps, solveAdaptively, solveOnMesh, solveSection } from './pipeline.js';
 export type { Coil, InductanceMatrix, Inductances } from './probes/inductance.js';
 export { inductancesAt } from './probes/inductance.js';
-export type { Answer, Probe } from './probes/probe.js';
+export type { Answer, PlaceError, Probe } from './probes/probe.js';
 export type { ProbeOptions, SectionAnswer } from './probes/solve-probes.js';
 export { probeSteps, solveProbes } from './probes/solve-probes.js';
 export type { NewtonOptions, NewtonProgress, Solution, SolveReport } from './solve/newton.js';

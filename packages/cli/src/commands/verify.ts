@@ -104,34 +104,37 @@ function verifyJson(figures: readonly VerifiedFigure[], orders: readonly Verifie
   });
 }
 
-const HEAD = ['case', 'quantity', 'expected', 'got', 'error', 'estimate', 'bound', 'nodes', 'ms', 'verdict'] as const;
-/** Columns of text; the others hold numbers and are set to the right. */
-const TEXT = ['case', 'quantity', 'verdict'];
+const HEAD = ['', 'expected', 'got', 'error', 'estimate', 'bound', ''] as const;
 
+/** A case is a line of its own, its figures stand below it. */
 function verifyText(figures: readonly VerifiedFigure[], orders: readonly VerifiedOrder[], honesty: Honesty): string {
-  const rows = figures.map((figure, i) => {
-    const first = figures[i - 1]?.name !== figure.name;
-    return [
-      first ? figure.name : '',
-      figure.quantity,
-      shortNumber(figure.expected),
-      shortNumber(figure.got),
-      ...[figure.relativeError, figure.estimatedError, figure.bound].map((share) => share.toExponential(1)),
-      first ? String(figure.nodes) : '',
-      first ? figure.ms.toFixed(0) : '',
-      figure.holds ? 'holds' : 'OUT',
-    ];
+  const rows = figures.map((figure) => [
+    `  ${figure.quantity}`,
+    shortNumber(figure.expected),
+    shortNumber(figure.got),
+    ...[figure.relativeError, figure.estimatedError, figure.bound].map((share) => share.toExponential(1)),
+    figure.holds ? 'holds' : 'OUT',
+  ]);
+  const [head, ...lines] = alignColumns([HEAD, ...rows]);
+  const cases = lines.flatMap((line, i) => {
+    const { name, nodes, ms } = figures[i];
+    return figures[i - 1]?.name === name ? [line] : ['', `${name} (${nodes} nodes, ${ms.toFixed(0)} ms)`, line];
   });
   const orderLine = ({ elements, potential, field, expected, holds }: VerifiedOrder): string =>
     `${elements.padEnd(18)}A ${potential.toFixed(2)} (${expected.potential})   B ${field.toFixed(2)} (${expected.field})   ${holds ? 'holds' : 'OUT'}`;
   return [
-    ...alignColumns([HEAD, ...rows]),
+    'error, estimate, bound: true and estimated error and what is allowed, as shares of the value,',
+    'or of the field at hand where that is 0; estimates bind in practice, not always',
+    '',
+    head,
+    ...cases,
     '',
     'orders of convergence by elements, of A and of B in L2 (the energy norm), with what theory promises:',
     ...orders.map(orderLine),
     '',
     `honesty: the true error is within the estimate in ${percent(honesty.covered)} of ${honesty.figures} figures, ` +
       `in the median ${honesty.median.toPrecision(2)} of it`,
+    ...figures.filter(({ holds }) => !holds).map(({ name, quantity }) => `OUT: ${name}, ${quantity}`),
     countLine(figures, orders),
     '',
   ].join('\n');
@@ -141,7 +144,7 @@ function alignColumns(rows: readonly (readonly string[])[]): string[] {
   const widths = HEAD.map((_, c) => Math.max(...rows.map((row) => row[c].length)));
   return rows.map((row) =>
     row
-      .map((cell, c) => (TEXT.includes(HEAD[c]) ? cell.padEnd(widths[c]) : cell.padStart(widths[c])))
+      .map((cell, c) => (c === 0 || c === row.length - 1 ? cell.padEnd(widths[c]) : cell.padStart(widths[c])))
       .join('  ')
       .trimEnd(),
   );

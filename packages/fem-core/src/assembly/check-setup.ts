@@ -20,8 +20,22 @@ const CONDITIONS: readonly EdgeCondition['kind'][] = [
  * unknown edge conditions, directions that do not come back to themselves
  */
 export function checkSetup(mesh: Mesh, setup: Setup): void {
-  const faults = [...currentFaults(mesh, setup), ...edgeFaults(setup), ...directionFaults(mesh, setup)];
+  const faults = [
+    ...keyFaults(setup),
+    ...currentFaults(mesh, setup),
+    ...edgeFaults(setup),
+    ...directionFaults(mesh, setup),
+  ];
   if (faults.length > 0) throw new InputError(faults);
+}
+
+const KEYS = ['materials', 'currentDensity', 'current', 'edges'];
+
+function* keyFaults(setup: Setup): Generator<Fault> {
+  for (const key of Object.keys(setup)) {
+    if (KEYS.includes(key)) continue;
+    yield { code: 'unknown-key', key, wrong: 'is no part of a setup', remedy: `parts are: ${KEYS.join(', ')}` };
+  }
 }
 
 function* currentFaults(mesh: Mesh, setup: Setup): Generator<Fault> {

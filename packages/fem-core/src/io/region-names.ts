@@ -74,6 +74,10 @@ const badge = ({ x, y }: Box, number: number): string =>
 const apart = (a: Box, b: Box): boolean =>
   Math.abs(a.y - b.y) > 1.3 * labelSize || Math.abs(a.x - b.x) > a.halfWidth + b.halfWidth;
 
+/** Edges of a border, and points of a picture, that are looked at: more place no name better. */
+const ENOUGH_EDGES = 1000;
+const ENOUGH_SPOTS = 40_000;
+
 /**
  * Among the points of the region the one farthest from its borders and the frame; `room` in pixels, widths counting
  * `flatten` times, so that a flat text finds a flat place. Sides of the section where an image goes on are no borders.
@@ -88,9 +92,11 @@ function roomiestSpot(
   const { frame, unit } = placement;
   const width = (unit * (frame.xMax - frame.xMin)) / grid;
   const height = (unit * (frame.yMax - frame.yMin)) / grid;
-  const flat = border.map((value, k) => (k % 2 === 0 ? flatten * value : value));
+  const step = 4 * Math.ceil(border.length / (4 * ENOUGH_EDGES)); // a fine mesh has edges far shorter than letters
+  const flat = border.filter((_, k) => k % step < 4).map((value, k) => (k % 2 === 0 ? flatten * value : value));
   let best: { x: number; y: number; room: number } | undefined;
-  for (let q = 0; q < corners.length; q += 3) {
+  const stride = 3 * Math.max(1, Math.floor(corners.length / (3 * ENOUGH_SPOTS)));
+  for (let q = 0; q < corners.length; q += stride) {
     if (mesh.triangleToRegion[Math.floor(q / (3 * pieces * pieces))] !== region) continue;
     const [x, y] = toPixels(xy, corners[q], placement);
     let room = Math.min(y, height - y, flatten * x, flatten * (width - x));

@@ -11,8 +11,8 @@ import type { Probe } from './probe.js';
 export function checkProbes(section: Section, probes: readonly Probe[], accuracy: number): void {
   const regions = [section.background, ...section.regions.map(({ name }) => name), OUTSIDE_REGION, BEYOND_REGION];
   const faults: Fault[] = [];
-  if (!(accuracy >= 0 && accuracy < Infinity)) {
-    const wrong = `must be a number from 0 on, got ${String(accuracy)}`;
+  if (!(accuracy > 0 && accuracy < Infinity)) {
+    const wrong = `must be a number above 0, got ${String(accuracy)}`;
     faults.push({ code: 'out-of-range', key: 'accuracy', wrong, remedy: 'give a share, for example 0.002' });
   }
   for (const probe of probes) {
@@ -60,6 +60,8 @@ function wrongNumber(probe: Probe): string | undefined {
       return Array.isArray(probe.on) ? pointless(probe.about ?? [0, 0]) : 'on must be a list of names';
     case 'mean':
       return Array.isArray(probe.over) ? undefined : 'over must be a list of names';
+    default:
+      return `is of an unknown kind, ${String((probe satisfies never as Probe).kind)}`;
   }
 }
 

@@ -1,3 +1,5 @@
+import { materialOf, VACUUM } from '../assembly/setup.js';
+import { MU0 } from '../base/constants.js';
 import { InputError } from '../base/fault.js';
 import { unreachable } from '../base/unreachable.js';
 import type { RecoveredGradient } from '../estimate/recovery.js';
@@ -6,12 +8,13 @@ import type { Field } from '../field/field.js';
 import { forceFunctionals, forceOn, forceRemainder, stressSize } from '../field/force.js';
 import type { Functional } from '../field/functionals.js';
 import { applyFunctional, pointPotential, weightedFlux, weightedIntegral } from '../field/functionals.js';
-import { meanOver } from '../field/integrals.js';
+import { forEachSample, meanOver } from '../field/integrals.js';
 import type { Locator } from '../field/locate.js';
 import { shrinkage, spotOf, valueAt, valueAtSpot } from '../field/values.js';
 import type { Point } from '../geometry/section.js';
+import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import { areaOf, meanDensityFunctional, meanInTriangle } from './goals.js';
-import type { Answer, Probe } from './probe.js';
+import type { Answer, PlaceError, Probe } from './probe.js';
 
 /** An answer's number, its derivative, and what its error is to be measured by. */
 export interface Figure {
@@ -31,19 +34,34 @@ export interface ProbeAt {
 
 /** Places along a line at which the error of A is estimated. */
 const LINE_SAMPLES = 5;
-/** A force below this share of the stress all round its body is measured by that instead: most of the stress cancels. */
+/**
+ * A figure below this share of what there is of its kind is measured by that instead: of the stress all round a body, of all
+ * the flux, of the flux density. What symmetry makes nought would else be refined for ever.
+ */
 const BALANCED = 0.01;
-/** The same for fluxes, by all the flux there is. */
-const NO_FLUX = 1e-3;
 
-/** Largest difference of A in the section: all the flux there is, Wb/m. */
-function fluxOfAll({ potential }: Field): number {
+/** What there is in a section: flux between its least and its greatest A, Wb/m, and flux density, T. */
+interface Extent {
+  readonly flux: number;
+  readonly density: number;
+}
+
+/** By the field, or where magnets close on themselves and leave none, by what they would store without flux. */
+function extentOf(field: Field): Extent {
   let [low, high] = [Infinity, -Infinity];
-  for (const a of potential) {
+  for (const a of field.potential) {
     low = Math.min(low, a);
     high = Math.max(high, a);
   }
-  return high - low;
+  let [area, square, remanent] = [0, 0, 0];
+  const law = newLaw();
+  forEachSample(field, 'all', (s) => {
+    area += s.area;
+    square += s.area * (s.bx * s.bx + s.by * s.by);
+    remanent += s.area * evaluateMaterial(s.material, 0, 0, s.x, s.y, law).energy;
+  });
+  const density = Math.sqrt(Math.max(square, 2 * MU0 * remanent) / area);
+  return { flux: Math.max(high - low, density * Math.sqrt(area)), density };
 }
 
 /** @throws InputError for probes of regions that cover nothing, and of forces that are not defined */
@@ -109,12 +127,26 @@ function pointAt(probe: Extract<Probe, { kind: 'point' }>, field: Field, locator
       kind: 'point',
       name: probe.name,
       value: valueAt(field, locator, ...probe.at, recovered),
-      error: {
+      error: withStrength(
+        field,
+        locator,
+        probe.at,
         a,
-        b: gapAt(field, locator, probe.at, recovered) + shrinkage(field, ...probe.at) * Math.hypot(bx, by),
-      },
+        gapAt(field, locator, probe.at, recovered) + shrinkage(field, ...probe.at) * Math.hypot(bx, by),
+      ),
     }),
   };
+}
+
+/** Errors of A and B, and of H = H(B) by the steepest direction of dH/dB there. */
+function withStrength(field: Field, locator: Locator, [x, y]: Point, a: number, b: number): PlaceError {
+  const spot = spotOf(field, locator, x, y);
+  if (spot === undefined) return { a, b, h: Number.NaN };
+  const { bx, by } = valueAtSpot(field, spot);
+  const { mesh, setup } = field;
+  const material = materialOf(setup, mesh.regionNames[mesh.triangleToRegion[spot.triangle]]) ?? VACUUM;
+  const { xx, xy, yy } = evaluateMaterial(material, bx, by, x, y, newLaw());
+  return { a, b, h: b * (0.5 * (xx + yy) + Math.hypot(0.5 * (xx - yy), xy)) };
 }
 
 /** Mean flux density over the triangle that holds a place: what errors from afar do there; reports only. */
@@ -146,7 +178,7 @@ function lineAt(probe: Extract<Probe, { kind: 'line' }>, field: Field, locator: 
         name,
         distance: places.map((_, i) => share(i) * length),
         values: places.map(([x, y]) => valueAt(field, locator, x, y, recovered)),
-        errors: places.map((at) => ({ a, b: gapAt(field, locator, at, recovered) })),
+        errors: places.map((at) => withStrength(field, locator, at, a, gapAt(field, locator, at, recovered))),
       };
     },
   };
@@ -190,7 +222,11 @@ function linkageAt({ name, of, turns }: Extract<Probe, { kind: 'linkage' }>, fie
   return {
     kind: 'linkage',
     figures: [
-      { value: linkage, functional, size: Math.max(Math.abs(linkage), Math.abs(turns) * NO_FLUX * fluxOfAll(field)) },
+      {
+        value: linkage,
+        functional,
+        size: Math.max(Math.abs(linkage), Math.abs(turns) * BALANCED * extentOf(field).flux),
+      },
     ],
     describe: ([error]) => ({ kind: 'linkage', name, linkage, error }),
   };
@@ -209,7 +245,7 @@ function fluxAt({ name, from, to }: Extract<Probe, { kind: 'flux' }>, field: Fie
   const functional = start.functional.map((g, node) => g - end.functional[node]);
   return {
     kind: 'flux',
-    figures: [{ value: flux, functional, size: Math.max(Math.abs(flux), NO_FLUX * fluxOfAll(field)) }],
+    figures: [{ value: flux, functional, size: Math.max(Math.abs(flux), BALANCED * extentOf(field).flux) }],
     describe: ([error]) => ({ kind: 'flux', name, flux, error }),
   };
 }
@@ -217,14 +253,15 @@ function fluxAt({ name, from, to }: Extract<Probe, { kind: 'flux' }>, field: Fie
 function meanAt({ name, over }: Extract<Probe, { kind: 'mean' }>, field: Field): ProbeAt {
   const area = covered(field, name, over);
   const { bx, by, b } = meanOver(field, over);
+  const size = Math.max(b, BALANCED * extentOf(field).density);
   const alongX = weightedFlux(field.mesh, over, () => [1 / area, 0]);
   const alongY = weightedFlux(field.mesh, over, () => [0, 1 / area]);
   return {
     kind: 'mean',
     figures: [
-      { value: bx, functional: alongX, size: b },
-      { value: by, functional: alongY, size: b },
-      { value: b, functional: meanDensityFunctional(field, over, area), size: b },
+      { value: bx, functional: alongX, size },
+      { value: by, functional: alongY, size },
+      { value: b, functional: meanDensityFunctional(field, over, area), size },
     ],
     describe: ([ex, ey, eb]) => ({ kind: 'mean', name, bx, by, b, error: Math.max(Math.hypot(ex, ey), eb) }),
   };

@@ -14,6 +14,13 @@ export type Probe =
   | { readonly kind: 'flux'; readonly name: string; readonly from: Point; readonly to: Point }
   | { readonly kind: 'mean'; readonly name: string; readonly over: readonly string[] };
 
+/** Errors at a place: of A in Wb/m, of B in T, of H in A/m. */
+export interface PlaceError {
+  readonly a: number;
+  readonly b: number;
+  readonly h: number;
+}
+
 /**
  * What a probe found, SI per metre of depth. Each `error` bounds, in practice, what the mesh does to the figures, in their
  * unit; of vectors it is the length of the error.
@@ -24,8 +31,7 @@ export type Answer =
       readonly name: string;
       /** Undefined where the point lies outside the section. */
       readonly value: FieldValue | undefined;
-      /** Of A in Wb/m, of B in T. */
-      readonly error: { readonly a: number; readonly b: number };
+      readonly error: PlaceError;
     }
   | {
       readonly kind: 'line';
@@ -33,7 +39,7 @@ export type Answer =
       /** Distance of each place from the start, m. */
       readonly distance: readonly number[];
       readonly values: readonly (FieldValue | undefined)[];
-      readonly errors: readonly { readonly a: number; readonly b: number }[];
+      readonly errors: readonly PlaceError[];
     }
   | {
       readonly kind: 'force';

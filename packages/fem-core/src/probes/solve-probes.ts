@@ -18,9 +18,9 @@ import { probeAt } from './probe-at.js';
 export interface ProbeOptions {
   /**
    * Wanted relative error of energy, linkages, fluxes, forces and means, each against the largest of its kind; points and
-   * lines, and torques, only report their estimate.
+   * lines, and torques, only report their estimate. 0.002 if absent.
    */
-  readonly accuracy: number;
+  readonly accuracy?: number;
   /** Of the elements: 1 linear, 2 quadratic (if absent). */
   readonly order?: 1 | 2;
   readonly maxMeshes?: number;
@@ -61,7 +61,7 @@ export function solveProbes(
   section: Section,
   setup: Setup,
   probes: readonly Probe[],
-  options: ProbeOptions,
+  options: ProbeOptions = {},
 ): SectionAnswer {
   return finish(probeSteps(section, setup, probes, options));
 }
@@ -71,12 +71,14 @@ export function* probeSteps(
   section: Section,
   setup: Setup,
   probes: readonly Probe[],
-  options: ProbeOptions,
+  options: ProbeOptions = {},
 ): Steps<NewtonProgress | MeshProgress, SectionAnswer> {
-  checkProbes(section, probes, options.accuracy);
+  const { accuracy = USUAL_ACCURACY } = options;
+  checkProbes(section, probes, accuracy);
   let wanted: readonly ProbeAt[] = [];
   const solution = yield* adaptiveSteps(section, setup, {
     ...options,
+    accuracy,
     combine: 'largest',
     goals: (field) => {
       const locator = buildLocator(field.mesh);
@@ -86,6 +88,9 @@ export function* probeSteps(
   });
   return answer(solution, wanted);
 }
+
+/** Wanted where nothing is said. */
+const USUAL_ACCURACY = 0.002;
 
 const inverse = (size: number): number => (size === 0 ? 0 : 1 / Math.abs(size));
 

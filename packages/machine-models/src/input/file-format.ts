@@ -24,7 +24,8 @@ export function refuseOtherFormat(
   [wrong, remedy]: readonly [wrong: string, remedy: string],
   report: OpenReport,
 ): void {
-  if (formatIn(raw) !== other) return;
+  const [kind] = other.split('/');
+  if (formatIn(raw)?.split('/')[0] !== kind) return; // of any version
   report.fault(['format'], 'other-format', wrong, remedy);
   throw new InputError(report.faults());
 }

@@ -3,7 +3,9 @@ import {
   type FieldValue,
   measureMesh,
   nodeCount,
+  type PlaceError,
   type Probe,
+  pastKnee,
   type SectionAnswer,
   triangleCount,
 } from '@gapwright/fem-core';
@@ -117,7 +119,7 @@ function describeAnswer(answer: Answer, probe: Probe, depth: number): ProbeResul
 
 type PointFigures = Omit<PointResult, 'name' | 'kind'>;
 
-function pointFigures(value: FieldValue | undefined, error: { readonly a: number; readonly b: number }): PointFigures {
+function pointFigures(value: FieldValue | undefined, error: PlaceError): PointFigures {
   const { a, bx, by, hx, hy } = value ?? NOWHERE;
   const b = Math.hypot(bx, by);
   return {
@@ -130,7 +132,9 @@ function pointFigures(value: FieldValue | undefined, error: { readonly a: number
     B_T: b,
     B_T_rel_err: relative(error.b, b),
     Hx_A_per_m: hx,
+    Hx_A_per_m_rel_err: relative(error.h, hx),
     Hy_A_per_m: hy,
+    Hy_A_per_m_rel_err: relative(error.h, hy),
   };
 }
 
@@ -140,7 +144,8 @@ function describeLine(answer: Answer & { readonly kind: 'line' }, probe: Probe):
   if (probe.kind !== 'line') throw new Error(`answer ${answer.name} is of a line, its probe is not`);
   const { from, to } = probe;
   const last = answer.values.length - 1;
-  const along = (k: 0 | 1): number[] => answer.values.map((_, i) => from[k] + (i / last) * (to[k] - from[k]));
+  const along = (k: 0 | 1): number[] =>
+    answer.values.map((_, i) => from[k] + (last === 0 ? 0.5 : i / last) * (to[k] - from[k]));
   const figures = answer.values.map((value, i) => pointFigures(value, answer.errors[i]));
   const column = (key: keyof PointFigures): number[] => figures.map((at) => at[key]);
   return {
@@ -158,7 +163,9 @@ function describeLine(answer: Answer & { readonly kind: 'line' }, probe: Probe):
     B_T: column('B_T'),
     B_T_rel_err: column('B_T_rel_err'),
     Hx_A_per_m: column('Hx_A_per_m'),
+    Hx_A_per_m_rel_err: column('Hx_A_per_m_rel_err'),
     Hy_A_per_m: column('Hy_A_per_m'),
+    Hy_A_per_m_rel_err: column('Hy_A_per_m_rel_err'),
   };
 }
 
@@ -189,7 +196,20 @@ function solutionWarnings(problem: SectionProblem, answer: SectionAnswer): reado
     warnings.push({ key: 'model.accuracy', text });
   }
   if (problem.section.open === true) warnings.push(...netCurrent(answer));
+  warnings.push(...demagnetised(problem, answer));
   return warnings;
+}
+
+/** Magnets that lose remanence where they stand. */
+function demagnetised({ section }: SectionProblem, { field }: SectionAnswer): readonly Warning[] {
+  return section.regions.flatMap(({ name }) => {
+    const past = pastKnee(field, name);
+    if (past === undefined || past.share === 0) return [];
+    const text =
+      `${figure(100 * past.share)} % of this magnet lies past the knee of its curve (H along it down to ` +
+      `${figure(past.lowest / 1000)} kA/m): what is lost there does not come back when the field goes`;
+    return [{ key: `regions.${name}`, text }];
+  });
 }
 
 /** Currents that do not return near by: their energy grows without bound with the space that is counted. */

@@ -85,7 +85,9 @@ export interface PointResult {
   readonly B_T: number;
   readonly B_T_rel_err: number;
   readonly Hx_A_per_m: number;
+  readonly Hx_A_per_m_rel_err: number;
   readonly Hy_A_per_m: number;
+  readonly Hy_A_per_m_rel_err: number;
 }
 
 /** Lists of one length; the same figures as of a point, and where each was taken. */
