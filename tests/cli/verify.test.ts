@@ -1,11 +1,11 @@
+import type { FigureResult, Verification } from '@gapwright/fem-core';
 import { describe, expect, test } from 'vitest';
-import type { VerifiedFigure, Verifier } from '../../packages/cli/src/commands/verify.js';
 import { runVerify } from '../../packages/cli/src/commands/verify.js';
 import { bodyCases, circuitCases } from '../../packages/fem-core/src/verify/cases.js';
 import { measureHonesty } from '../../packages/fem-core/src/verify/honesty.js';
 import { runCase } from '../../packages/fem-core/src/verify/verification-case.js';
 
-const figure = (name: string, quantity: string, error: number, bound: number): VerifiedFigure => ({
+const figure = (name: string, quantity: string, error: number, bound: number): FigureResult => ({
   name,
   quantity,
   formula: 'B = 1',
@@ -21,7 +21,7 @@ const figure = (name: string, quantity: string, error: number, bound: number): V
   holds: error <= bound,
 });
 
-const made = (cases: readonly (readonly VerifiedFigure[])[], orderHolds = true): Verifier => ({
+const made = (cases: readonly (readonly FigureResult[])[], orderHolds = true): Verification => ({
   caseCount: cases.length,
   runCase: (k) => cases[k],
   measureOrders: () => [
@@ -31,7 +31,7 @@ const made = (cases: readonly (readonly VerifiedFigure[])[], orderHolds = true):
 });
 
 async function say(
-  verifier: Verifier,
+  verifier: Verification,
   options: { readonly json?: boolean; readonly quiet?: boolean } = {},
   signal: AbortSignal = new AbortController().signal,
 ): Promise<{ status: number; out: string; err: string }> {
@@ -115,7 +115,7 @@ describe('gapwright verify', () => {
   test('real cases pass through it with their times', async () => {
     const cases = [bodyCases()[0], circuitCases()[0]];
     let clock = 0;
-    const verifier: Verifier = {
+    const verifier: Verification = {
       caseCount: cases.length,
       runCase: (k) => runCase(cases[k], { now: () => clock++ }),
       measureOrders: () => [],

@@ -1,49 +1,8 @@
+import type { FigureResult, Honesty, MeasuredOrder, Verification } from '@gapwright/fem-core';
 import { percent } from '../figures.js';
 import { resultJson } from '../results-json.js';
 import { exitStatus, type Surroundings, stopIfInterrupted } from '../surroundings.js';
 import { ownVersion } from '../version.js';
-
-/** A figure held against its closed form; errors are shares of its scale. */
-export interface VerifiedFigure {
-  readonly name: string;
-  readonly quantity: string;
-  readonly formula: string;
-  readonly source: string;
-  readonly expected: number;
-  readonly got: number;
-  readonly relativeError: number;
-  readonly estimatedError: number;
-  readonly bound: number;
-  /** By which the section itself differs from what the formula describes. */
-  readonly slack: number;
-  readonly nodes: number;
-  readonly ms: number;
-  readonly holds: boolean;
-}
-
-/** How fast errors fall with the element size: of A and of B, both in L2, with what theory promises. */
-export interface VerifiedOrder {
-  readonly elements: string;
-  readonly potential: number;
-  readonly field: number;
-  readonly expected: { readonly potential: number; readonly field: number };
-  readonly holds: boolean;
-}
-
-/** The solver's cases, as the command runs them; others only in tests. */
-export interface Verifier {
-  readonly caseCount: number;
-  /** The figures of case k, timed by the clock (ms). */
-  readonly runCase: (k: number, now: () => number) => readonly VerifiedFigure[];
-  readonly measureOrders: () => readonly VerifiedOrder[];
-  readonly measureHonesty: (figures: readonly VerifiedFigure[]) => Honesty;
-}
-
-interface Honesty {
-  readonly figures: number;
-  readonly covered: number;
-  readonly median: number;
-}
 
 export interface VerifyOptions {
   readonly json?: boolean;
@@ -52,12 +11,12 @@ export interface VerifyOptions {
 
 /** `gapwright verify`: the solver against closed forms, figure by figure. The one command that prints times among its results. */
 export async function runVerify(
-  verifier: Verifier,
+  verifier: Verification,
   options: VerifyOptions,
   { stdout, stderr, signal }: Surroundings,
 ): Promise<number> {
   const begun = performance.now();
-  const figures: VerifiedFigure[] = [];
+  const figures: FigureResult[] = [];
   for (let k = 0; k < verifier.caseCount; k++) {
     await new Promise((go) => setImmediate(go)); // lets an interruption in
     stopIfInterrupted(signal);
@@ -74,7 +33,7 @@ export async function runVerify(
   return [...figures, ...orders].every(({ holds }) => holds) ? exitStatus.done : exitStatus.notReached;
 }
 
-function verifyJson(figures: readonly VerifiedFigure[], orders: readonly VerifiedOrder[], honesty: Honesty): string {
+function verifyJson(figures: readonly FigureResult[], orders: readonly MeasuredOrder[], honesty: Honesty): string {
   return resultJson({
     format: 'gapwright-verify/1',
     gapwright: ownVersion(),
@@ -107,7 +66,7 @@ function verifyJson(figures: readonly VerifiedFigure[], orders: readonly Verifie
 const HEAD = ['', 'expected', 'got', 'error', 'estimate', 'bound', ''] as const;
 
 /** A case is a line of its own, its figures stand below it. */
-function verifyText(figures: readonly VerifiedFigure[], orders: readonly VerifiedOrder[], honesty: Honesty): string {
+function verifyText(figures: readonly FigureResult[], orders: readonly MeasuredOrder[], honesty: Honesty): string {
   const rows = figures.map((figure) => [
     `  ${figure.quantity}`,
     shortNumber(figure.expected),
@@ -120,7 +79,7 @@ function verifyText(figures: readonly VerifiedFigure[], orders: readonly Verifie
     const { name, nodes, ms } = figures[i];
     return figures[i - 1]?.name === name ? [line] : ['', `${name} (${nodes} nodes, ${ms.toFixed(0)} ms)`, line];
   });
-  const orderLine = ({ elements, potential, field, expected, holds }: VerifiedOrder): string =>
+  const orderLine = ({ elements, potential, field, expected, holds }: MeasuredOrder): string =>
     `${elements.padEnd(18)}A ${potential.toFixed(2)} (${expected.potential})   B ${field.toFixed(2)} (${expected.field})   ${holds ? 'holds' : 'OUT'}`;
   return [
     'error, estimate, bound: true and estimated error and what is allowed, as shares of the value,',
@@ -157,7 +116,7 @@ function shortNumber(value: number): string {
   return size === 0 || (size >= 1e-3 && size < 1e6) ? String(Number(value.toPrecision(7))) : value.toExponential(6);
 }
 
-function countLine(figures: readonly VerifiedFigure[], orders: readonly VerifiedOrder[]): string {
+function countLine(figures: readonly FigureResult[], orders: readonly MeasuredOrder[]): string {
   const cases = new Set(figures.map(({ name }) => name)).size;
   const out = [...figures, ...orders].filter(({ holds }) => !holds).length;
   return `${cases} cases, ${figures.length} figures, ${orders.length} orders: ${out === 0 ? 'all hold' : `${out} OUT`}`;
