@@ -25,7 +25,7 @@ const made = (cases: readonly (readonly FigureResult[])[], orderHolds = true): V
   caseCount: cases.length,
   runCase: (k) => cases[k],
   measureOrders: () => [
-    { elements: 'linear', potential: 2, field: 1, expected: { potential: 2, field: 1 }, holds: orderHolds },
+    { elements: 'linear', potential: 2, field: 1, expected: { potential: 2, field: 1 }, runs: [], holds: orderHolds },
   ],
   measureHonesty: () => ({ figures: 3, covered: 1, median: 0.5 }),
 });
