@@ -7,52 +7,11 @@ import {
   stressThrough,
   weightedIntegral,
 } from '@gapwright/fem-core';
+import type { DiscGap } from '../../packages/fem-core/src/verify/double-disc.js';
+import { G1, G2, G3, G4, seriesAmplitude } from '../../packages/fem-core/src/verify/double-disc.js';
 
-/**
- * Slotless gap between two infinitely permeable discs, unrolled; lengths in metres. `halfGap` is the distance from the
- * magnets' face to the plane of zero scalar potential: half the gap where both discs carry magnets, the whole gap where
- * the other disc is plain steel.
- */
-export interface Gap {
-  readonly polePitch: number;
-  readonly width: number;
-  readonly height: number;
-  readonly halfGap: number;
-  /** T. */
-  readonly remanence: number;
-  readonly recoil: number;
-}
-
-/** The three twin-disc gaps and the single-disc one whose figures the tables below give; lengths in millimetres. */
-const gap = (tau: number, w: number, h: number, a: number, remanence: number, recoil: number): Gap => ({
-  polePitch: tau / 1000,
-  width: w / 1000,
-  height: h / 1000,
-  halfGap: a / 1000,
-  remanence,
-  recoil,
-});
-export const G1 = gap(50, 36, 10, 8, 1.25, 1.05);
-export const G2 = gap(30, 20, 6, 5, 1.32, 1.05);
-export const G3 = gap(80, 46, 20, 7, 0.39, 1.1);
-export const G4 = gap(50, 36, 10, 9, 1.25, 1.05);
-
-/**
- * Amplitude of the odd harmonic n of By at the height y from the plane of zero potential. The magnetisation's wave is
- * R_n = (4 Br/(n pi)) sin(n pi w/(2 tau)); the scalar potential, ~ sinh(k s) from the disc in the magnet layer and
- * ~ sinh(k y) in the gap, obeys Laplace's equation in both, and equal potential and normal B at the magnets' face give
- *
- *   B_n(y) = R_n cosh(k y) / (cosh(k a) + m sinh(k a) coth(k h)),   k = n pi/tau,
- *
- * the recoil permeability m filling the magnet layer between the magnets too.
- */
-export function seriesAmplitude(g: Gap, n: number, y: number): number {
-  const k = (n * Math.PI) / g.polePitch;
-  const source = ((4 * g.remanence) / (n * Math.PI)) * Math.sin((k * g.width) / 2);
-  // cosh and sinh over cosh(k a), which overflow for high orders
-  const share = (Math.exp(k * (y - g.halfGap)) + Math.exp(-k * (y + g.halfGap))) / (1 + Math.exp(-2 * k * g.halfGap));
-  return (source * share) / (1 + (g.recoil * Math.tanh(k * g.halfGap)) / Math.tanh(k * g.height));
-}
+export type Gap = DiscGap;
+export { G1, G2, G3, G4, seriesAmplitude };
 
 const ORDERS = Array.from({ length: 400 }, (_, i) => 2 * i + 1);
 

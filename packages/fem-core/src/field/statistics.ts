@@ -29,7 +29,7 @@ export function fieldStatistics(field: Field, regions: readonly string[]): Field
   return {
     area,
     peak: spread.falling.length === 0 ? Number.NaN : spread.falling[0].b,
-    peakInNinetyNine: exceededBy(spread, 0.01),
+    peakInNinetyNine: area === 0 ? Number.NaN : exceededBy(spread, 0.01),
     mean: mean / area,
     meanSquareX: xx / area,
     meanSquareY: yy / area,

@@ -200,7 +200,8 @@ function readArray(element: Element, format: Format, key: string): VtuArray {
   const components = Number(element['@NumberOfComponents'] ?? 1);
   if (!(Number.isInteger(components) && components >= 1 && components <= 1000))
     throw fault(key, 'has a bad NumberOfComponents', 'give a whole number');
-  const reader = READERS[String(element['@type'])];
+  const type = String(element['@type']);
+  const reader = Object.hasOwn(READERS, type) ? READERS[type] : undefined;
   if (reader === undefined)
     throw fault(
       key,
