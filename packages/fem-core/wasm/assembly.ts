@@ -38,34 +38,28 @@ const AT_REST: f64 = 1e-9;
 const ROUNDER: f64 = 4503599627370496;
 
 /** The numbers at two places of an array, as one. */
-// @ts-ignore: decorator
 function gather(array: usize, first: i32, second: i32): v128 {
   return v128.load64_lane(array + ((<usize>second) << 3), v128.load64_zero(array + ((<usize>first) << 3)), 1);
 }
 
 /** The numbers at one distance from two places, as one. */
-// @ts-ignore: decorator
 function beside(first: usize, second: usize, at: usize): v128 {
   return v128.load64_lane(second + at, v128.load64_zero(first + at), 1);
 }
 
-// @ts-ignore: decorator
 function plus(a: v128, b: v128): v128 {
   return f64x2.add(a, b);
 }
 
-// @ts-ignore: decorator
 function minus(a: v128, b: v128): v128 {
   return f64x2.sub(a, b);
 }
 
-// @ts-ignore: decorator
 function times(a: v128, b: v128): v128 {
   return f64x2.mul(a, b);
 }
 
 /** Address of the piece of the law that holds b >= 0, from a cell near by. */
-// @ts-ignore: decorator
 function pieceAt(law: usize, cell: i32, b: f64): usize {
   let piece = law + <usize>load<i32>(law + CELLS + ((<usize>cell) << 2));
   while (b >= load<f64>(piece + END)) piece += PIECE;
@@ -113,7 +107,6 @@ export function addPairs(
 }
 
 /** Adds values that stand two by two to the places given two by two: those of the first triangle, then those of the second. */
-// @ts-ignore: decorator
 function addTwice(values: usize, places: usize, count: usize, array: usize): void {
   for (let lane: usize = 0; lane < 2; lane++) {
     for (let p: usize = 0; p < count; p++) {
@@ -124,7 +117,6 @@ function addTwice(values: usize, places: usize, count: usize, array: usize): voi
 }
 
 /** Leaves h = M g and the flux density of each point in its row. */
-// @ts-ignore: decorator
 function findFlux(nodes: usize, metric: usize, pointStep: usize, rule: usize, row: usize, potential: usize): void {
   const four = f64x2.splat(4);
   const two = f64x2.splat(2);
@@ -157,7 +149,6 @@ function findFlux(nodes: usize, metric: usize, pointStep: usize, rule: usize, ro
 }
 
 /** Leaves H/B and (dH/dB - H/B)/B^2 in the row of each point. */
-// @ts-ignore: decorator
 function findReluctivity(law: usize, row: usize): void {
   const atRest = f64x2.splat(AT_REST);
   const slopeAtRest = v128.load64_splat(law + SLOPE_AT_REST);
@@ -185,7 +176,6 @@ function findReluctivity(law: usize, row: usize): void {
 }
 
 /** Leaves the residuals of a pair in `out`, and the weighted tangent of each point in its row. */
-// @ts-ignore: decorator
 function findResiduals(metric: usize, pointStep: usize, rule: usize, row: usize, out: usize): void {
   const four = f64x2.splat(4);
   const two = f64x2.splat(2);
@@ -230,7 +220,6 @@ function findResiduals(metric: usize, pointStep: usize, rule: usize, row: usize,
 }
 
 /** Sums over the points of one entry of their tangents times 1, xi, eta, xi^2, xi eta, eta^2. */
-// @ts-ignore: decorator
 function formMoments(tensor: usize, rule: usize, out: usize): void {
   let sum = f64x2.splat(0);
   let x = f64x2.splat(0);
@@ -261,19 +250,16 @@ function formMoments(tensor: usize, rule: usize, out: usize): void {
 }
 
 /** a - b - 2 c */
-// @ts-ignore: decorator
 function lessTwice(a: v128, b: v128, c: v128): v128 {
   return minus(minus(a, b), plus(c, c));
 }
 
 /** 4 a - b */
-// @ts-ignore: decorator
 function fourLess(a: v128, b: v128): v128 {
   return minus(times(f64x2.splat(4), a), b);
 }
 
 /** The matrices of a pair from the moments of their tangents, pairs of local nodes i >= j one after another. */
-// @ts-ignore: decorator
 function formMatrix(moments: usize, out: usize): void {
   // Rows and columns alpha, beta, gamma, delta, epsilon; see src/assembly/steel.ts.
   const qx = v128.load(moments, 96 + 16);

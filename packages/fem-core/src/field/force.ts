@@ -128,18 +128,14 @@ export function forceRemainder(
   about?: readonly [number, number],
 ): Float64Array {
   const out = new Float64Array(triangleCount(field.mesh));
-  let point = 0;
-  let triangle = -1;
   forEachSample(field, airRegions(field), (s) => {
-    point = s.triangle === triangle ? point + 1 : 0;
-    triangle = s.triangle;
     let [wx, wy] = [0, 0];
     let [ex, ey] = [s.by, -s.bx]; // less the elements' gradient of A, which is (-By, Bx)
     for (let i = 0; i < 6; i++) {
       const w = layer[globalNode(field.mesh, s.triangle, i)];
       wx += w * s.grad[i];
       wy += w * s.grad[6 + i];
-      const shape = FULL_RULE.values[6 * point + i];
+      const shape = FULL_RULE.values[6 * s.point + i];
       ex += shape * recovered[12 * s.triangle + i];
       ey += shape * recovered[12 * s.triangle + 6 + i];
     }

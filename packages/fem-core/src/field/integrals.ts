@@ -9,6 +9,8 @@ import type { Field } from './field.js';
 /** What is known at one quadrature point of a field. */
 export interface FieldSample {
   triangle: number;
+  /** Number of the quadrature point in its triangle: of `FULL_RULE`. */
+  point: number;
   x: number;
   y: number;
   /** Quadrature weight times det J, m^2: sums to areas. */
@@ -44,6 +46,7 @@ export function forEachSample(
   const law = newLaw();
   const sample: FieldSample = {
     triangle: 0,
+    point: 0,
     x: 0,
     y: 0,
     area: 0,
@@ -79,6 +82,7 @@ export function forEachSample(
       }
       evaluateMaterial(material, gy, -gx, x, y, law);
       sample.triangle = t;
+      sample.point = q;
       sample.x = x;
       sample.y = y;
       sample.area = FULL_RULE.weights[q] * det;

@@ -72,16 +72,12 @@ export function forEachGap(
   recovered: RecoveredGradient,
   visit: (sample: Sample, ex: number, ey: number) => void,
 ): void {
-  let point = 0;
-  let triangle = -1;
   forEachSample(field, 'all', (s) => {
-    point = s.triangle === triangle ? point + 1 : 0;
-    triangle = s.triangle;
     let [ex, ey] = [-s.bx, -s.by];
     for (let i = 0; i < 6; i++) {
-      const shape = FULL_RULE.values[6 * point + i];
-      ex += shape * recovered[12 * triangle + 6 + i];
-      ey -= shape * recovered[12 * triangle + i];
+      const shape = FULL_RULE.values[6 * s.point + i];
+      ex += shape * recovered[12 * s.triangle + 6 + i];
+      ey -= shape * recovered[12 * s.triangle + i];
     }
     visit(s, ex, ey);
   });
@@ -141,23 +137,19 @@ export function productOfGaps(
   const { mesh } = field;
   const share = new Float64Array(triangleCount(mesh));
   const law = newLaw();
-  const gap = (potential: Float64Array, recovered: RecoveredGradient, s: Sample, point: number, k: 0 | 1): number => {
+  const gap = (potential: Float64Array, recovered: RecoveredGradient, s: Sample, k: 0 | 1): number => {
     let sum = 0;
     for (let i = 0; i < 6; i++) {
-      sum += FULL_RULE.values[6 * point + i] * recovered[12 * s.triangle + 6 * k + i];
+      sum += FULL_RULE.values[6 * s.point + i] * recovered[12 * s.triangle + 6 * k + i];
       sum -= potential[globalNode(mesh, s.triangle, i)] * s.grad[6 * k + i];
     }
     return sum;
   };
-  let point = 0;
-  let triangle = -1;
   forEachSample(field, 'all', (s) => {
-    point = s.triangle === triangle ? point + 1 : 0;
-    triangle = s.triangle;
     evaluateMaterial(s.material, s.bx, s.by, s.x, s.y, law);
-    const [ax, ay] = [gap(a, recoveredA, s, point, 1), -gap(a, recoveredA, s, point, 0)];
-    const [bx, by] = [gap(b, recoveredB, s, point, 1), -gap(b, recoveredB, s, point, 0)];
-    share[triangle] += s.area * (law.xx * ax * bx + law.xy * (ax * by + ay * bx) + law.yy * ay * by);
+    const [ax, ay] = [gap(a, recoveredA, s, 1), -gap(a, recoveredA, s, 0)];
+    const [bx, by] = [gap(b, recoveredB, s, 1), -gap(b, recoveredB, s, 0)];
+    share[s.triangle] += s.area * (law.xx * ax * bx + law.xy * (ax * by + ay * bx) + law.yy * ay * by);
   });
   return share.reduce((sum, part) => sum + Math.abs(part), 0);
 }
