@@ -1,4 +1,5 @@
-import { buildSystem, numberUnknowns, triangleCount } from '@gapwright/fem-core';
+import { buildSystem, numberUnknowns } from '@gapwright/fem-core/equations';
+import { triangleCount } from '@gapwright/fem-core/mesh';
 import { assemblyOf } from './ours.js';
 import { steelBlock } from './systems.js';
 import { medianMs, ms, printTable, timed } from './timing.js';

@@ -1,6 +1,6 @@
 import { join } from 'node:path';
-import type { Mesh } from '@gapwright/fem-core';
-import { measureMesh, meshSection, triangleCount } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { measureMesh, meshSection, triangleCount } from '@gapwright/fem-core/mesh';
 import type { Comparison } from './comparison.js';
 import { builtPeer, targetAt } from './comparison.js';
 import type { Peer } from './peer.js';

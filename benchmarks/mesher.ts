@@ -1,5 +1,5 @@
 import type { Section } from '@gapwright/fem-core';
-import { checkMesh, measureMesh, meshSection, triangleCount } from '@gapwright/fem-core';
+import { checkMesh, measureMesh, meshSection, triangleCount } from '@gapwright/fem-core/mesh';
 import { medianMs, ms, printTable } from './timing.js';
 
 /** A square with a round hole's outline and a bar in it, so that arcs, corners and grading all take part. */

@@ -1,12 +1,12 @@
-import type { GradientReport, Placement, SymmetricPattern } from '@gapwright/fem-core';
+import { placementOf } from '@gapwright/fem-core/equations';
+import type { GradientReport, Placement, SymmetricPattern } from '@gapwright/fem-core/sparse';
 import {
   analyse,
   buildCoarseLevel,
   dissectionOrder,
   minimumDegreeOrder,
-  placementOf,
   solveByConjugateGradients,
-} from '@gapwright/fem-core';
+} from '@gapwright/fem-core/sparse';
 import { laplacian } from './systems.js';
 import { interleave, ms, printTable, timed, timerOf } from './timing.js';
 

@@ -1,22 +1,18 @@
 /** The one place where the comparisons touch the library's solver: what is timed of ours, by public names. */
-import type { Analysis, Factor } from '@gapwright/fem-core';
+
+import { energiesOf } from '@gapwright/fem-core';
+import { assemble, buildSystem, numberUnknowns, placementOf, solveNewton } from '@gapwright/fem-core/equations';
+import { nodeCount, nodePoint } from '@gapwright/fem-core/mesh';
+import type { Analysis, CompiledKernels, Factor } from '@gapwright/fem-core/sparse';
 import {
   analyse,
-  assemble,
-  buildSystem,
   chooseOrder,
   dissectionOrder,
-  energiesOf,
   factor,
   minimumDegreeOrder,
   multiply,
-  nodeCount,
-  nodePoint,
-  numberUnknowns,
-  placementOf,
   solve,
-  solveNewton,
-} from '@gapwright/fem-core';
+} from '@gapwright/fem-core/sparse';
 import type { FieldProblem, LinearProblem } from './systems.js';
 
 /** What a linear solve needs to know, wherever it was made or read. */
@@ -41,11 +37,11 @@ export interface Solver {
   readonly x: Float64Array;
 }
 
-export function solverOf({ values, right }: LinearSystem, analysis: Analysis): Solver {
+export function solverOf({ values, right }: LinearSystem, analysis: Analysis, kernels?: CompiledKernels): Solver {
   const x = new Float64Array(right.length);
   let last: Factor | undefined;
   const refactor = (): Factor => {
-    const factored = factor(analysis, values, { reuse: last });
+    const factored = factor(analysis, values, { reuse: last, kernels });
     if (!('blocks' in factored)) throw new Error(`not positive definite at ${factored.unknown}`);
     last = factored;
     return factored;

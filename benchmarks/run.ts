@@ -12,6 +12,7 @@
  *     npm run bench -- --growth                      time and memory up to 1,000,000 unknowns, and what fits 4 GiB
  *     --runs N (7)   --max-unknowns N                fewer samples; smaller systems only
  */
+import '@gapwright/cli/fused-products';
 import { readFileSync } from 'node:fs';
 import { cpus } from 'node:os';
 import { fileURLToPath } from 'node:url';

@@ -2,6 +2,7 @@
  * Ours as a process of its own, in the manner of the peers (peers/peer.hpp): for first calls in a fresh process, for running
  * without WebAssembly (`--plain` takes it away before the library is loaded), and for peak memory.
  */
+import '@gapwright/cli/fused-products';
 import { readFileSync } from 'node:fs';
 import { createInterface } from 'node:readline';
 import type { LinearSystem, Solver } from './ours.js';
@@ -9,18 +10,21 @@ import { timed, timerOf } from './timing.js';
 
 if (process.argv.includes('--plain')) Reflect.deleteProperty(globalThis, 'WebAssembly');
 const ours = await import('./ours.js');
-const { gappedCore, laplacian, LIMITS, readLinear } = await import('./systems.js');
-const { meshSection } = await import('@gapwright/fem-core');
+const { gappedCore, laplacian, LIMITS, readLinear, readOrder } = await import('./systems.js');
+const { meshSection } = await import('@gapwright/fem-core/mesh');
 
 let system: LinearSystem | undefined;
+let order: Int32Array | undefined;
 let solver: Solver | undefined;
 
 /** Figures of the answer by name. */
 type Figures = Readonly<Record<string, number>>;
 
 const verbs: Readonly<Record<string, (words: readonly string[]) => Figures | Promise<Figures>>> = {
-  load: ([file]) => {
+  /** A matrix, and the order to factor it in where that is not to be minimum degree. */
+  load: ([file, orderFile]) => {
     system = readLinear(readFileSync(file));
+    order = orderFile === undefined ? undefined : readOrder(readFileSync(orderFile));
     solver = undefined;
     return { n: system.pattern.n };
   },
@@ -35,7 +39,7 @@ const verbs: Readonly<Record<string, (words: readonly string[]) => Figures | Pro
   },
   factor: async ([times]) => {
     const loaded = need(system);
-    solver ??= ours.solverOf(loaded, ours.analyseOrdered(loaded));
+    solver ??= ours.solverOf(loaded, ours.analyseOrdered(loaded, order));
     const ms = await timerOf(solver.factor)(Number(times));
     solver.solve();
     return { ms, residual: ours.residualOf(loaded, solver.x) };

@@ -1,22 +1,11 @@
-import type { Factor, Mesh, NotPositive, SolvedField, System } from '@gapwright/fem-core';
-import {
-  analyse,
-  assemble,
-  buildLocator,
-  buildSystem,
-  chooseOrder,
-  estimateGoalErrors,
-  factor,
-  meshSection,
-  numberUnknowns,
-  placementOf,
-  refineMesh,
-  solve,
-  solveOnMesh,
-  stressFunctional,
-  triangleCount,
-  weightedIntegral,
-} from '@gapwright/fem-core';
+import { buildLocator } from '@gapwright/fem-core';
+import type { System } from '@gapwright/fem-core/equations';
+import { assemble, buildSystem, numberUnknowns, placementOf } from '@gapwright/fem-core/equations';
+import { estimateGoalErrors, stressFunctional, weightedIntegral } from '@gapwright/fem-core/goals';
+import type { Mesh, SolvedField } from '@gapwright/fem-core/mesh';
+import { meshSection, refineMesh, solveOnMesh, triangleCount } from '@gapwright/fem-core/mesh';
+import type { Factor, NotPositive } from '@gapwright/fem-core/sparse';
+import { analyse, chooseOrder, factor, solve } from '@gapwright/fem-core/sparse';
 import type { Machine, PoleSection, SolvedSlice } from '@gapwright/machine-models';
 import { solveSlice } from '@gapwright/machine-models';
 import { median, ms, printTable, timed } from './timing.js';

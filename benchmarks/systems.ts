@@ -1,7 +1,12 @@
 /** Data for the comparisons: sections, their meshes and systems at a wished size, and the files other processes read them from. */
 import { writeFileSync } from 'node:fs';
-import type { Mesh, Section, Setup, SymmetricPattern, Unknowns } from '@gapwright/fem-core';
-import { buildBHCurve, buildSystem, MU0, meshSection, numberUnknowns } from '@gapwright/fem-core';
+import type { Section, Setup } from '@gapwright/fem-core';
+import { buildBHCurve, MU0 } from '@gapwright/fem-core';
+import type { Unknowns } from '@gapwright/fem-core/equations';
+import { buildSystem, numberUnknowns } from '@gapwright/fem-core/equations';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { meshSection } from '@gapwright/fem-core/mesh';
+import type { SymmetricPattern } from '@gapwright/fem-core/sparse';
 
 export interface LinearProblem {
   readonly section: Section;
@@ -183,6 +188,10 @@ export function writeLinear(file: string, { pattern, values, right }: LinearProb
 
 export function writeOrder(file: string, order: Int32Array): void {
   writeArrays(file, [order]);
+}
+
+export function readOrder(bytes: Uint8Array): Int32Array {
+  return new Int32Array(bytes.slice().buffer);
 }
 
 /** Points and segments; coordinates, ends; longest edge, smallest angle in radians. */

@@ -1,4 +1,5 @@
 #!/usr/bin/env node
+import './fused-products.js';
 import { main } from './main.js';
 
 // A reader that has seen enough (`gapwright solve FILE | head`) is no fault; files are still written in full.

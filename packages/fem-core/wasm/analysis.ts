@@ -22,15 +22,6 @@ function fill(array: usize, count: i32, value: u8): void {
   memory.fill(array, value, (<usize>count) << 2);
 }
 
-/** Counts become starts. */
-function sumUp(starts: usize, count: i32): void {
-  let sum = 0;
-  for (let k = 0; k < count; k++) {
-    sum += get(starts, k);
-    put(starts, k, sum);
-  }
-}
-
 /** inverse[order[k]] = k */
 export function invert(count: i32, order: usize, inverse: usize): void {
   for (let k = 0; k < count; k++) put(inverse, get(order, k), k);
@@ -41,140 +32,193 @@ export function arrange(count: i32, from: usize, at: usize, to: usize): void {
   for (let k = 0; k < count; k++) put(to, k, get(from, get(at, k)));
 }
 
-/**
- * `reorderedCouplings`. The starts have n + 2 places: numbers of entries gather two places on, starts one place on, and
- * filling a list moves its start to where the next one's belongs.
- */
-export function reorder(
-  n: i32,
-  start: usize,
-  row: usize,
-  place: usize,
-  earlierStart: usize,
-  earlier: usize,
-  laterStart: usize,
-  later: usize,
-  laterEntry: usize,
-): void {
-  fill(laterStart, n + 2, 0);
-  fill(earlierStart, n + 2, 0);
+/** `countCouplings`. */
+export function countCouplings(n: i32, start: usize, row: usize, place: usize, earlier: usize, later: usize): void {
+  fill(earlier, n, 0);
+  fill(later, n, 0);
   for (let j = 0; j < n; j++) {
     const b = get(place, j);
     for (let p = get(start, j) + 1, end = get(start, j + 1); p < end; p++) {
-      const a = get(place, get(row, p));
-      increase(laterStart, min(a, b) + 2, 1);
-      increase(earlierStart, max(a, b) + 2, 1);
-    }
-  }
-  sumUp(laterStart, n + 2);
-  sumUp(earlierStart, n + 2);
-  for (let j = 0; j < n; j++) {
-    const b = get(place, j);
-    for (let p = get(start, j) + 1, end = get(start, j + 1); p < end; p++) {
-      const a = get(place, get(row, p));
-      const low = min(a, b);
-      const q = get(laterStart, low + 1);
-      put(laterStart, low + 1, q + 1);
-      put(later, q, max(a, b));
-      put(laterEntry, q, p);
-    }
-  }
-  for (let k = 0, q = 0; k < n; k++) {
-    for (const end = get(laterStart, k + 1); q < end; q++) {
-      const high = get(later, q);
-      const to = get(earlierStart, high + 1);
-      put(earlierStart, high + 1, to + 1);
-      put(earlier, to, k);
+      const i = get(row, p);
+      const swap = (i ^ j) & ifLess(b, get(place, i));
+      increase(earlier, j ^ swap, 1);
+      increase(later, i ^ swap, 1);
     }
   }
 }
 
-export function eliminationTree(n: i32, earlierStart: usize, earlier: usize, parent: usize, work: usize): void {
+/** All bits where a < b, of numbers from 0 up: which of two couples comes first cannot be foretold, so branches are slow. */
+function ifLess(a: i32, b: i32): i32 {
+  return (a - b) >> 31;
+}
+
+/** `startLists`. */
+export function startLists(n: i32, order: usize, next: usize, starts: usize): void {
+  let sum = 0;
+  for (let k = 0; k < n; k++) {
+    const i = get(order, k);
+    const count = get(next, i);
+    put(starts, k, sum);
+    put(next, i, sum);
+    sum += count;
+  }
+  put(starts, n, sum);
+}
+
+/** `listEarlier`. */
+export function listEarlier(n: i32, start: usize, row: usize, place: usize, next: usize, earlier: usize): void {
+  for (let j = 0; j < n; j++) {
+    const b = get(place, j);
+    for (let p = get(start, j) + 1, end = get(start, j + 1); p < end; p++) {
+      const i = get(row, p);
+      const swap = (i ^ j) & ifLess(b, get(place, i));
+      const high = j ^ swap;
+      const q = get(next, high);
+      put(next, high, q + 1);
+      put(earlier, q, i ^ swap);
+    }
+  }
+}
+
+/** `listLater`. */
+export function listLater(
+  n: i32,
+  start: usize,
+  row: usize,
+  place: usize,
+  next: usize,
+  later: usize,
+  laterEntry: usize,
+): void {
+  for (let j = 0; j < n; j++) {
+    const b = get(place, j);
+    for (let p = get(start, j) + 1, end = get(start, j + 1); p < end; p++) {
+      const i = get(row, p);
+      const a = get(place, i);
+      const less = ifLess(b, a);
+      const low = i ^ ((i ^ j) & less);
+      const q = get(next, low);
+      put(next, low, q + 1);
+      put(later, q, b ^ ((a ^ b) & less));
+      put(laterEntry, q, p);
+    }
+  }
+}
+
+/** `eliminationTree`. */
+export function eliminationTree(
+  n: i32,
+  wanted: usize,
+  earlierStart: usize,
+  earlier: usize,
+  parent: usize,
+  workAncestor: usize,
+): void {
   fill(parent, n, 0xff);
-  fill(work, n, 0xff); // ancestors
-  for (let j = 0, p = 0; j < n; j++) {
-    for (const end = get(earlierStart, j + 1); p < end; p++) {
-      for (let i = get(earlier, p); i >= 0 && i < j; ) {
-        const up = get(work, i);
-        put(work, i, j);
-        if (up < 0) put(parent, i, j);
+  fill(workAncestor, n, 0xff);
+  for (let k = 0, p = 0; k < n; k++) {
+    const j = get(wanted, k);
+    for (const end = get(earlierStart, k + 1); p < end; p++) {
+      for (let i = get(earlier, p); ; ) {
+        const up = get(workAncestor, i);
+        if (up === j) break;
+        put(workAncestor, i, j);
+        if (up < 0) {
+          put(parent, i, j);
+          break;
+        }
         i = up;
       }
     }
   }
 }
 
-export function postorder(n: i32, parent: usize, post: usize, head: usize, next: usize): void {
-  fill(head, n + 1, 0xff);
-  for (let j = n - 1; j >= 0; j--) {
+/** `postorder`. */
+export function postorder(
+  n: i32,
+  wanted: usize,
+  parent: usize,
+  post: usize,
+  postParent: usize,
+  place: usize,
+  workHead: usize,
+  workNext: usize,
+): void {
+  fill(workHead, n + 1, 0xff);
+  for (let k = n - 1; k >= 0; k--) {
+    const j = get(wanted, k);
     const up = get(parent, j);
     const p = up < 0 ? n : up;
-    put(next, j, get(head, p));
-    put(head, p, j);
+    put(workNext, j, get(workHead, p));
+    put(workHead, p, j);
   }
   let k = 0;
   for (let j = n; ; ) {
-    for (let down = get(head, j); down >= 0; down = get(head, j)) j = down;
-    while (j !== n && get(next, j) < 0) {
+    for (let down = get(workHead, j); down >= 0; down = get(workHead, j)) j = down;
+    while (j !== n && get(workNext, j) < 0) {
+      put(place, j, k);
       put(post, k++, j);
       const up = get(parent, j);
       j = up < 0 ? n : up;
     }
-    if (j === n) return;
+    if (j === n) break;
+    put(place, j, k);
     put(post, k++, j);
-    j = get(next, j);
+    j = get(workNext, j);
+  }
+  for (let k = 0; k < n; k++) {
+    const up = get(parent, get(post, k));
+    put(postParent, k, up < 0 ? -1 : get(place, up));
   }
 }
 
+/** `columnCounts`. */
 export function columnCounts(
   n: i32,
   laterStart: usize,
   later: usize,
   parent: usize,
-  post: usize,
   count: usize,
-  firstBelow: usize,
-  lastFirst: usize,
+  leaves: usize,
   lastLeaf: usize,
-  ancestor: usize,
+  workFirst: usize,
+  workLastFirst: usize,
+  workAncestor: usize,
 ): void {
-  fill(firstBelow, n, 0xff);
-  fill(lastFirst, n, 0xff);
-  fill(lastLeaf, n, 0xff);
   fill(count, n, 0);
-  for (let k = 0; k < n; k++) {
-    put(ancestor, k, k);
-    for (let j = get(post, k); j >= 0 && get(firstBelow, j) < 0; j = get(parent, j)) put(firstBelow, j, k);
-  }
-  for (let k = 0; k < n; k++) {
-    const j = get(post, k);
-    const up = get(parent, j);
-    const first = get(firstBelow, j);
-    let own = first === k ? 1 : 0;
-    if (up >= 0) increase(count, up, -1);
-    for (let p = get(laterStart, j), end = get(laterStart, j + 1); p < end; p++) {
+  fill(workFirst, n, 0xff);
+  fill(workLastFirst, n, 0xff);
+  fill(lastLeaf, n, 0xff);
+  memory.copy(workAncestor, parent, (<usize>n) << 2);
+  let leaf = 0;
+  for (let j = 0, p = 0; j < n; j++) {
+    const known = get(workFirst, j);
+    const first = known < 0 ? j : known;
+    let own = known < 0 ? 1 : 0;
+    for (const end = get(laterStart, j + 1); p < end; p++) {
       const i = get(later, p);
-      if (first <= get(lastFirst, i)) continue;
-      put(lastFirst, i, first);
+      if (first <= get(workLastFirst, i)) continue;
+      put(workLastFirst, i, first);
       own++;
-      const leaf = get(lastLeaf, i);
-      put(lastLeaf, i, j);
-      if (leaf >= 0) increase(count, topmost(ancestor, leaf), -1);
+      const before = get(lastLeaf, i);
+      put(lastLeaf, i, leaf);
+      put(leaves, leaf++, j);
+      put(leaves, leaf++, before);
+      if (before >= 0) increase(count, topmost(workAncestor, get(leaves, before), j), -1);
     }
-    increase(count, j, own);
-    if (up >= 0) put(ancestor, j, up);
-  }
-  for (let k = 0; k < n; k++) {
-    const j = get(post, k);
+    own += get(count, j);
+    put(count, j, own);
     const up = get(parent, j);
-    if (up >= 0) increase(count, up, get(count, j));
+    if (up < 0) continue;
+    increase(count, up, own - 1);
+    if (get(workFirst, up) < 0) put(workFirst, up, first);
   }
 }
 
-function topmost(ancestor: usize, leaf: i32): i32 {
+function topmost(ancestor: usize, leaf: i32, present: i32): i32 {
   let top = leaf;
-  for (let up = get(ancestor, top); up !== top; up = get(ancestor, top)) top = up;
-  for (let j = leaf; j !== top; ) {
+  while (top < present) top = get(ancestor, top);
+  for (let j = leaf; j < present; ) {
     const up = get(ancestor, j);
     put(ancestor, j, top);
     j = up;
@@ -183,60 +227,50 @@ function topmost(ancestor: usize, leaf: i32): i32 {
 }
 
 /** `gatherSupernodes`. */
-export function gatherSupernodes(n: i32, parent: usize, post: usize, count: usize, top: usize, width: usize): void {
+export function gatherSupernodes(n: i32, parent: usize, count: usize, top: usize, width: usize): void {
   for (let j = 0; j < n; j++) put(width, j, 1);
-  for (let k = 0; k < n; k++) {
-    const j = get(post, k);
+  for (let j = 0; j < n; j++) {
     const up = get(parent, j);
     const goesOn = up >= 0 && get(count, j) === get(count, up) + 1 && get(width, up) === 1;
     put(top, j, goesOn ? up : j); // for now
     if (goesOn) increase(width, up, get(width, j));
   }
-  for (let k = n - 1; k >= 0; k--) {
-    const j = get(post, k);
-    const up = get(top, j);
-    if (up !== j) put(top, j, get(top, up));
-  }
+  for (let j = n - 1; j >= 0; j--) put(top, j, get(top, get(top, j)));
 }
 
-/** `mergeChildren`. @param time  room for n Float64 */
+/** `mergeChildren`. @param workTime  room for n Float64 */
 export function mergeChildren(
   n: i32,
   parent: usize,
-  post: usize,
   count: usize,
   top: usize,
   width: usize,
-  head: usize,
-  next: usize,
-  time: usize,
+  workHead: usize,
+  workNext: usize,
+  workTime: usize,
 ): void {
-  fill(head, n, 0xff);
-  for (let k = 0; k < n; k++) {
-    const t = get(post, k);
+  fill(workHead, n, 0xff);
+  for (let t = 0; t < n; t++) {
     if (get(top, t) !== t) continue;
     const below = get(count, t) - 1;
     let columns = get(width, t);
     let own = frontTime(columns, below);
-    for (let child = get(head, t); child >= 0; child = get(next, child)) {
+    for (let child = get(workHead, t); child >= 0; child = get(workNext, child)) {
       const together = frontTime(columns + get(width, child), below);
-      if (together > own + load<f64>(time + ((<usize>child) << 3))) continue;
+      if (together > own + load<f64>(workTime + ((<usize>child) << 3))) continue;
       own = together;
       columns += get(width, child);
       put(top, child, t);
     }
     put(width, t, columns);
-    store<f64>(time + ((<usize>t) << 3), own);
+    store<f64>(workTime + ((<usize>t) << 3), own);
     const above = get(parent, t);
     if (above < 0) continue;
     const up = get(top, above);
-    put(next, t, get(head, up));
-    put(head, up, t);
+    put(workNext, t, get(workHead, up));
+    put(workHead, up, t);
   }
-  for (let k = n - 1; k >= 0; k--) {
-    const j = get(post, k);
-    put(top, j, get(top, get(top, j)));
-  }
+  for (let j = n - 1; j >= 0; j--) put(top, j, get(top, get(top, j)));
 }
 
 function frontTime(columns: i32, rows: i32): f64 {
@@ -267,51 +301,39 @@ function blockSize(width: i32, below: i32): i64 {
 export function numberFronts(
   n: i32,
   parent: usize,
-  post: usize,
   count: usize,
   top: usize,
   width: usize,
-  place: usize,
+  columns: usize,
   frontOf: usize,
   first: usize,
   below: usize,
   parentFront: usize,
   workTops: usize,
   workIndex: usize,
-  workSequence: usize,
-  workHead: usize,
   workNext: usize,
 ): i32 {
   let fronts = 0;
-  for (let k = 0; k < n; k++) {
-    const j = get(post, k);
+  let end = 0;
+  for (let j = 0; j < n; j++) {
     if (get(top, j) !== j) continue;
-    put(workIndex, j, fronts);
-    put(workTops, fronts++, j);
+    put(first, fronts, end);
+    put(workNext, fronts, end);
+    put(below, fronts, get(count, j) - 1);
+    put(workTops, fronts, j);
+    put(workIndex, j, fronts++);
+    end += get(width, j);
+  }
+  put(first, fronts, end);
+  for (let j = 0; j < n; j++) {
+    const s = get(workIndex, get(top, j));
+    const k = get(workNext, s);
+    put(workNext, s, k + 1);
+    put(columns, k, j);
+    put(frontOf, j, s);
   }
   for (let s = 0; s < fronts; s++) {
     const above = get(parent, get(workTops, s));
-    put(parentFront, s, above < 0 ? -1 : get(workIndex, get(top, above))); // by the order of their tops for now
-  }
-  postorder(fronts, parentFront, workSequence, workHead, workNext);
-  put(first, 0, 0);
-  for (let s = 0; s < fronts; s++) {
-    const t = get(workTops, get(workSequence, s));
-    put(first, s + 1, get(first, s) + get(width, t));
-    put(below, s, get(count, t) - 1);
-    put(workIndex, t, s);
-    put(workHead, s, get(first, s)); // place of its next column
-  }
-  for (let k = 0; k < n; k++) {
-    const j = get(post, k);
-    const s = get(workIndex, get(top, j));
-    put(frontOf, j, s);
-    const at = get(workHead, s);
-    put(place, j, at);
-    put(workHead, s, at + 1);
-  }
-  for (let s = 0; s < fronts; s++) {
-    const above = get(parent, get(workTops, get(workSequence, s)));
     put(parentFront, s, above < 0 ? -1 : get(frontOf, above));
   }
   return fronts;
@@ -347,7 +369,7 @@ export function placeBlocks(fronts: i32, first: usize, below: usize, blockStart:
   return <f64>end;
 }
 
-/** The rows of `rowsOf`. @param columns  inverse of the places */
+/** The rows of `rowsOf`. */
 export function listRows(
   n: i32,
   fronts: i32,
@@ -355,8 +377,8 @@ export function listRows(
   frontOf: usize,
   below: usize,
   parentFront: usize,
-  earlierStart: usize,
-  earlier: usize,
+  leaves: usize,
+  lastLeaf: usize,
   rowStart: usize,
   rows: usize,
   workNext: usize,
@@ -367,8 +389,8 @@ export function listRows(
   for (let k = 0; k < n; k++) {
     const j = get(columns, k);
     put(workSeen, get(frontOf, j), k);
-    for (let p = get(earlierStart, j), end = get(earlierStart, j + 1); p < end; p++) {
-      for (let s = get(frontOf, get(earlier, p)); get(workSeen, s) !== k; s = get(parentFront, s)) {
+    for (let leaf = get(lastLeaf, j); leaf >= 0; leaf = get(leaves, leaf + 1)) {
+      for (let s = get(frontOf, get(leaves, leaf)); get(workSeen, s) !== k; s = get(parentFront, s)) {
         const at = get(workNext, s);
         put(rows, at, k);
         put(workNext, s, at + 1);
@@ -385,7 +407,7 @@ export function listRows(
 export function makeMaps(
   fronts: i32,
   start: usize,
-  wanted: usize,
+  unknowns: usize,
   columns: usize,
   first: usize,
   below: usize,
@@ -428,7 +450,7 @@ export function makeMaps(
     for (let c = 0; c < width; c++) {
       const j = get(columns, from + c);
       const column = get(blockStart, s) + 4 * c;
-      put(source, e, get(start, get(wanted, j)));
+      put(source, e, get(start, get(unknowns, from + c)));
       put(target, e++, column + get(workInBlock, j));
       for (let q = get(laterStart, j), end = get(laterStart, j + 1); q < end; q++) {
         put(source, e, get(laterEntry, q));

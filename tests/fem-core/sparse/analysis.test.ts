@@ -1,5 +1,5 @@
-import type { Analysis, SymmetricPattern } from '@gapwright/fem-core';
-import { analyse, factor, minimumDegreeOrder, solve } from '@gapwright/fem-core';
+import type { Analysis, SymmetricPattern } from '@gapwright/fem-core/sparse';
+import { analyse, factor, minimumDegreeOrder, solve } from '@gapwright/fem-core/sparse';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { plainAnalyse } from '../../../packages/fem-core/src/sparse/analysis.js';
@@ -130,6 +130,23 @@ describe('fronts, maps and counts keep their promises', () => {
     const analysis = analyse(patternFrom(0, []));
     expect([analysis.blockSize, analysis.updateSize, analysis.factorEntries, analysis.flops]).toEqual([0, 0, 0, 0]);
   });
+});
+
+/** So many unknowns that couple to each of a few hubs, and to nothing else. */
+function hubs(unknowns: number, count: number): SymmetricPattern {
+  const couplings = Array.from({ length: unknowns }, (_, i) =>
+    Array.from({ length: count }, (_hub, h): [number, number] => [i, unknowns + h]),
+  );
+  return patternFrom(unknowns + count, couplings.flat());
+}
+
+test('rows that outnumber the unknowns many times over keep the promises too, with WebAssembly and without', () => {
+  const pattern = hubs(90, 30);
+  const order = natural(120);
+  const analysis = analyse(pattern, order);
+  expect(analysis.rows.length).toBeGreaterThan(10 * pattern.n);
+  expectSound(analysis);
+  expect(analysis).toEqual(plainAnalyse(pattern, order));
 });
 
 test('with WebAssembly and without, every number of an analysis is the same', () => {

@@ -1,4 +1,4 @@
-import { analyse, factor, solve } from '@gapwright/fem-core';
+import { analyse, factor, solve } from '@gapwright/fem-core/sparse';
 import fc from 'fast-check';
 import { CholeskyDecomposition, Matrix } from 'ml-matrix';
 import { describe, expect, test } from 'vitest';

@@ -1,5 +1,5 @@
-import type { SymmetricPattern } from '@gapwright/fem-core';
-import { multiply } from '@gapwright/fem-core';
+import type { SymmetricPattern } from '@gapwright/fem-core/sparse';
+import { multiply } from '@gapwright/fem-core/sparse';
 import fc from 'fast-check';
 import type { Matrix } from 'ml-matrix';
 import { describe, expect, test } from 'vitest';

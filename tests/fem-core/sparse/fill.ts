@@ -1,4 +1,4 @@
-import type { SymmetricPattern } from '@gapwright/fem-core';
+import type { SymmetricPattern } from '@gapwright/fem-core/sparse';
 
 /** Entries of the Cholesky factor below and on the diagonal, and the sum of squares of its column counts. */
 export interface Fill {

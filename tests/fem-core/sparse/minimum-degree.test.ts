@@ -1,5 +1,5 @@
-import type { SymmetricPattern } from '@gapwright/fem-core';
-import { minimumDegreeOrder } from '@gapwright/fem-core';
+import type { SymmetricPattern } from '@gapwright/fem-core/sparse';
+import { minimumDegreeOrder } from '@gapwright/fem-core/sparse';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { plainMinimumDegreeOrder } from '../../../packages/fem-core/src/sparse/minimum-degree.js';

@@ -1,12 +1,7 @@
-import type { Mesh, SymmetricPattern } from '@gapwright/fem-core';
-import {
-  cornerCount,
-  meshSection,
-  minimumDegreeOrder,
-  nodeCount,
-  triangleCount,
-  triangleNodes,
-} from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { cornerCount, meshSection, nodeCount, triangleCount, triangleNodes } from '@gapwright/fem-core/mesh';
+import type { SymmetricPattern } from '@gapwright/fem-core/sparse';
+import { minimumDegreeOrder } from '@gapwright/fem-core/sparse';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { chooseOrder } from '../../../packages/fem-core/src/sparse/choose-order.js';

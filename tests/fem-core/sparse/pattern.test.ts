@@ -1,4 +1,4 @@
-import { multiply } from '@gapwright/fem-core';
+import { multiply } from '@gapwright/fem-core/sparse';
 import fc from 'fast-check';
 import { Matrix } from 'ml-matrix';
 import { expect, test } from 'vitest';

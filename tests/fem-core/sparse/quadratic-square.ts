@@ -1,4 +1,4 @@
-import type { SymmetricPattern } from '@gapwright/fem-core';
+import type { SymmetricPattern } from '@gapwright/fem-core/sparse';
 import type { Placement } from '../../../packages/fem-core/src/sparse/nested-dissection.js';
 import { patternFrom } from './systems.js';
 

@@ -1,5 +1,5 @@
-import type { Factor, SymmetricPattern } from '@gapwright/fem-core';
-import { analyse, factor, multiply, solve } from '@gapwright/fem-core';
+import type { Factor, SymmetricPattern } from '@gapwright/fem-core/sparse';
+import { analyse, factor, multiply, solve } from '@gapwright/fem-core/sparse';
 import fc from 'fast-check';
 import { Matrix } from 'ml-matrix';
 

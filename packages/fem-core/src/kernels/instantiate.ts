@@ -15,6 +15,7 @@ declare const WebAssembly: WasmHost | undefined;
 
 /** Compiled kernels; code without state, made once. */
 export interface CompiledKernels {
+  /** A WebAssembly.Module. */
   readonly module: object;
 }
 

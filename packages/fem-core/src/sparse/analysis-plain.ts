@@ -2,8 +2,16 @@
  * The steps of an analysis in plain TypeScript: the twin of wasm/analysis.ts, which gives the same numbers. What they are is
  * told at `Analysis`.
  */
-import type { Couplings } from './elimination-tree.js';
-import { columnCounts, eliminationTree, postorder, reorderedCouplings, sumUp } from './elimination-tree.js';
+import type { Counts } from './elimination-tree.js';
+import {
+  columnCounts,
+  countCouplings,
+  eliminationTree,
+  listEarlier,
+  listLater,
+  postorder,
+  startLists,
+} from './elimination-tree.js';
 import { blockSize, rowStartInBlock, tileCount, updateSize } from './front-layout.js';
 import type { Fronts } from './fronts.js';
 import { gatherFronts } from './fronts.js';
@@ -11,17 +19,20 @@ import type { SymmetricPattern } from './pattern.js';
 
 /** All of an `Analysis` but how much memory it takes. */
 export function analysePlain(pattern: SymmetricPattern, wanted: Int32Array) {
-  const { n } = pattern;
   const wantedPlace = inverseOf(wanted);
-  const couplings = reorderedCouplings(pattern, wantedPlace);
-  const parent = eliminationTree(n, couplings);
-  const post = postorder(parent);
-  const count = columnCounts(couplings, parent, post);
-  const fronts = gatherFronts(parent, post, count);
+  const { earlierCount, laterCount } = countCouplings(pattern, wantedPlace);
+  const earlierStart = startLists(wanted, earlierCount);
+  const earlier = listEarlier(pattern, wantedPlace, earlierCount);
+  const tree = eliminationTree(wanted, earlierStart, earlier);
+  // From here on columns are numbered in the postorder, which brings what couples near together in memory.
+  const { post, place, postParent } = postorder(wanted, tree);
+  const laterStart = startLists(post, laterCount);
+  const couplings = { laterStart, ...listLater(pattern, place, laterCount) };
+  const counts = columnCounts(laterStart, couplings.later, postParent);
+  const fronts = gatherFronts(postParent, counts.count);
   const { first, below } = fronts;
-  const order = new Int32Array(n);
-  for (let j = 0; j < n; j++) order[fronts.place[j]] = wanted[j];
-  const { rowStart, rows } = rowsOf(fronts, couplings);
+  const order = fronts.columns.map((j) => post[j]);
+  const { rowStart, rows } = rowsOf(fronts, counts);
   const { child, sibling } = childrenOf(fronts.parent);
   const blockStart = new Int32Array(below.length + 1);
   const blocksEnd = placeBlocks(first, below, blockStart);
@@ -31,10 +42,10 @@ export function analysePlain(pattern: SymmetricPattern, wanted: Int32Array) {
     place: inverseOf(order),
     ...{ first, below, child, sibling, rowStart, rows, blockStart },
     relative: relativeRows(fronts, child, sibling, rowStart, rows),
-    ...entriesOf(pattern, wanted, fronts, couplings, { rowStart, rows, blockStart }),
+    ...entriesOf(pattern, order, fronts, couplings, { rowStart, rows, blockStart }),
     ...placeUpdates(fronts),
     blockSize: blocksEnd,
-    ...totals(count),
+    ...totals(counts.count),
   };
 }
 
@@ -76,26 +87,25 @@ function childrenOf(parent: Int32Array): { child: Int32Array; sibling: Int32Arra
 }
 
 /**
- * Rows of all fronts at once: place k is a row of the fronts of its earlier couplings and of all on the way from there to its
+ * Rows of all fronts at once: place k is a row of the fronts of its subtree's leaves and of all on the way from there to its
  * own. Taken in rising order, so that each front's rows rise.
  */
-function rowsOf(fronts: Fronts, couplings: Couplings): { rowStart: Int32Array; rows: Int32Array } {
-  const { place, frontOf, below, parent } = fronts;
-  const { earlierStart, earlier } = couplings;
-  const n = place.length;
+function rowsOf(
+  { columns, frontOf, below, parent }: Fronts,
+  { leaves, lastLeaf }: Counts,
+): { rowStart: Int32Array; rows: Int32Array } {
+  const n = columns.length;
   const frontCount = below.length;
   const rowStart = new Int32Array(frontCount + 1);
-  for (let s = 0; s < frontCount; s++) rowStart[s + 1] = 4 * tileCount(below[s]);
-  sumUp(rowStart);
+  for (let s = 0; s < frontCount; s++) rowStart[s + 1] = rowStart[s] + 4 * tileCount(below[s]);
   const rows = new Int32Array(rowStart[frontCount]).fill(n);
-  const next = rowStart.slice(0, frontCount);
-  const seen = new Int32Array(frontCount).fill(-1);
-  const columns = inverseOf(place);
+  const next = rowStart.slice();
+  const seen = new Int32Array(frontCount).fill(-1); // the last row each front was met for
   for (let k = 0; k < n; k++) {
     const j = columns[k];
     seen[frontOf[j]] = k;
-    for (let p = earlierStart[j]; p < earlierStart[j + 1]; p++) {
-      for (let s = frontOf[earlier[p]]; seen[s] !== k; s = parent[s]) {
+    for (let leaf = lastLeaf[j]; leaf >= 0; leaf = leaves[leaf + 1]) {
+      for (let s = frontOf[leaves[leaf]]; seen[s] !== k; s = parent[s]) {
         rows[next[s]++] = k;
         seen[s] = k;
       }
@@ -106,14 +116,14 @@ function rowsOf(fronts: Fronts, couplings: Couplings): { rowStart: Int32Array; r
 
 /** The rows of each front among those of its parent's. */
 function relativeRows(
-  { place, first, below }: Fronts,
+  { columns, first, below }: Fronts,
   child: Int32Array,
   sibling: Int32Array,
   rowStart: Int32Array,
   rows: Int32Array,
 ): Int32Array {
   const relative = new Int32Array(rows.length);
-  const among = new Int32Array(place.length + 1); // the row of the present front at each place
+  const among = new Int32Array(columns.length + 1); // the row of the present front at each place
   for (let s = 0; s < below.length; s++) {
     if (child[s] < 0) continue;
     const width = first[s + 1] - first[s];
@@ -129,16 +139,15 @@ function relativeRows(
 /** Entries of the matrix by fronts and columns, and where each goes in the front's block. */
 function entriesOf(
   pattern: SymmetricPattern,
-  wanted: Int32Array,
-  { place, first, below }: Fronts,
-  { laterStart, later, laterEntry }: Couplings,
+  order: Int32Array,
+  { columns, first, below }: Fronts,
+  { laterStart, later, laterEntry }: { laterStart: Int32Array; later: Int32Array; laterEntry: Int32Array },
   { rowStart, rows, blockStart }: { rowStart: Int32Array; rows: Int32Array; blockStart: Int32Array },
 ): { entryStart: Int32Array; source: Int32Array; target: Int32Array } {
   const entryStart = new Int32Array(first.length);
   const source = new Int32Array(pattern.row.length);
   const target = new Int32Array(pattern.row.length);
-  const columns = inverseOf(place);
-  const inBlock = new Int32Array(pattern.n); // by wanted places: where the row of the present front starts
+  const inBlock = new Int32Array(pattern.n); // by columns: where the row of the present front starts
   let e = 0;
   for (let s = 0; s < below.length; s++) {
     const width = first[s + 1] - first[s];
@@ -147,7 +156,7 @@ function entriesOf(
     for (let c = 0; c < width; c++) {
       const j = columns[first[s] + c];
       const column = blockStart[s] + 4 * c;
-      source[e] = pattern.start[wanted[j]];
+      source[e] = pattern.start[order[first[s] + c]];
       target[e++] = column + inBlock[j];
       for (let q = laterStart[j]; q < laterStart[j + 1]; q++) {
         source[e] = laterEntry[q];

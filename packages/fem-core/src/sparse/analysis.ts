@@ -15,34 +15,42 @@ import type { SymmetricPattern } from './pattern.js';
  * `front-layout.ts` tells.
  */
 export interface Analysis {
+  /** n unknowns, z entries; f fronts below. */
   readonly pattern: SymmetricPattern;
   /** Int32Array(n): order[k] is the unknown in place k. */
   readonly order: Int32Array;
   /** Int32Array(n): place[i] is where unknown i went. */
   readonly place: Int32Array;
-  /** Int32Array(f + 1) and Int32Array(f): columns of each front, and the number of rows below them. */
+  /** Int32Array(f + 1): the first column of each front, then n. */
   readonly first: Int32Array;
+  /** Int32Array(f): number of rows below the columns of each front. */
   readonly below: Int32Array;
-  /** Int32Array(f): first child of each front and next child of the same parent, -1 where there is none. */
+  /** Int32Array(f): first child of each front, -1 where there is none. */
   readonly child: Int32Array;
+  /** Int32Array(f): next child of the same parent, -1 where there is none. */
   readonly sibling: Int32Array;
+  /** Int32Array(f + 1): where the rows of each front start in `rows` and in `relative`. */
+  readonly rowStart: Int32Array;
   /**
    * Rows below the columns of front s: rows[rowStart[s]] ... rows[rowStart[s] + below[s] - 1], rising, then n up to the next
-   * multiple of four; and, beside each, its place among the rows of the parent's front.
+   * multiple of four.
    */
-  readonly rowStart: Int32Array;
   readonly rows: Int32Array;
+  /** Beside each of `rows`, its place among the rows of the parent's front. */
   readonly relative: Int32Array;
-  /** Entries of the matrix by fronts, entryStart[s] ...: number in the pattern, and where it goes in the blocks. */
+  /** Int32Array(f + 1): where the entries of the matrix that belong to each front start in `source` and in `target`. */
   readonly entryStart: Int32Array;
+  /** Int32Array(z): number of the entry in the pattern. */
   readonly source: Int32Array;
+  /** Int32Array(z): where it goes in the blocks. */
   readonly target: Int32Array;
   /** Int32Array(f + 1): where the block of each front starts. */
   readonly blockStart: Int32Array;
   /** Int32Array(f): where its update starts; it lasts until its parent has taken it. */
   readonly updateStart: Int32Array;
-  /** Numbers in all blocks, explicit zeros included, and room for the updates that live at one time. */
+  /** Numbers in all blocks, explicit zeros included. */
   readonly blockSize: number;
+  /** Numbers in all updates that live at one time. */
   readonly updateSize: number;
   /** Entries of the factor's lower triangle that are not zero but by cancellation. */
   readonly factorEntries: number;
@@ -55,6 +63,7 @@ export interface Analysis {
 const compiled = compileKernels(bytes);
 
 /**
+ * The symbolic part of a factorisation.
  * @param wanted  Int32Array(n): unknowns in the order of elimination. Kept but for moves that change no entry and no
  *                operation: subtrees of the elimination tree are brought together.
  */
@@ -75,13 +84,16 @@ type Step<Result> = (...sizesAndAddresses: number[]) => Result;
 interface Kernels
   extends Record<
       | 'invert'
-      | 'reorder'
+      | 'arrange'
+      | 'countCouplings'
+      | 'startLists'
+      | 'listEarlier'
       | 'eliminationTree'
       | 'postorder'
+      | 'listLater'
       | 'columnCounts'
       | 'gatherSupernodes'
       | 'mergeChildren'
-      | 'arrange'
       | 'childrenOf'
       | 'listRows'
       | 'makeMaps',
@@ -90,16 +102,16 @@ interface Kernels
     Record<'numberFronts' | 'startRows' | 'placeBlocks' | 'placeUpdates' | 'sumOf' | 'sumOfSquares', Step<number>> {}
 
 /**
- * One step after the other in the memory of one instance, which grows as lengths become known. Arrays no longer needed give
- * their places to later ones, because the first touch of fresh memory takes time.
+ * One step after the other in the memory of one instance. Arrays no longer needed give their places to later ones, because
+ * the first touch of fresh memory takes time: w0 ... w5 hold one thing after another, and the last maps go over them.
  */
 function analyseByKernels(
   kernels: CompiledKernels,
   pattern: SymmetricPattern,
   wantedOrder: Int32Array,
 ): Omit<Analysis, 'peakBytes'> {
-  const { n, start, row } = pattern;
-  const entries = row.length;
+  const { n } = pattern;
+  const entries = pattern.row.length;
   let end = 0;
   const take = (count: number): number => {
     const at = end;
@@ -107,51 +119,67 @@ function analyseByKernels(
     return at;
   };
   const takeSome = (many: number, count: number): number[] => Array.from({ length: many }, () => take(count));
-  const [starts, patternRows] = [take(n + 1), take(entries)];
-  const [later, laterEntry, earlier] = takeSome(3, entries);
-  const [laterStart, earlierStart, wanted, columns, parent, post, count, frontOf] = takeSome(8, n + 2);
-  const [first, below, parentFront, top, width, w0, w1, w2, w3, w4] = takeSome(10, n + 1);
-  const time = take(2 * n);
+  const [start, row] = [take(n + 1), take(entries)];
+  const [byPost, byPlace, columns, frontOf, laterStart, lastLeaf] = takeSome(6, n + 1);
+  const [first, below, parentFront, rowStart, blockStart, entryStart] = takeSome(6, n + 1);
+  const [child, sibling, updateStart, nextRow, seen] = takeSome(5, n + 1);
+  const [later, laterEntry] = takeSome(2, entries - n);
+  const scratch = end;
+  const [w0, w1, w2, w3, w4, w5] = takeSome(6, n + 1);
+  const leaves = take(2 * (entries - n));
   const { exports: run, buffer, reserve } = instantiate<Kernels>(kernels, end);
   const put = (array: Int32Array, at: number): void => new Int32Array(buffer(), at, array.length).set(array);
-  put(start, starts);
-  put(row, patternRows);
+  put(pattern.start, start);
+  put(pattern.row, row);
+
+  // The elimination tree.
+  const [wanted, wantedPlace, nextEarlier, nextLater, earlierStart, earlier] = [w0, byPost, w1, w5, lastLeaf, later];
   put(wantedOrder, wanted);
+  run.invert(n, wanted, wantedPlace);
+  run.countCouplings(n, start, row, wantedPlace, nextEarlier, nextLater);
+  run.startLists(n, wanted, nextEarlier, earlierStart);
+  run.listEarlier(n, start, row, wantedPlace, nextEarlier, earlier);
+  const tree = w1;
+  run.eliminationTree(n, wanted, earlierStart, earlier, tree, w2);
 
-  run.invert(n, wanted, w0);
-  run.reorder(n, starts, patternRows, w0, earlierStart, earlier, laterStart, later, laterEntry);
-  run.eliminationTree(n, earlierStart, earlier, parent, w0);
-  run.postorder(n, parent, post, w0, w1);
-  run.columnCounts(n, laterStart, later, parent, post, count, w0, w1, w2, w3);
-  run.gatherSupernodes(n, parent, post, count, top, width);
-  run.mergeChildren(n, parent, post, count, top, width, w0, w1, time);
-  const placeOf = time;
+  // From here on columns are numbered in the postorder, which brings what couples near together in memory.
+  const [unknowns, postPlace, parent] = [byPost, byPlace, w3];
+  run.postorder(n, wanted, tree, unknowns, parent, postPlace, w2, w4);
+  run.startLists(n, unknowns, nextLater, laterStart);
+  run.listLater(n, start, row, postPlace, nextLater, later, laterEntry);
+  const count = w0;
+  run.columnCounts(n, laterStart, later, parent, count, leaves, lastLeaf, w1, w2, w4);
+  const [factorEntries, flops] = [run.sumOf(n, count), run.sumOfSquares(n, count)];
+
+  // Fronts.
+  const [top, width] = [w1, w2];
+  run.gatherSupernodes(n, parent, count, top, width);
+  run.mergeChildren(n, parent, count, top, width, columns, frontOf, w4);
   const f = run.numberFronts(
-    ...[n, parent, post, count, top, width, placeOf, frontOf, first, below, parentFront],
-    ...[w0, w1, w2, w3, w4],
+    ...[n, parent, count, top, width, columns, frontOf, first, below, parentFront],
+    ...[w4, w5, byPlace],
   );
-  run.invert(n, placeOf, columns);
-  const [order, place] = [post, placeOf];
-  run.arrange(n, wanted, columns, order);
+  const [order, place] = [byPlace, byPost];
+  run.arrange(n, unknowns, columns, order);
   run.invert(n, order, place);
-
-  const [child, sibling, rowStart, blockStart, entryStart, updateStart] = takeSome(6, f + 1);
-  const room = take(2 * f);
-  reserve(end);
-  const rowCount = run.startRows(f, below, rowStart);
-  const [rows, relative] = takeSome(2, rowCount);
-  reserve(end);
   run.childrenOf(f, parentFront, child, sibling);
   const blockSize = run.placeBlocks(f, first, below, blockStart);
-  run.listRows(n, f, columns, frontOf, below, parentFront, earlierStart, earlier, rowStart, rows, w0, w1);
-  const [source, target] = [earlier, patternRows];
+  const updateSize = run.placeUpdates(f, below, parentFront, updateStart, w3, w4);
+
+  // Maps.
+  const rowCount = run.startRows(f, below, rowStart);
+  if (scratch + 4 * rowCount <= leaves) end = scratch;
+  const rows = take(rowCount);
+  reserve(end);
+  run.listRows(n, f, columns, frontOf, below, parentFront, leaves, lastLeaf, rowStart, rows, nextRow, seen);
+  const [relative, source, target] = [take(rowCount), row, take(entries)];
+  reserve(end);
   run.makeMaps(
-    ...[f, starts, wanted, columns, first, below, child, sibling, laterStart, later, laterEntry],
-    ...[rowStart, rows, blockStart, relative, entryStart, source, target, w0, w1],
+    ...[f, start, order, columns, first, below, child, sibling, laterStart, later, laterEntry],
+    ...[rowStart, rows, blockStart, relative, entryStart, source, target, frontOf, lastLeaf],
   );
-  const updateSize = run.placeUpdates(f, below, parentFront, updateStart, w0, room);
   const memory = buffer();
-  const copy = (at: number, length: number): Int32Array => new Int32Array(memory, at, length).slice();
+  const copy = (at: number, length: number): Int32Array => new Int32Array(new Int32Array(memory, at, length));
   return {
     pattern,
     order: copy(order, n),
@@ -170,7 +198,7 @@ function analyseByKernels(
     updateStart: copy(updateStart, f),
     blockSize,
     updateSize,
-    factorEntries: run.sumOf(n, count),
-    flops: run.sumOfSquares(n, count),
+    factorEntries,
+    flops,
   };
 }

@@ -23,6 +23,7 @@ interface Kernels {
 
 /** Memory with the kernels that work in it, laid out for one analysis at a time. */
 export interface Arena {
+  readonly kernels: CompiledKernels;
   readonly instance: KernelInstance<Kernels>;
   layout: ArenaLayout;
   /** The one whose index maps it holds. */
@@ -30,10 +31,11 @@ export interface Arena {
 }
 
 /** An arena for the analysis: the given one, grown if need be, or a new one. Throws RangeError where memory is short. */
-export function arenaFor(compiled: CompiledKernels, analysis: Analysis, reuse?: Arena): Arena {
-  if (reuse?.analysis === analysis) return reuse;
+export function arenaFor(kernels: CompiledKernels, analysis: Analysis, reuse?: Arena): Arena {
+  const old = reuse?.kernels === kernels ? reuse : undefined;
+  if (old?.analysis === analysis) return old;
   const layout = arenaLayout(analysis);
-  const arena = reuse ?? { instance: instantiate<Kernels>(compiled, layout.end), layout, analysis };
+  const arena = old ?? { kernels, instance: instantiate<Kernels>(kernels, layout.end), layout, analysis };
   const memory = arena.instance.reserve(layout.end);
   arena.layout = layout;
   arena.analysis = analysis;

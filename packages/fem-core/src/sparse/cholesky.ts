@@ -1,4 +1,6 @@
 import { bytes } from '../kernels/cholesky.wasm.js';
+import { bytes as fusedBytes } from '../kernels/cholesky-fused.wasm.js';
+import type { CompiledKernels } from '../kernels/instantiate.js';
 import { compileKernels } from '../kernels/instantiate.js';
 import type { Analysis } from './analysis.js';
 import type { Arena } from './arena.js';
@@ -8,9 +10,11 @@ import { rowStartInBlock } from './front-layout.js';
 
 /** A = L L^T in the order of the analysis. Serves until its memory is given to another. */
 export interface Factor {
+  /** It was made by. */
   readonly analysis: Analysis;
   /** Float64Array(blockSize): L by fronts, as `front-layout.ts` tells, the diagonal by its reciprocals. */
   readonly blocks: Float64Array;
+  /** For `factor` and the solves alone. */
   readonly memory: FactorMemory;
 }
 
@@ -24,21 +28,36 @@ interface FactorMemory {
   readonly updates: Float64Array;
 }
 
-/** Unknown whose pivot the factorisation found not positive, and that pivot. */
+/** Why there is no factor: the matrix is not positive definite. */
 export interface NotPositive {
+  /** The unknown whose pivot was the first found not above 0. */
   readonly unknown: number;
+  /** That pivot; NaN where the matrix holds what is no number. */
   readonly pivot: number;
 }
 
+/** In what memory a factor is made, and by what. */
 export interface FactorOptions {
   /** A factor no longer needed: its memory serves the new one, and it is void from now on. */
   readonly reuse?: Factor | undefined;
-  /** Without WebAssembly; the answers are the same. */
+  /** Without WebAssembly; the answers are those of `unfusedKernels` to the bit. */
   readonly plain?: boolean;
+  /** Kernels to use in place of the fastest the host has. */
+  readonly kernels?: CompiledKernels | undefined;
 }
 
-const compiled = compileKernels(bytes);
-/** Operations below which making an instance takes longer than the factorisation. */
+/** With fused products where the host has them: twice the arithmetic a cycle, and one rounding where others take two. */
+const fastest = compileKernels(fusedBytes) ?? compileKernels(bytes);
+
+/** Kernels that round each product and each sum, as the plain twin does. Undefined where the host has no SIMD. */
+export function unfusedKernels(): CompiledKernels | undefined {
+  return compileKernels(bytes);
+}
+
+/**
+ * Operations below which making an instance takes longer than the factorisation. The matrix alone decides, not whether there
+ * is one already: the same matrix gives the same bits whatever came before it.
+ */
 const SMALL = 30_000;
 
 /**
@@ -46,18 +65,18 @@ const SMALL = 30_000;
  *
  * @param values  Float64Array(z): the lower triangle in the order of the pattern
  * @returns the factor, or where the matrix was found not positive definite
- * Throws RangeError where that takes more memory than 32-bit addresses reach, or than the host can give, and Error where the
- * memory to be used again was given to another factor before.
+ * @throws RangeError where that takes more memory than 32-bit addresses reach, or than the host can give, and Error where the
+ * memory to be used again was given to another factor before
  */
 export function factor(analysis: Analysis, values: Float64Array, options: FactorOptions = {}): Factor | NotPositive {
-  const { reuse, plain = reuse?.memory.arena === undefined && analysis.flops < SMALL } = options;
+  const { reuse, kernels = fastest, plain = analysis.flops < SMALL } = options;
   expectRoom(analysis);
   if (reuse !== undefined) {
     expectHeld(reuse);
     reuse.memory.given = true;
   }
-  if (plain || compiled === undefined) return factorInNumbers(analysis, values, reuse);
-  const arena = arenaFor(compiled, analysis, reuse?.memory.arena);
+  if (plain || kernels === undefined) return factorInNumbers(analysis, values, reuse);
+  const arena = arenaFor(kernels, analysis, reuse?.memory.arena);
   const { layout, instance } = arena;
   const memory = instance.buffer();
   new Float64Array(memory, layout.values, values.length).set(values);
@@ -109,7 +128,7 @@ function notPositive({ order, first, blockStart }: Analysis, blocks: Float64Arra
  * Solves A x = b with the factor.
  * @param b  Float64Array(n); may be the same array as x
  * @param x  Float64Array(n); overwritten and returned
- * Throws Error for a factor whose memory was given to another.
+ * @throws Error for a factor whose memory was given to another
  */
 export function solve(factored: Factor, b: Float64Array, x: Float64Array): Float64Array {
   expectHeld(factored);
@@ -135,7 +154,7 @@ export function solve(factored: Factor, b: Float64Array, x: Float64Array): Float
  * Solves A X = B for several right-hand sides, four at a time.
  * @param b      Float64Array(count n): the right-hand sides one after another; may be the same array as x
  * @param x      Float64Array(count n): the solutions likewise; overwritten and returned
- * Throws Error for a factor whose memory was given to another.
+ * @throws Error for a factor whose memory was given to another
  */
 export function solveMany(factored: Factor, b: Float64Array, x: Float64Array, count: number): Float64Array {
   expectHeld(factored);

@@ -10,7 +10,10 @@ const DISSECT_CORNERS_FROM = 10_000;
 /** With fewer corners than this share there is little to cut: most elements lie between fixed corners. */
 const FEWEST_CORNERS = 1 / 8;
 
-/** The fill-reducing order that serves best: minimum degree for small systems and where no placement is known. */
+/**
+ * The fill-reducing order that serves best: minimum degree for small systems and where no placement is known, else dissection.
+ * @returns Int32Array(n): order[k] is the unknown eliminated as number k
+ */
 export function chooseOrder(pattern: SymmetricPattern, placement?: Placement): Int32Array {
   const least = placement?.ends === undefined ? DISSECT_CORNERS_FROM : DISSECT_FROM;
   const dissects = placement !== undefined && pattern.n >= least && cornerShare(placement) >= FEWEST_CORNERS;

@@ -5,6 +5,7 @@ import type { Preconditioner } from './preconditioner.js';
 import type { CoarseLevel } from './two-level.js';
 import { twoLevelPreconditioner } from './two-level.js';
 
+/** How far conjugate gradients go, and by what preconditioner. */
 export interface GradientOptions {
   /** |b - A x| / |b| to reach, Euclidean; 1e-10 if absent. */
   readonly tolerance?: number;
@@ -14,15 +15,18 @@ export interface GradientOptions {
   readonly level?: CoarseLevel;
 }
 
+/** How conjugate gradients ended. */
 export interface GradientReport {
   /**
    * 'too-many-steps': `mostSteps` was not enough; 'stalled': rounding keeps the residual above the tolerance;
    * 'not-positive': the matrix is not positive definite, or some value is not a finite number.
    */
   readonly outcome: 'converged' | 'too-many-steps' | 'stalled' | 'not-positive';
+  /** Iterations taken. */
   readonly steps: number;
   /** |b - A x| / |b| of the x returned, computed from it. */
   readonly residual: number;
+  /** 'none' where b is 0. */
   readonly preconditioner: 'two-level' | 'incomplete' | 'none';
 }
 
@@ -34,6 +38,7 @@ export interface GradientReport {
  * again from it if it is still too large, and ends when that no longer helps.
  *
  * @param values  Float64Array(z): the lower triangle in the order of the pattern
+ * @param b       Float64Array(n)
  * @param x       Float64Array(n): where to start, for instance 0; overwritten by the best solution found
  */
 export function solveByConjugateGradients(

@@ -1,13 +1,12 @@
-import { postorder, sumUp } from './elimination-tree.js';
 import { blockSize, tileCount } from './front-layout.js';
 
 /**
  * Columns of the factor gathered in fronts, children before parents: front s eliminates the places first[s] ...
- * first[s + 1] - 1 and has below[s] rows more.
+ * first[s + 1] - 1 and has below[s] rows more. The columns are numbered in a postorder of the elimination tree.
  */
 export interface Fronts {
-  /** Int32Array(n): place of each column. */
-  readonly place: Int32Array;
+  /** Int32Array(n): the column at each place. */
+  readonly columns: Int32Array;
   /** Int32Array(n): front of each column. */
   readonly frontOf: Int32Array;
   readonly first: Int32Array;
@@ -21,55 +20,36 @@ export interface Fronts {
  * into their parents wherever that saves time by the estimate below, for all the explicit zeros it brings (after Ashcraft,
  * Grimes, The influence of relaxed supernode partitions on the multifrontal method, 1989).
  *
- * @param parent  elimination tree
- * @param post    a postorder of it
+ * @param parent  elimination tree of postordered columns
  * @param count   entries of each column of the factor
  */
-export function gatherFronts(parent: Int32Array, post: Int32Array, count: Int32Array): Fronts {
+export function gatherFronts(parent: Int32Array, count: Int32Array): Fronts {
   const top = new Int32Array(parent.length); // of each column: the last of its front
   const width = new Int32Array(parent.length); // of each top: columns of its front
-  gatherSupernodes(parent, post, count, top, width);
-  mergeChildren(parent, post, count, top, width);
-  return numberFronts(parent, post, count, top, width);
+  gatherSupernodes(parent, count, top, width);
+  mergeChildren(parent, count, top, width);
+  return numberFronts(parent, count, top, width);
 }
 
 /** Chains of columns, each with the rows of the one before but for that one itself. */
-function gatherSupernodes(
-  parent: Int32Array,
-  post: Int32Array,
-  count: Int32Array,
-  top: Int32Array,
-  width: Int32Array,
-): void {
+function gatherSupernodes(parent: Int32Array, count: Int32Array, top: Int32Array, width: Int32Array): void {
   const n = parent.length;
-  const goesOn = new Uint8Array(n); // into its parent
   width.fill(1);
-  for (let k = 0; k < n; k++) {
-    const j = post[k];
+  for (let j = 0; j < n; j++) {
     const up = parent[j];
-    if (up < 0 || count[j] !== count[up] + 1 || width[up] > 1) continue;
-    goesOn[j] = 1;
-    width[up] += width[j];
+    const goesOn = up >= 0 && count[j] === count[up] + 1 && width[up] === 1;
+    top[j] = goesOn ? up : j; // for now
+    if (goesOn) width[up] += width[j];
   }
-  for (let k = n - 1; k >= 0; k--) {
-    const j = post[k];
-    top[j] = goesOn[j] === 1 ? top[parent[j]] : j;
-  }
+  for (let j = n - 1; j >= 0; j--) top[j] = top[top[j]];
 }
 
-function mergeChildren(
-  parent: Int32Array,
-  post: Int32Array,
-  count: Int32Array,
-  top: Int32Array,
-  width: Int32Array,
-): void {
+function mergeChildren(parent: Int32Array, count: Int32Array, top: Int32Array, width: Int32Array): void {
   const n = parent.length;
   const head = new Int32Array(n).fill(-1); // children of each top, by their tops
   const next = new Int32Array(n).fill(-1);
   const time = new Float64Array(n);
-  for (let k = 0; k < n; k++) {
-    const t = post[k];
+  for (let t = 0; t < n; t++) {
     if (top[t] !== t) continue;
     const below = count[t] - 1;
     let own = frontTime(width[t], below);
@@ -86,7 +66,7 @@ function mergeChildren(
     next[t] = head[up];
     head[up] = t;
   }
-  for (let k = n - 1; k >= 0; k--) top[post[k]] = top[top[post[k]]]; // a merged front's columns follow its top
+  for (let j = n - 1; j >= 0; j--) top[j] = top[top[j]]; // a merged front's columns follow its top
 }
 
 /**
@@ -103,41 +83,26 @@ function frontTime(width: number, below: number): number {
   return 400 + update + substitution + triangle + addition + 12 * blockSize(width, below);
 }
 
-function numberFronts(
-  parent: Int32Array,
-  post: Int32Array,
-  count: Int32Array,
-  top: Int32Array,
-  width: Int32Array,
-): Fronts {
+/** Fronts in the order of their tops, which keeps subtrees together, as the columns' order does. */
+function numberFronts(parent: Int32Array, count: Int32Array, top: Int32Array, width: Int32Array): Fronts {
   const n = parent.length;
-  const tops = post.filter((j) => top[j] === j);
+  const tops = top.filter((t, j) => t === j);
+  const first = new Int32Array(tops.length + 1);
   const indexOf = new Int32Array(n);
-  for (let s = 0; s < tops.length; s++) indexOf[tops[s]] = s;
-  const up = tops.map((t) => (parent[t] < 0 ? -1 : indexOf[top[parent[t]]]));
-  const sequence = postorder(up);
-  const frontCount = tops.length;
-  const first = new Int32Array(frontCount + 1);
-  const below = new Int32Array(frontCount);
-  for (let s = 0; s < frontCount; s++) {
-    const t = tops[sequence[s]];
-    first[s + 1] = width[t];
-    below[s] = count[t] - 1;
-    indexOf[t] = s;
+  for (let s = 0; s < tops.length; s++) {
+    first[s + 1] = first[s] + width[tops[s]];
+    indexOf[tops[s]] = s;
   }
-  sumUp(first);
+  const columns = new Int32Array(n);
   const frontOf = new Int32Array(n);
-  const place = new Int32Array(n);
-  const next = first.slice(0, frontCount);
-  for (let k = 0; k < n; k++) {
-    const j = post[k];
+  const next = first.slice();
+  for (let j = 0; j < n; j++) {
     frontOf[j] = indexOf[top[j]];
-    place[j] = next[frontOf[j]]++;
+    columns[next[frontOf[j]]++] = j;
   }
-  const parentFront = new Int32Array(frontCount);
-  for (let s = 0; s < frontCount; s++) {
-    const above = parent[tops[sequence[s]]];
-    parentFront[s] = above < 0 ? -1 : frontOf[above];
-  }
-  return { place, frontOf, first, below, parent: parentFront };
+  return {
+    ...{ columns, frontOf, first },
+    below: tops.map((t) => count[t] - 1),
+    parent: tops.map((t) => (parent[t] < 0 ? -1 : frontOf[parent[t]])),
+  };
 }

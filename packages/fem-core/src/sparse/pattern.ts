@@ -3,6 +3,7 @@
  * Every diagonal entry is present and comes first in its column; rows rise within a column.
  */
 export interface SymmetricPattern {
+  /** Number of unknowns. */
   readonly n: number;
   /** Int32Array(n + 1): column j holds entries start[j] ... start[j + 1] - 1. */
   readonly start: Int32Array;
@@ -10,7 +11,12 @@ export interface SymmetricPattern {
   readonly row: Int32Array;
 }
 
-/** y = A x for the symmetric matrix with the given lower-triangle values; writes into `y` (not `x`) and returns it. */
+/**
+ * y = A x for the symmetric matrix with the given lower triangle.
+ * @param values  Float64Array(z): in the order of the pattern
+ * @param x  Float64Array(n)
+ * @param y  Float64Array(n), another array than x; overwritten and returned
+ */
 export function multiply(
   pattern: SymmetricPattern,
   values: Float64Array,

@@ -9,11 +9,16 @@ import type { Preconditioner } from './preconditioner.js';
 
 /** The corners of quadratic elements as a coarse level: what depends on the pattern alone and serves all matrices on it. */
 export interface CoarseLevel {
+  /** Which unknowns are corners, and between which corners the others lie. */
   readonly spread: Spread;
+  /** Of the matrix of the corners alone. */
   readonly analysis: Analysis;
 }
 
-/** @param placement  with `ends`; the coarse order makes use of the points */
+/**
+ * The coarse level of a pattern of quadratic elements.
+ * @param placement  with `ends`; the coarse order makes use of the points
+ */
 export function buildCoarseLevel(pattern: SymmetricPattern, placement: Placement): CoarseLevel {
   const spread = spreadOf(pattern.n, placement);
   const coarse = coarsePattern(pattern, spread);
