@@ -103,7 +103,7 @@ describe('gapwright section', () => {
     expect(out).toMatch(/gap flux +flux [\d.]+ uWb\/m +± [\d.]+ %/);
     expect(out).not.toMatch(/NaN|undefined|Infinity/);
     expect(Math.max(...out.split('\n').map((line) => line.length))).toBeLessThanOrEqual(100);
-    expect(err).toMatch(/^warning: probes\.1\.line: reaches beyond the outline/);
+    expect(err).toMatch(/^warning: \S+section\.yaml:13:29: probes\.1\.line: reaches beyond the outline/);
     expect(err).toMatch(/\nsolved in [\d.]+ s, all done in [\d.]+ s\n$/);
     expect(err).not.toContain('triangles');
   });
@@ -284,11 +284,79 @@ describe('gapwright check', () => {
     const sections: SectionEngine = { ...sectionEngine, solve: () => Promise.reject(new Error('solved')) };
     const { status, out, err } = await run(['check', file], { sections });
     expect([status, out]).toEqual([0, `${file}: sound, 1 warning: Bar in a tube, 3 regions, 6 probes, depth 50 mm\n`]);
-    expect(err).toMatch(/^warning: probes\.1\.line: /);
+    expect(err).toMatch(/^warning: \S+section\.yaml:13:29: probes\.1\.line: /);
     expect(JSON.parse((await run(['check', file, '--json'], { sections })).out)).toMatchObject({
       format: 'gapwright-check/1',
       section: 'Bar in a tube',
     });
+  });
+
+  /** A magnet under the bar, all of it, and no source but that. */
+  const hidden = BAR.replace(
+    '  - { name: bar,',
+    '  - { name: lost, material: N42, magnetised: 0 deg, shape: { circle: { centre: [0 mm, 4 mm], radius: 2 mm } } }\n  - { name: bar,',
+  ).replace(', current: 25 A', '');
+
+  test('doubts of the drawing are warnings with their places, the same when it is solved', async () => {
+    const file = writeSection(hidden);
+    const words = [
+      /^warning: \S+section\.yaml:14:29: probes\.1\.line: reaches beyond/,
+      /^warning: \S+section\.yaml:10:5: regions\.2: later regions cover all of it: this magnet does nothing; /,
+      /^warning: \S+section\.yaml:8:3: regions: nothing makes a field: /,
+    ];
+    for (const command of ['check', 'section']) {
+      const { status, err } = await run([command, file]);
+      expect(status).toBe(0);
+      words.forEach((word, i) => {
+        expect(err.split('\n')[i]).toMatch(word);
+      });
+      const { out } = await run([command, file, '--json', '--quiet']);
+      const { warnings } = JSON.parse(out);
+      expect(warnings.map(({ key }: { readonly key: string }) => key)).toEqual([
+        'probes.1.line',
+        'regions.2',
+        'regions',
+      ]);
+      expect(out).not.toContain('section.yaml'); // results do not depend on where the file lies
+    }
+  });
+
+  test('refuses what section would, in the same words, before it solves', async () => {
+    const onSteel = BAR.replace('force_on: bar', 'force_on: [space, bar]');
+    const huge = `${BAR}max_edge: 0.02 mm\n`;
+    const fine = BAR.replace('probes:', 'size_at: [{ point: [0 mm, 4 mm], max_edge: 1 nm }]\nprobes:').replace(
+      '1 nm',
+      '0.001 um',
+    );
+    const many = BAR.replace(
+      'probes:',
+      `size_at: [${Array.from({ length: 400 }, (_, i) => `{ point: [${(i % 20) - 10} mm, ${Math.floor(i / 20) - 10} mm], max_edge: 0.001 um }`).join(', ')}]\nprobes:`,
+    );
+    for (const [text, words] of [
+      [onSteel, /section\.yaml:14:29: probes\.2\.force_on: touches another body/],
+      [huge, /section\.yaml:6:13: background: the mesh would pass 400000 triangles, .* mm; /],
+      [many, /section\.yaml:11:\d+: size_at\.\d+\.max_edge: the mesh would pass 400000 triangles, .* 0\.001 um near /],
+    ] as const) {
+      const file = writeSection(text);
+      const check = await run(['check', file]);
+      expect([check.status, check.out]).toEqual([2, '']);
+      expect(check.err).toMatch(words);
+      expect((await run(['section', file])).err).toBe(check.err);
+    }
+    expect((await run(['check', writeSection(fine)])).status).toBe(0); // one point, however fine, costs little
+  });
+
+  test('linear elements are told on the sheet', async () => {
+    const { out } = await run([
+      'section',
+      writeSection(),
+      '--set',
+      'model.elements=linear',
+      '--set',
+      'model.accuracy=20 %',
+    ]);
+    expect(out).toMatch(/Elements +linear/);
+    expect((await run(['section', writeSection()])).out).not.toContain('Elements');
   });
 
   test('each command sends the file of the other to it', async () => {

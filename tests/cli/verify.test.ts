@@ -1,4 +1,4 @@
-import type { FigureResult, Verification } from '@gapwright/fem-core';
+import type { FigureResult, Verification } from '@gapwright/fem-core/verify';
 import { describe, expect, test } from 'vitest';
 import { runVerify } from '../../packages/cli/src/commands/verify.js';
 import { bodyCases, circuitCases } from '../../packages/fem-core/src/verify/cases.js';
@@ -75,6 +75,20 @@ describe('gapwright verify', () => {
     expect(out).toContain('100 % of 3 figures');
     expect(lines.at(-1)).toBe('3 cases, 4 figures, 1 orders: 1 OUT');
     expect((await say(made(sound))).out).toMatch(/2 cases, 3 figures, 1 orders: all hold\n$/);
+  });
+
+  test('prints 0 where rounding or the error leaves nothing of a figure, its error beside it; JSON keeps the number', async () => {
+    const nought = (got: number, relativeError: number, estimatedError: number) => [
+      { ...figure('null', 'force, N/m', 0, 1e-3), expected: 0, got, relativeError, estimatedError },
+    ];
+    const shown = async (got: number, relativeError: number, estimatedError: number) =>
+      /force, N\/m +(.*?) +holds/.exec((await say(made([nought(got, relativeError, estimatedError)]))).out)?.[1];
+    expect(await shown(-3e-17, 3e-15, 3e-16)).toMatch(/^0 +0 +3\.0e-15 +3\.0e-16/); // of the scale 0.01
+    expect(await shown(2e-7, 2e-5, 2e-4)).toMatch(/^0 +0 +2\.0e-5 +2\.0e-4/);
+    expect(await shown(2e-7, 2e-5, 3e-5)).toMatch(/^0 +2\.000000e-7 +2\.0e-5 +3\.0e-5/);
+    expect(await shown(3e-17, 3e-5, 3e-6)).toMatch(/^0 +3\.000000e-17 +3\.0e-5/); // of the scale 1e-12
+    const { out } = await say(made([nought(-3e-17, 3e-15, 3e-16)]), { json: true });
+    expect(JSON.parse(out).cases[0].got).toBe(-3e-17);
   });
 
   test('as JSON gives the keys that are promised, for each figure', async () => {

@@ -1,18 +1,8 @@
-import type { AdaptiveOptions, AdaptiveSolution, Goal, Section, Setup } from '@gapwright/fem-core';
-import {
-  applyFunctional,
-  checkMesh,
-  energiesOf,
-  InputError,
-  meanOver,
-  measureMesh,
-  solveAdaptively,
-  solveOnMesh,
-  solveSection,
-  triangleCount,
-  weightedFlux,
-  weightedIntegral,
-} from '@gapwright/fem-core';
+import type { Section, Setup } from '@gapwright/fem-core';
+import { energiesOf, InputError, meanOver, solveSection } from '@gapwright/fem-core';
+import type { AdaptiveOptions, AdaptiveSolution, Goal } from '@gapwright/fem-core/goals';
+import { applyFunctional, solveAdaptively, weightedFlux, weightedIntegral } from '@gapwright/fem-core/goals';
+import { checkMesh, measureMesh, solveOnMesh, triangleCount } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import { box, STEEL } from '../laws/sections.js';
 

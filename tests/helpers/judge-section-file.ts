@@ -1,4 +1,5 @@
-import { finish, formatFault, InputError, type Mesh, probeSteps, type SectionAnswer } from '@gapwright/fem-core';
+import { finish, formatFault, InputError, probeSteps, type SectionAnswer } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
 import { describeSection, readSection, type SectionReadResult, type SectionResult } from '@gapwright/machine-models';
 import { expect } from 'vitest';
 

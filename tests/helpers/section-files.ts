@@ -1,4 +1,5 @@
 import fc from 'fast-check';
+import { SCRAPS } from './scraps.js';
 
 /**
  * Random section files: every kind of shape, material, magnetisation, source, edge and probe, in mixed units. They read
@@ -244,12 +245,6 @@ export const sectionFiles: fc.Arbitrary<string> = fc
       `model: { accuracy: ${accuracy}, max_meshes: ${meshes}, max_triangles: 3000 }\n`,
     ].join('');
   });
-
-const SCRAPS = [
-  ...['', ' ', '\n', '\t', ':', '-', '- ', '#', '[', ']', '{', '}', ',', '"', "'", '|', '>', '?', '%', '~', '---\n'],
-  ...['&a ', '*a', '!!float ', '!x ', '<<: *a', '&r0 ', '*r0', '%YAML 1.1\n', '...\n', '\\', '\r', '\r\n', '\u0000'],
-  ...['\u001b[31m', '\u2028', '\ufeff', '\ud800', '__proto__: {a: 1}', 'constructor', '<b>&amp;</b>', '0', '1e999'],
-];
 
 const VALUES = [
   ...['NaN', '.nan', '.inf', '-.inf', 'inf', '1e999', '-1e999', '1e308', '-1', '0', '-0', '1e-320', '0x10', '1_000'],

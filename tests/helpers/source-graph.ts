@@ -16,6 +16,8 @@ export interface SourceFile {
 
 export interface SourcePackage {
   readonly name: string;
+  /** What others may import: the names under `exports` in its package.json, '@gapwright/fem-core/mesh'. */
+  readonly publicNames: readonly string[];
   /** Keys of `dependencies` in its package.json. */
   readonly dependencies: readonly string[];
   readonly files: readonly SourceFile[];
@@ -25,15 +27,21 @@ const root = fileURLToPath(new URL('../..', import.meta.url));
 
 export function readPackage(folder: string): SourcePackage {
   const home = join(root, 'packages', folder);
-  const { name, dependencies = {} } = JSON.parse(readFileSync(join(home, 'package.json'), 'utf8')) as {
+  const {
+    name,
+    exports,
+    dependencies = {},
+  } = JSON.parse(readFileSync(join(home, 'package.json'), 'utf8')) as {
     name: string;
+    exports: Record<string, unknown>;
     dependencies?: Record<string, string>;
   };
   const source = join(home, 'src');
   const files = readdirSync(source, { recursive: true, encoding: 'utf8' })
     .filter((path) => path.endsWith('.ts'))
     .map((path) => readSource(path.split(sep).join('/'), readFileSync(join(source, path), 'utf8')));
-  return { name, dependencies: Object.keys(dependencies), files };
+  const publicNames = Object.keys(exports).map((entry) => name + entry.slice(1)); // '.' and './mesh'
+  return { name, publicNames, dependencies: Object.keys(dependencies), files };
 }
 
 /** First path segments of all files that are tracked or could be: what .gitignore names is left out. */

@@ -1,5 +1,7 @@
 import type { Field, Material } from '@gapwright/fem-core';
-import { energiesOf, forEachSample, MU0, meshSection, solveOnMesh, solveSection } from '@gapwright/fem-core';
+import { energiesOf, MU0, solveSection } from '@gapwright/fem-core';
+import { forEachSample } from '@gapwright/fem-core/field';
+import { meshSection, solveOnMesh } from '@gapwright/fem-core/mesh';
 import { expect, test } from 'vitest';
 import { AIR, box, core, coreSetup, relativeError, STEEL } from './sections.js';
 

@@ -1,15 +1,7 @@
 import type { Field, Section, Setup } from '@gapwright/fem-core';
-import {
-  buildLocator,
-  energiesOf,
-  forceOn,
-  forEachSample,
-  MU0,
-  meanOver,
-  solveSection,
-  stressThrough,
-  valuesAlong,
-} from '@gapwright/fem-core';
+import { buildLocator, energiesOf, forceOn, MU0, meanOver, solveSection, valuesAlong } from '@gapwright/fem-core';
+import { forEachSample } from '@gapwright/fem-core/field';
+import { stressThrough } from '@gapwright/fem-core/goals';
 import { describe, expect, test } from 'vitest';
 import { AIR, box, relativeError, STEEL } from './sections.js';
 

@@ -1,5 +1,6 @@
 import type { Field, Material } from '@gapwright/fem-core';
-import { forEachSample, meshSection, solveOnMesh } from '@gapwright/fem-core';
+import { forEachSample } from '@gapwright/fem-core/field';
+import { meshSection, solveOnMesh } from '@gapwright/fem-core/mesh';
 import { expect, test } from 'vitest';
 import { core, coreSetup, relativeError } from './sections.js';
 

@@ -147,6 +147,14 @@ describe('mirror symmetry', () => {
     [0.02, 0.01],
     [0.005, -0.005],
   ];
+  const half: Section = {
+    ...whole,
+    outline: { kind: 'rectangle', from: [0, -SIZE], to: [SIZE, SIZE] },
+    regions: [wide, plate].map(({ name, shape }) => ({
+      name,
+      shape: { ...shape, from: [0, shape.from[1]] as const },
+    })),
+  };
   const compare = (field: Field, sign: 1 | -1): void => {
     const at = readerOf(field);
     const scale = 1.2 * 0.008;
@@ -156,14 +164,6 @@ describe('mirror symmetry', () => {
   test('a magnet that points along the axis of symmetry: A is odd, and a half with a closed cut says the same', () => {
     const field = solveSection(whole, setupPair([0, 1.2]));
     compare(field, -1);
-    const half: Section = {
-      ...whole,
-      outline: { kind: 'rectangle', from: [0, -SIZE], to: [SIZE, SIZE] },
-      regions: [wide, plate].map(({ name, shape }) => ({
-        name,
-        shape: { ...shape, from: [0, shape.from[1]] as const },
-      })),
-    };
     const part = solveSection(half, setupPair([0, 1.2]));
     expect(relativeError(2 * energiesOf(part).energy, energiesOf(field).energy)).toBeLessThan(2e-3);
     const [at, partAt] = [readerOf(field), readerOf(part)];
@@ -173,14 +173,6 @@ describe('mirror symmetry', () => {
   test('a magnet that points across it: A is even, and a half with a crossing cut says the same', () => {
     const field = solveSection(whole, setupPair([1.2, 0]));
     compare(field, 1);
-    const half: Section = {
-      ...whole,
-      outline: { kind: 'rectangle', from: [0, -SIZE], to: [SIZE, SIZE] },
-      regions: [wide, plate].map(({ name, shape }) => ({
-        name,
-        shape: { ...shape, from: [0, shape.from[1]] as const },
-      })),
-    };
     const part = solveSection(half, { ...setupPair([1.2, 0]), edges: { left: { kind: 'crossing' } } });
     expect(relativeError(2 * energiesOf(part).energy, energiesOf(field).energy)).toBeLessThan(2e-3);
     expect(relativeError(meanOver(part, ['magnet']).bx, meanOver(field, ['magnet']).bx)).toBeLessThan(2e-3);

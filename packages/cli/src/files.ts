@@ -51,14 +51,7 @@ function readCapped(path: string, shown: string): Uint8Array {
     for (let got = -1; got !== 0 && length < buffer.length; length += got) {
       got = readSync(file, buffer, length, Math.min(buffer.length - length, 1 << 20), null);
     }
-    if (length > largestFile) {
-      throw fileFault(
-        'too-big',
-        shown,
-        `is larger than ${largestFile / 1024 / 1024} MB`,
-        'check that it is the right file',
-      );
-    }
+    if (length > largestFile) throw tooBig(shown, fstatSync(file).size);
     return buffer.subarray(0, length);
   } catch (error) {
     if (error instanceof InputError) throw error;
@@ -66,6 +59,18 @@ function readCapped(path: string, shown: string): Uint8Array {
   } finally {
     if (file !== undefined) closeSync(file);
   }
+}
+
+/** @param size  as the system tells it, bytes; pipes and devices say 0 */
+function tooBig(shown: string, size: number): InputError {
+  const megabytes = (bytes: number): string => `${Math.ceil((10 * bytes) / 1024 / 1024) / 10} MB`;
+  const limit = megabytes(largestFile);
+  const wrong =
+    size > largestFile
+      ? `has ${megabytes(size)}, more than the ${limit} that are read`
+      : `has more than the ${limit} that are read`;
+  const remedy = 'check that it is the right file; if it is, give its outlines fewer corners and its tables fewer rows';
+  return new InputError([{ code: 'too-big', at: { file: shown, line: 1, column: 1 }, key: '', wrong, remedy }]);
 }
 
 /**
@@ -87,7 +92,9 @@ export function readFileBeside(file: string, name: string): TextFile {
     return readTextFile(join(dirname(file), name), name);
   } catch (error) {
     if (!(error instanceof InputError)) throw error;
-    throw new InputError(error.faults.map((fault) => ({ ...fault, key: '', wrong: `${fault.key} ${fault.wrong}` })));
+    throw new InputError(
+      error.faults.map(({ code, wrong, remedy }) => ({ code, key: '', wrong: `${name} ${wrong}`, remedy })),
+    );
   }
 }
 

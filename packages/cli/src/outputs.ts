@@ -1,4 +1,4 @@
-import { InputError } from '@gapwright/fem-core';
+import { formatFault, InputError, type Place } from '@gapwright/fem-core';
 import type { Warning } from '@gapwright/machine-models';
 import { writeFiles } from './files.js';
 import type { CommonOptions } from './options.js';
@@ -23,12 +23,20 @@ export function showWarnings(
   warnings: readonly Warning[],
   options: CommonOptions,
   { stdout, stderr }: Surroundings,
+  locate?: Locate,
 ): void {
   if (!options.json && stdout.isTTY === true && stderr.isTTY === true) return;
-  for (const { key, text } of warnings) stderr.write(`warning: ${plainText(warningText(key, text))}\n`);
+  for (const warning of warnings) stderr.write(`warning: ${plainText(warningText(warning, locate))}\n`);
 }
 
-const warningText = (key: string, text: string): string => (key === '' ? text : `${key}: ${text}`);
+/** Where in its file stands what a warning is about. */
+export type Locate = (warning: Warning) => Place | undefined;
+
+/** `FILE:LINE:COLUMN: key: text`, leaving out what is not known. */
+export function warningText(warning: Warning, locate?: Locate): string {
+  const { key, text } = warning;
+  return formatFault({ code: '', at: locate?.(warning), key, wrong: text, remedy: '' });
+}
 
 /**
  * Writes all files or none and says so.

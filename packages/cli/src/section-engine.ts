@@ -5,6 +5,8 @@ import {
   readSection,
   type SectionProblem,
   type SectionReadResult,
+  solverOptions,
+  type Warning,
 } from '@gapwright/machine-models';
 import { stopIfInterrupted } from './surroundings.js';
 
@@ -17,8 +19,8 @@ export interface SectionSolveOptions {
 /** What the commands ask of the section models. */
 export interface SectionEngine {
   readonly read: (text: string, options: ReadOptions) => SectionReadResult;
-  /** Throws what only the drawing shows, without solving. */
-  readonly check: (problem: SectionProblem) => void;
+  /** Throws what only the drawing shows, without solving, and returns what is doubtful. */
+  readonly check: (problem: SectionProblem) => readonly Warning[];
   readonly solve: (problem: SectionProblem, options: SectionSolveOptions) => Promise<SectionAnswer>;
 }
 
@@ -26,13 +28,9 @@ export const sectionEngine: SectionEngine = {
   read: readSection,
   check: checkSection,
 
-  solve({ section, setup, probes, accuracy, maxTriangles, maxMeshes }, { signal, onMesh }) {
-    const steps = probeSteps(section, setup, probes, {
-      accuracy,
-      ...(maxTriangles === undefined ? {} : { maxTriangles }),
-      ...(maxMeshes === undefined ? {} : { maxMeshes }),
-      onMesh,
-    });
+  solve(problem, { signal, onMesh }) {
+    const { section, setup, probes } = problem;
+    const steps = probeSteps(section, setup, probes, { ...solverOptions(problem), onMesh });
     const pause = async (): Promise<void> => {
       await new Promise((resolve) => setImmediate(resolve)); // lets an interruption be heard
       stopIfInterrupted(signal);

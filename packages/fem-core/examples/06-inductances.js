@@ -1,63 +1,50 @@
-// Inductance matrix of two coils on a core, apparent and incremental, about a solved field. Builds on 02 and 03.
+// Inductance matrix of two conductors in a steel tube, apparent and incremental, about a solved field. Builds on 02 and 03.
 // Run: node packages/fem-core/examples/06-inductances.js
-// Then: raise the current; the incremental inductances fall first.
-import { inductancesAt, MU0, solveProbes } from '@gapwright/fem-core';
+// Then: raise the current; the incremental inductances fall first, as dB/dH of the steel does.
+import { buildBHCurve, inductancesAt, MU0, solveProbes } from '@gapwright/fem-core';
 
+// B = mu0 H + Js H/(H + h), a steel with its derivative in closed form (Froehlich 1881).
+const [js, h0] = [1.9, 250];
+const rows = Array.from({ length: 400 }, (_, i) => {
+  const h = h0 * Math.expm1(0.02 * i);
+  return [h, MU0 * h + (js * h) / (h + h0)];
+});
 const air = { kind: 'linear', muR: 1 };
-const rect = (name, x0, y0, x1, y1) => ({ name, shape: { kind: 'rectangle', from: [x0, y0], to: [x1, y1] } });
-const gap = 0.001;
+const [wire, from, to, bore, outside] = [0.003, 0.006, 0.009, 0.02, 0.05];
+const disc = (name, radius) => ({ name, shape: { kind: 'circle', centre: [0, 0], radius } });
+const amperes = 150;
 const solved = solveProbes(
   {
-    outline: { kind: 'rectangle', from: [0, 0], to: [0.1, 0.08] },
-    background: 'air',
-    regions: [
-      rect('core', 0.02, 0.01, 0.08, 0.07),
-      rect('window', 0.03, 0.02, 0.07, 0.06),
-      rect('gap', 0.07, 0.04 - gap / 2, 0.08, 0.04 + gap / 2),
-      rect('a out', 0.014, 0.025, 0.019, 0.055),
-      rect('a in', 0.031, 0.025, 0.036, 0.055),
-      rect('b in', 0.064, 0.042, 0.069, 0.055),
-      rect('b out', 0.081, 0.042, 0.086, 0.055),
-    ],
+    outline: { kind: 'circle', centre: [0, 0], radius: outside }, // the current returns over the outline, where A = 0
+    background: 'tube',
+    regions: [disc('bore', bore), disc('sleeve', to), disc('within', from), disc('wire', wire)],
   },
   {
-    materials: {
-      air,
-      window: air,
-      gap: air,
-      'a out': air,
-      'a in': air,
-      'b out': air,
-      'b in': air,
-      core: { kind: 'linear', muR: 1e5 },
-    },
-    current: { 'a out': -100, 'a in': 100 },
+    materials: { tube: { kind: 'curve', curve: buildBHCurve(rows) }, bore: air, sleeve: air, within: air, wire: air },
+    current: { wire: amperes },
   },
-  [],
-  { accuracy: 1e-3 },
+  [{ kind: 'linkage', name: 'sleeve', of: 'sleeve', turns: 1 }],
+  { accuracy: 1e-4 },
 );
 
-const { names, incremental, error, coupling } = inductancesAt(solved, [
-  {
-    name: 'a',
-    sides: [
-      { region: 'a in', turns: 100 },
-      { region: 'a out', turns: -100 },
-    ],
-  },
-  {
-    name: 'b',
-    sides: [
-      { region: 'b out', turns: 50 },
-      { region: 'b in', turns: -50 },
-    ],
-  },
+const { names, apparent, incremental, error, coupling } = inductancesAt(solved, [
+  { name: 'wire', sides: [{ region: 'wire', turns: 1 }] },
+  { name: 'sleeve', sides: [{ region: 'sleeve', turns: 1 }] },
 ]);
 for (const [i, name] of names.entries()) {
-  const row = incremental[i].map((l, j) => `${(1e3 * l).toFixed(3)} +- ${(1e3 * error[i][j]).toFixed(3)}`);
-  console.log(`${name}: ${row.join(', ')} mH/m`);
+  const row = incremental[i].map((l, j) => `${(1e6 * l).toFixed(3)} +- ${(1e6 * error[i][j]).toPrecision(1)}`);
+  console.log(`${name}: ${row.join(', ')} uH/m`);
 }
 console.log(`coupling ${coupling.toFixed(4)}`);
-// Of a core that hardly needs any field all the field is in the gap, and fringes about one gap round it.
-const ideal = (100 * 50 * MU0 * (0.01 + gap)) / gap;
-console.log(`check: N1 N2 mu0 (w + g)/g = ${ideal}, got ${Math.abs(incremental[0][1])}, within 0.2`);
+
+// H = I/(2 pi r) whatever the steel. The flux outside the sleeve links all of it, of the flux within it the mean over its area.
+const spread = 0.5 - (from ** 2 * Math.log(to / from)) / (to ** 2 - from ** 2);
+const inAir = (MU0 / (2 * Math.PI)) * (spread + Math.log(bore / to) + Math.log(outside / bore));
+const c = 2 * Math.PI * h0;
+const [near, far] = [amperes + c * bore, amperes + c * outside];
+const chord = inAir + (js / c) * Math.log(far / near); // (integral of B dr)/I
+const slope = chord + ((js * amperes) / c) * (1 / far - 1 / near); // and its derivative by I
+const [{ linkage }] = solved.answers;
+console.log(`check: linkage of the sleeve by M I = ${linkage}, got ${apparent[0][1] * amperes}, within 1e-9`);
+console.log(`check: apparent M = ${chord}, got ${apparent[0][1]}, within 1e-4`);
+console.log(`check: incremental M = ${slope}, got ${incremental[0][1]}, within 1e-4`);

@@ -1,107 +1,67 @@
 /**
- * Plane magnetostatic fields by finite elements. The public names, floor by floor; data flows one way:
- * section -> mesh -> system -> field -> answer.
+ * Plane magnetostatic fields by finite elements. Data flows one way: section -> mesh -> system -> field -> answer.
+ *
+ * This is the main entry: draw a section, fill it, solve it, read the field. What lies below has entries of its own, by
+ * subject: `@gapwright/fem-core/materials`, `/mesh`, `/field`, `/goals`, `/equations`, `/sparse`, `/text`, `/verify`.
+ *
+ * SI units throughout; B = (dA/dy, -dA/dx), z out of the page.
+ *
+ * @module @gapwright/fem-core
  */
 
-export type { Derivative } from './assembly/local-equations.js';
-export { placementOf } from './assembly/placement.js';
+// A section: what is drawn.
+
+export type { Point, Region, Section, Shape, SideChain, SizeAt } from './geometry/section.js';
+
+// Its setup: what fills the regions and binds the sides.
+
 export type { EdgeCondition, Setup } from './assembly/setup.js';
-export type { System } from './assembly/system.js';
-export { assemble, assembleFrozen, buildSystem } from './assembly/system.js';
-export type { Unknowns } from './assembly/unknowns.js';
-export { numberUnknowns, potentialOf } from './assembly/unknowns.js';
 export { MU0 } from './base/constants.js';
-export type { Fault, Place } from './base/fault.js';
-export { formatFault, InputError } from './base/fault.js';
+export type { BHCurve } from './materials/bh-curve.js';
+export { buildBHCurve } from './materials/bh-curve.js';
+export type { DemagnetisationCurve } from './materials/demagnetisation.js';
+export { buildDemagnetisationCurve } from './materials/demagnetisation.js';
+export type { Direction } from './materials/direction.js';
+export type { Material } from './materials/material.js';
+
+// Solving: at once, or step by step with progress and an end on demand.
+
 export type { Cancel, DriveOptions, Steps } from './base/steps.js';
 export { drive, finish } from './base/steps.js';
-export { unreachable } from './base/unreachable.js';
-export { regionAreas } from './elements/areas.js';
-export type { ErrorEstimate } from './estimate/goal-error.js';
-export { estimateGoalErrors } from './estimate/goal-error.js';
-export type { RecoveredGradient } from './estimate/recovery.js';
-export { recoverGradients } from './estimate/recovery.js';
+export type { MeshProgress, SolveProgress } from './pipeline.js';
+export { solveSection } from './pipeline.js';
+export type { Answer, PlaceError, Probe } from './probes/probe.js';
+export type { ProbeOptions, SectionAnswer } from './probes/solve-probes.js';
+export { checkProblem, probeSteps, solveProbes } from './probes/solve-probes.js';
+export type { NewtonOptions, SolveReport } from './solve/newton.js';
+
+// What a solved field tells.
+
 export type { Field } from './field/field.js';
 export type { Force } from './field/force.js';
-export { forceOn, stressFunctional, stressThrough } from './field/force.js';
-export type { Functional } from './field/functionals.js';
-export { applyFunctional, pointPotential, weightedFlux, weightedIntegral } from './field/functionals.js';
+export { forceOn } from './field/force.js';
 export type { LineHarmonics } from './field/harmonics.js';
 export { lineHarmonics } from './field/harmonics.js';
-export type { Energies, FieldSample, RegionMeans, TriangleMeans } from './field/integrals.js';
-export { energiesOf, forEachSample, meanOver, triangleMeans } from './field/integrals.js';
-export type { Locator, Spot } from './field/locate.js';
+export type { Energies, RegionMeans, TriangleMeans } from './field/integrals.js';
+export { energiesOf, meanOver, triangleMeans } from './field/integrals.js';
+export type { Locator } from './field/locate.js';
 export { buildLocator } from './field/locate.js';
-export type { KneeReport } from './field/past-knee.js';
-export { pastKnee } from './field/past-knee.js';
-export type { FieldStatistics } from './field/statistics.js';
-export { exceededIn, fieldStatistics } from './field/statistics.js';
 export { fieldBuffers } from './field/transfer.js';
 export type { FieldValue } from './field/values.js';
 export { fluxBetween, valueAt, valuesAlong } from './field/values.js';
-export type { Curve } from './geometry/curve.js';
-export type { Point, Region, Section, Shape, SideChain, SizeAt } from './geometry/section.js';
-export { sidesOf } from './geometry/shapes.js';
-export { BEYOND_REGION, OUTSIDE_REGION } from './geometry/unbounded.js';
-export type { Trace } from './io/contours.js';
-export type { Document, Entry, Path, TreeNode } from './io/document.js';
-export { formatPath, placeOf, placeOfKey, plainValue } from './io/document.js';
-export type { FieldLines } from './io/field-lines.js';
-export { fieldLines } from './io/field-lines.js';
-export { editDistance, findNearest } from './io/nearest.js';
-export type { Dimension, Misreading } from './io/quantity.js';
-export { parseAnyQuantity, parsePrice, parseQuantity } from './io/quantity.js';
-export type { VtuArray, VtuGrid } from './io/read-vtu.js';
-export { readVtu } from './io/read-vtu.js';
-export type { Setting } from './io/settings.js';
-export { applySettings } from './io/settings.js';
-export { listWords, showText, showValue } from './io/show.js';
-export type { PictureCopy, PictureData, PictureOptions } from './io/svg-picture.js';
-export { colourScaleEnd, drawField } from './io/svg-picture.js';
-export type { VtuData } from './io/vtu.js';
-export { writeVtu } from './io/vtu.js';
-export { escapeXml } from './io/xml-text.js';
-export { readDocument } from './io/yaml.js';
-export type { BHCurve, CurvePoint } from './materials/bh-curve.js';
-export { buildBHCurve, evaluateCurve, findTableFaults } from './materials/bh-curve.js';
-export type { DemagnetisationCurve } from './materials/demagnetisation.js';
-export { buildDemagnetisationCurve, findDemagnetisationFaults } from './materials/demagnetisation.js';
-export type { Direction } from './materials/direction.js';
-export type { Material } from './materials/material.js';
-export { stackedPermeability, stackedTable } from './materials/stacking.js';
-export type { MeshExpectation, MeshQuality } from './mesh/check-mesh.js';
-export { checkMesh, measureMesh } from './mesh/check-mesh.js';
-export type { Beyond, Mesh } from './mesh/mesh.js';
-export { cornerCount, edgeCount, nodeCount, nodePoint, triangleCount, triangleNodes } from './mesh/mesh.js';
-export { meshSection, refineMesh } from './mesh/mesh-section.js';
-export type { QualityLimits } from './mesh/refine.js';
-export type { AdaptiveOptions, AdaptiveSolution, Goal, GoalAt, MeshProgress, SolvedField } from './pipeline.js';
-export { adaptiveSteps, solveAdaptively, solveOnMesh, solveSection } from './pipeline.js';
 export type { Coil, InductanceMatrix, Inductances } from './probes/inductance.js';
 export { inductancesAt } from './probes/inductance.js';
-export type { Answer, PlaceError, Probe } from './probes/probe.js';
-export type { ProbeOptions, SectionAnswer } from './probes/solve-probes.js';
-export { probeSteps, solveProbes } from './probes/solve-probes.js';
-export type { NewtonOptions, NewtonProgress, Solution, SolveReport } from './solve/newton.js';
-export { newtonSteps, solveNewton } from './solve/newton.js';
-export type { IterativeTangent, Tangent } from './solve/tangent.js';
-export { analyseSystem, buildTangent, NoSolution, solveTangent } from './solve/tangent.js';
-export type { Analysis } from './sparse/analysis.js';
-export { analyse } from './sparse/analysis.js';
-export type { Factor, FactorOptions, NotPositive } from './sparse/cholesky.js';
-export { factor, solve, solveMany } from './sparse/cholesky.js';
-export { chooseOrder } from './sparse/choose-order.js';
-export type { GradientOptions, GradientReport } from './sparse/conjugate-gradients.js';
-export { solveByConjugateGradients } from './sparse/conjugate-gradients.js';
-export { minimumDegreeOrder } from './sparse/minimum-degree.js';
-export type { Placement } from './sparse/nested-dissection.js';
-export { dissectionOrder } from './sparse/nested-dissection.js';
-export type { SymmetricPattern } from './sparse/pattern.js';
-export { multiply } from './sparse/pattern.js';
-export type { CoarseLevel } from './sparse/two-level.js';
-export { buildCoarseLevel } from './sparse/two-level.js';
-export type { Honesty } from './verify/honesty.js';
-export type { MeasuredOrder } from './verify/orders.js';
-export type { Verification } from './verify/verification.js';
-export { buildVerification } from './verify/verification.js';
-export type { FigureResult } from './verify/verification-case.js';
+
+// Pictures and files, as text.
+
+export type { VtuArray, VtuGrid } from './io/read-vtu.js';
+export { readVtu } from './io/read-vtu.js';
+export type { PictureCopy, PictureData, PictureOptions } from './io/svg-picture.js';
+export { drawField } from './io/svg-picture.js';
+export type { VtuData } from './io/vtu.js';
+export { writeVtu } from './io/vtu.js';
+
+// Errors: bad input throws one InputError with every fault found.
+
+export type { Fault, Place } from './base/fault.js';
+export { formatFault, InputError } from './base/fault.js';

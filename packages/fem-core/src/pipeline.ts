@@ -19,16 +19,20 @@ import { buildLocator } from './field/locate.js';
 import type { Section } from './geometry/section.js';
 import type { Mesh } from './mesh/mesh.js';
 import { nodeCount, nodePoint, triangleCount } from './mesh/mesh.js';
-import { meshSection, refineMesh } from './mesh/mesh-section.js';
+import { meshSection, meshSteps, refineMeshSteps } from './mesh/mesh-section.js';
+import type { QualityLimits, RefineProgress } from './mesh/refine.js';
 import { DEFAULT_LIMITS } from './mesh/refine.js';
 import type { NewtonOptions, NewtonProgress } from './solve/newton.js';
 import { newtonSteps } from './solve/newton.js';
 import type { Tangent } from './solve/tangent.js';
+import { analyseSystem } from './solve/tangent.js';
 import type { Factor } from './sparse/cholesky.js';
 
 /** A field with what is needed to go on from it. */
 export interface SolvedField {
+  /** `field.report` tells whether it converged. */
   readonly field: Field;
+  /** The equations it solves. */
   readonly system: System;
   /** The tangent at the solution; undefined where the solve failed before the first. */
   readonly tangent: Tangent | undefined;
@@ -38,6 +42,7 @@ export interface SolvedField {
 
 /**
  * From mesh to field. `setup` says what fills each region and binds each side, by the names the section gave them.
+ * @param order  of the elements: 1 linear, 2 quadratic (if absent)
  * @throws InputError for setups that do not fit the section; a solve that does not converge is told in `field.report`
  */
 export function solveOnMesh(mesh: Mesh, setup: Setup, options: NewtonOptions = {}, order?: 1 | 2): SolvedField {
@@ -51,24 +56,32 @@ function* solveFrom(
   setup: Setup,
   options: NewtonOptions,
   order?: 1 | 2,
-): Steps<NewtonProgress, SolvedField> {
+): Steps<SystemProgress | NewtonProgress, SolvedField> {
   checkSetup(mesh, setup);
   const unknowns = numberUnknowns(mesh, setup, order);
   const system = buildSystem(mesh, setup, unknowns);
   const start = before === undefined ? {} : { start: carryOver(before, mesh, unknowns) };
-  const { potential, report, tangent, factor } = yield* newtonSteps(system, { ...options, ...start });
+  const { analysis = analyseSystem(system) } = options;
+  yield { unknowns: unknowns.count };
+  const { potential, report, tangent, factor } = yield* newtonSteps(system, { ...options, ...start, analysis });
   const far = mesh.beyond === undefined ? {} : { netCurrent: netCurrent(mesh, setup) };
   return { field: { mesh, setup, potential, report, ...far }, system, tangent, factor };
 }
 
-/** From section to field on one mesh, as fine as the section's `maxEdge` wishes ask. */
+/**
+ * From section to field on one mesh of quadratic elements, as fine as the section's `maxEdge` and `sizeAt` wishes ask.
+ * @throws InputError for drawings that cannot be meshed and setups that do not fit; a solve that does not converge is told in
+ * `field.report`
+ */
 export function solveSection(section: Section, setup: Setup, options: NewtonOptions = {}): Field {
   return solveOnMesh(meshSection(section), setup, options).field;
 }
 
 /** An answer that is wanted accurate: a functional of A, linear, or linearised about the field at hand. */
 export interface Goal {
+  /** For its author. */
   readonly name: string;
+  /** Derivative of the answer with respect to A, at that field. */
   readonly functional: (field: Field) => Functional;
   /** The answer itself; the functional applied to A where absent. */
   readonly value?: (field: Field) => number;
@@ -76,6 +89,7 @@ export interface Goal {
 
 /** A goal at a field. */
 export interface GoalAt {
+  /** The answer, in its unit. */
   readonly value: number;
   /** Derivative of the answer with respect to A. */
   readonly functional: Functional;
@@ -88,6 +102,7 @@ export interface GoalAt {
   readonly remainder?: (recovered: RecoveredGradient) => Float64Array;
 }
 
+/** What is wanted of an adaptive solution, and how far to go for it. */
 export interface AdaptiveOptions {
   /** Goals of constant form, to be weighed by `weights`, or all goals of a field, weights and all. */
   readonly goals: readonly Goal[] | ((field: Field) => readonly GoalAt[]);
@@ -98,27 +113,46 @@ export interface AdaptiveOptions {
   readonly weights?: (values: readonly number[]) => readonly number[];
   /** Wanted sum of weight x bound, or the largest of them. */
   readonly accuracy: number;
+  /** Which of the two; 'sum' if absent. */
   readonly combine?: 'sum' | 'largest';
   /** Of the elements: 1 linear, 2 quadratic (if absent). */
   readonly order?: 1 | 2;
+  /** Meshes tried at most; 12 if absent. */
   readonly maxMeshes?: number;
+  /** Triangles from which on no finer mesh is tried; 200,000 if absent. */
   readonly maxTriangles?: number;
+  /** Of each solve. */
   readonly newton?: NewtonOptions;
   /** Called after each mesh is solved. */
   readonly onMesh?: (progress: MeshProgress) => void;
 }
 
+/** Told when the equations on a mesh stand and are analysed, and the first factor is next. */
+export interface SystemProgress {
+  /** Their number, n. */
+  readonly unknowns: number;
+}
+
+/** All that is told on the way; the further parts are there so that a long one can be called off. */
+export type SolveProgress = RefineProgress | SystemProgress | NewtonProgress | MeshProgress;
+
 /** Told after each mesh. */
 export interface MeshProgress {
+  /** Its number, from 1. */
   readonly mesh: number;
+  /** Their number. */
   readonly triangles: number;
   /** Estimated, as a share. */
   readonly error: number;
 }
 
+/** What an adaptive solution came to, on its last mesh. */
 export interface AdaptiveSolution {
+  /** `field.report` tells whether it converged. */
   readonly field: Field;
+  /** By goal and triangle; infinite where the solve failed before the first tangent. */
   readonly estimate: ErrorEstimate;
+  /** Of the goals, in their units. */
   readonly values: readonly number[];
   /** Estimated bound of each value's error, in its unit. */
   readonly bounds: readonly number[];
@@ -126,31 +160,34 @@ export interface AdaptiveSolution {
   readonly error: number;
   /** The wanted accuracy was met. */
   readonly accurate: boolean;
+  /** How many were solved on. */
   readonly meshes: number;
   /** Newton steps over all meshes. */
   readonly newtonSteps: number;
   /** Of the last mesh: what further solves on it can use. */
   readonly system: System;
+  /** At the solution; undefined where the solve failed before the first. */
   readonly tangent: Tangent | undefined;
 }
 
-/** `adaptiveSteps`, driven to the end. */
+/** `adaptiveSteps`, driven to the end. Throws what that throws. */
 export function solveAdaptively(section: Section, setup: Setup, options: AdaptiveOptions): AdaptiveSolution {
   return finish(adaptiveSteps(section, setup, options));
 }
 
 /**
  * Solves, estimates, refines where the goals' errors come from, until the wanted accuracy is met, or a limit is.
- * Where Newton's method does not converge it stops at once; `field.report` tells.
+ * Where Newton's method does not converge it stops at once; `field.report` tells. Told after each Newton step and each mesh.
+ * @throws InputError for drawings that cannot be meshed and setups that do not fit
  */
 export function* adaptiveSteps(
   section: Section,
   setup: Setup,
   options: AdaptiveOptions,
-): Steps<NewtonProgress | MeshProgress, AdaptiveSolution> {
-  const { maxMeshes = 12, maxTriangles = 200_000 } = options;
-  const limits = { ...DEFAULT_LIMITS, maxTriangles: RUNAWAY * maxTriangles };
-  let mesh = meshSection(section, limits);
+): Steps<SolveProgress, AdaptiveSolution> {
+  const { maxMeshes = 12, maxTriangles = MOST_TRIANGLES } = options;
+  const limits = limitsFor(maxTriangles);
+  let mesh = yield* meshSteps(section, limits);
   let newtonSteps = 0;
   let before: Field | undefined;
   for (let meshes = 1; ; meshes++) {
@@ -184,10 +221,18 @@ export function* adaptiveSteps(
       ),
     );
     const most = Math.min(maxTriangles, GROWTH * triangleCount(mesh));
-    mesh = refineMesh(mesh, wantedSizes(mesh, shares, AIM * options.accuracy, most, options.order), limits);
+    mesh = yield* refineMeshSteps(mesh, wantedSizes(mesh, shares, AIM * options.accuracy, most, options.order), limits);
     before = field;
   }
 }
+
+/** Limits of every mesh on the way to one of about `maxTriangles`. */
+export const limitsFor = (maxTriangles = MOST_TRIANGLES): QualityLimits => ({
+  ...DEFAULT_LIMITS,
+  maxTriangles: RUNAWAY * maxTriangles,
+});
+
+const MOST_TRIANGLES = 200_000;
 
 function goalsAt({ goals, weights }: AdaptiveOptions, field: Field): readonly GoalAt[] {
   if (typeof goals === 'function') return goals(field);

@@ -1,16 +1,8 @@
 import type { EdgeCondition, Field, Section, Setup } from '@gapwright/fem-core';
-import {
-  buildSystem,
-  cornerCount,
-  edgeCount,
-  forEachSample,
-  MU0,
-  meshSection,
-  nodeCount,
-  nodePoint,
-  numberUnknowns,
-  solveNewton,
-} from '@gapwright/fem-core';
+import { MU0 } from '@gapwright/fem-core';
+import { buildSystem, numberUnknowns, solveNewton } from '@gapwright/fem-core/equations';
+import { forEachSample } from '@gapwright/fem-core/field';
+import { cornerCount, edgeCount, meshSection, nodeCount, nodePoint } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import { gatherToUnknowns, potentialOf } from '../../../packages/fem-core/src/assembly/unknowns.js';
 import { AIR, box } from '../../laws/sections.js';

@@ -1,5 +1,8 @@
-import type { Setup, System } from '@gapwright/fem-core';
-import { assemble, buildBHCurve, MU0, meshSection, triangleCount } from '@gapwright/fem-core';
+import type { Setup } from '@gapwright/fem-core';
+import { buildBHCurve, MU0 } from '@gapwright/fem-core';
+import type { System } from '@gapwright/fem-core/equations';
+import { assemble } from '@gapwright/fem-core/equations';
+import { meshSection, triangleCount } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { addSteel, laySteel } from '../../../packages/fem-core/src/assembly/steel.js';

@@ -1,15 +1,9 @@
-import type { EdgeCondition, Material, Mesh, Setup, Unknowns } from '@gapwright/fem-core';
-import {
-  assemble,
-  buildSystem,
-  InputError,
-  MU0,
-  meshSection,
-  nodeCount,
-  nodePoint,
-  numberUnknowns,
-  triangleNodes,
-} from '@gapwright/fem-core';
+import type { EdgeCondition, Material, Setup } from '@gapwright/fem-core';
+import { InputError, MU0 } from '@gapwright/fem-core';
+import type { Unknowns } from '@gapwright/fem-core/equations';
+import { assemble, buildSystem, numberUnknowns } from '@gapwright/fem-core/equations';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { meshSection, nodeCount, nodePoint, triangleNodes } from '@gapwright/fem-core/mesh';
 import { EigenvalueDecomposition, Matrix } from 'ml-matrix';
 import { describe, expect, test } from 'vitest';
 import { gatherToUnknowns } from '../../../packages/fem-core/src/assembly/unknowns.js';

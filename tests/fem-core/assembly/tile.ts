@@ -1,13 +1,9 @@
-import type { EdgeCondition, Mesh, Section, Setup, System } from '@gapwright/fem-core';
-import {
-  assemble,
-  buildSystem,
-  cornerCount,
-  edgeCount,
-  forEachSample,
-  numberUnknowns,
-  triangleCount,
-} from '@gapwright/fem-core';
+import type { EdgeCondition, Section, Setup } from '@gapwright/fem-core';
+import type { System } from '@gapwright/fem-core/equations';
+import { assemble, buildSystem, numberUnknowns } from '@gapwright/fem-core/equations';
+import { forEachSample } from '@gapwright/fem-core/field';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { cornerCount, edgeCount, triangleCount } from '@gapwright/fem-core/mesh';
 import { potentialOf } from '../../../packages/fem-core/src/assembly/unknowns.js';
 import { AIR, box, STEEL } from '../../laws/sections.js';
 

@@ -1,14 +1,7 @@
 import type { EdgeCondition, Fault, Point, Section, Setup } from '@gapwright/fem-core';
-import {
-  checkMesh,
-  cornerCount,
-  InputError,
-  meshSection,
-  nodeCount,
-  nodePoint,
-  numberUnknowns,
-  solveOnMesh,
-} from '@gapwright/fem-core';
+import { InputError } from '@gapwright/fem-core';
+import { numberUnknowns } from '@gapwright/fem-core/equations';
+import { checkMesh, cornerCount, meshSection, nodeCount, nodePoint, solveOnMesh } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import { AIR } from '../../laws/sections.js';
 import { doubleUp, largest, naturalSides, sources, tile, withEdges } from './tile.js';

@@ -1,4 +1,4 @@
-import { meshSection, regionAreas, triangleCount } from '@gapwright/fem-core';
+import { meshSection, regionAreas, triangleCount } from '@gapwright/fem-core/mesh';
 import { expect, test } from 'vitest';
 import { FULL_RULE, gradients, nodeCoordinates } from '../../../packages/fem-core/src/elements/six-node.js';
 import { relativeError } from '../../laws/sections.js';

@@ -1,5 +1,6 @@
 import type { Field, Point, Section, Setup, Shape } from '@gapwright/fem-core';
-import { energiesOf, MU0, meshSection, nodeCount, nodePoint, solveOnMesh } from '@gapwright/fem-core';
+import { energiesOf, MU0 } from '@gapwright/fem-core';
+import { meshSection, nodeCount, nodePoint, solveOnMesh } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { AIR, relativeError } from '../../laws/sections.js';

@@ -1,6 +1,5 @@
 import { spawnSync } from 'node:child_process';
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath, pathToFileURL } from 'node:url';
 import { createContext, runInContext } from 'node:vm';
@@ -8,32 +7,36 @@ import { MU0 } from '@gapwright/fem-core';
 import { build } from 'vite';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 
-/** A program of somebody else: the force between two wires in unbounded space, told to whoever asks for `pull`. */
+/**
+ * A program of somebody else: the force between two wires in unbounded space, told to whoever asks for `pull`, and the size of
+ * the mesh by another entry of the package.
+ */
 const PROGRAM = `
 import { solveProbes } from '@gapwright/fem-core';
+import { triangleCount } from '@gapwright/fem-core/mesh';
 const air = { kind: 'linear', muR: 1 };
 const wire = (name, x) => ({ name, shape: { kind: 'circle', centre: [x, 0], radius: 0.002 } });
-const { answers } = solveProbes(
+const { answers, field } = solveProbes(
   { outline: { kind: 'circle', centre: [0, 0], radius: 0.03 }, open: true, background: 'air', regions: [wire('left', -0.01), wire('right', 0.01)] },
   { materials: { air, left: air, right: air }, current: { left: 10, right: 10 } },
   [{ kind: 'force', name: 'pull', on: ['left'] }],
   { accuracy: 1e-2 },
 );
 globalThis.pull = answers[0].fx;
+globalThis.triangles = triangleCount(field.mesh);
 `;
 const EXPECTED = (MU0 * 100) / (2 * Math.PI * 0.02);
 
+const dependent = fileURLToPath(new URL('../../../packages/cli/dist/.bundle-', import.meta.url));
 let folder = '';
 let bundle = '';
 beforeAll(async () => {
-  folder = mkdtempSync(join(tmpdir(), 'bundle-'));
+  folder = mkdtempSync(dependent); // the bundler finds the library as in any package that depends on it
   writeFileSync(join(folder, 'entry.js'), PROGRAM);
-  const library = fileURLToPath(new URL('../../../packages/fem-core/dist/index.js', import.meta.url));
   const result = await build({
     root: folder,
     configFile: false,
     logLevel: 'error',
-    resolve: { alias: { '@gapwright/fem-core': library } },
     build: { write: false, lib: { entry: join(folder, 'entry.js'), formats: ['iife'], name: 'program' } },
   });
   const [{ output }] = [result].flat() as { output: { code: string }[] }[];
@@ -46,6 +49,7 @@ describe('bundled for a browser', () => {
     const bare = createContext({});
     runInContext(bundle, bare, { timeout: 60_000 });
     expect(Math.abs(runInContext('globalThis.pull', bare) / EXPECTED - 1)).toBeLessThan(1e-2);
+    expect(runInContext('globalThis.triangles', bare)).toBeGreaterThan(100);
   });
 
   test('and without WebAssembly, by the plain twins, to the same answer', () => {

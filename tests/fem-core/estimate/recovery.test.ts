@@ -1,7 +1,8 @@
-import type { Mesh } from '@gapwright/fem-core';
-import { meshSection, recoverGradients, triangleCount } from '@gapwright/fem-core';
+import { recoverGradients } from '@gapwright/fem-core/goals';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { meshSection, triangleCount } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
-import { FULL_RULE, gradients, nodeCoordinates } from '../../../packages/fem-core/src/elements/six-node.js';
+import { FULL_RULE, gradients, NODES, nodeCoordinates } from '../../../packages/fem-core/src/elements/six-node.js';
 import {
   interpolantIn,
   interpolate,
@@ -11,16 +12,6 @@ import {
   straightMesh,
   straightSection,
 } from '../field/made-fields.js';
-
-/** Reference coordinates of the six nodes, in their order. */
-const NODES = [
-  [0, 0],
-  [1, 0],
-  [0, 1],
-  [0.5, 0.5],
-  [0, 0.5],
-  [0.5, 0],
-] as const;
 
 const oneSmoothPart = (mesh: Mesh): Int32Array => new Int32Array(triangleCount(mesh));
 

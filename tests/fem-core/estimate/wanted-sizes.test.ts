@@ -1,4 +1,4 @@
-import { triangleCount } from '@gapwright/fem-core';
+import { triangleCount } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import { wantedSizes } from '../../../packages/fem-core/src/estimate/wanted-sizes.js';

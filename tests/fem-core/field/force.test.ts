@@ -1,5 +1,6 @@
 import type { Field, Region, Section, Setup } from '@gapwright/fem-core';
-import { energiesOf, forceOn, InputError, MU0, solveSection, stressThrough } from '@gapwright/fem-core';
+import { energiesOf, forceOn, InputError, MU0, solveSection } from '@gapwright/fem-core';
+import { stressThrough } from '@gapwright/fem-core/goals';
 import { describe, expect, test } from 'vitest';
 import { AIR } from './made-fields.js';
 

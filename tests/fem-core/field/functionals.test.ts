@@ -1,18 +1,14 @@
 import type { Field } from '@gapwright/fem-core';
+import { buildLocator, energiesOf, meanOver, solveSection, valueAt } from '@gapwright/fem-core';
+import { forEachSample } from '@gapwright/fem-core/field';
 import {
   applyFunctional,
-  buildLocator,
-  energiesOf,
-  forEachSample,
-  meanOver,
   pointPotential,
-  solveSection,
   stressFunctional,
   stressThrough,
-  valueAt,
   weightedFlux,
   weightedIntegral,
-} from '@gapwright/fem-core';
+} from '@gapwright/fem-core/goals';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { fill, interpolate, MESHES, ROD, roundMesh, roundSection, straightMesh } from './made-fields.js';

@@ -1,17 +1,7 @@
 import type { Material } from '@gapwright/fem-core';
-import {
-  buildBHCurve,
-  energiesOf,
-  exceededIn,
-  forEachSample,
-  MU0,
-  meanOver,
-  meshSection,
-  regionAreas,
-  triangleCount,
-  triangleMeans,
-  valueAt,
-} from '@gapwright/fem-core';
+import { buildBHCurve, energiesOf, MU0, meanOver, triangleMeans, valueAt } from '@gapwright/fem-core';
+import { exceededIn, forEachSample } from '@gapwright/fem-core/field';
+import { meshSection, regionAreas, triangleCount } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { buildLocator } from '../../../packages/fem-core/src/field/locate.js';

@@ -1,8 +1,9 @@
-import type { Mesh } from '@gapwright/fem-core';
-import { buildLocator, edgeCount, meshSection, nodeCount, nodePoint, triangleCount } from '@gapwright/fem-core';
+import { buildLocator } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { edgeCount, meshSection, nodeCount, nodePoint, triangleCount } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { spotIn } from '../../../packages/fem-core/src/field/locate.js';
+import { newSearch, spotIn } from '../../../packages/fem-core/src/field/locate.js';
 import { MESHES, mapPoint, ROD, ROUND, roundMesh, roundSection, straightMesh } from './made-fields.js';
 
 const share = fc.double({ min: 0, max: 1, noNaN: true });
@@ -36,7 +37,7 @@ describe.each(MESHES)('points of the %s mesh', (_, mesh) => {
     const nearby = fc.double({ min: -0.2, max: 1.2, noNaN: true });
     fc.assert(
       fc.property(fc.nat({ max: triangleCount(mesh) - 1 }), nearby, nearby, (t, xi, eta) => {
-        const spot = spotIn(mesh, t, ...mapPoint(mesh, t, xi, eta));
+        const spot = spotIn(mesh, t, ...mapPoint(mesh, t, xi, eta), newSearch());
         expect(Math.hypot(spot.xi - xi, spot.eta - eta)).toBeLessThan(1e-11);
       }),
       { numRuns: 1000 },

@@ -1,5 +1,6 @@
-import type { Field, Material, Mesh, Section, Setup } from '@gapwright/fem-core';
-import { meshSection, nodeCount, nodePoint } from '@gapwright/fem-core';
+import type { Field, Material, Section, Setup } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { meshSection, nodeCount, nodePoint } from '@gapwright/fem-core/mesh';
 import { globalNode, nodeCoordinates, shapeValues } from '../../../packages/fem-core/src/elements/six-node.js';
 
 export const AIR: Material = { kind: 'linear', muR: 1 };

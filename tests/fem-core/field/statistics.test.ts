@@ -1,12 +1,6 @@
 import type { Section, Setup } from '@gapwright/fem-core';
-import {
-  buildLocator,
-  exceededIn,
-  fieldLines,
-  fieldStatistics,
-  lineHarmonics,
-  solveSection,
-} from '@gapwright/fem-core';
+import { buildLocator, lineHarmonics, solveSection } from '@gapwright/fem-core';
+import { exceededIn, fieldLines, fieldStatistics } from '@gapwright/fem-core/field';
 import { describe, expect, test } from 'vitest';
 
 const AIR = { kind: 'linear', muR: 1 } as const;

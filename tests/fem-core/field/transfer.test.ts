@@ -1,13 +1,6 @@
 import type { Field, Section } from '@gapwright/fem-core';
-import {
-  energiesOf,
-  fieldBuffers,
-  meshSection,
-  refineMesh,
-  solveOnMesh,
-  solveProbes,
-  triangleCount,
-} from '@gapwright/fem-core';
+import { energiesOf, fieldBuffers, solveProbes } from '@gapwright/fem-core';
+import { meshSection, refineMesh, solveOnMesh, triangleCount } from '@gapwright/fem-core/mesh';
 import { expect, test } from 'vitest';
 
 const section: Section = {

@@ -1,4 +1,5 @@
-import { buildBHCurve, buildLocator, fluxBetween, MU0, triangleCount, valueAt, valuesAlong } from '@gapwright/fem-core';
+import { buildBHCurve, buildLocator, fluxBetween, MU0, valueAt, valuesAlong } from '@gapwright/fem-core';
+import { triangleCount } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { interpolantIn, interpolate, MESHES, mapPoint, roundMesh, straightMesh } from './made-fields.js';

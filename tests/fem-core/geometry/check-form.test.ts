@@ -1,5 +1,6 @@
 import type { Section } from '@gapwright/fem-core';
-import { InputError, meshSection } from '@gapwright/fem-core';
+import { InputError } from '@gapwright/fem-core';
+import { meshSection } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { checkForm } from '../../../packages/fem-core/src/geometry/check-form.js';

@@ -1,5 +1,5 @@
 import type { Point, Section, Shape } from '@gapwright/fem-core';
-import { sidesOf } from '@gapwright/fem-core';
+import { sidesOf } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import type { PlanarGraph } from '../../../packages/fem-core/src/geometry/planar-graph.js';

@@ -2,18 +2,8 @@ import { spawnSync } from 'node:child_process';
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import {
-  InputError,
-  meshSection,
-  nodeCount,
-  nodePoint,
-  readVtu,
-  solveOnMesh,
-  triangleCount,
-  triangleMeans,
-  triangleNodes,
-  writeVtu,
-} from '@gapwright/fem-core';
+import { InputError, readVtu, triangleMeans, writeVtu } from '@gapwright/fem-core';
+import { meshSection, nodeCount, nodePoint, solveOnMesh, triangleCount, triangleNodes } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 

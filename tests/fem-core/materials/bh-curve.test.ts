@@ -1,5 +1,7 @@
-import type { BHCurve, CurvePoint } from '@gapwright/fem-core';
-import { buildBHCurve, evaluateCurve, findTableFaults, MU0 } from '@gapwright/fem-core';
+import type { BHCurve } from '@gapwright/fem-core';
+import { buildBHCurve, MU0 } from '@gapwright/fem-core';
+import type { CurvePoint } from '@gapwright/fem-core/materials';
+import { evaluateCurve, findTableFaults } from '@gapwright/fem-core/materials';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import type { Table } from '../../reference/bh-tables.js';

@@ -1,5 +1,5 @@
-import type { Mesh } from '@gapwright/fem-core';
-import { checkMesh, measureMesh, meshSection, regionAreas } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { checkMesh, measureMesh, meshSection, regionAreas } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import { circle, drawing, polygon, rectangle } from '../geometry/drawings.js';
 import { gridMesh } from '../io/grid-mesh.js';

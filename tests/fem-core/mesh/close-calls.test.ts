@@ -1,5 +1,5 @@
 import type { Point, Section, Shape } from '@gapwright/fem-core';
-import { checkMesh, measureMesh, meshSection, regionAreas, triangleCount } from '@gapwright/fem-core';
+import { checkMesh, measureMesh, meshSection, regionAreas, triangleCount } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { circle, drawing, faultCodes, moved, polar, polygon, rectangle } from '../geometry/drawings.js';

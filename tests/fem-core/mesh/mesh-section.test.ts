@@ -1,4 +1,5 @@
-import type { Mesh, Section } from '@gapwright/fem-core';
+import type { Section } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
 import {
   checkMesh,
   cornerCount,
@@ -7,7 +8,7 @@ import {
   meshSection,
   regionAreas,
   triangleCount,
-} from '@gapwright/fem-core';
+} from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import {

@@ -1,5 +1,5 @@
 import type { Section } from '@gapwright/fem-core';
-import { meshSection, refineMesh, regionAreas, triangleCount } from '@gapwright/fem-core';
+import { meshSection, refineMesh, regionAreas, triangleCount } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { middleOnArc } from '../../../packages/fem-core/src/mesh/middle-on-arc.js';

@@ -1,5 +1,6 @@
-import type { Mesh, Point, Section } from '@gapwright/fem-core';
-import { checkMesh, meshSection, triangleCount } from '@gapwright/fem-core';
+import type { Point, Section } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { checkMesh, meshSection, triangleCount } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import { circle, drawing, rectangle } from '../geometry/drawings.js';
 

@@ -1,5 +1,5 @@
 import type { Point, Section, Shape } from '@gapwright/fem-core';
-import { checkMesh, measureMesh, meshSection } from '@gapwright/fem-core';
+import { checkMesh, measureMesh, meshSection } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import {
   circle,
@@ -59,15 +59,16 @@ const outlines: fc.Arbitrary<Shape> = fc.constantFrom(
   polygon([0, 0.1], [0.7, -0.1], [1.1, 0.4], [0.6, 1.1], [0.3, 0.7], [-0.1, 0.9]),
 );
 
-const shapes: fc.Arbitrary<readonly Shape[]> = fc
-  .array(
-    fc.oneof(
-      fc.oneof(circles, rectangles, polygons, slivers, tiny).map((shape) => [shape]),
-      companies,
-    ),
-    { minLength: 1, maxLength: 5 },
-  )
-  .map((lists) => lists.flat());
+const shapes = (most: number): fc.Arbitrary<readonly Shape[]> =>
+  fc
+    .array(
+      fc.oneof(
+        fc.oneof(circles, rectangles, polygons, slivers, tiny).map((shape) => [shape]),
+        companies,
+      ),
+      { minLength: 1, maxLength: most },
+    )
+    .map((lists) => lists.flat());
 
 export interface RandomSection {
   readonly section: Section;
@@ -76,25 +77,32 @@ export interface RandomSection {
   readonly shift: Point;
 }
 
-export const randomSections: fc.Arbitrary<RandomSection> = fc.record({
-  section: fc.tuple(outlines, shapes, fc.boolean()).map(([outline, list, matched]) =>
-    drawing(
-      list,
-      outline === SQUARE && matched
-        ? {
-            outline,
-            matched: [
-              ['left', 'right'],
-              ['top', 'bottom'],
-            ],
-          }
-        : { outline },
+/** One shape, or company, to `most` of them, one over the other; sides matched or not; of any size, anywhere. */
+const sections = (most: number): fc.Arbitrary<RandomSection> =>
+  fc.record({
+    section: fc.tuple(outlines, shapes(most), fc.boolean()).map(([outline, list, matched]) =>
+      drawing(
+        list,
+        outline === SQUARE && matched
+          ? {
+              outline,
+              matched: [
+                ['left', 'right'],
+                ['top', 'bottom'],
+              ],
+            }
+          : { outline },
+      ),
     ),
-  ),
-  scale: fc.constantFrom(1, 1, 1e-6, 1e6),
-  angle: fc.oneof(fc.constant(0), unit(0, 6)),
-  shift: fc.constantFrom<Point>([0, 0], [0, 0], [3, -5], [1000, 300]),
-});
+    scale: fc.constantFrom(1, 1, 1e-6, 1e6),
+    angle: fc.oneof(fc.constant(0), unit(0, 6)),
+    shift: fc.constantFrom<Point>([0, 0], [0, 0], [3, -5], [1000, 300]),
+  });
+
+export const randomSections = sections(5);
+
+/** Of two shapes at the most: where shapes meet, two of them do. */
+export const smallSections = sections(2);
 
 /** A mesh of this many triangles is not asked for by anything drawn here. */
 const LIMITS = { minAngle: (25 * Math.PI) / 180, maxTriangles: 300_000 };
@@ -117,4 +125,20 @@ export function proveSection({ section, scale, angle, shift }: RandomSection): s
   if (codes[0] === 'outside-outline' && !wanted.slice(1).some((area) => area <= 1e-12 * scale * scale))
     throw new Error('refused as outside, but every region has area');
   return codes[0];
+}
+
+/** Drawings in unbounded air, in a round outline or a rectangular one. */
+export const openSections: fc.Arbitrary<Section> = fc
+  .tuple(fc.array(fc.oneof(circles, rectangles), { minLength: 1, maxLength: 4 }), fc.boolean())
+  .map(([list, round]) =>
+    drawing(list, { outline: round ? circle(0.5, 0.5, 1.5) : rectangle(-0.5, -0.5, 2, 1.6), open: true }),
+  );
+
+/** Both discs have the area of the circle the mesh tells, and all drawn regions theirs. */
+export function proveOpenSection(section: Section): void {
+  const mesh = meshSection(section);
+  const areas = overlayAreas(section);
+  const disc = Math.PI * (mesh.beyond?.radius ?? Number.NaN) ** 2;
+  const around = disc - areas.reduce((sum, area) => sum + area, 0);
+  checkMesh(mesh, { regionAreas: [...areas, ...(section.outline.kind === 'circle' ? [] : [around]), disc] });
 }

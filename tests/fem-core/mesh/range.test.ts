@@ -1,5 +1,5 @@
 import type { Point, Section } from '@gapwright/fem-core';
-import { checkMesh, measureMesh, meshSection } from '@gapwright/fem-core';
+import { checkMesh, measureMesh, meshSection } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import { circle, drawing, faultCodes, moved, polygon, rectangle } from '../geometry/drawings.js';
 import { overlayAreas } from '../geometry/overlay-areas.js';

@@ -1,5 +1,6 @@
-import type { Mesh, Section } from '@gapwright/fem-core';
-import { checkMesh, measureMesh, meshSection, refineMesh, regionAreas, triangleCount } from '@gapwright/fem-core';
+import type { Section } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
+import { checkMesh, measureMesh, meshSection, refineMesh, regionAreas, triangleCount } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { circle, drawing, faultCodes, polar, polygon, rectangle, rectangles } from '../geometry/drawings.js';

@@ -1,5 +1,5 @@
 import type { Section } from '@gapwright/fem-core';
-import { meshSection } from '@gapwright/fem-core';
+import { meshSection } from '@gapwright/fem-core/mesh';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { zOrder } from '../../../packages/fem-core/src/mesh/z-order.js';

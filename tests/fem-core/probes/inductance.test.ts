@@ -1,5 +1,6 @@
 import type { Coil, Section, Setup } from '@gapwright/fem-core';
-import { buildBHCurve, inductancesAt, MU0, meanOver, meshSection, solveOnMesh, solveProbes } from '@gapwright/fem-core';
+import { buildBHCurve, inductancesAt, MU0, meanOver, solveProbes } from '@gapwright/fem-core';
+import { meshSection, solveOnMesh } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import { TEAM_13 } from '../../reference/bh-tables.js';
 

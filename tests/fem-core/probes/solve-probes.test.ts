@@ -8,9 +8,9 @@ import {
   MU0,
   probeSteps,
   solveProbes,
-  triangleCount,
   valueAt,
 } from '@gapwright/fem-core';
+import { triangleCount } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 
 const AIR = { kind: 'linear', muR: 1 } as const;

@@ -1,5 +1,7 @@
 import type { Material, Section } from '@gapwright/fem-core';
-import { buildBHCurve, meshSection, solveAdaptively, solveOnMesh, weightedIntegral } from '@gapwright/fem-core';
+import { buildBHCurve } from '@gapwright/fem-core';
+import { solveAdaptively, weightedIntegral } from '@gapwright/fem-core/goals';
+import { meshSection, solveOnMesh } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import { SHEET_470, TEAM_13 } from '../../reference/bh-tables.js';
 

@@ -1,17 +1,10 @@
-import type { Field, Material, NewtonOptions, Setup, Solution } from '@gapwright/fem-core';
-import {
-  analyse,
-  assemble,
-  buildBHCurve,
-  exceededIn,
-  InputError,
-  meshSection,
-  multiply,
-  nodeCount,
-  numberUnknowns,
-  solve,
-  solveNewton,
-} from '@gapwright/fem-core';
+import type { Field, Material, NewtonOptions, Setup } from '@gapwright/fem-core';
+import { buildBHCurve, InputError } from '@gapwright/fem-core';
+import type { Solution } from '@gapwright/fem-core/equations';
+import { assemble, numberUnknowns, solveNewton } from '@gapwright/fem-core/equations';
+import { exceededIn } from '@gapwright/fem-core/field';
+import { meshSection, nodeCount } from '@gapwright/fem-core/mesh';
+import { analyse, multiply, solve } from '@gapwright/fem-core/sparse';
 import { describe, expect, test } from 'vitest';
 import { AIR, core, coreSetup, STEEL } from '../../laws/sections.js';
 import { SHEET_470, TEAM_13 } from '../../reference/bh-tables.js';

@@ -11,6 +11,7 @@ import type { Engine } from '../engine.js';
 import { given, givenMm } from '../figures.js';
 import { readInputFile } from '../input.js';
 import type { CommonOptions } from '../options.js';
+import { type Locate, warningText } from '../outputs.js';
 import { plainText } from '../plain-text.js';
 import { resultJson } from '../results-json.js';
 import type { SectionEngine } from '../section-engine.js';
@@ -26,8 +27,9 @@ export function runCheck(
   { stdout, stderr }: Surroundings,
 ): number {
   const { read, sha256 } = readInputFile(file, options.set, (text, given) => judge(engine, sections, text, given));
-  const { kind, name, summary, warnings } = read;
-  if (!options.quiet) for (const { key, text } of warnings) stderr.write(`warning: ${plainText(`${key}: ${text}`)}\n`);
+  const { kind, name, summary, warnings, locate } = read;
+  if (!options.quiet)
+    for (const warning of warnings) stderr.write(`warning: ${plainText(warningText(warning, locate))}\n`);
   if (options.json) {
     stdout.write(
       resultJson({
@@ -51,6 +53,7 @@ interface Judged {
   readonly name: string;
   readonly summary: string;
   readonly warnings: readonly Warning[];
+  readonly locate?: Locate;
 }
 
 function judge(engine: Engine, sections: SectionEngine, text: string, options: ReadOptions): Judged {
@@ -58,13 +61,13 @@ function judge(engine: Engine, sections: SectionEngine, text: string, options: R
     const { machine, warnings } = engine.read(text, options);
     return { kind: 'machine', name: machine.name, summary: machineSummary(machine), warnings };
   }
-  const { problem, warnings, place } = sections.read(text, options);
+  const { problem, warnings, place, locate } = sections.read(text, options);
   try {
-    sections.check(problem);
+    const doubts = [...warnings, ...sections.check(problem)];
+    return { kind: 'section', name: problem.name, summary: sectionSummary(problem), warnings: doubts, locate };
   } catch (error) {
     throw error instanceof InputError ? place(error) : error;
   }
-  return { kind: 'section', name: problem.name, summary: sectionSummary(problem), warnings };
 }
 
 function machineSummary({ rotor, winding, operation, model }: Machine): string {

@@ -34,7 +34,7 @@ export async function runSection(
   const begun = performance.now();
   refuseVtuAlone(options);
   const { read, sha256 } = readInputFile(file, options.set, engine.read);
-  const { problem, warnings, place } = read;
+  const { problem, warnings, place, locate } = read;
   if (options.out !== undefined) checkOutputFolder(options.out, outputNames(problem, options.vtu === true), file);
   const onMesh = (progress: MeshProgress): void => {
     if (!options.quiet && stderr.isTTY === true) stderr.write(progressLine(progress));
@@ -42,7 +42,7 @@ export async function runSection(
   const answer = await placed(place, () => engine.solve(problem, { signal, onMesh }));
   const solvedMs = performance.now() - begun;
   const result = describeSection(problem, answer, warnings, { version: ownVersion(), inputSha256: sha256 });
-  if (!options.quiet) showWarnings(result.warnings, options, surroundings);
+  if (!options.quiet) showWarnings(result.warnings, options, surroundings, locate);
   stdout.write(
     options.json ? resultJson(result) : sheetText(sectionSheet(problem, result), colourWanted(options, surroundings)),
   );

@@ -1,6 +1,8 @@
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
+import { unreachable } from '../base/unreachable.js';
 import { regionAreas } from '../elements/areas.js';
+import type { Material } from '../materials/material.js';
 import type { Mesh } from '../mesh/mesh.js';
 import type { EdgeCondition, Setup } from './setup.js';
 import { materialOf } from './setup.js';
@@ -16,16 +18,22 @@ const CONDITIONS: readonly EdgeCondition['kind'][] = [
 
 /**
  * Checks what the types do not: plain JavaScript may hand over anything, and names may be mistyped.
- * @throws InputError with everything wrong: currents of regions that do not exist or cover nothing, numbers that are not finite,
+ * @throws InputError with everything wrong: regions without a material, materials that cannot be, currents of regions that do not exist or cover nothing, numbers that are not finite,
  * unknown edge conditions, directions that do not come back to themselves
  */
 export function checkSetup(mesh: Mesh, setup: Setup): void {
   const faults = [
     ...keyFaults(setup),
+    ...materialFaults(mesh, setup),
     ...currentFaults(mesh, setup),
     ...edgeFaults(setup),
-    ...directionFaults(mesh, setup),
   ];
+  if (faults.length > 0) throw new InputError(faults);
+}
+
+/** The part of it that concerns materials. */
+export function checkMaterials(mesh: Mesh, setup: Setup): void {
+  const faults = [...materialFaults(mesh, setup)];
   if (faults.length > 0) throw new InputError(faults);
 }
 
@@ -74,11 +82,42 @@ function* edgeFaults(setup: Setup): Generator<Fault> {
   }
 }
 
-function* directionFaults(mesh: Mesh, setup: Setup): Generator<Fault> {
-  for (const name of mesh.regionNames) {
-    const material = materialOf(setup, name);
-    if (material?.kind !== 'directed-magnet' || Number.isInteger(material.direction.turns ?? 0)) continue;
-    const wrong = `turns ${String(material.direction.turns)} times round its centre, and so has a seam`;
-    yield { code: 'bad-form', key: name, wrong, remedy: 'give a whole number of turns' };
+/** Curves are judged where they are built. */
+function* materialFaults(mesh: Mesh, setup: Setup): Generator<Fault> {
+  for (const [region, key] of mesh.regionNames.entries()) {
+    const material = materialOf(setup, key);
+    if (material === undefined) {
+      if (!mesh.triangleToRegion.includes(region)) continue;
+      yield { code: 'no-material', key, wrong: 'has no material', remedy: 'name it in the setup' };
+      continue;
+    }
+    const { positive, others } = figuresOf(material);
+    if (!(positive > 0) || ![positive, ...others].every(Number.isFinite)) {
+      const wrong = `is filled with ${material.kind} material of figures ${[positive, ...others].join(', ')}`;
+      yield { code: 'no-material', key, wrong, remedy: 'give finite figures, and a permeability above 0' };
+    } else if (material.kind === 'directed-magnet' && !Number.isInteger(material.direction.turns ?? 0)) {
+      const wrong = `turns ${String(material.direction.turns)} times round its centre, and so has a seam`;
+      yield { code: 'bad-form', key, wrong, remedy: 'give a whole number of turns' };
+    }
+  }
+}
+
+/** Numbers that define a material: a relative permeability, and others of either sign. */
+function figuresOf(material: Material): { readonly positive: number; readonly others: readonly number[] } {
+  switch (material.kind) {
+    case 'linear':
+      return { positive: material.muR, others: [] };
+    case 'magnet':
+      return { positive: material.recoil, others: material.remanence };
+    case 'directed-magnet': {
+      const { direction, recoil, along } = material;
+      const { angle, turns = 0, centre = [], gradient = [] } = direction;
+      const strength = typeof along === 'number' ? [along] : [];
+      return { positive: recoil, others: [angle, turns, ...centre, ...gradient, ...strength] };
+    }
+    case 'curve':
+      return { positive: 1, others: [] };
+    default:
+      return unreachable(material);
   }
 }

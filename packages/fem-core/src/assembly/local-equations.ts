@@ -97,7 +97,7 @@ function axesOf(material: Material, x: number, y: number): readonly [cos: number
   return [Math.cos(angle), Math.sin(angle)];
 }
 
-const ORIGIN: readonly [number, number] = [0, 0];
+const ORIGIN = [0, 0] as const;
 
 /** The fewest points that leave no error where the law is uniform, else the full rule. A linear A is uniform on straight triangles. */
 function ruleFor(order: 1 | 2, curved: boolean, turning: boolean, nonlinear: boolean): ElementRule {

@@ -11,9 +11,17 @@ export type EdgeCondition =
   | { readonly kind: 'repeating' }
   | { readonly kind: 'reversing' }
   /** A = Bx y - By x held on the side: a uniform field far away. */
-  | { readonly kind: 'applied'; readonly field: readonly [bx: number, by: number] }
+  | {
+      readonly kind: 'applied';
+      /** Bx and By, T. */
+      readonly field: readonly [bx: number, by: number];
+    }
   /** A given as a function of place, Wb/m. */
-  | { readonly kind: 'potential'; readonly value: (x: number, y: number) => number };
+  | {
+      readonly kind: 'potential';
+      /** A at (x, y) in metres, Wb/m. */
+      readonly value: (x: number, y: number) => number;
+    };
 
 /** What fills the regions and binds the sides, by the names the section gave them. */
 export interface Setup {

@@ -15,9 +15,8 @@ const AT_REST = 1e-9;
 /** 2^52: numbers of this size have no fraction, so that adding it rounds. */
 const ROUNDER = 2 ** 52;
 
-/** `addPairs` of wasm/assembly.ts, one triangle at a time: the same operations in the same order. Addresses are in bytes. */
-export function addPairsPlain(
-  { numbers, words }: Views,
+/** `addPairs` of wasm/assembly.ts, whose comment says what is where. Addresses and steps are in bytes. */
+export type AddPairs = (
   pairs: number,
   law: number,
   nodes: number,
@@ -30,33 +29,48 @@ export function addPairsPlain(
   potential: number,
   residual: number,
   tangent: number,
-): void {
-  const tensors = scratch / 8;
-  for (let pair = 0; pair < pairs; pair++) {
-    const atNodes = nodes / 4 + 12 * pair;
-    for (let lane = 0; lane < 2; lane++) {
-      const atMetric = (metric + pairStep * pair) / 8 + lane;
-      addResidual(
-        numbers,
-        words,
-        law / 8,
-        atNodes + lane,
-        atMetric,
-        pointStep / 8,
-        rule / 8,
-        tensors,
-        potential / 8,
-        residual / 8,
-      );
-      if (tangent === 0) continue;
-      for (let part = 0; part < 3; part++) {
-        formMoments(numbers, tensors + part, rule / 8, tensors + MOMENTS + 6 * part);
+) => void;
+
+/** The same in TypeScript, one triangle at a time: the same operations in the same order. */
+export const addPairsPlain =
+  (views: Views): AddPairs =>
+  (pairs, law, nodes, metric, pointStep, pairStep, scatter, rule, scratch, potential, residual, tangent) => {
+    const { numbers, words } = views;
+    const tensors = scratch / 8;
+    for (let pair = 0; pair < pairs; pair++) {
+      for (let lane = 0; lane < 2; lane++) {
+        const at = {
+          law: law / 8,
+          nodes: nodes / 4 + 12 * pair + lane,
+          metric: (metric + pairStep * pair) / 8 + lane,
+          pointStep: pointStep / 8,
+          rule: rule / 8,
+          tensors,
+          potential: potential / 8,
+          residual: residual / 8,
+        };
+        addResidual(views, at);
+        if (tangent === 0) continue;
+        for (let part = 0; part < 3; part++) {
+          formMoments(numbers, tensors + part, rule / 8, tensors + MOMENTS + 6 * part);
+        }
+        formMatrix(numbers, tensors + MOMENTS, tensors + MATRIX);
+        const entries = scatter / 4 + 42 * pair + lane;
+        for (let p = 0; p < 21; p++) numbers[tangent / 8 + words[entries + 2 * p]] += numbers[tensors + MATRIX + p];
       }
-      formMatrix(numbers, tensors + MOMENTS, tensors + MATRIX);
-      const entries = scatter / 4 + 42 * pair + lane;
-      for (let p = 0; p < 21; p++) numbers[tangent / 8 + words[entries + 2 * p]] += numbers[tensors + MATRIX + p];
     }
-  }
+  };
+
+/** Places of what one triangle needs, by the numbers and words of `Views`. */
+interface Places {
+  readonly law: number;
+  readonly nodes: number;
+  readonly metric: number;
+  readonly pointStep: number;
+  readonly rule: number;
+  readonly tensors: number;
+  readonly potential: number;
+  readonly residual: number;
 }
 
 /** Place of the piece of the law that holds b >= 0. */
@@ -69,16 +83,8 @@ function pieceAt(numbers: Float64Array, words: Int32Array, law: number, b: numbe
 
 /** Adds the residual of a triangle and leaves the weighted tangents of its points in `tensors`, three a point. */
 function addResidual(
-  numbers: Float64Array,
-  words: Int32Array,
-  law: number,
-  nodes: number,
-  metric: number,
-  pointStep: number,
-  rule: number,
-  tensors: number,
-  potential: number,
-  residual: number,
+  { numbers, words }: Views,
+  { law, nodes, metric, pointStep, rule, tensors, potential, residual }: Places,
 ): void {
   const a0 = numbers[potential + words[nodes]]; // taken off, so that a constant of A leaves no trace
   const a1 = numbers[potential + words[nodes + 2]] - a0;

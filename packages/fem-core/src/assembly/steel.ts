@@ -9,7 +9,7 @@ import type { Material } from '../materials/material.js';
 import { pieceOf } from '../materials/monotone-cubic.js';
 import type { Mesh } from '../mesh/mesh.js';
 import { nodeCount } from '../mesh/mesh.js';
-import type { Views } from './steel-plain.js';
+import type { AddPairs, Views } from './steel-plain.js';
 import { addPairsPlain } from './steel-plain.js';
 
 /**
@@ -60,22 +60,6 @@ interface Addresses {
   readonly residual: number;
   readonly tangent: number;
 }
-
-/** See wasm/assembly.ts. */
-type AddPairs = (
-  pairs: number,
-  law: number,
-  nodes: number,
-  metric: number,
-  pointStep: number,
-  pairStep: number,
-  scatter: number,
-  rule: number,
-  scratch: number,
-  potential: number,
-  residual: number,
-  tangent: number,
-) => void;
 
 const compiled = compileKernels(bytes);
 
@@ -152,7 +136,7 @@ export function laySteel(
     tangent: new Float64Array(buffer, tangent, entries),
     runs,
     addresses: { rule, scratch, potential, residual, tangent },
-    addPairs: instance?.exports.addPairs ?? ((...run) => addPairsPlain(views, ...run)),
+    addPairs: instance?.exports.addPairs ?? addPairsPlain(views),
   };
 }
 

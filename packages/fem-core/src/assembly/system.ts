@@ -1,6 +1,3 @@
-import type { Fault } from '../base/fault.js';
-import { InputError } from '../base/fault.js';
-import { unreachable } from '../base/unreachable.js';
 import { globalNode } from '../elements/six-node.js';
 import type { Material } from '../materials/material.js';
 import { isNonlinear } from '../materials/material.js';
@@ -8,12 +5,13 @@ import type { Mesh } from '../mesh/mesh.js';
 import { nodeCount, triangleCount } from '../mesh/mesh.js';
 import type { SymmetricPattern } from '../sparse/pattern.js';
 import { multiply } from '../sparse/pattern.js';
+import { checkMaterials } from './check-setup.js';
 import { currentDensities } from './currents.js';
 import type { Derivative, LocalEquations } from './local-equations.js';
 import { addCurrent, formConstantEquations, formEquations, newLocalEquations } from './local-equations.js';
 import { pairsOf, patternOfMesh } from './pattern-of-mesh.js';
 import type { Setup } from './setup.js';
-import { materialOf } from './setup.js';
+import { materialOf, VACUUM } from './setup.js';
 import type { SteelTriangles } from './steel.js';
 import { addSteel, laySteel } from './steel.js';
 import type { Unknowns } from './unknowns.js';
@@ -27,8 +25,11 @@ import { gatherToUnknowns } from './unknowns.js';
  * is the derivative of the energy functional; its tangent is symmetric and positive definite.
  */
 export interface System {
+  /** m triangles. */
   readonly mesh: Mesh;
+  /** n of them. */
   readonly unknowns: Unknowns;
+  /** Of residual and tangent. */
   readonly pattern: SymmetricPattern;
   /**
    * Int32Array(21 m), with order 1 Int32Array(6 m): for the pairs i >= j of local functions of triangle t, at
@@ -47,6 +48,7 @@ export interface System {
   readonly offset: Float64Array;
   /** Int32Array(n): a node of each unknown. */
   readonly nodeOf: Int32Array;
+  /** For the assembly's use alone. */
   readonly workspace: Workspace;
 }
 
@@ -64,7 +66,14 @@ interface Workspace {
   readonly product: Float64Array;
 }
 
+/**
+ * The equations of a mesh under a setup, ready to be assembled at any potential.
+ * @param unknowns  `numberUnknowns` of the same mesh and setup
+ * @throws InputError for regions without a material, and for materials whose figures are not finite or whose permeability is
+ * not above 0
+ */
 export function buildSystem(mesh: Mesh, setup: Setup, unknowns: Unknowns): System {
+  checkMaterials(mesh, setup);
   const materials = materialsOf(mesh, setup);
   const { pattern, scatter } = patternOfMesh(localUnknowns(mesh, unknowns), 3 * unknowns.order, unknowns.count);
   const linearValues = new Float64Array(pattern.row.length);
@@ -101,52 +110,9 @@ export function buildSystem(mesh: Mesh, setup: Setup, unknowns: Unknowns): Syste
   return { ...system, workspace: newWorkspace(system, local) };
 }
 
-function materialsOf(mesh: Mesh, setup: Setup): Material[] {
-  const faults: Fault[] = [];
-  const materials = mesh.regionNames.map((name, region): Material => {
-    const material = materialOf(setup, name);
-    if (material !== undefined) {
-      const fault = faultOf(material, name);
-      if (fault !== undefined) faults.push(fault);
-      return material;
-    }
-    if (mesh.triangleToRegion.includes(region)) {
-      faults.push({ code: 'no-material', key: name, wrong: 'has no material', remedy: 'name it in the setup' });
-    }
-    return { kind: 'linear', muR: 1 };
-  });
-  if (faults.length > 0) throw new InputError(faults);
-  return materials;
-}
-
-/** What no material can be; curves are judged where they are built. */
-function faultOf(material: Material, key: string): Fault | undefined {
-  const figures = figuresOf(material);
-  if (figures.positive > 0 && Number.isFinite(figures.positive) && figures.others.every(Number.isFinite))
-    return undefined;
-  const wrong = `is filled with ${material.kind} material of figures ${[figures.positive, ...figures.others].join(', ')}`;
-  return { code: 'no-material', key, wrong, remedy: 'give finite figures, and a permeability above 0' };
-}
-
-/** Numbers that define a material: a relative permeability, and others of either sign. */
-function figuresOf(material: Material): { readonly positive: number; readonly others: readonly number[] } {
-  switch (material.kind) {
-    case 'linear':
-      return { positive: material.muR, others: [] };
-    case 'magnet':
-      return { positive: material.recoil, others: material.remanence };
-    case 'directed-magnet': {
-      const { direction, recoil, along } = material;
-      const { angle, turns = 0, centre = [], gradient = [] } = direction;
-      const strength = typeof along === 'number' ? [along] : [];
-      return { positive: recoil, others: [angle, turns, ...centre, ...gradient, ...strength] };
-    }
-    case 'curve':
-      return { positive: 1, others: [] };
-    default:
-      return unreachable(material);
-  }
-}
+/** Regions that cover nothing may be without. */
+const materialsOf = (mesh: Mesh, setup: Setup): Material[] =>
+  mesh.regionNames.map((name) => materialOf(setup, name) ?? VACUUM);
 
 /** Int32Array(functions m): the unknown of each local function of each triangle, -1 where it is fixed. */
 function localUnknowns(mesh: Mesh, { order, unknownOf }: Unknowns): Int32Array {

@@ -14,6 +14,7 @@ import { own } from './setup.js';
 export interface Unknowns {
   /** 2: all nodes of the six-node triangles; 1: corners alone, and A at the middle of an edge is the mean of its ends. */
   readonly order: 1 | 2;
+  /** Their number, n. */
   readonly count: number;
   /** Int32Array(nodes): -1 where the value is fixed, and at middles of order 1. */
   readonly unknownOf: Int32Array;
@@ -27,6 +28,7 @@ export interface Unknowns {
 
 /**
  * Numbers the unknowns of a mesh under the edge conditions.
+ * @param order  of the elements: 1 linear, 2 quadratic
  * @throws InputError for conditions on sides that do not exist or have no match, sides that hold different values at one
  * place, values that are not finite, and currents without return where nothing fixes the potential
  */
@@ -57,7 +59,7 @@ export function numberUnknowns(mesh: Mesh, setup: Setup, order: 1 | 2 = 2): Unkn
   return collect(mesh, setup, order, tie, held);
 }
 
-/** Potential at the nodes from the unknowns, written into `out` (Float64Array(nodes)) and returned. */
+/** A at the nodes, Wb/m, from the unknowns u, Float64Array(n); written into `out`, Float64Array(nodes), and returned. */
 export function potentialOf(unknowns: Unknowns, u: Float64Array, out: Float64Array): Float64Array {
   const { order, unknownOf, sign, fixed, edges } = unknowns;
   const corners = out.length - edges.length / 2;

@@ -4,7 +4,10 @@
  */
 export type Steps<Progress, Result> = Generator<Progress, Result, void>;
 
-/** Drives a computation to its end at once. */
+/**
+ * Drives a computation to its end at once.
+ * @param onStep  told after each step
+ */
 export function finish<Progress, Result>(
   steps: Steps<Progress, Result>,
   onStep?: (progress: Progress) => void,
@@ -18,14 +21,19 @@ export function finish<Progress, Result>(
 
 /** What tells that a result is no longer wanted; an `AbortSignal` is one. */
 export interface Cancel {
+  /** True once the result is no longer wanted. */
   readonly aborted: boolean;
+  /** What `drive` throws then; an Error of its own where it is absent. */
   readonly reason?: unknown;
 }
 
+/** How a computation is driven. */
 export interface DriveOptions<Progress> {
   /** Resolves when the computation may go on; in Node and browsers `() => new Promise((go) => setTimeout(go))` lets events in. */
   readonly pause: () => Promise<void>;
+  /** Looked at before each step. */
   readonly signal?: Cancel;
+  /** Told after each step. */
   readonly onStep?: (progress: Progress) => void;
 }
 

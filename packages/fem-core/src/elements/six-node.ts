@@ -3,6 +3,16 @@ import { cornerCount } from '../mesh/mesh.js';
 import type { TriangleRule } from './quadrature.js';
 import { RULE_1, RULE_2, RULE_5 } from './quadrature.js';
 
+/** Reference coordinates (xi, eta) of the six nodes: corners, then the middles opposite them. */
+export const NODES: readonly (readonly [xi: number, eta: number])[] = [
+  [0, 0],
+  [1, 0],
+  [0, 1],
+  [0.5, 0.5],
+  [0, 0.5],
+  [0.5, 0],
+];
+
 /**
  * Shape functions of the six-node triangle at (xi, eta), with L0 = 1 - xi - eta, L1 = xi, L2 = eta:
  * corner i: Li (2 Li - 1); middle opposite corner i: 4 Lj Lk.

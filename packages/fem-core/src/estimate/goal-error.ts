@@ -7,6 +7,7 @@ import type { Field } from '../field/field.js';
 import type { Functional } from '../field/functionals.js';
 import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import type { Material } from '../materials/material.js';
+import { isNonlinear } from '../materials/material.js';
 import type { Mesh } from '../mesh/mesh.js';
 import { triangleCount } from '../mesh/mesh.js';
 import type { Tangent } from '../solve/tangent.js';
@@ -39,12 +40,15 @@ export interface ErrorEstimate {
 /**
  * Dual-weighted error estimate of linear functionals of a solved field. With z the solution of the adjoint problem
  * K z = g under the tangent K at the solution, J(A) - J(A_h) = K(e_A, e_z) for the errors of both (Galerkin orthogonality),
- * and both errors are read off the gap between recovered and element gradients:
+ * and both errors are read off the gap between recovered and element gradients. Where H bends within the error of B there is
+ * more, as large as that product, both being squares of errors. The recovered dual is smooth, that of the tangent at A, and
+ * to second order dH/dB(A) curl e_A is the difference H(curl A) - H(curl A_h), to which every z_h is orthogonal, and again
+ * what of it is beyond the tangent at A_h, Q = H(curl A) - H(curl A_h) - dH/dB curl e_A. Hence
  *
- *   share of triangle T = | integral over T of  curl e_z . dH/dB curl e_A |.
+ *   share of triangle T = | integral over T of  curl e_z . dH/dB curl e_A + curl z_h . Q |.
  *
- * Becker, Rannacher, An optimal control approach to a posteriori error estimation, Acta Numerica 10, 2001; gradients by
- * `recoverGradients`.
+ * Becker, Rannacher, An optimal control approach to a posteriori error estimation, Acta Numerica 10, 2001, whose remainder of
+ * the linearisation Q is; gradients by `recoverGradients`.
  */
 export function estimateGoalErrors(
   system: System,
@@ -65,6 +69,7 @@ export function estimateGoalErrors(
   for (let t = 0; t < m; t++) {
     const material = system.materials[mesh.triangleToRegion[t]];
     const placed = material.kind === 'directed-magnet';
+    const bent = isNonlinear(material);
     nodeCoordinates(mesh, t, at);
     for (let q = 0; q < FULL_RULE.count; q++) {
       const weight = FULL_RULE.weights[q] * gradients(at, FULL_RULE.slopes, 12 * q, grad);
@@ -74,10 +79,16 @@ export function estimateGoalErrors(
       // dH of the error: dB = (ey, -ex), and the same for the duals.
       const hx = law.xx * gap.ey - law.xy * gap.ex;
       const hy = law.xy * gap.ey - law.yy * gap.ex;
+      let [qx, qy] = [0, 0];
+      if (bent) {
+        const { hx: hx0, hy: hy0 } = law;
+        evaluateMaterial(material, gap.gy + gap.ey, -gap.gx - gap.ex, x, y, law);
+        [qx, qy] = [law.hx - hx0 - hx, law.hy - hy0 - hy];
+      }
       energy += 0.5 * weight * (hx * gap.ey - hy * gap.ex);
       for (let k = 0; k < goals.length; k++) {
         measureGap(mesh, duals[k], recoveredDuals[k], t, q, grad, gap);
-        shares[k][t] += weight * (hx * gap.ey - hy * gap.ex);
+        shares[k][t] += weight * (hx * gap.ey - hy * gap.ex + qx * gap.gy - qy * gap.gx);
       }
     }
     for (let k = 0; k < goals.length; k++) shares[k][t] = Math.abs(shares[k][t]);
@@ -136,8 +147,8 @@ function measureGap(
 }
 
 /**
- * By triangle: regions of one law and one current density belong to one part, within which the gradient is smooth: air and a
- * winding without current. Where the density jumps, the gradient has a kink.
+ * The smooth part each triangle belongs to, Int32Array(m): regions of one law and one current density are one part, within
+ * which the gradient is smooth, such as air and a winding without current. Where the density jumps, the gradient has a kink.
  */
 export function smoothParts({ mesh, setup }: Field): Int32Array {
   const density = currentDensities(mesh, setup);

@@ -18,7 +18,8 @@ const ENOUGH = 5;
  * at three inner points of each triangle by least squares; middle nodes take the mean of the fits of their edge's ends.
  * Zienkiewicz, Zhu, The superconvergent patch recovery and a posteriori error estimates, Int. J. Numer. Meth. Engng 33, 1992.
  *
- * @param part  Int32Array(m): smooth part each triangle belongs to; the gradient may jump between parts
+ * @param part  Int32Array(m): smooth part each triangle belongs to, of a field by `smoothParts`; the gradient may jump between
+ * parts
  * @param functions  nodal vectors, Float64Array(nodes) each
  */
 export function recoverGradients(

@@ -1,4 +1,5 @@
 import { materialOf, own } from '../assembly/setup.js';
+import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
 import { newHeap, popHeap, pushHeap } from '../base/heap.js';
 import { globalNode } from '../elements/six-node.js';
@@ -8,8 +9,11 @@ import type { Mesh } from '../mesh/mesh.js';
 import { cornerCount, edgeCount, nodeCount, nodePoint, triangleCount } from '../mesh/mesh.js';
 import type { Field } from './field.js';
 
+/** A mesh with what fills it, solved or not. */
+type Filled = Pick<Field, 'mesh' | 'setup'>;
+
 /** Regions of air: where Maxwell's stress has no divergence. */
-export function airRegions({ mesh, setup }: Field): string[] {
+export function airRegions({ mesh, setup }: Filled): string[] {
   return mesh.regionNames.filter((name) => {
     if (name === BEYOND_REGION) return false; // an image: distances there are not those of space
     const material = materialOf(setup, name);
@@ -47,10 +51,30 @@ const AIR = 0;
 const BODY = 1;
 const OTHER = 2;
 
-/** What each node lies on: the body, other things (the outline too, where it is not bound), or air alone. */
-function placesOf(field: Field, regions: readonly string[]): Uint8Array {
-  const { mesh } = field;
-  const air = airRegions(field);
+/** Why there is no force on the regions; undefined where it is defined. */
+export function forceFault(
+  filled: Filled,
+  regions: readonly string[],
+  { place, other } = touchedBy(filled, regions),
+): Fault | undefined {
+  if (!place.includes(BODY)) {
+    return fault('names no region with area', `regions here are: ${filled.mesh.regionNames.join(', ')}`);
+  }
+  if (!place.some((at, node) => at === BODY && other[node] === 1)) return undefined;
+  return fault(
+    'touches another body',
+    'a force is defined on a body with air all round it; name all parts that move together',
+  );
+
+  function fault(wrong: string, remedy: string): Fault {
+    return { code: 'no-force', key: regions.join(', '), wrong, remedy };
+  }
+}
+
+/** By node: BODY where it lies on the body, else AIR; and 1 where it lies on things that are neither. */
+function touchedBy(filled: Filled, regions: readonly string[]) {
+  const { mesh } = filled;
+  const air = airRegions(filled);
   const kind = mesh.regionNames.map((name) => (regions.includes(name) ? BODY : air.includes(name) ? AIR : OTHER));
   const place = new Uint8Array(nodeCount(mesh));
   const other = new Uint8Array(nodeCount(mesh));
@@ -61,14 +85,16 @@ function placesOf(field: Field, regions: readonly string[]): Uint8Array {
       else if (k === OTHER) other[globalNode(mesh, t, i)] = 1;
     }
   }
-  if (!place.includes(BODY))
-    throw fault('names no region with area', `regions here are: ${mesh.regionNames.join(', ')}`);
-  if (place.some((at, node) => at === BODY && other[node] === 1)) {
-    throw fault(
-      'touches another body',
-      'a force is defined on a body with air all round it; name all parts that move together',
-    );
-  }
+  return { place, other };
+}
+
+/** What each node lies on: the body, other things (the outline too, where it is not bound), or air alone. */
+function placesOf(field: Field, regions: readonly string[]): Uint8Array {
+  const { mesh } = field;
+  const touched = touchedBy(field, regions);
+  const none = forceFault(field, regions, touched);
+  if (none !== undefined) throw new InputError([none]);
+  const { place, other } = touched;
   // Stress on the outline pushes whatever lies beyond; on bound sides what leaves by the one comes in by the other, and a
   // side that cuts the body is a plane of symmetry, along which there is no stress.
   const cut = sidesWith(mesh, place);
@@ -78,10 +104,6 @@ function placesOf(field: Field, regions: readonly string[]): Uint8Array {
     for (const node of nodesOfEdge(mesh, e)) other[node] = 1;
   }
   return place.map((at, node) => (at === AIR && other[node] === 1 ? OTHER : at));
-
-  function fault(wrong: string, remedy: string): InputError {
-    return new InputError([{ code: 'no-force', key: regions.join(', '), wrong, remedy }]);
-  }
 }
 
 /** Sides of the outline that the body touches. */

@@ -7,10 +7,11 @@ import type { Functional } from './functionals.js';
 import type { FieldSample } from './integrals.js';
 import { forEachSample } from './integrals.js';
 
-/** Per metre of depth. */
+/** Force and torque per metre of depth. */
 export interface Force {
-  /** N/m. */
+  /** Along x, N/m. */
   readonly fx: number;
+  /** Along y, N/m. */
   readonly fy: number;
   /** N m per metre, about the origin or the given point; counter-clockwise positive. */
   readonly torque: number;
@@ -27,6 +28,7 @@ export interface Force {
  * A body that a side of the outline cuts in two is taken for one half of a symmetric one: the force along the side is that on
  * the half; across it, and the torque, are NaN, for the stress in the cut is not known.
  *
+ * @param about  point the torque is about, m
  * @param layer  `airLayer(field, regions)`, where it is known already
  * @throws InputError where the body is not surrounded by air (linear, mu_r = 1, no current) or touches another body
  */
@@ -148,12 +150,14 @@ export function forceRemainder(
 /**
  * Maxwell's stress averaged through given regions of air: F = - integral T grad w, with grad w given by place; for layers
  * whose shape is known, such as the gap of a machine.
+ * @param slope  grad w at (x, y) in metres, 1/m: of a function that is 1 on the body and falls to 0 through the layer
+ * @returns the force on the body, N/m
  */
 export function stressThrough(
   field: Field,
   regions: readonly string[],
   slope: (x: number, y: number) => readonly [wx: number, wy: number],
-): { readonly fx: number; readonly fy: number } {
+): Pick<Force, 'fx' | 'fy'> {
   let fx = 0;
   let fy = 0;
   forEachSample(field, regions, (s) => {
@@ -166,8 +170,8 @@ export function stressThrough(
 }
 
 /**
- * Derivative of `stressThrough(...).fy` with respect to the potential, as a functional: what an adaptive solution needs to
- * bound the error of a pull.
+ * Derivative of `stressThrough(field, regions, slope).fy` with respect to the potential, as a functional, N/m per Wb/m: what
+ * an adaptive solution needs to bound the error of a pull.
  */
 export function stressFunctional(
   field: Field,

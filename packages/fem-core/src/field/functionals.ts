@@ -11,6 +11,7 @@ import type { Spot } from './locate.js';
  */
 export type Functional = Float64Array;
 
+/** J(A) = g . A for A at the nodes, Float64Array(nodes), Wb/m. */
 export function applyFunctional(functional: Functional, potential: Float64Array): number {
   let sum = 0;
   for (let i = 0; i < functional.length; i++) sum += functional[i] * potential[i];
@@ -18,7 +19,7 @@ export function applyFunctional(functional: Functional, potential: Float64Array)
 }
 
 /**
- * J(A) = integral of weight(x, y) A over the named regions.
+ * J(A) = integral of weight(x, y) A over the named regions, x and y in metres.
  *
  * @param wavelength  the shortest along which the weight varies, m: elements are cut for the quadrature until they span no
  * more than a quarter of it; weights that vary slowly need none
@@ -54,7 +55,7 @@ function longestEdgeIn(mesh: Mesh, regions: readonly string[]): number {
   return longest;
 }
 
-/** J(A) = integral of wx Bx + wy By over the named regions, with the weights (wx, wy) given by place. */
+/** J(A) = integral of wx Bx + wy By over the named regions, with the weights (wx, wy) given at (x, y) in metres. */
 export function weightedFlux(
   mesh: Mesh,
   regions: readonly string[],
@@ -68,7 +69,7 @@ export function weightedFlux(
   return g;
 }
 
-/** J(A) = A at a place. */
+/** J(A) = A at a place, Wb/m. */
 export function pointPotential(mesh: Mesh, spot: Spot): Functional {
   const g = new Float64Array(nodeCount(mesh));
   const shapes = shapeValues(spot.xi, spot.eta, new Float64Array(6));

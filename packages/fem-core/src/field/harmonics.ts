@@ -5,20 +5,29 @@ import { valueAt } from './values.js';
 
 /** Fourier coefficients of the flux density along a line, the whole line being one period. */
 export interface LineHarmonics {
-  /** 0, 1, 2, ... */
+  /** 0, 1, 2, ...: of each place in the lists below. */
   readonly order: readonly number[];
-  /**
-   * T: B across the line (to its left) is sum cos_n cos(2 pi n s) + sin_n sin(2 pi n s), with s from 0 to 1 along it; B along
-   * the line the same with the second pair.
-   */
-  readonly across: { readonly cos: readonly number[]; readonly sin: readonly number[] };
-  readonly along: { readonly cos: readonly number[]; readonly sin: readonly number[] };
+  /** B across the line, to its left: sum of cos_n cos(2 pi n s) + sin_n sin(2 pi n s), with s from 0 to 1 along it. */
+  readonly across: {
+    /** T. */
+    readonly cos: readonly number[];
+    /** T. */
+    readonly sin: readonly number[];
+  };
+  /** B along the line, forwards, in the same way. */
+  readonly along: {
+    /** T. */
+    readonly cos: readonly number[];
+    /** T. */
+    readonly sin: readonly number[];
+  };
 }
 
 /**
  * Harmonics of B along a line, up to the given order, by the midpoint rule on equal steps, which is exact for what the steps
  * resolve; what lies above half their number folds back. NaN where the line leaves the section.
  *
+ * @param highest  order, a whole number
  * @param steps  number of places; at least twice the highest order is needed, and eight times is the default
  * @param recovered  gradient of A as `recoverGradients` gives it; straight from the elements where absent
  */

@@ -8,23 +8,31 @@ import type { Field } from './field.js';
 
 /** What is known at one quadrature point of a field. */
 export interface FieldSample {
+  /** Number of the triangle in the mesh. */
   triangle: number;
   /** Number of the quadrature point in its triangle: of `FULL_RULE`. */
   point: number;
+  /** Where it is, m. */
   x: number;
+  /** Likewise. */
   y: number;
   /** Quadrature weight times det J, m^2: sums to areas. */
   area: number;
   /** Potential, Wb/m. */
   a: number;
+  /** Flux density along x, T. */
   bx: number;
+  /** Along y, T. */
   by: number;
+  /** Field strength along x, A/m. */
   hx: number;
+  /** Along y, A/m. */
   hy: number;
-  /** J/m^3. */
+  /** J/m^3: integral of H dB, of magnets from the remanence. */
   energy: number;
   /** Chord reluctivity, m/H. */
   nu: number;
+  /** What fills the place. */
   material: Material;
   /** Float64Array(12): d/dx of the six shape functions here, then d/dy, 1/m. */
   readonly grad: Float64Array;
@@ -99,19 +107,21 @@ export function forEachSample(
   }
 }
 
+/** Means of the field over an area. */
 export interface RegionMeans {
   /** m^2. */
   readonly area: number;
-  /** T. */
+  /** Mean of Bx, T. */
   readonly bx: number;
+  /** Mean of By, T. */
   readonly by: number;
   /** Mean of |B|, T. */
   readonly b: number;
-  /** Wb/m. */
+  /** Mean of A, Wb/m. */
   readonly a: number;
 }
 
-/** Means over the named regions together. */
+/** Means over the named regions together; of no area, all but the area are NaN. */
 export function meanOver(field: Field, regions: readonly string[]): RegionMeans {
   let area = 0;
   let bx = 0;
@@ -128,6 +138,7 @@ export function meanOver(field: Field, regions: readonly string[]): RegionMeans 
   return { area, bx: bx / area, by: by / area, b: b / area, a: a / area };
 }
 
+/** Energy and coenergy of a field. */
 export interface Energies {
   /** J per metre of depth: air B^2/(2 mu0), curve integral of H dB, magnet (B - Br)^2/(2 mu). */
   readonly energy: number;
@@ -135,6 +146,10 @@ export interface Energies {
   readonly coenergy: number;
 }
 
+/**
+ * Energy and coenergy of the named regions together; names that are no region count nothing. In unbounded space that of the
+ * image is that of all beyond the circle.
+ */
 export function energiesOf(field: Field, regions: readonly string[] | 'all' = 'all'): Energies {
   let energy = 0;
   let product = 0;
@@ -153,6 +168,7 @@ export interface TriangleMeans {
   readonly relativePermeability: Float64Array;
 }
 
+/** Means of the field over each triangle of its mesh, m of them. */
 export function triangleMeans(field: Field): TriangleMeans {
   const m = triangleCount(field.mesh);
   const fluxDensity = new Float64Array(2 * m);

@@ -1,20 +1,24 @@
-import { gradients, nodeCoordinates, shapeSlopes, shapeValues } from '../elements/six-node.js';
+import { nodeCoordinates, shapeSlopes, shapeValues } from '../elements/six-node.js';
 import type { Mesh } from '../mesh/mesh.js';
 import { triangleCount } from '../mesh/mesh.js';
 
 /** A place in a triangle by its reference coordinates. */
 export interface Spot {
+  /** Its number in the mesh. */
   readonly triangle: number;
+  /** From 0 at corner 0 to 1 at corner 1. */
   readonly xi: number;
+  /** From 0 at corner 0 to 1 at corner 2. */
   readonly eta: number;
 }
 
 /** Finds the triangle that holds a point: candidates from a grid of cells, one a triangle on average. */
 export interface Locator {
-  /** Undefined outside the mesh. On edges the triangle of lowest number is taken. */
+  /** The triangle at (x, y) in metres, and where in it; undefined outside the mesh. On edges the triangle of lowest number is taken. */
   find(x: number, y: number): Spot | undefined;
 }
 
+/** A locator of a mesh, which serves all fields on it. */
 export function buildLocator(mesh: Mesh): Locator {
   const m = triangleCount(mesh);
   const boxes = boxesOf(mesh);
@@ -42,6 +46,7 @@ export function buildLocator(mesh: Mesh): Locator {
     });
   }
   const slack = 1e-9 * Math.hypot(x1 - x0, y1 - y0);
+  const search = newSearch();
   return {
     find(x, y) {
       if (!(x >= x0 - slack && x <= x1 + slack && y >= y0 - slack && y <= y1 + slack)) return undefined;
@@ -49,7 +54,7 @@ export function buildLocator(mesh: Mesh): Locator {
       let best: Spot | undefined;
       let outside = Infinity;
       for (let p = start[c]; p < start[c + 1]; p++) {
-        const spot = spotIn(mesh, list[p], x, y);
+        const spot = spotIn(mesh, list[p], x, y, search);
         const miss = -Math.min(spot.xi, spot.eta, 1 - spot.xi - spot.eta);
         if (miss <= 0) return spot;
         if (miss < outside && miss < slackOf(mesh, list[p])) [best, outside] = [spot, miss];
@@ -108,13 +113,23 @@ function boxesOf(mesh: Mesh): { readonly of: Float64Array; readonly all: [number
   return { of, all };
 }
 
-const coordinates = new Float64Array(12);
-const values = new Float64Array(6);
-const slopes = new Float64Array(12);
+/** What a search works with, overwritten in every triangle: nodes, and shape functions and their slopes at one place. */
+export interface Search {
+  readonly coordinates: Float64Array;
+  readonly values: Float64Array;
+  readonly slopes: Float64Array;
+}
+
+export const newSearch = (): Search => ({
+  coordinates: new Float64Array(12),
+  values: new Float64Array(6),
+  slopes: new Float64Array(12),
+});
 
 /** Reference coordinates of (x, y) in triangle t, inside or not; by Newton's method where the triangle is curved. */
-export function spotIn(mesh: Mesh, t: number, x: number, y: number): Spot {
-  const at = nodeCoordinates(mesh, t, coordinates);
+export function spotIn(mesh: Mesh, t: number, x: number, y: number, search: Search): Spot {
+  const { coordinates: at, values, slopes } = search;
+  nodeCoordinates(mesh, t, at);
   const ux = at[2] - at[0];
   const uy = at[3] - at[1];
   const vx = at[4] - at[0];
@@ -131,7 +146,7 @@ export function spotIn(mesh: Mesh, t: number, x: number, y: number): Spot {
       px -= values[i] * at[2 * i];
       py -= values[i] * at[2 * i + 1];
     }
-    const [dXi, dEta] = referenceStep(at, px, py);
+    const [dXi, dEta] = referenceStep(search, px, py);
     xi += dXi;
     eta += dEta;
     if (Math.abs(dXi) + Math.abs(dEta) < 1e-14) break;
@@ -140,7 +155,7 @@ export function spotIn(mesh: Mesh, t: number, x: number, y: number): Spot {
 }
 
 /** J^-1 (px, py), with J from the slopes just tabulated. */
-function referenceStep(at: Float64Array, px: number, py: number): [number, number] {
+function referenceStep({ coordinates: at, slopes }: Search, px: number, py: number): [number, number] {
   let xXi = 0;
   let xEta = 0;
   let yXi = 0;
@@ -153,9 +168,4 @@ function referenceStep(at: Float64Array, px: number, py: number): [number, numbe
   }
   const det = xXi * yEta - xEta * yXi;
   return [(px * yEta - py * xEta) / det, (xXi * py - yXi * px) / det];
-}
-
-/** Gradients of the shape functions at a spot, see `gradients`. */
-export function gradientsAt(mesh: Mesh, spot: Spot, out: Float64Array): number {
-  return gradients(nodeCoordinates(mesh, spot.triangle, coordinates), shapeSlopes(spot.xi, spot.eta, slopes), 0, out);
 }

@@ -9,10 +9,13 @@ export interface FieldStatistics {
   readonly peak: number;
   /** |B| exceeded in a hundredth of the area, T: the peak a designer can use. */
   readonly peakInNinetyNine: number;
-  /** Means of |B|, Bx^2, By^2 and |B|^2 over the area; T and T^2. Eddy and hysteresis losses go with the squares. */
+  /** Mean of |B| over the area, T. */
   readonly mean: number;
+  /** Mean of Bx^2 over the area, T^2. */
   readonly meanSquareX: number;
+  /** Mean of By^2 over the area, T^2. */
   readonly meanSquareY: number;
+  /** Mean of |B|^2 over the area, T^2: eddy and hysteresis losses go with it. */
   readonly meanSquare: number;
 }
 
@@ -37,7 +40,10 @@ export function fieldStatistics(field: Field, regions: readonly string[]): Field
   };
 }
 
-/** Flux density that |B| exceeds in the given share of the regions' area, T (corners are singular, so a maximum means nothing). */
+/**
+ * Flux density that |B| exceeds in the given share of the regions' area, T: corners are singular, so a maximum means nothing.
+ * @param share  from 0 to 1
+ */
 export function exceededIn(field: Field, regions: readonly string[], share: number): number {
   return exceededBy(sizesOf(field, regions), share);
 }

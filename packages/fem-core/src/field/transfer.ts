@@ -5,6 +5,7 @@ import type { Field } from './field.js';
  * `postMessage(field, fieldBuffers(field))` hands the field to a worker, or back, without a copy. The sender's arrays are
  * empty after it. Materials are copied, since curves are shared between fields; an edge condition given as a function cannot
  * be sent at all.
+ * @throws Error for arrays that are views of a part of a buffer: moving it would empty others
  */
 export function fieldBuffers(field: Field, ...more: readonly ArrayBufferView[]): ArrayBuffer[] {
   const buffers = new Set<ArrayBuffer>();

@@ -1,27 +1,29 @@
 import { materialOf, VACUUM } from '../assembly/setup.js';
 import { MU0 } from '../base/constants.js';
-import { globalNode, nodeCoordinates, shapeValues } from '../elements/six-node.js';
+import { globalNode, gradients, nodeCoordinates, shapeSlopes, shapeValues } from '../elements/six-node.js';
 import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
 import type { Material } from '../materials/material.js';
 import type { Beyond } from '../mesh/mesh.js';
 import type { Field } from './field.js';
 import type { Locator, Spot } from './locate.js';
-import { gradientsAt } from './locate.js';
 
 /** The field at one place. */
 export interface FieldValue {
   /** Vector potential out of the page, Wb/m. */
   readonly a: number;
-  /** Flux density, T. */
+  /** Flux density along x, T. */
   readonly bx: number;
+  /** Along y, T. */
   readonly by: number;
-  /** Field strength, A/m. */
+  /** Field strength along x, A/m. */
   readonly hx: number;
+  /** Along y, A/m. */
   readonly hy: number;
   /** Relative permeability: B/(mu0 H), of magnets that of the recoil. */
   readonly muR: number;
-  /** J/m^3: integral of H dB (magnets: from the remanence), and H . B less that. */
+  /** J/m^3: integral of H dB, of magnets from the remanence. */
   readonly energy: number;
+  /** J/m^3: H . B less the energy. */
   readonly coenergy: number;
 }
 
@@ -33,9 +35,9 @@ export interface FieldValue {
 export function valueAtSpot(field: Field, spot: Spot, recovered?: Float64Array): FieldValue {
   const { mesh, potential } = field;
   const shapes = shapeValues(spot.xi, spot.eta, new Float64Array(6));
-  const grad = new Float64Array(12);
-  if (recovered === undefined) gradientsAt(mesh, spot, grad);
   const at = nodeCoordinates(mesh, spot.triangle, new Float64Array(12));
+  const grad = new Float64Array(12);
+  if (recovered === undefined) gradients(at, shapeSlopes(spot.xi, spot.eta, new Float64Array(12)), 0, grad);
   let [a, gx, gy, x, y] = [0, 0, 0, 0, 0];
   for (let i = 0; i < 6; i++) {
     const value = potential[globalNode(mesh, spot.triangle, i)];
@@ -77,7 +79,9 @@ export function shrinkage({ mesh: { beyond } }: Field, x: number, y: number): nu
 
 /**
  * The field at (x, y) in metres; undefined outside the section. In unbounded space every point has a value.
- * @param recovered  see `valueAtSpot`
+ * @param locator  of the field's mesh
+ * @param recovered  gradient of A of superconvergent accuracy, Float64Array(12 m), as `SectionAnswer` holds it and
+ * `recoverGradients` gives it: B is read from it; straight from the elements where it is absent
  */
 export function valueAt(
   field: Field,
@@ -110,7 +114,10 @@ function turnedOut(image: FieldValue, { centre, radius }: Beyond, net: number, x
   return describePoint(VACUUM, a, shrink * (gy - radial * dy), -shrink * (gx - radial * dx), x, y);
 }
 
-/** The field at `count` equally spaced points from one end to the other, ends included; undefined for points outside. */
+/**
+ * The field at `count` equally spaced points from one end to the other, ends included, or at the middle where `count` is 1;
+ * undefined for points outside. See `valueAt`.
+ */
 export function valuesAlong(
   field: Field,
   locator: Locator,
@@ -125,7 +132,10 @@ export function valuesAlong(
   });
 }
 
-/** Flux through the line between two points, Wb per metre of depth: A(from) - A(to), positive along +y on a way to the right. */
+/**
+ * Flux through the line between two points, Wb per metre of depth: A(from) - A(to), positive along +y on a way to the right;
+ * undefined where an end lies outside the section.
+ */
 export function fluxBetween(
   field: Field,
   locator: Locator,

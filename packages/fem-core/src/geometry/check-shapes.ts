@@ -1,11 +1,11 @@
-import type { Fault } from '../base/fault.js';
-import { InputError } from '../base/fault.js';
+import type { Fault, Piece } from '../base/fault.js';
+import { InputError, tellWrong } from '../base/fault.js';
 import { visitMeetings } from './box-tree.js';
 import { checkForm } from './check-form.js';
 import type { Curve } from './curve.js';
 import { chordCrossings, liesOn } from './curve.js';
 import { MAX_MEETINGS, MAX_OFFSET, MAX_PIECES, MAX_SIZE, MIN_SIZE, SNAP } from './limits.js';
-import { matchSides } from './matched-sides.js';
+import { fits, matchSides } from './matched-sides.js';
 import type { Point, Section, Shape } from './section.js';
 import type { Bounds } from './shapes.js';
 import { boundsOf, centreOf, cornersOf, sidesOf, sizeOf } from './shapes.js';
@@ -14,7 +14,8 @@ import { BEYOND_REGION, OUTSIDE_REGION } from './unbounded.js';
 /** Border pieces a circle is drawn with; refinement halves them as needed, always on the circle. */
 export const CHORDS = 16;
 
-type Tell = (code: string, key: string, wrong: string, remedy: string) => void;
+type Wrong = string | readonly Piece[];
+type Tell = (code: string, key: string, wrong: Wrong, remedy: string) => void;
 
 /**
  * Gathers every fault of a section that is seen before its lines are drawn over each other.
@@ -24,7 +25,7 @@ export function checkShapes(section: Section): void {
   checkForm(section);
   const faults: Fault[] = [];
   const tell: Tell = (code, key, wrong, remedy) => {
-    faults.push({ code, key, wrong, remedy });
+    faults.push({ code, key, ...tellWrong(wrong), remedy });
   };
   const shapes: readonly (readonly [key: string, shape: Shape])[] = [
     ['outline', section.outline],
@@ -70,7 +71,10 @@ function checkPolygon(key: string, corners: readonly Point[], tell: Tell): void 
   const snap = SNAP * sizeOf(boundsOf({ kind: 'polygon', corners }));
   const twin = corners.findIndex((p, i) => apart(p, corners[(i + 1) % count]) <= snap);
   if (twin >= 0) {
-    const wrong = `corners ${twin + 1} and ${((twin + 1) % count) + 1} are the same point, ${shown(corners[twin])}`;
+    const wrong = [
+      `corners ${twin + 1} and ${((twin + 1) % count) + 1} are the same point, `,
+      { metres: corners[twin] },
+    ];
     tell('coincident-corners', key, wrong, 'leave one of them out');
   } else if (isStraight(corners, snap)) {
     tell('no-area', key, 'has no area: its corners lie on one line', 'give corners that span a width and a height');
@@ -82,7 +86,6 @@ function checkPolygon(key: string, corners: readonly Point[], tell: Tell): void 
 }
 
 const apart = (p: Point, q: Point): number => Math.hypot(p[0] - q[0], p[1] - q[1]);
-const shown = (p: Point): string => `(${p[0]}, ${p[1]}) m`;
 const LINE: Curve = { kind: 'line' };
 
 function isStraight(corners: readonly Point[], snap: number): boolean {
@@ -92,13 +95,13 @@ function isStraight(corners: readonly Point[], snap: number): boolean {
 }
 
 /** Where a polygon's border meets itself other than at neighbouring corners, or runs back on itself; told in words. */
-function selfCrossing(corners: readonly Point[], snap: number): string | undefined {
+function selfCrossing(corners: readonly Point[], snap: number): Wrong | undefined {
   const count = corners.length;
   const chords = corners.map((from, i) => ({ from, to: corners[(i + 1) % count] }));
   for (let i = 0; i < count; i++) {
     const [before, after] = [chords[i], chords[(i + 1) % count]];
     if (liesOn(before, LINE, after.to, snap) || liesOn(after, LINE, before.from, snap))
-      return `runs back on itself at corner ${((i + 1) % count) + 1}, ${shown(after.from)}`;
+      return [`runs back on itself at corner ${((i + 1) % count) + 1}, `, { metres: after.from }];
   }
   const boxes = new Float64Array(4 * count);
   chords.forEach(({ from, to }, i) => {
@@ -107,11 +110,12 @@ function selfCrossing(corners: readonly Point[], snap: number): string | undefin
     boxes[4 * i + 2] = Math.max(from[0], to[0]) + snap;
     boxes[4 * i + 3] = Math.max(from[1], to[1]) + snap;
   });
-  let found: string | undefined;
+  let found: Wrong | undefined;
   const all = visitMeetings(boxes, MAX_MEETINGS, (i, j) => {
     if (found !== undefined || j === i + 1 || (i === 0 && j === count - 1)) return;
     const hit = chordCrossings(chords[i], LINE, chords[j], LINE, snap)[0];
-    if (hit !== undefined) found = `crosses or touches itself near ${shown(hit)}, sides ${i + 1} and ${j + 1}`;
+    if (hit !== undefined)
+      found = ['crosses or touches itself near ', { metres: hit }, `, sides ${i + 1} and ${j + 1}`];
   });
   return found ?? (all ? undefined : `has sides of which more than ${MAX_MEETINGS} pairs may cross`);
 }
@@ -121,8 +125,9 @@ function checkPlaces(shapes: readonly (readonly [string, Shape])[], tell: Tell):
   const size = sizeOf(outer);
   const centre = centreOf(outer);
   if (!(size >= MIN_SIZE && size <= MAX_SIZE)) {
-    const wrong = `is ${size} m in size, not between ${MIN_SIZE} m and ${MAX_SIZE} m`;
-    if (size > 0) tell('out-of-range', 'outline', wrong, 'draw it in metres');
+    const [least, most] = [{ metres: MIN_SIZE }, { metres: MAX_SIZE }];
+    const wrong = ['is ', { metres: size }, ' in size, not between ', least, ' and ', most];
+    if (size > 0) tell('out-of-range', 'outline', wrong, 'check the units of its lengths');
     return;
   }
   if (!(Math.hypot(...centre) <= MAX_OFFSET * size)) {
@@ -170,7 +175,7 @@ function checkMatched(section: Section, tell: Tell): void {
   const some = names.length > 12 ? `${names.slice(0, 3).join(', ')} ... ${names[names.length - 1]}` : names.join(', ');
   for (const pair of pairs) {
     const wrong = matchSides(section.outline, pair);
-    if (typeof wrong !== 'string') continue;
+    if (fits(wrong)) continue;
     tell('not-matching', pair.map((chain) => [chain].flat().join(' + ')).join(', '), wrong, `sides here are: ${some}`);
   }
 }

@@ -3,7 +3,13 @@ import type { Point } from './section.js';
 /** A drawn line that element edges follow. */
 export type Curve =
   | { readonly kind: 'line' }
-  | { readonly kind: 'arc'; readonly centre: Point; readonly radius: number };
+  | {
+      readonly kind: 'arc';
+      /** Of its circle. */
+      readonly centre: Point;
+      /** Metres. */
+      readonly radius: number;
+    };
 
 export interface Chord {
   readonly from: Point;

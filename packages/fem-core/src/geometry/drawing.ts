@@ -1,5 +1,5 @@
 import type { MatchedSides } from './matched-sides.js';
-import { matchSides } from './matched-sides.js';
+import { fits, matchSides } from './matched-sides.js';
 import type { Point, Section, Shape } from './section.js';
 import type { Circle } from './shapes.js';
 import { boundsOf, centreOf, cornersOf, sidesOf, snapOf } from './shapes.js';
@@ -54,9 +54,7 @@ export function drawingOf(section: Section): Drawing {
     shapes: [outline, ...layers],
     outlineCount: 1,
     sideNames: sidesOf(section.outline),
-    matched: (section.matched ?? [])
-      .map((pair) => matchSides(section.outline, pair))
-      .filter((m) => typeof m !== 'string'),
+    matched: (section.matched ?? []).map((pair) => matchSides(section.outline, pair)).filter(fits),
     regionNames: [section.background, ...section.regions.map((region) => region.name)],
     maxEdges: [section.maxEdge, ...section.regions.map((region) => region.maxEdge)].map(wish),
     snap: snapOf(section),

@@ -1,3 +1,4 @@
+import type { Piece } from '../base/fault.js';
 import { SNAP } from './limits.js';
 import type { Point, Shape, SideChain } from './section.js';
 import { boundsOf, cornersOf, sidesOf, sizeOf } from './shapes.js';
@@ -11,8 +12,14 @@ export interface MatchedSides {
   readonly shift: Point;
 }
 
+/** What is wrong with a pair, in words. */
+export type Misfit = string | readonly Piece[];
+
+export const fits = (found: MatchedSides | Misfit): found is MatchedSides =>
+  typeof found === 'object' && 'from' in found;
+
 /** The pair by numbers of sides, or what is wrong with it. */
-export function matchSides(outline: Shape, [from, to]: readonly [SideChain, SideChain]): MatchedSides | string {
+export function matchSides(outline: Shape, [from, to]: readonly [SideChain, SideChain]): MatchedSides | Misfit {
   if (outline.kind === 'circle') return 'are no sides that can be matched: a circle has one side';
   const corners = cornersOf(outline);
   const names = new Map(sidesOf(outline).map((name, i) => [name, i]));
@@ -34,7 +41,12 @@ export function matchSides(outline: Shape, [from, to]: readonly [SideChain, Side
       deviation(corners, p.corners, other, shift, snap) ??
       deviation(corners, other, p.corners, [-shift[0], -shift[1]], snap);
     if (astray === undefined) return { from: p.sides, to: q.sides, shift };
-    return `are not the same line translated: corner ${astray.corner + 1} at (${corners[astray.corner].join(', ')}) m has nothing opposite, by ${astray.off.toPrecision(3)} m`;
+    return [
+      `are not the same line translated: corner ${astray.corner + 1} at `,
+      { metres: corners[astray.corner] },
+      ' has nothing opposite, by ',
+      { metres: Number(astray.off.toPrecision(3)) },
+    ];
   }
   return 'are not sides of equal length and direction';
 }

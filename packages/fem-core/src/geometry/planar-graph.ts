@@ -1,4 +1,4 @@
-import { InputError } from '../base/fault.js';
+import { InputError, tellWrong } from '../base/fault.js';
 import { boxTree, visitMeetings } from './box-tree.js';
 import { CHORDS, checkShapes } from './check-shapes.js';
 import type { Curve } from './curve.js';
@@ -307,8 +307,11 @@ function matchSegments(graph: Segments & Pick<PlanarGraph, 'drawing'>, store: Po
 
 function unmatched({ sideNames, snap }: Drawing, from: readonly number[], to: readonly number[]): InputError {
   const names = [...from, ...to].slice(0, 6).map((side) => sideNames[side]);
-  const wrong = `cannot be cut alike: lines meet them at places that differ by about ${snap.toPrecision(2)} m`;
+  const wrong = tellWrong([
+    'cannot be cut alike: lines meet them at places that differ by about ',
+    { metres: Number(snap.toPrecision(2)) },
+  ]);
   return new InputError([
-    { code: 'not-matching', key: names.join(', '), wrong, remedy: 'let lines meet both sides at the same places' },
+    { code: 'not-matching', key: names.join(', '), ...wrong, remedy: 'let lines meet both sides at the same places' },
   ]);
 }

@@ -6,13 +6,31 @@ export type Point = readonly [x: number, y: number];
  * circles down to the elements.
  */
 export type Shape =
-  | { readonly kind: 'rectangle'; readonly from: Point; readonly to: Point }
-  | { readonly kind: 'polygon'; readonly corners: readonly Point[] }
-  | { readonly kind: 'circle'; readonly centre: Point; readonly radius: number };
+  | {
+      readonly kind: 'rectangle';
+      /** A corner. */
+      readonly from: Point;
+      /** The corner opposite. */
+      readonly to: Point;
+    }
+  | {
+      readonly kind: 'polygon';
+      /** Three or more, in order. */
+      readonly corners: readonly Point[];
+    }
+  | {
+      readonly kind: 'circle';
+      /** Its middle. */
+      readonly centre: Point;
+      /** Metres, above 0. */
+      readonly radius: number;
+    };
 
 /** A named part of the plane. What fills it is told by the `Setup`, under the same name. */
 export interface Region {
+  /** What the `Setup` and the probes call it; no two regions share one. */
   readonly name: string;
+  /** What it covers, but for what later regions and the outline cut off. */
   readonly shape: Shape;
   /** Longest element edge wanted inside, metres; none if absent. */
   readonly maxEdge?: number;
@@ -20,8 +38,9 @@ export interface Region {
 
 /** Elements near a point: at distance d from `at` no edge is longer than maxEdge + growth d. */
 export interface SizeAt {
+  /** Where, metres. */
   readonly at: Point;
-  /** Metres. */
+  /** Longest edge wanted at the point itself, metres. */
   readonly maxEdge: number;
   /** 0.3 if absent; 0 wants `maxEdge` everywhere. */
   readonly growth?: number;
@@ -46,13 +65,18 @@ export type SideChain = string | readonly string[];
  * Trans. Magn. 24, 1988.
  */
 export interface Section {
+  /** The border of the section; of an `open` one, of what is drawn. */
   readonly outline: Shape;
   /** Region name of what no drawn region covers. */
   readonly background: string;
   /** Longest element edge wanted in the background, metres. */
   readonly maxEdge?: number;
+  /** From the bottom to the top. */
   readonly regions: readonly Region[];
+  /** Pairs of sides, or of chains of sides, whose nodes must correspond; none if absent. */
   readonly matched?: readonly (readonly [SideChain, SideChain])[];
+  /** Elements wanted near points; none if absent. */
   readonly sizeAt?: readonly SizeAt[];
+  /** Unbounded space lies round the outline; false if absent. */
   readonly open?: boolean;
 }

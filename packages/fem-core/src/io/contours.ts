@@ -11,9 +11,11 @@ export interface Patches {
   readonly rim: Uint8Array;
 }
 
-/** A traced line, x and y alternating, metres; a closed one does not repeat its first point. */
+/** A traced line. */
 export interface Trace {
+  /** Its points, x and y alternating, metres; a closed one does not repeat its first. */
   readonly xy: readonly number[];
+  /** The last point is joined to the first. */
   readonly closed: boolean;
 }
 

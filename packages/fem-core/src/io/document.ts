@@ -6,24 +6,45 @@ export type Path = readonly (string | number)[];
 
 /** A value of an input file and where it stands. */
 export type TreeNode =
-  | { readonly kind: 'scalar'; readonly value: string | number | boolean | null; readonly at: Place }
-  | { readonly kind: 'list'; readonly items: readonly TreeNode[]; readonly at: Place }
-  | { readonly kind: 'group'; readonly entries: ReadonlyMap<string, Entry>; readonly at: Place };
+  | {
+      readonly kind: 'scalar';
+      /** As YAML reads it. */
+      readonly value: string | number | boolean | null;
+      /** Where it starts. */
+      readonly at: Place;
+    }
+  | {
+      readonly kind: 'list';
+      /** In order. */
+      readonly items: readonly TreeNode[];
+      /** Where it starts. */
+      readonly at: Place;
+    }
+  | {
+      readonly kind: 'group';
+      /** By key, in the order of the text. */
+      readonly entries: ReadonlyMap<string, Entry>;
+      /** Where it starts. */
+      readonly at: Place;
+    };
 
+/** One key of a group with its value. */
 export interface Entry {
   /** Where the key stands. */
   readonly keyAt: Place;
+  /** The value. */
   readonly node: TreeNode;
 }
 
 /** An input file as a tree, before anyone asks what its keys mean. */
 export interface Document {
+  /** All there is in it. */
   readonly root: TreeNode;
   /** What is wrong with the writing but leaves a tree to judge: keys given twice, tags, keys that are no text. */
   readonly faults: readonly Fault[];
 }
 
-/** `rotor.magnets.width`, `tolerances.0.key`. */
+/** The path as people write it: `rotor.magnets.width`, `tolerances.0.key`. */
 export function formatPath(path: Path): string {
   return path.map((step) => showText(String(step))).join('.');
 }
@@ -58,7 +79,10 @@ function childOf(node: TreeNode, step: string | number): Entry | undefined {
   return item && { keyAt: item.at, node: item };
 }
 
-/** Groups become objects without a prototype, so that no key of theirs can mean more than itself. */
+/**
+ * The values alone, without their places: lists become arrays, groups objects without a prototype, so that no key of theirs
+ * can mean more than itself.
+ */
 export function plainValue(node: TreeNode): unknown {
   switch (node.kind) {
     case 'scalar':

@@ -38,9 +38,10 @@ export function buildDrawingMesh(mesh: Mesh, pieces = usualPieces(mesh)): Drawin
     weights: new Float64Array(6 * points),
   };
   const lattice = new Int32Array((p + 1) * (p + 1));
+  const place = newPlace();
   for (let t = 0; t < triangleCount(mesh); t++) {
     numberLattice(mesh, t, p, lattice);
-    placePoints(drawing, t, lattice);
+    placePoints(drawing, t, lattice, place);
     cutTriangle(drawing, t, lattice);
   }
   return drawing;
@@ -89,11 +90,15 @@ function numberLattice(mesh: Mesh, t: number, p: number, out: Int32Array): void 
   }
 }
 
-const shape = new Float64Array(6);
-const six = new Int32Array(6);
-const at = new Float64Array(12);
+/** Nodes of one triangle, their coordinates, and the shape functions at one point of it. */
+const newPlace = () => ({ six: new Int32Array(6), at: new Float64Array(12), shape: new Float64Array(6) });
 
-function placePoints({ mesh, pieces: p, xy, sources, weights }: DrawingMesh, t: number, lattice: Int32Array): void {
+function placePoints(
+  { mesh, pieces: p, xy, sources, weights }: DrawingMesh,
+  t: number,
+  lattice: Int32Array,
+  { six, at, shape }: ReturnType<typeof newPlace>,
+): void {
   nodeCoordinates(mesh, t, at);
   triangleNodes(mesh, t, six);
   for (let a = 0; a <= p; a++) {

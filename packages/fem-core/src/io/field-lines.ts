@@ -6,14 +6,16 @@ import { buildDrawingMesh, valuesAtPoints } from './drawing-mesh.js';
 
 /** Lines of one value of A; between the lines of neighbouring values runs the same flux. */
 export interface FieldLines {
-  /** Wb/m. */
+  /** A on the lines, Wb/m. */
   readonly potential: number;
+  /** The pieces. */
   readonly lines: readonly Trace[];
 }
 
 /**
  * Field lines at equal flux steps: the contours of A midway between `count` equal steps from its least to its greatest value,
- * higher values on the left of each line, so that B points along it.
+ * higher values on the left of each line, so that B points along it. Unbounded space beyond the circle is left out; of a field
+ * that is the same everywhere, there are none.
  */
 export function fieldLines(field: Field, count: number): FieldLines[] {
   const { mesh, potential } = field;

@@ -4,7 +4,9 @@ import type { GridLine } from './svg-path.js';
 
 /** Where the section is drawn once more: x becomes dx - x where mirrorX, else dx + x; y becomes -y where mirrorY. */
 export interface PictureCopy {
+  /** Left and right are swapped. */
   readonly mirrorX: boolean;
+  /** Top and bottom are swapped. */
   readonly mirrorY: boolean;
   /** Metres. */
   readonly dx: number;

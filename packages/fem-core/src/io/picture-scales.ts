@@ -2,7 +2,10 @@ import { type Mesh, triangleCount } from '../mesh/mesh.js';
 import { decimalsOf, niceStep, scaleColour } from './colour-scale.js';
 import { grid, ink, type Placement, short } from './picture-frame.js';
 
-/** A round end of the colour scale in T that all but half a percent of the area stays under. */
+/**
+ * A round end of the colour scale in T that all but half a percent of the area stays under.
+ * @param magnitude  |B| as `PictureData` holds it, Float64Array(6m)
+ */
 export function colourScaleEnd(mesh: Mesh, magnitude: Float64Array): number {
   const parts = Array.from({ length: triangleCount(mesh) }, (_, t) => {
     let sum = 0;

@@ -60,6 +60,7 @@ const DIMENSIONS = {
   heatTransfer: { noun: 'a heat transfer coefficient', units: { 'W/m2K': [1, 1] } },
 } as const satisfies Record<string, Units>;
 
+/** What a quantity measures. */
 export type Dimension = keyof typeof DIMENSIONS;
 
 /** Other spellings, after `tidyUnit`. */
@@ -93,7 +94,9 @@ const NUMBER = /^([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*(.*)$/s;
 
 /** What is wrong with a text, and what would do. */
 export interface Misreading {
+  /** Such as 'needs a unit, got 12'. */
   readonly wrong: string;
+  /** Such as 'give a length in mm'. */
   readonly remedy: string;
 }
 
@@ -123,7 +126,10 @@ export function parseQuantity(text: string | number, dimension: Dimension): { re
   return { wrong: `must be ${wanted}, got ${showValue(text)}, but ${showText(split.unit)} ${why}`, remedy };
 }
 
-/** Reads a number with any known unit, or a bare one (a ratio). */
+/**
+ * Reads a number with any known unit, or a bare one (a ratio).
+ * @returns the value in SI units (temperatures in degC, rotation in rpm) and what it measures, or what is wrong
+ */
 export function parseAnyQuantity(
   text: string | number,
 ): { readonly value: number; readonly dimension: Dimension } | Misreading {
@@ -137,7 +143,10 @@ export function parseAnyQuantity(
   return 'wrong' in reading ? reading : { value: reading.value, dimension };
 }
 
-/** Reads a price for a weight, `14 EUR/kg`; the currency is any code of three capitals (ISO 4217 form). */
+/**
+ * Reads a price for a weight, `14 EUR/kg`; the currency is any code of three capitals (ISO 4217 form).
+ * @returns the price of a kilogram and its currency, or what is wrong
+ */
 export function parsePrice(
   text: string | number,
 ): { readonly perKilogram: number; readonly currency: string } | Misreading {

@@ -3,9 +3,11 @@ import { decodeBase64 } from '../base/base64.js';
 import { InputError } from '../base/fault.js';
 import { showText } from './show.js';
 
-/** Values of one name, `components` a tuple. */
+/** Values of one name. */
 export interface VtuArray {
+  /** Numbers in each tuple. */
   readonly components: number;
+  /** Float64Array(components x tuples), tuple by tuple. */
   readonly values: Float64Array;
 }
 
@@ -17,7 +19,9 @@ export interface VtuGrid {
   readonly nodesPerCell: 3 | 6;
   /** Int32Array(nodesPerCell m): corners counter-clockwise as stored, then the middles opposite the corners 0, 1, 2. */
   readonly cells: Int32Array;
+  /** By name, a tuple a point. */
   readonly pointData: ReadonlyMap<string, VtuArray>;
+  /** By name, a tuple a cell. */
   readonly cellData: ReadonlyMap<string, VtuArray>;
   /** Texts of the field data, such as `region_names`. */
   readonly texts: ReadonlyMap<string, readonly string[]>;

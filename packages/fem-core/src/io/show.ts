@@ -23,7 +23,7 @@ function nonFiniteText(value: number): string {
   return value < 0 ? '-.inf' : '.inf';
 }
 
-/** 'm, mm or in'. */
+/** The words as one phrase: 'm, mm or in'. */
 export function listWords(words: readonly string[]): string {
   return words.length < 2 ? words.join('') : `${words.slice(0, -1).join(', ')} or ${words[words.length - 1]}`;
 }

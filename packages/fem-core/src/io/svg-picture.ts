@@ -24,6 +24,7 @@ export { colourScaleEnd } from './picture-scales.js';
 
 /** What a field picture shows. */
 export interface PictureData {
+  /** m triangles, n + e nodes. */
   readonly mesh: Mesh;
   /** Float64Array(n + e): vector potential at every node, Wb/m. */
   readonly potential: Float64Array;
@@ -31,7 +32,9 @@ export interface PictureData {
   readonly magnitude: Float64Array;
 }
 
+/** How it is shown. */
 export interface PictureOptions {
+  /** Above the picture. */
   readonly title: string;
   /** Images beside the section itself, for a symmetry that the mesh makes use of. |B| must be the same in them. */
   readonly copies?: readonly PictureCopy[];

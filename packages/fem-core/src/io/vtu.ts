@@ -3,6 +3,7 @@ import { type Mesh, nodeCount, nodePoint, triangleCount, triangleNodes } from '.
 
 /** A solved section as VTK sees it; cell values are per triangle, as they jump between triangles. */
 export interface VtuData {
+  /** m triangles, n + e nodes. */
   readonly mesh: Mesh;
   /** Float64Array(n + e): vector potential at every node, Wb/m. */
   readonly potential: Float64Array;

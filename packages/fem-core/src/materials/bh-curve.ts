@@ -1,7 +1,7 @@
 import { MU0 } from '../base/constants.js';
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
-import type { CubicPoint } from './monotone-cubic.js';
+import type { CurvePoint } from './monotone-cubic.js';
 import { evaluatePiece, integralsAtRows, monotoneSlopes, pieceOf } from './monotone-cubic.js';
 
 /**
@@ -38,7 +38,7 @@ export function buildBHCurve(rows: readonly (readonly [H: number, B: number])[])
   return { b, h, slope, energy: integralsAtRows(b, h, slope) };
 }
 
-/** Everything wrong with a B-H table; `key` of a fault is `row N`, counted from 1. */
+/** Everything that `buildBHCurve` refuses in the rows [H in A/m, B in T]; `key` of a fault is `row N`, counted from 1. */
 export function findTableFaults(rows: readonly (readonly [H: number, B: number])[]): Fault[] {
   const faults: Fault[] = [];
   const tell = (row: number, wrong: string, remedy: string): void => {
@@ -82,14 +82,7 @@ function slopesOf(b: Float64Array, h: Float64Array): Float64Array {
   return slope;
 }
 
-/** H in A/m and dH/dB in m/H at flux density b >= 0, and the energy density integral of H dB in J/m^3. */
-export interface CurvePoint {
-  h: number;
-  slope: number;
-  energy: number;
-}
-
-/** Evaluates the curve at b >= 0 (T); writes into `out` and returns it. */
+/** H, its slope and the energy at b >= 0 (T), beyond the last row with slope mu0; written into `out` and returned. */
 export function evaluateCurve(curve: BHCurve, b: number, out: CurvePoint): CurvePoint {
   const last = curve.b.length - 1;
   if (b >= curve.b[last]) {
@@ -99,11 +92,5 @@ export function evaluateCurve(curve: BHCurve, b: number, out: CurvePoint): Curve
     out.energy = curve.energy[last] + d * (curve.h[last] + (0.5 * d) / MU0);
     return out;
   }
-  evaluatePiece(curve.b, curve.h, curve.slope, curve.energy, pieceOf(curve.b, b), b, piece);
-  out.h = piece.value;
-  out.slope = piece.slope;
-  out.energy = piece.integral;
-  return out;
+  return evaluatePiece(curve.b, curve.h, curve.slope, curve.energy, pieceOf(curve.b, b), b, out);
 }
-
-const piece: CubicPoint = { value: 0, slope: 0, integral: 0 };

@@ -1,11 +1,10 @@
 import { MU0 } from '../base/constants.js';
 import { unreachable } from '../base/unreachable.js';
-import type { CurvePoint } from './bh-curve.js';
 import { evaluateCurve } from './bh-curve.js';
-import type { DemagnetisationPoint } from './demagnetisation.js';
 import { evaluateDemagnetisation, remanenceOfCurve } from './demagnetisation.js';
 import { directionAt } from './direction.js';
 import type { Material } from './material.js';
+import type { CurvePoint } from './monotone-cubic.js';
 
 /** H(B) at one place, its derivative, and the energy it stores. */
 export interface LocalLaw {
@@ -22,12 +21,21 @@ export interface LocalLaw {
   nuAcross: number;
   /** J/m^3: integral of H dB from B = 0, of magnets from the remanence. */
   energy: number;
+  /** Where a curve was last read: of steel, or of a magnet with a knee. */
+  readonly curvePoint: CurvePoint;
 }
 
-export const newLaw = (): LocalLaw => ({ hx: 0, hy: 0, xx: 0, xy: 0, yy: 0, nu: 0, nuAcross: 0, energy: 0 });
-
-const curvePoint: CurvePoint = { h: 0, slope: 0, energy: 0 };
-const alongPoint: DemagnetisationPoint = { h: 0, slope: 0, energy: 0 };
+export const newLaw = (): LocalLaw => ({
+  hx: 0,
+  hy: 0,
+  xx: 0,
+  xy: 0,
+  yy: 0,
+  nu: 0,
+  nuAcross: 0,
+  energy: 0,
+  curvePoint: { h: 0, slope: 0, energy: 0 },
+});
 
 /**
  * Evaluates the material at flux density (bx, by) in T, at the place (x, y) in metres; writes into `out` and returns it.
@@ -71,10 +79,10 @@ function isotropic(nu: number, px: number, py: number, out: LocalLaw): LocalLaw 
 /** H = nu(B) B:  dH/dB = nu I + spread B B^T,  spread = (dH/dB - H/B)/B^2. */
 function saturating(material: Extract<Material, { kind: 'curve' }>, bx: number, by: number, out: LocalLaw): LocalLaw {
   const b = Math.sqrt(bx * bx + by * by);
-  evaluateCurve(material.curve, b, curvePoint);
+  const point = evaluateCurve(material.curve, b, out.curvePoint);
   const small = b < 1e-9;
-  const nu = small ? material.curve.slope[0] : curvePoint.h / b;
-  const spread = small ? 0 : (curvePoint.slope - nu) / (b * b);
+  const nu = small ? material.curve.slope[0] : point.h / b;
+  const spread = small ? 0 : (point.slope - nu) / (b * b);
   out.hx = nu * bx;
   out.hy = nu * by;
   out.xx = nu + spread * bx * bx;
@@ -82,7 +90,7 @@ function saturating(material: Extract<Material, { kind: 'curve' }>, bx: number, 
   out.yy = nu + spread * by * by;
   out.nu = nu;
   out.nuAcross = nu;
-  out.energy = curvePoint.energy;
+  out.energy = point.energy;
   return out;
 }
 
@@ -111,12 +119,12 @@ function directed(
     chord = nuAcross;
     energy = 0.5 * h * (along - material.along);
   } else {
-    evaluateDemagnetisation(material.along, along, alongPoint);
+    const point = evaluateDemagnetisation(material.along, along, out.curvePoint);
     const beyond = along - remanenceOfCurve(material.along);
-    h = alongPoint.h;
-    nuAlong = alongPoint.slope;
+    h = point.h;
+    nuAlong = point.slope;
     chord = Math.abs(beyond) < 1e-9 ? nuAlong : h / beyond;
-    energy = alongPoint.energy;
+    energy = point.energy;
   }
   const hAcross = nuAcross * across;
   out.hx = c * h - s * hAcross;

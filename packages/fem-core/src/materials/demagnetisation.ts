@@ -1,6 +1,7 @@
 import { MU0 } from '../base/constants.js';
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
+import type { CurvePoint } from './monotone-cubic.js';
 import { pieceOf } from './monotone-cubic.js';
 
 /**
@@ -17,6 +18,7 @@ export interface DemagnetisationCurve {
 }
 
 /**
+ * The curve through the rows of a data sheet, straight between them.
  * @param rows  [H in A/m, B in T] from the remanence [0, Br] downwards (or the other way): H at most 0, B falling as H falls,
  * by mu0 |dH| at least; past the knee B may be negative
  * @throws InputError with everything wrong with the rows
@@ -32,7 +34,9 @@ export function buildDemagnetisationCurve(rows: readonly (readonly [H: number, B
   return { b, h, energy };
 }
 
-/** Everything wrong with the rows of a demagnetisation curve; `key` of a fault is `row N`, counted from 1. */
+/**
+ * Everything that `buildDemagnetisationCurve` refuses in the rows [H in A/m, B in T]; `key` of a fault is `row N`, counted from 1.
+ */
 export function findDemagnetisationFaults(rows: readonly (readonly [H: number, B: number])[]): Fault[] {
   const faults: Fault[] = [];
   const tell = (row: number, wrong: string, remedy: string): void => {
@@ -72,19 +76,8 @@ export function findDemagnetisationFaults(rows: readonly (readonly [H: number, B
 /** Remanence of the curve, T. */
 export const remanenceOfCurve = (curve: DemagnetisationCurve): number => curve.b[curve.b.length - 1];
 
-/** A point of the curve: H in A/m, dH/dB in m/H, and the energy density, counted from the remanence, in J/m^3. */
-export interface DemagnetisationPoint {
-  h: number;
-  slope: number;
-  energy: number;
-}
-
-/** Evaluates the curve at flux density b along the easy axis (T); writes into `out` and returns it. */
-export function evaluateDemagnetisation(
-  curve: DemagnetisationCurve,
-  b: number,
-  out: DemagnetisationPoint,
-): DemagnetisationPoint {
+/** Evaluates the curve at flux density b along the easy axis (T), energy from the remanence; writes into `out` and returns it. */
+export function evaluateDemagnetisation(curve: DemagnetisationCurve, b: number, out: CurvePoint): CurvePoint {
   const i = pieceOf(curve.b, b);
   const d = b - curve.b[i];
   out.slope = (curve.h[i + 1] - curve.h[i]) / (curve.b[i + 1] - curve.b[i]);

@@ -7,12 +7,13 @@
  * Halbach array of p pole pairs: turns 1 + p or 1 - p; a straight one of wavelength L along x: gradient [-+2 pi/L, 0].
  */
 export interface Direction {
+  /** From +x towards +y, radians. */
   readonly angle: number;
   /** The point angles and distances are counted from, metres; the origin if absent. */
   readonly centre?: readonly [x: number, y: number];
-  /** A whole number: the direction must come back to itself round the centre. */
+  /** A whole number, since the direction must come back to itself round the centre; 0 if absent. */
   readonly turns?: number;
-  /** rad/m. */
+  /** Change of the angle along x and along y, rad/m; none if absent. */
   readonly gradient?: readonly [number, number];
 }
 

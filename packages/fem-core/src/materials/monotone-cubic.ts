@@ -27,12 +27,14 @@ export function monotoneSlopes(x: Float64Array, y: Float64Array): Float64Array {
   return slope;
 }
 
-/** A piecewise cubic and its derivative and integral at one place. */
-export interface CubicPoint {
-  value: number;
+/** A curve at one flux density. */
+export interface CurvePoint {
+  /** H, A/m. */
+  h: number;
+  /** dH/dB, m/H. */
   slope: number;
-  /** Integral from the first row. */
-  integral: number;
+  /** Integral of H dB, J/m^3: from 0, of a magnet from its remanence. */
+  energy: number;
 }
 
 /** Index of the piece that holds `at`, by bisection; the first or the last piece where `at` lies beyond. */
@@ -47,7 +49,7 @@ export function pieceOf(x: Float64Array, at: number): number {
   return low;
 }
 
-/** Evaluates the Hermite piece from row i to i + 1; `integrals` holds the integral up to each row. */
+/** Evaluates the Hermite piece of y = H(B) from row i to i + 1; `integrals` holds the integral up to each row. */
 export function evaluatePiece(
   x: Float64Array,
   y: Float64Array,
@@ -55,8 +57,8 @@ export function evaluatePiece(
   integrals: Float64Array,
   i: number,
   at: number,
-  out: CubicPoint,
-): CubicPoint {
+  out: CurvePoint,
+): CurvePoint {
   const d = x[i + 1] - x[i];
   const s = (at - x[i]) / d;
   const m0 = d * slopes[i];
@@ -64,9 +66,9 @@ export function evaluatePiece(
   // y0 + s (m0 + s (c + s e)) with value and slope given at both ends.
   const c = 3 * (y[i + 1] - y[i]) - 2 * m0 - m1;
   const e = 2 * (y[i] - y[i + 1]) + m0 + m1;
-  out.value = y[i] + s * (m0 + s * (c + s * e));
+  out.h = y[i] + s * (m0 + s * (c + s * e));
   out.slope = (m0 + s * (2 * c + 3 * s * e)) / d;
-  out.integral = integrals[i] + d * s * (y[i] + s * (m0 / 2 + s * (c / 3 + (s * e) / 4)));
+  out.energy = integrals[i] + d * s * (y[i] + s * (m0 / 2 + s * (c / 3 + (s * e) / 4)));
   return out;
 }
 

@@ -17,7 +17,11 @@ export function stackedTable(
   return rows.map(([h, b]) => [h, factor * b + (1 - factor) * MU0 * h]);
 }
 
-/** Relative permeability of such a stack of linear sheets: k mu_r + 1 - k. Throws InputError for a factor out of range. */
+/**
+ * Relative permeability of such a stack of linear sheets: k mu_r + 1 - k.
+ * @param factor  k, see `stackedTable`
+ * @throws InputError for a factor out of range
+ */
 export function stackedPermeability(muR: number, factor: number): number {
   checkFactor(factor);
   return factor * muR + 1 - factor;

@@ -5,6 +5,7 @@ import { cornerCount, edgeCount, nodePoint, triangleCount, triangleNodes } from 
 import { smallestAngles } from './mesh-angles.js';
 import { roundAreas } from './round-areas.js';
 
+/** What a mesh is like, by numbers. */
 export interface MeshQuality {
   /** Smallest angle between straight sides, degrees. */
   readonly minAngleDeg: number;

@@ -1,3 +1,5 @@
+import type { Steps } from '../base/steps.js';
+import { finish } from '../base/steps.js';
 import { buildPlanarGraph } from '../geometry/planar-graph.js';
 import type { Section } from '../geometry/section.js';
 import { triangulateGraph } from './constrained-delaunay.js';
@@ -6,7 +8,7 @@ import type { Beyond, Mesh } from './mesh.js';
 import { cornerCount } from './mesh.js';
 import { meshOf, triangulationOf } from './mesh-triangulation.js';
 import { refineTo } from './point-sizes.js';
-import type { QualityLimits } from './refine.js';
+import type { QualityLimits, RefineProgress } from './refine.js';
 import { DEFAULT_LIMITS, refine } from './refine.js';
 import { unfold } from './unfold.js';
 
@@ -15,14 +17,20 @@ import { unfold } from './unfold.js';
  * @throws InputError for drawings that cannot be meshed, see `buildPlanarGraph`, `triangulateGraph` and `refine`
  */
 export function meshSection(section: Section, limits: QualityLimits = DEFAULT_LIMITS): Mesh {
+  return finish(meshSteps(section, limits));
+}
+
+/** The same, step by step. */
+export function* meshSteps(section: Section, limits: QualityLimits): Steps<RefineProgress, Mesh> {
+  const { sizeAt = [] } = section;
   const graph = buildPlanarGraph(section);
   const { regionNames, maxEdges, sideNames, beyond } = graph.drawing;
   const tri = triangulateGraph(graph);
   for (let t = 0; t < tri.slotCount; t++) tri.size[t] = maxEdges[tri.region[t]] ?? Infinity;
-  tellCrowd(tri, regionNames, limits, () => {
-    refine(tri, limits);
-    refineTo(tri, maxEdges, section.sizeAt ?? [], limits);
-    unfold(tri, limits);
+  yield* tellCrowd({ tri, regionNames, wishes: sizeAt, limits }, function* () {
+    yield* refine(tri, limits);
+    yield* refineTo(tri, maxEdges, sizeAt, limits);
+    yield* unfold(tri, limits);
   });
   const mesh = meshOf(tri, regionNames, sideNames);
   return beyond === undefined ? mesh : withInfinity(mesh, beyond);
@@ -33,12 +41,18 @@ export function meshSection(section: Section, limits: QualityLimits = DEFAULT_LI
  * @param wanted  Float64Array(m): longest edge wanted in each triangle, metres; Infinity for no wish
  */
 export function refineMesh(mesh: Mesh, wanted: Float64Array, limits: QualityLimits = DEFAULT_LIMITS): Mesh {
+  return finish(refineMeshSteps(mesh, wanted, limits));
+}
+
+/** The same, step by step. */
+export function* refineMeshSteps(mesh: Mesh, wanted: Float64Array, limits: QualityLimits): Steps<RefineProgress, Mesh> {
+  const { regionNames, sideNames } = mesh;
   const tri = triangulationOf(mesh, wanted);
-  tellCrowd(tri, mesh.regionNames, limits, () => {
-    refine(tri, limits);
-    unfold(tri, limits);
+  yield* tellCrowd({ tri, regionNames, wishes: [], limits }, function* () {
+    yield* refine(tri, limits);
+    yield* unfold(tri, limits);
   });
-  const fine = meshOf(tri, mesh.regionNames, mesh.sideNames);
+  const fine = meshOf(tri, regionNames, sideNames);
   return mesh.beyond === undefined ? fine : withInfinity(fine, mesh.beyond);
 }
 

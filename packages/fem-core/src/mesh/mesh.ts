@@ -18,6 +18,7 @@ export interface Mesh {
   readonly neighbours: Int32Array;
   /** Int32Array(m): triangle t lies in the region regionNames[triangleToRegion[t]]. */
   readonly triangleToRegion: Int32Array;
+  /** Background first, then the regions as drawn, then those of unbounded space; some may cover nothing. */
   readonly regionNames: readonly string[];
   /** Int32Array(2e): end corners of each edge. */
   readonly edges: Int32Array;
@@ -28,9 +29,11 @@ export interface Mesh {
   readonly middles: Float64Array;
   /** Int32Array(e): index into `curves` of the drawn line the edge lies on, -1 for edges of the mesh alone. */
   readonly edgeToCurve: Int32Array;
+  /** Drawn lines; those of a circle are its arcs. */
   readonly curves: readonly Curve[];
   /** Int32Array(e): index into sideNames for edges on the outline, -1 inside. */
   readonly edgeToSide: Int32Array;
+  /** Of the outline, see `Section`. */
   readonly sideNames: readonly string[];
   /** Int32Array(e): the edge that corresponds on the matched side, -1 where there is none; end corners correspond in stored order. */
   readonly edgeToMatch: Int32Array;
@@ -45,9 +48,11 @@ export interface Mesh {
  * under the same angle, with the same A (Kelvin transformation). The far rim of the image is tied to the rim of the circle.
  */
 export interface Beyond {
+  /** Of the circle, metres. */
   readonly centre: Point;
   /** R, metres. */
   readonly radius: number;
+  /** Of the image, metres. */
   readonly imageCentre: Point;
   /** Number of the region of the image. */
   readonly region: number;
@@ -55,10 +60,13 @@ export interface Beyond {
   readonly infinity: number;
 }
 
+/** Number of corners, n. */
 export const cornerCount = (mesh: Mesh): number => mesh.xy.length / 2;
+/** Number of edges, e. */
 export const edgeCount = (mesh: Mesh): number => mesh.edges.length / 2;
+/** Number of triangles, m. */
 export const triangleCount = (mesh: Mesh): number => mesh.triangles.length / 3;
-/** Nodes of the quadratic elements: corners and edge middles. */
+/** Number of nodes of the quadratic elements, n + e: corners and edge middles. */
 export const nodeCount = (mesh: Mesh): number => cornerCount(mesh) + edgeCount(mesh);
 
 /** The six node numbers of triangle t, written into `out` (Int32Array(6)) and returned. */

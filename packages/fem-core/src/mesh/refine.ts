@@ -1,3 +1,4 @@
+import type { Steps } from '../base/steps.js';
 import { cutSegment, isInDiametral, isPoor, judgeMade } from './cut-segments.js';
 import { fillFan, growFan, readBorder } from './fan.js';
 import { fillCavity, findCavity, walkTo } from './insert.js';
@@ -30,13 +31,29 @@ export const DEFAULT_LIMITS: QualityLimits = { minAngle: (25 * Math.PI) / 180, m
  * It ends because each point put into a triangle lies on the Voronoi edge of the edge it is placed from: no vertex is
  * nearer to it than the ends of that edge, which for long triangles are 1/sqrt(3) of the wanted length away or more, or
  * as far as the angle asked for allows, which is farther than they are from each other.
+ * Stops after some thousand points each, so that it can be called off.
  * @throws InputError when the triangles asked for pass `limits.maxTriangles`
  */
-export function refine(tri: Triangulation, limits: QualityLimits): void {
+export function* refine(tri: Triangulation, limits: QualityLimits): Steps<RefineProgress, void> {
   const work = startWork(tri, limits);
   for (let s = 0; s < tri.segments.from.length; s++) if (isPoor(work, s)) work.poor.push(s);
   for (let t = 0; t < tri.slotCount; t++) if (inUse(tri, t)) judgeTriangle(work, t);
-  while (cutNext(work) || treatNextFlat(work) || treatNextLong(work));
+  while (treatSome(work)) yield { refined: tri.slotCount - tri.free.length };
+}
+
+/** Told while a mesh is made or refined. */
+export interface RefineProgress {
+  /** Triangles so far. */
+  readonly refined: number;
+}
+
+/** Cuts and points between two steps: some ten milliseconds of work. */
+const AT_ONCE = 8192;
+
+/** False when nothing is left to do. */
+function treatSome(work: Work): boolean {
+  for (let i = 0; i < AT_ONCE; i++) if (!(cutNext(work) || treatNextFlat(work) || treatNextLong(work))) return false;
+  return true;
 }
 
 /** The last segment found poor; false when there is none. */

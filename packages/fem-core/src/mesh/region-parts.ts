@@ -1,4 +1,4 @@
-import { InputError } from '../base/fault.js';
+import { InputError, tellWrong } from '../base/fault.js';
 import type { Drawing } from '../geometry/drawing.js';
 import type { PlanarGraph } from '../geometry/planar-graph.js';
 import { boundsOf, contains, cornersOf, sizeOf } from '../geometry/shapes.js';
@@ -80,10 +80,10 @@ function refuseAbsent({ shapes, snap, ground = 0 }: Drawing, present: Uint8Array
     if (present[i] === 1) return [];
     const [x, y] = shape.kind === 'circle' ? shape.centre : cornersOf(shape)[0];
     const small = sizeOf(boundsOf(shape)) < 100 * snap || contains(outline, x, y);
-    const wrong = `is thinner than ${snap} m, the distance within which points are one`;
-    if (i <= ground) return [{ code: 'no-area', key, wrong, remedy: 'give it a width and a height' }];
+    const thin = tellWrong(['is thinner than ', { metres: snap }, ', the distance within which points are one']);
+    if (i <= ground) return [{ code: 'no-area', key, ...thin, remedy: 'give it a width and a height' }];
     return small
-      ? [{ code: 'too-small', key, wrong, remedy: 'leave it out, or draw it on a smaller section' }]
+      ? [{ code: 'too-small', key, ...thin, remedy: 'leave it out, or draw it on a smaller section' }]
       : [
           {
             code: 'outside-outline',

@@ -1,7 +1,8 @@
+import type { Steps } from '../base/steps.js';
 import { SNAP } from '../geometry/limits.js';
 import { isUnfolded } from './jacobian.js';
 import { middleOnArc } from './middle-on-arc.js';
-import type { QualityLimits } from './refine.js';
+import type { QualityLimits, RefineProgress } from './refine.js';
 import { refine } from './refine.js';
 import type { Triangulation } from './triangulation.js';
 import { inUse } from './triangulation.js';
@@ -16,7 +17,7 @@ const FLAT = 4;
  * bulges through them, and are then wanted half as long. Where lines touch but for the snapping distance, arcs that are
  * told from their chords by hardly more than that are made straight.
  */
-export function unfold(tri: Triangulation, limits: QualityLimits): void {
+export function* unfold(tri: Triangulation, limits: QualityLimits): Steps<RefineProgress, void> {
   const straight = tri.curves.findIndex((curve) => curve.kind === 'line');
   const flat = FLAT * SNAP * sizeOfAll(tri);
   for (let round = 0; round < ROUNDS; round++) {
@@ -29,7 +30,7 @@ export function unfold(tri: Triangulation, limits: QualityLimits): void {
       if (straight < 0 || !straighten(tri, t, straight, flat)) tri.size[t] = Math.min(tri.size[t], 0.5 * longest);
     }
     if (!again) return;
-    refine(tri, limits);
+    yield* refine(tri, limits);
   }
 }
 

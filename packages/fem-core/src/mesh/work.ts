@@ -11,9 +11,11 @@ import type { SharpCorners } from './sharp-corners.js';
 import { findSharpCorners } from './sharp-corners.js';
 import type { Triangulation } from './triangulation.js';
 
+/** What refinement promises, and where it stops. */
 export interface QualityLimits {
   /** No angle below this, radians, away from sharper corners of the input. */
   readonly minAngle: number;
+  /** A drawing that needs more is refused. */
   readonly maxTriangles: number;
 }
 

@@ -1,5 +1,8 @@
 import type { Fault } from '../base/fault.js';
 import { InputError } from '../base/fault.js';
+import { regionAreas } from '../elements/areas.js';
+import { forceFault } from '../field/air-layer.js';
+import type { Field } from '../field/field.js';
 import type { Section } from '../geometry/section.js';
 import { BEYOND_REGION, OUTSIDE_REGION } from '../geometry/unbounded.js';
 import type { Probe } from './probe.js';
@@ -26,6 +29,26 @@ export function checkProbes(section: Section, probes: readonly Probe[], accuracy
     if (wrong !== undefined)
       faults.push({ code: 'out-of-range', key, wrong, remedy: 'give a number that makes sense' });
   }
+  if (faults.length > 0) throw new InputError(faults);
+}
+
+/**
+ * Checks what only a mesh shows, any mesh of the section: solved or not.
+ * @throws InputError with everything wrong: regions that later ones cover, forces on bodies without air all round them
+ */
+export function checkProbesOn(filled: Pick<Field, 'mesh' | 'setup'>, probes: readonly Probe[]): void {
+  const { regionNames } = filled.mesh;
+  const areas = regionAreas(filled.mesh);
+  const faults = probes.flatMap((probe): readonly Fault[] => {
+    if (probe.kind === 'force') return [forceFault(filled, probe.on) ?? []].flat();
+    const names = namesOf(probe);
+    const asksForRegions = probe.kind === 'linkage' || probe.kind === 'mean';
+    if (!asksForRegions || names.some((name) => areas[regionNames.indexOf(name)] > 0)) return [];
+    const wrong = `${names.join(', ')} covers no area`;
+    return [
+      { code: 'no-region', key: `probes.${probe.name}`, wrong, remedy: `regions here are: ${regionNames.join(', ')}` },
+    ];
+  });
   if (faults.length > 0) throw new InputError(faults);
 }
 

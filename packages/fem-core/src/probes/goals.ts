@@ -123,6 +123,24 @@ export function meanDensityFunctional(field: Field, regions: readonly string[], 
   return g;
 }
 
+/** By triangle: what the error of B adds to the mean of |B| beyond that derivative, |B + e| - |B| - (B/|B|) . e >= 0. */
+export function densityRemainder(
+  field: Field,
+  regions: readonly string[],
+  area: number,
+  recovered: RecoveredGradient,
+): Float64Array {
+  const out = new Float64Array(triangleCount(field.mesh));
+  const wanted = field.mesh.regionNames.map((name) => regions.includes(name));
+  forEachGap(field, recovered, (s, ex, ey) => {
+    if (!wanted[field.mesh.triangleToRegion[s.triangle]]) return;
+    const b = Math.hypot(s.bx, s.by);
+    const along = b === 0 ? 0 : (s.bx * ex + s.by * ey) / b;
+    out[s.triangle] += (s.area / area) * Math.max(0, Math.hypot(s.bx + ex, s.by + ey) - b - along);
+  });
+  return out;
+}
+
 /**
  * Sum over the triangles of |integral of e_a . dH/dB e_b|, with e the gaps between recovered and element flux densities of two
  * potentials and dH/dB that of the field: the error of their product in energy, in practice.

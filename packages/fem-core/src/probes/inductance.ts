@@ -15,15 +15,23 @@ import { areaOf, productOfGaps } from './goals.js';
 
 /** A coil by the regions it runs through: turns that come out of the page count positive, those that go back negative. */
 export interface Coil {
+  /** What the result calls it. */
   readonly name: string;
-  readonly sides: readonly { readonly region: string; readonly turns: number }[];
+  /** The regions it runs through. */
+  readonly sides: readonly {
+    /** Name of the region. */
+    readonly region: string;
+    /** Spread evenly over it. */
+    readonly turns: number;
+  }[];
 }
 
-/** Symmetric, in the order of the coils, H per metre of depth. */
+/** Symmetric, rows and columns in the order of the coils, H per metre of depth. */
 export type InductanceMatrix = readonly (readonly number[])[];
 
 /** Inductances about a solved field. */
 export interface Inductances {
+  /** Of the coils, in the order of rows and columns. */
   readonly names: readonly string[];
   /** Linkage per ampere of the currents alone, the permeability frozen at the field: for phasor diagrams. */
   readonly apparent: InductanceMatrix;
@@ -41,7 +49,9 @@ export interface Inductances {
  * Bianchi, Bolognani, Magnetic models of saturated interior permanent magnet motors based on finite element analysis, IEEE
  * IAS Annual Meeting, 1998 (title from memory).
  *
- * @throws InputError for coils in regions that cover nothing
+ * @param solved  a converged field with its system, such as `solveProbes` gives; the tangent spares an analysis
+ * @throws InputError for coils in regions that cover nothing, without turns, or whose turns do not come back where no side
+ * holds A; Error where the matrix is not positive definite
  */
 export function inductancesAt(
   solved: { readonly field: Field; readonly system: System; readonly tangent?: Tangent | undefined },

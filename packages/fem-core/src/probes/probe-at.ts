@@ -1,7 +1,7 @@
 import { materialOf, VACUUM } from '../assembly/setup.js';
 import { MU0 } from '../base/constants.js';
-import { InputError } from '../base/fault.js';
 import { unreachable } from '../base/unreachable.js';
+import { NODES } from '../elements/six-node.js';
 import type { RecoveredGradient } from '../estimate/recovery.js';
 import { airLayer } from '../field/air-layer.js';
 import type { Field } from '../field/field.js';
@@ -13,7 +13,7 @@ import type { Locator } from '../field/locate.js';
 import { shrinkage, spotOf, valueAt, valueAtSpot } from '../field/values.js';
 import type { Point } from '../geometry/section.js';
 import { evaluateMaterial, newLaw } from '../materials/constitutive.js';
-import { areaOf, meanDensityFunctional, meanInTriangle } from './goals.js';
+import { areaOf, densityRemainder, meanDensityFunctional, meanInTriangle } from './goals.js';
 import type { Answer, PlaceError, Probe } from './probe.js';
 
 /** An answer's number, its derivative, and what its error is to be measured by. */
@@ -64,7 +64,7 @@ function extentOf(field: Field): Extent {
   return { flux: Math.max(high - low, density * Math.sqrt(area)), density };
 }
 
-/** @throws InputError for probes of regions that cover nothing, and of forces that are not defined */
+/** Of probes that `checkProbesOn` has let pass. */
 export function probeAt(probe: Probe, field: Field, locator: Locator): ProbeAt {
   switch (probe.kind) {
     case 'point':
@@ -107,16 +107,6 @@ function gapAt(field: Field, locator: Locator, [x, y]: Point, recovered: Recover
   }
   return Math.sqrt(squares / NODES.length) * shrinkage(field, x, y);
 }
-
-/** Reference coordinates of the six nodes. */
-const NODES = [
-  [0, 0],
-  [1, 0],
-  [0, 1],
-  [0.5, 0.5],
-  [0, 0.5],
-  [0.5, 0],
-] as const;
 
 function pointAt(probe: Extract<Probe, { kind: 'point' }>, field: Field, locator: Locator): ProbeAt {
   const figure = potentialFigure(field, locator, probe.at);
@@ -216,7 +206,7 @@ function forceAt({ name, on, about = [0, 0] }: Extract<Probe, { kind: 'force' }>
 }
 
 function linkageAt({ name, of, turns }: Extract<Probe, { kind: 'linkage' }>, field: Field): ProbeAt {
-  const area = covered(field, name, [of]);
+  const area = areaOf(field, [of]);
   const functional = weightedIntegral(field.mesh, [of], () => turns / area);
   const linkage = applyFunctional(functional, field.potential);
   return {
@@ -251,31 +241,19 @@ function fluxAt({ name, from, to }: Extract<Probe, { kind: 'flux' }>, field: Fie
 }
 
 function meanAt({ name, over }: Extract<Probe, { kind: 'mean' }>, field: Field): ProbeAt {
-  const area = covered(field, name, over);
+  const area = areaOf(field, over);
   const { bx, by, b } = meanOver(field, over);
   const size = Math.max(b, BALANCED * extentOf(field).density);
   const alongX = weightedFlux(field.mesh, over, () => [1 / area, 0]);
   const alongY = weightedFlux(field.mesh, over, () => [0, 1 / area]);
+  const bend = (recovered: RecoveredGradient): Float64Array => densityRemainder(field, over, area, recovered);
   return {
     kind: 'mean',
     figures: [
       { value: bx, functional: alongX, size },
       { value: by, functional: alongY, size },
-      { value: b, functional: meanDensityFunctional(field, over, area), size },
+      { value: b, functional: meanDensityFunctional(field, over, area), size, remainder: bend },
     ],
     describe: ([ex, ey, eb]) => ({ kind: 'mean', name, bx, by, b, error: Math.max(Math.hypot(ex, ey), eb) }),
   };
-}
-
-function covered(field: Field, probe: string, regions: readonly string[]): number {
-  const area = areaOf(field, regions);
-  if (area > 0) return area;
-  throw new InputError([
-    {
-      code: 'no-region',
-      key: `probes.${probe}`,
-      wrong: `${regions.join(', ')} covers no area`,
-      remedy: `regions here are: ${field.mesh.regionNames.join(', ')}`,
-    },
-  ]);
 }

@@ -1,20 +1,26 @@
+import { checkSetup } from '../assembly/check-setup.js';
 import type { Setup } from '../assembly/setup.js';
 import type { System } from '../assembly/system.js';
+import { numberUnknowns } from '../assembly/unknowns.js';
+import { checkAll } from '../base/fault.js';
 import type { Steps } from '../base/steps.js';
 import { finish } from '../base/steps.js';
 import type { Field } from '../field/field.js';
 import { buildLocator } from '../field/locate.js';
 import type { Section } from '../geometry/section.js';
-import type { AdaptiveSolution, GoalAt, MeshProgress } from '../pipeline.js';
-import { adaptiveSteps } from '../pipeline.js';
-import type { NewtonOptions, NewtonProgress } from '../solve/newton.js';
+import type { Mesh } from '../mesh/mesh.js';
+import { meshSection } from '../mesh/mesh-section.js';
+import type { AdaptiveSolution, GoalAt, MeshProgress, SolveProgress } from '../pipeline.js';
+import { adaptiveSteps, limitsFor } from '../pipeline.js';
+import type { NewtonOptions } from '../solve/newton.js';
 import type { Tangent } from '../solve/tangent.js';
-import { checkProbes } from './check-probes.js';
+import { checkProbes, checkProbesOn } from './check-probes.js';
 import { energyGoals } from './goals.js';
 import type { Answer, Probe } from './probe.js';
 import type { ProbeAt } from './probe-at.js';
 import { probeAt } from './probe-at.js';
 
+/** How accurate, and how far to go for it. */
 export interface ProbeOptions {
   /**
    * Wanted relative error of energy, linkages, fluxes, forces and means, each against the largest of its kind; points and
@@ -23,13 +29,19 @@ export interface ProbeOptions {
   readonly accuracy?: number;
   /** Of the elements: 1 linear, 2 quadratic (if absent). */
   readonly order?: 1 | 2;
+  /** Meshes tried at most; 12 if absent. */
   readonly maxMeshes?: number;
+  /** Triangles from which on no finer mesh is tried; 200,000 if absent. */
   readonly maxTriangles?: number;
+  /** Of each solve. */
   readonly newton?: NewtonOptions;
+  /** Called after each mesh is solved. */
   readonly onMesh?: (progress: MeshProgress) => void;
 }
 
+/** A solved section with its answers. */
 export interface SectionAnswer {
+  /** On the last mesh; `field.report` tells whether it converged. */
   readonly field: Field;
   /** Gradient of A recovered to superconvergent accuracy, Float64Array(12 m). */
   readonly recovered: Float64Array;
@@ -37,18 +49,23 @@ export interface SectionAnswer {
   readonly answers: readonly Answer[];
   /** J/m; in unbounded space of all of it, and NaN where the currents there do not cancel: it has no bound then. */
   readonly energy: number;
+  /** J/m: integral of H . B less the energy; NaN where that is. */
   readonly coenergy: number;
-  /** Bounds of their errors, J/m. */
+  /** Bound of the energy's error, J/m. */
   readonly energyError: number;
+  /** Bound of the coenergy's error, J/m. */
   readonly coenergyError: number;
   /** Largest relative error of all that the accuracy binds. */
   readonly error: number;
+  /** The solve converged, and the wanted accuracy was met. */
   readonly accurate: boolean;
+  /** How many were solved on. */
   readonly meshes: number;
   /** Over all meshes. */
   readonly newtonSteps: number;
   /** Of the last mesh: what further solves on it can use, such as those of an inductance. */
   readonly system: System;
+  /** At the solution; undefined where the solve failed before the first. */
   readonly tangent: Tangent | undefined;
 }
 
@@ -66,13 +83,34 @@ export function solveProbes(
   return finish(probeSteps(section, setup, probes, options));
 }
 
-/** `solveProbes` step by step: told after each Newton step and each mesh. */
+/**
+ * Refuses what `solveProbes` refuses, all of it at once and without solving.
+ * @returns the mesh that would be solved on first
+ * @throws InputError
+ */
+export function checkProblem(
+  section: Section,
+  setup: Setup,
+  probes: readonly Probe[],
+  { accuracy = USUAL_ACCURACY, order, maxTriangles }: ProbeOptions = {},
+): Mesh {
+  checkProbes(section, probes, accuracy);
+  const mesh = meshSection(section, limitsFor(maxTriangles));
+  checkAll(
+    () => checkSetup(mesh, setup),
+    () => numberUnknowns(mesh, setup, order),
+    () => checkProbesOn({ mesh, setup }, probes),
+  );
+  return mesh;
+}
+
+/** `solveProbes` step by step: told after each Newton step and each mesh, and within long meshing. */
 export function* probeSteps(
   section: Section,
   setup: Setup,
   probes: readonly Probe[],
   options: ProbeOptions = {},
-): Steps<NewtonProgress | MeshProgress, SectionAnswer> {
+): Steps<SolveProgress, SectionAnswer> {
   const { accuracy = USUAL_ACCURACY } = options;
   checkProbes(section, probes, accuracy);
   let wanted: readonly ProbeAt[] = [];
@@ -81,6 +119,7 @@ export function* probeSteps(
     accuracy,
     combine: 'largest',
     goals: (field) => {
+      if (wanted.length === 0) checkProbesOn(field, probes); // on the first mesh
       const locator = buildLocator(field.mesh);
       wanted = probes.map((probe) => probeAt(probe, field, locator));
       return [...energyGoals(field, inverse), ...goalsOf(wanted)];

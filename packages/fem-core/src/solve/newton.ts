@@ -10,9 +10,11 @@ import { multiply } from '../sparse/pattern.js';
 import type { Tangent } from './tangent.js';
 import { analyseSystem, buildTangent, NoSolution, solveTangent } from './tangent.js';
 
+/** How far a solve goes, and from where. */
 export interface NewtonOptions {
-  /** Wanted ratio of the residual to that at A = 0 (with the held values), 2-norms. */
+  /** Wanted ratio of the residual to that at A = 0 (with the held values), 2-norms; 1e-8 if absent. */
   readonly tolerance?: number;
+  /** Steps after which it gives up; 60 if absent. */
   readonly maxSteps?: number;
   /** Float64Array(n): unknowns to start from, for example from a coarser mesh; zero if absent. */
   readonly start?: Float64Array;
@@ -24,13 +26,15 @@ export interface NewtonOptions {
 
 /** Told after each step. */
 export interface NewtonProgress {
+  /** Its number, from 1. */
   readonly step: number;
-  /** Residual over that at A = 0. */
+  /** Residual over that at A = 0, 2-norms. */
   readonly residual: number;
 }
 
 /** How a solve went; failure is a report, not an exception. */
 export interface SolveReport {
+  /** The wanted ratio was reached, or all that rounding allows. */
   readonly converged: boolean;
   /** Newton steps taken (a linear problem takes one). */
   readonly steps: number;
@@ -38,17 +42,21 @@ export interface SolveReport {
   readonly residuals: readonly number[];
   /** Share of the full step the line search took, per step. */
   readonly stepLengths: readonly number[];
+  /** Their number, n. */
   readonly unknowns: number;
+  /** Numbers the factor of the tangent holds (or would hold), explicit zeros included. */
   readonly factorEntries: number;
   /** Why it stopped short; undefined where it converged. */
   readonly failure?: string;
 }
 
+/** What Newton's method came to. */
 export interface Solution {
-  /** Float64Array(n). */
+  /** Float64Array(n): the unknowns, Wb/m. */
   readonly u: Float64Array;
-  /** Float64Array(nodes), Wb/m. */
+  /** Float64Array(nodes): A at the nodes, Wb/m. */
   readonly potential: Float64Array;
+  /** Whether it converged, and how. */
   readonly report: SolveReport;
   /** Of the last step but for the very last change: serves adjoint problems. */
   readonly tangent: Tangent | undefined;
@@ -66,6 +74,7 @@ const NEAR_ROUNDING = 1e-5;
  * the slope d . residual(u + s d) rises with s, so that a step is long enough and not too long once the slope has shrunk to
  * half its start in size; where it has turned positive beyond that, its zero is sought by regula falsi (Illinois).
  * Ortega, Rheinboldt, Iterative Solution of Nonlinear Equations in Several Variables, 1970, sections 8.2 and 14.4.
+ * Told after each step; throws nothing of its own: `report` tells of failures.
  */
 export function* newtonSteps(system: System, options: NewtonOptions = {}): Steps<NewtonProgress, Solution> {
   const { tolerance = 1e-8, maxSteps = 60 } = options;
@@ -134,7 +143,7 @@ export function* newtonSteps(system: System, options: NewtonOptions = {}): Steps
   }
 }
 
-/** `newtonSteps`, driven to the end. */
+/** `newtonSteps`, driven to the end; a failure is told in the report. */
 export const solveNewton = (system: System, options: NewtonOptions = {}): Solution =>
   finish(newtonSteps(system, options));
 

@@ -13,18 +13,23 @@ import { buildCoarseLevel } from '../sparse/two-level.js';
 /** What solves systems with a tangent matrix: its factor, or conjugate gradients where the factor would not fit memory. */
 export type Tangent = Factor | IterativeTangent;
 
+/** A tangent matrix for conjugate gradients. */
 export interface IterativeTangent {
+  /** Of the system. */
   readonly pattern: SymmetricPattern;
-  /** Float64Array(entries), m/H. */
+  /** Float64Array(entries): lower triangle in the order of the pattern, m/H. */
   readonly values: Float64Array;
-  /** Of quadratic elements. */
+  /** Of quadratic elements; undefined of linear ones. */
   readonly level: CoarseLevel | undefined;
 }
 
 /** Memory a factorisation may take unless told otherwise, bytes: what 32-bit addresses reach, nearly. */
 const MOST_BYTES = 3.9e9;
 
-/** The order that serves this system best, and everything about its factors that depends on the pattern alone. */
+/**
+ * The order that serves this system best, and everything about its factors that depends on the pattern alone: serves all its
+ * tangents.
+ */
 export function analyseSystem(system: System): Analysis {
   return analyse(system.pattern, chooseOrder(system.pattern, placementOf(system.mesh, system.unknowns)));
 }
@@ -34,6 +39,7 @@ export function analyseSystem(system: System): Analysis {
  *
  * @param values  Float64Array(entries), m/H
  * @param before  a tangent of the same system that is no longer needed: its memory serves this one
+ * @param memory  bytes a factor may work in; beyond them conjugate gradients take its place
  * @returns what solves, or why there is nothing to solve with
  */
 export function buildTangent(
@@ -69,6 +75,7 @@ const TOLERANCE = 1e-11;
 
 /** Thrown where a system has no solution to be had. */
 export class NoSolution extends Error {
+  /** `NoSolution`, also where `instanceof` fails between two copies of the library. */
   override readonly name = 'NoSolution';
 }
 

@@ -11,16 +11,30 @@ import { AIR, allSides, held } from './drawing.js';
 
 /** How fast the errors of one kind of element fall with its size. */
 export interface MeasuredOrder {
+  /** 'linear', 'quadratic' or 'curved quadratic'. */
   readonly elements: string;
-  /** Exponents of the element size by least squares: of A in L2, and of B in L2, which is the energy norm in air. */
+  /** Exponent of the element size in the error of A in L2, by least squares. */
   readonly potential: number;
+  /** The same of B in L2, which is the energy norm in air. */
   readonly field: number;
   /** What theory promises. */
-  readonly expected: { readonly potential: number; readonly field: number };
+  readonly expected: {
+    /** Of A. */
+    readonly potential: number;
+    /** Of B. */
+    readonly field: number;
+  };
   /** Neither falls short of theory by more than 0.1. */
   readonly holds: boolean;
-  /** Errors of A and B in L2 by mesh, coarse to fine, with the mean element size (m). */
-  readonly runs: readonly { readonly size: number; readonly potential: number; readonly field: number }[];
+  /** What was measured, coarse to fine. */
+  readonly runs: readonly {
+    /** Mean element size, m. */
+    readonly size: number;
+    /** Error of A in L2. */
+    readonly potential: number;
+    /** Error of B in L2. */
+    readonly field: number;
+  }[];
 }
 
 /** A field in closed form: A in Wb/m, B = (dA/dy, -dA/dx) in T, and the current density behind it in A/m^2. */

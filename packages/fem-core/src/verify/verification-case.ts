@@ -37,16 +37,25 @@ export interface Figure {
 
 /** A figure as it was found; errors are shares of the figure's scale. */
 export interface FigureResult {
+  /** Of the case. */
   readonly name: string;
+  /** With its unit, unless it has none. */
   readonly quantity: string;
+  /** What the expected figure follows from, in plain characters. */
   readonly formula: string;
+  /** Who gave the formula, and how its figures were come by. */
   readonly source: string;
+  /** By the formula. */
   readonly expected: number;
+  /** By the solver. */
   readonly got: number;
+  /** |got - expected|. */
   readonly relativeError: number;
   /** The error the solver itself reports. */
   readonly estimatedError: number;
+  /** How far off it may be. */
   readonly bound: number;
+  /** By how much the section itself differs from what the formula describes. */
   readonly slack: number;
   /** Nodes of the last mesh. */
   readonly nodes: number;

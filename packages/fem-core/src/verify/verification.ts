@@ -8,6 +8,7 @@ import { runCase } from './verification-case.js';
 
 /** The solver held against closed forms. */
 export interface Verification {
+  /** Cases are numbered from 0. */
   readonly caseCount: number;
   /** Figures of case k, in the order of the table; `now` gives milliseconds since any moment. */
   readonly runCase: (k: number, now: () => number) => readonly FigureResult[];
@@ -17,7 +18,7 @@ export interface Verification {
   readonly measureHonesty: (figures: readonly FigureResult[]) => Honesty;
 }
 
-/** What there is to run. */
+/** All closed-form cases, ready to run one by one; nothing is solved yet. */
 export function buildVerification(): Verification {
   const cases = verificationCases();
   return {

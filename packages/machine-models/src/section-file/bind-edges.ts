@@ -1,13 +1,6 @@
-import {
-  type EdgeCondition,
-  findNearest,
-  listWords,
-  type Path,
-  type Section,
-  type Shape,
-  showText,
-  sidesOf,
-} from '@gapwright/fem-core';
+import type { EdgeCondition, Section, Shape } from '@gapwright/fem-core';
+import { sidesOf } from '@gapwright/fem-core/mesh';
+import { findNearest, listWords, type Path, showText } from '@gapwright/fem-core/text';
 import type { Report } from '../input/report.js';
 import { bareRecord } from './bare-record.js';
 import type { EdgeFile } from './schema.js';

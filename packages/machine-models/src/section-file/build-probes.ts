@@ -1,4 +1,5 @@
-import { findNearest, type Path, type Point, type Probe, type Shape, showText } from '@gapwright/fem-core';
+import type { Point, Probe, Shape } from '@gapwright/fem-core';
+import { findNearest, type Path, showText } from '@gapwright/fem-core/text';
 import type { Report } from '../input/report.js';
 import { liesOutside } from './outline-side.js';
 import { type ProbeFile, type RegionFile, SECTION_BOUNDS } from './schema.js';

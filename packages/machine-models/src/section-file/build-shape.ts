@@ -1,4 +1,5 @@
-import type { Path, Shape } from '@gapwright/fem-core';
+import type { Shape } from '@gapwright/fem-core';
+import type { Path } from '@gapwright/fem-core/text';
 import type { Report } from '../input/report.js';
 import type { ShapeFile } from './schema-shapes.js';
 

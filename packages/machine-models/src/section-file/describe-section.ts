@@ -1,16 +1,9 @@
-import {
-  type Answer,
-  type FieldValue,
-  measureMesh,
-  nodeCount,
-  type PlaceError,
-  type Probe,
-  pastKnee,
-  type SectionAnswer,
-  triangleCount,
-} from '@gapwright/fem-core';
+import type { Answer, FieldValue, PlaceError, Probe, SectionAnswer } from '@gapwright/fem-core';
+import { pastKnee } from '@gapwright/fem-core/field';
+import { measureMesh, nodeCount, triangleCount } from '@gapwright/fem-core/mesh';
 import { figure } from '../input/format-figure.js';
 import type { Warning } from '../machine.js';
+import { drawingWarnings } from './drawing-warnings.js';
 import type { SectionProblem } from './read-section.js';
 import type { LineResult, PointResult, ProbeResult, SectionResult } from './section-result.js';
 
@@ -21,7 +14,7 @@ export interface SectionStamp {
   readonly inputSha256: string;
 }
 
-/** The result of a section as it is printed and stored. `warnings` are the reader's; the solution adds its own. */
+/** The result of a section as it is printed and stored. `warnings` are the reader's; drawing and solution add theirs. */
 export function describeSection(
   problem: SectionProblem,
   answer: SectionAnswer,
@@ -45,13 +38,14 @@ export function describeSection(
     energy_J: depth * energy,
     coenergy_J: depth * coenergy,
     mesh: { nodes: nodeCount(mesh), triangles: triangleCount(mesh), min_angle_deg: measureMesh(mesh).minAngleDeg },
+    elements: problem.elements,
     newton_steps: report.steps,
     rel_err: answer.error,
     converged: report.converged,
     accurate: answer.accurate,
     probes,
     cautions: probes.flatMap(crushing),
-    warnings: [...warnings, ...solutionWarnings(problem, answer)],
+    warnings: [...warnings, ...drawingWarnings(problem, mesh), ...solutionWarnings(problem, answer)],
   };
 }
 
@@ -202,13 +196,13 @@ function solutionWarnings(problem: SectionProblem, answer: SectionAnswer): reado
 
 /** Magnets that lose remanence where they stand. */
 function demagnetised({ section }: SectionProblem, { field }: SectionAnswer): readonly Warning[] {
-  return section.regions.flatMap(({ name }) => {
+  return section.regions.flatMap(({ name }, i) => {
     const past = pastKnee(field, name);
     if (past === undefined || past.share === 0) return [];
     const text =
       `${figure(100 * past.share)} % of this magnet lies past the knee of its curve (H along it down to ` +
       `${figure(past.lowest / 1000)} kA/m): what is lost there does not come back when the field goes`;
-    return [{ key: `regions.${name}`, text }];
+    return [{ key: `regions.${i}`, text }];
   });
 }
 

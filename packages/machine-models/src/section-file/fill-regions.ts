@@ -1,5 +1,6 @@
-import type { Direction, Material, Path, Shape } from '@gapwright/fem-core';
+import type { Direction, Material, Shape } from '@gapwright/fem-core';
 import { buildBHCurve, buildDemagnetisationCurve } from '@gapwright/fem-core';
+import type { Path } from '@gapwright/fem-core/text';
 import { findMaterial, type Materials } from '../input/check-materials.js';
 import type { Report } from '../input/report.js';
 import type { LibraryMaterial } from '../machine.js';

@@ -1,17 +1,23 @@
-import { type Document, type Fault, formatPath, InputError, type Path, placeOf } from '@gapwright/fem-core';
+import { type Fault, InputError } from '@gapwright/fem-core';
+import { type Document, formatPath, type LengthUnit, type Path, placeOf, sayIn } from '@gapwright/fem-core/text';
+import { lengthUnitAt } from './length-unit.js';
 import type { SectionFile } from './schema.js';
 import type { ShapeFile } from './schema-shapes.js';
 
-/** Faults of the solver, which names what the section names, as faults of the file. */
+/** Faults of the solver, which names what the section names and speaks in metres, as faults of the file in its units. */
 export function placeFaults(error: InputError, document: Document, file: SectionFile): InputError {
   return new InputError(
     error.faults.map((fault): Fault => {
       const path = fault.at === undefined ? pathOf(fault, file) : undefined;
-      if (path === undefined) return { ...fault, at: fault.at ?? document.root.at };
-      return { ...fault, key: formatPath(path), at: placeOf(document, path) };
+      const told = { ...fault, wrong: wrongIn(lengthUnitAt(document, path ?? []), fault) };
+      if (path === undefined) return { ...told, at: fault.at ?? document.root.at };
+      return { ...told, key: formatPath(path), at: placeOf(document, path) };
     }),
   );
 }
+
+const wrongIn = (unit: LengthUnit, { wrong, pieces }: Fault): string =>
+  pieces === undefined ? wrong : sayIn(unit, pieces);
 
 /** Where in the file stands what the solver calls by the fault's key; undefined where that cannot be told. */
 function pathOf({ code, key }: Fault, file: SectionFile): Path | undefined {

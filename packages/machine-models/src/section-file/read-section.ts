@@ -1,14 +1,5 @@
-import {
-  applySettings,
-  InputError,
-  type Probe,
-  plainValue,
-  type Region,
-  readDocument,
-  type Section,
-  type Setup,
-  showText,
-} from '@gapwright/fem-core';
+import { InputError, type Place, type Probe, type Region, type Section, type Setup } from '@gapwright/fem-core';
+import { applySettings, placeOf, plainValue, readDocument, showText } from '@gapwright/fem-core/text';
 import { gatherMaterials } from '../input/check-materials.js';
 import { MACHINE_FORMAT, refuseOtherFormat } from '../input/file-format.js';
 import type { ReadOptions } from '../input/read-machine.js';
@@ -33,6 +24,7 @@ export interface SectionProblem {
   readonly probes: readonly Probe[];
   /** Wanted relative error. */
   readonly accuracy: number;
+  readonly elements: 'quadratic' | 'linear';
   /** The solver's own limits where absent. */
   readonly maxTriangles?: number;
   readonly maxMeshes?: number;
@@ -45,6 +37,8 @@ export interface SectionReadResult {
   readonly warnings: readonly Warning[];
   /** The same faults, where they stand in the file: the solver knows regions and sides by their names only. */
   readonly place: (error: InputError) => InputError;
+  /** Where the file has what a warning is about; undefined for one that is about no key. */
+  readonly locate: (warning: Warning) => Place | undefined;
 }
 
 /**
@@ -64,7 +58,12 @@ export function readSection(text: string, options: ReadOptions): SectionReadResu
   const problem = file && judge(file, options, report);
   const faults = report.faults();
   if (faults.length > 0 || file === undefined || problem === undefined) throw new InputError(faults);
-  return { problem, warnings: report.warnings(), place: (error) => placeFaults(error, document, file) };
+  return {
+    problem,
+    warnings: report.warnings(),
+    place: (error) => placeFaults(error, document, file),
+    locate: ({ key }) => (key === '' ? undefined : placeOf(document, key.split('.'))),
+  };
 }
 
 /** How the values go together; a section where nothing at all is wrong. */
@@ -88,7 +87,7 @@ function judge(file: SectionFile, options: ReadOptions, report: OpenReport): Sec
       ...(max_edge === undefined ? {} : { maxEdge: max_edge }),
     }),
   );
-  const { accuracy, max_triangles, max_meshes } = file.model;
+  const { accuracy, elements, max_triangles, max_meshes } = file.model;
   return {
     name: file.name,
     depth: file.depth,
@@ -110,6 +109,7 @@ function judge(file: SectionFile, options: ReadOptions, report: OpenReport): Sec
     },
     probes,
     accuracy,
+    elements,
     ...(max_triangles === undefined ? {} : { maxTriangles: max_triangles }),
     ...(max_meshes === undefined ? {} : { maxMeshes: max_meshes }),
     materials: [...file.regions.map(({ name, material }) => [name, material] as const), [background, file.background]],

@@ -70,6 +70,7 @@ const model = group({
     0.002,
     quantity('ratio', { above: '0 %', to: '50 %' }, 'the wanted relative error, for example 0.2 %'),
   ),
+  elements: usually('quadratic', choice(['quadratic', 'linear'])),
   max_triangles: optional(whole(100, 2_000_000, 'the most triangles of a mesh, for example 200000')),
   max_meshes: optional(whole(1, 100, 'the most meshes, each finer than the one before, for example 12')),
 });

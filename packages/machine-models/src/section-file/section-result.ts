@@ -19,6 +19,7 @@ export interface SectionResult {
   readonly energy_J: number;
   readonly coenergy_J: number;
   readonly mesh: { readonly nodes: number; readonly triangles: number; readonly min_angle_deg: number };
+  readonly elements: 'quadratic' | 'linear';
   /** On the last mesh. */
   readonly newton_steps: number;
   /** The largest of all that the wanted accuracy binds. */
