@@ -7,14 +7,16 @@ const source = (name: string): string => fileURLToPath(new URL(`../packages/${na
 export default defineConfig({
   root: fileURLToPath(new URL('..', import.meta.url)),
   resolve: {
-    alias: {
-      '@gapwright/fem-core': source('fem-core/src/index.ts'),
-      '@gapwright/machine-models': source('machine-models/src/index.ts'),
-      '@gapwright/cli': source('cli/src/main.ts'),
-    },
+    alias: [
+      { find: /^@gapwright\/fem-core$/, replacement: source('fem-core/src/index.ts') },
+      { find: /^@gapwright\/fem-core\//, replacement: source('fem-core/src/entries/') },
+      { find: '@gapwright/machine-models', replacement: source('machine-models/src/index.ts') },
+      { find: '@gapwright/cli', replacement: source('cli/src/main.ts') },
+    ],
   },
   test: {
     include: ['tests/**/*.test.ts'],
+    setupFiles: [fileURLToPath(new URL('../packages/cli/src/fused-products.ts', import.meta.url))],
     exclude: ['tests/long/**', '**/node_modules/**'],
     testTimeout: 60_000,
   },

@@ -1,4 +1,5 @@
 import type { Machine, Winding } from '../../packages/machine-models/src/machine.js';
+import { magnetWidth } from '../../packages/machine-models/src/rotor/magnet-shape.js';
 import type { SliceAnswer } from '../../packages/machine-models/src/slices/slice-answer.js';
 
 export const MU0 = 4e-7 * Math.PI;
@@ -43,6 +44,8 @@ export function hutHydro(): Machine & { readonly winding: Concentrated } {
         material: 'magnet_42',
         temperature: 20,
       },
+      keeper: undefined,
+      interpoles: undefined,
     },
     winding: {
       phases: 3,
@@ -60,7 +63,7 @@ export function hutHydro(): Machine & { readonly winding: Concentrated } {
       temperature: 90,
     },
     operation: { speedRpm: 420, overspeedRpm: 756, ambient: 15, cold: -10 },
-    model: { slices: simpson(0.128, 0.055), accuracy: 0.002, endCorrection: false },
+    model: { slices: simpson(0.128, 0.055), auto: false, accuracy: 0.002, endCorrection: false },
   };
 }
 
@@ -115,7 +118,7 @@ export function closedFormSlices(machine: Machine, bounds: readonly number[] = [
   const order = Array.from({ length: 50 }, (_, i) => 2 * i + 1);
   return model.slices.map(({ radius, weight }) => {
     const polePitch = (2 * Math.PI * radius) / rotor.poles;
-    const width = magnets.shape === 'block' ? magnets.width : magnets.arc * polePitch;
+    const width = magnetWidth(magnets, rotor.poles, radius);
     const mid = order.map((n) => {
       const k = (n * Math.PI) / polePitch;
       const source = ((4 * remanence) / (n * Math.PI)) * Math.sin((k * width) / 2);

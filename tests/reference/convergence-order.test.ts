@@ -1,5 +1,6 @@
 import type { Section } from '@gapwright/fem-core';
-import { forEachSample, MU0, solveSection } from '@gapwright/fem-core';
+import { MU0, solveSection } from '@gapwright/fem-core';
+import { forEachSample } from '@gapwright/fem-core/field';
 import { expect, test } from 'vitest';
 import { measureOrders, waveField } from '../../packages/fem-core/src/verify/orders.js';
 import { check } from './table.js';

@@ -1,5 +1,7 @@
-import type { AdaptiveSolution, Section } from '@gapwright/fem-core';
-import { buildLocator, fluxBetween, solveAdaptively, solveSection } from '@gapwright/fem-core';
+import type { Section } from '@gapwright/fem-core';
+import { buildLocator, fluxBetween, solveSection } from '@gapwright/fem-core';
+import type { AdaptiveSolution } from '@gapwright/fem-core/goals';
+import { solveAdaptively } from '@gapwright/fem-core/goals';
 import { describe, expect, test } from 'vitest';
 import type { Gap, Wanted } from './double-disc.js';
 import { G1, G2, G3, G4, halfPole, seriesAmplitude, seriesFlux, seriesPull, wantedOf } from './double-disc.js';

@@ -22,12 +22,7 @@ const solveAll = (machine: Machine, accuracy?: number): SolvedSlice[] =>
   machine.model.slices.map((slice) => solveSlice(machine, slice, accuracy === undefined ? {} : { accuracy }));
 
 const describeAll = (machine: Machine, slices: readonly SolvedSlice[]): MachineResult =>
-  describeMachine(
-    machine,
-    slices.map(({ answer }) => answer),
-    [],
-    { version: '0', inputSha256: '' },
-  );
+  describeMachine(machine, { slices: slices.map(({ answer }) => answer) }, [], { version: '0', inputSha256: '' });
 
 // The machine's figures as its file gives them, worked out here on their own.
 const [POLE_PAIRS, COILS_A_PHASE, TURNS, OMEGA] = [8, 4, 58, (2 * Math.PI * 420) / 60];

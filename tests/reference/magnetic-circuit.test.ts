@@ -1,14 +1,7 @@
 import type { Field, Material } from '@gapwright/fem-core';
-import {
-  buildBHCurve,
-  buildLocator,
-  evaluateCurve,
-  fluxBetween,
-  forEachSample,
-  MU0,
-  meanOver,
-  solveSection,
-} from '@gapwright/fem-core';
+import { buildBHCurve, buildLocator, fluxBetween, MU0, meanOver, solveSection } from '@gapwright/fem-core';
+import { forEachSample } from '@gapwright/fem-core/field';
+import { evaluateCurve } from '@gapwright/fem-core/materials';
 import { describe, expect, test } from 'vitest';
 import { circuitCases, saturationCases } from '../../packages/fem-core/src/verify/cases.js';
 import type { Layer } from '../../packages/fem-core/src/verify/circuits.js';

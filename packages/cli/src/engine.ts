@@ -1,4 +1,5 @@
-import type { Mesh, PictureCopy } from '@gapwright/fem-core';
+import type { PictureCopy } from '@gapwright/fem-core';
+import type { Mesh } from '@gapwright/fem-core/mesh';
 import type { Machine, MachineResult, ReadOptions, ReadResult, SliceAnswer, Warning } from '@gapwright/machine-models';
 
 /** The solved field of one slice, as the pictures and VTK files want it. */

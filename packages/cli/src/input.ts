@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto';
 import { dirname, join } from 'node:path';
-import { InputError, type Setting } from '@gapwright/fem-core';
+import { InputError } from '@gapwright/fem-core';
+import type { Setting } from '@gapwright/fem-core/text';
 import type { ReadOptions, ReadResult } from '@gapwright/machine-models';
 import type { Engine } from './engine.js';
 import { readFileBeside, readTextFile } from './files.js';

@@ -1,6 +1,8 @@
-import { buildVerification, formatFault, InputError } from '@gapwright/fem-core';
+import { formatFault, InputError } from '@gapwright/fem-core';
+import { buildVerification } from '@gapwright/fem-core/verify';
 import { Command, CommanderError } from 'commander';
 import { runCheck } from './commands/check.js';
+import { type MaterialsOptions, runMaterials } from './commands/materials.js';
 import { type NewOptions, runNew } from './commands/new.js';
 import { runSection } from './commands/section.js';
 import { runSolve } from './commands/solve.js';
@@ -92,6 +94,15 @@ async function runCommand(
     .option('--vtu', 'with --out: also the section as VTK XML')
     .action(async (file: string, options: OutputOptions) => {
       status = await runSection(sections, file, options, surroundings);
+    });
+  addCommonOptions(program.command('materials'))
+    .description('the library of materials; with a name, all figures of one and its curve')
+    .argument('[NAME]', 'a material, for example N42 or "AISI 1008"')
+    .option('--file <FILE>', 'machine or section file whose own materials count too')
+    .option('--temperature <VALUE>', 'of a magnet, for example 80degC')
+    .option('--out <DIR>', 'write results.json and, with a name, curve.svg there')
+    .action((name: string | undefined, options: MaterialsOptions) => {
+      status = runMaterials(name, options, surroundings);
     });
   program
     .command('verify')

@@ -1,4 +1,4 @@
-import { cornerCount, edgeCount, type Mesh, triangleCount } from '@gapwright/fem-core';
+import { cornerCount, edgeCount, type Mesh, triangleCount } from '@gapwright/fem-core/mesh';
 
 /** The part of a mesh that shows the plane as it is, and where its nodes and triangles come from. */
 export interface NearPart {

@@ -1,4 +1,4 @@
-import type { Setting } from '@gapwright/fem-core';
+import type { Setting } from '@gapwright/fem-core/text';
 import { type Command, InvalidArgumentError, Option } from 'commander';
 import type { Surroundings } from './surroundings.js';
 

@@ -53,25 +53,30 @@ export function datasheet(machine: Machine, result: MachineResult): Sheet {
 /** The group that needs no field: what was asked for. */
 export function machineGroup({ rotor, winding, operation, materials }: Machine): SheetGroup {
   const { magnets, disc } = rotor;
-  const size =
-    magnets.shape === 'block'
-      ? `blocks ${givenMm(magnets.width)} x ${givenMm(magnets.length)} x ${givenMm(magnets.thickness)} mm`
-      : `sectors, arc ${given(magnets.arc)} of the pole pitch, ${givenMm(magnets.length)} mm long, ${givenMm(magnets.thickness)} mm thick`;
   const legs = `${givenMm(winding.legWidth)} mm wide (${winding.legShape}), ${givenMm(winding.thickness)} mm thick`;
   const rows: SheetRow[] = [
     { label: 'Rotor', value: `${rotor.arrangement}, ${rotor.poles} poles, gap ${givenMm(rotor.gap)} mm` },
-    { label: 'Magnets', value: `${size}, mean radius ${givenMm(magnets.meanRadius)} mm` },
+    { label: 'Magnets', value: `${magnetText(magnets)}, mean radius ${givenMm(magnets.meanRadius)} mm` },
     {
       label: 'Magnet material',
       value: `${materialText(magnets.material, materials)}, at ${given(magnets.temperature)} degC`,
     },
+    ...interpoleRows(rotor, materials),
     {
-      label: 'Discs',
+      label: rotor.keeper === undefined ? 'Discs' : 'Disc',
       value:
         disc === undefined
           ? 'none'
           : `${plainText(disc.material)}, ${givenMm(disc.thickness)} mm thick, radius ${givenMm(disc.innerRadius)} to ${givenMm(disc.outerRadius)} mm`,
     },
+    ...(rotor.keeper === undefined
+      ? []
+      : [
+          {
+            label: 'Keeper',
+            value: `${plainText(rotor.keeper.material)}, ${givenMm(rotor.keeper.thickness)} mm thick, turns with the magnets`,
+          },
+        ]),
     {
       label: 'Winding',
       value: `${winding.layout}, ${winding.coils} coils of ${winding.turns} turns, ${winding.phases} phases in ${winding.connection}${winding.paths > 1 ? `, ${winding.paths} parallel paths` : ''}`,
@@ -84,6 +89,30 @@ export function machineGroup({ rotor, winding, operation, materials }: Machine):
     },
   ];
   return { heading: 'Machine', blocks: [rowsBlock(rows)] };
+}
+
+function magnetText(magnets: Machine['rotor']['magnets']): string {
+  const thick = `${givenMm(magnets.thickness)} mm`;
+  switch (magnets.shape) {
+    case 'block':
+      return `blocks ${givenMm(magnets.width)} x ${givenMm(magnets.length)} x ${thick}`;
+    case 'round':
+      return `round, diameter ${givenMm(magnets.diameter)} mm, ${thick} thick`;
+    case 'sector': {
+      const size = `${givenMm(magnets.length)} mm long, ${thick} thick`;
+      return magnets.segments > 1
+        ? `Halbach array, ${magnets.segments} pieces a pole, ${size}`
+        : `sectors, arc ${given(magnets.arc)} of the pole pitch, ${size}`;
+    }
+  }
+}
+
+function interpoleRows({ interpoles }: Machine['rotor'], materials: Machine['materials']): SheetRow[] {
+  if (interpoles === undefined) return [];
+  const { width, depth, through, material } = interpoles;
+  const across = width === 'fill' ? 'fill the room between the magnets' : `${givenMm(width)} mm wide`;
+  const deep = through ? `${givenMm(depth)} mm deep, through the disc` : `${givenMm(depth)} mm deep`;
+  return [{ label: 'Interpoles', value: `${across}, ${deep}, ${materialText(material, materials)}` }];
 }
 
 const rowsBlock = (rows: readonly SheetRow[]): SheetBlock => ({ kind: 'rows', rows });
@@ -186,6 +215,7 @@ function emfGroup({ emf, winding }: MachineResult): SheetGroup {
   ];
   const rows = [
     { label: 'Speed', value: `${given(emf.speed_rpm)} rpm, ${figure(emf.frequency_Hz)} Hz` },
+    ...endRows(emf),
     ...voltage('Phase', emf.phase),
     ...voltage('Line', emf.line),
     {
@@ -205,6 +235,23 @@ function emfGroup({ emf, winding }: MachineResult): SheetGroup {
   };
 }
 
+/** What the third dimension does to the EMF, and the EMF without it. */
+function endRows(emf: MachineResult['emf']): SheetRow[] {
+  const alone = `${figure(emf.slices_alone.phase_rms_V)} V, phase rms`;
+  const { end_factor: factor, end_factor_band: band = 0, end_factor_legs: legs = 1 } = emf;
+  if (factor === undefined) return [];
+  return [
+    { label: 'Slices alone', value: alone },
+    {
+      label: 'End factor',
+      value: `${figure(factor)}${emf.end_corrected ? '' : ' (off: not applied)'}`,
+      note: `± ${percent(band, 2)} for what its model leaves out`,
+    },
+    { label: 'End factor, legs', value: `${figure(legs)}, straight legs over the magnets alone` },
+  ];
+}
+
+const ENDS_TAKEN = 'end factor included; ± is what mesh and sums leave, the band of the end factor comes on top';
 const SLICES_ALONE =
   'from the slices alone, without end factor: expect some percent less; ± is what the mesh leaves, no more';
 
@@ -236,9 +283,8 @@ function harmonicsTable(emf: MachineResult['emf'], winding: MachineResult['windi
       return [String(n), ...cells(emf.phase, n), ...cells(emf.line, n), factor === undefined ? '-' : factor.toFixed(4)];
     }),
     caption:
-      orders.length < emf.phase.order.length
-        ? `${SLICES_ALONE}; orders above ${orders.at(-1)} stay below 0.01 % of the first`
-        : SLICES_ALONE,
+      (emf.end_corrected ? ENDS_TAKEN : SLICES_ALONE) +
+      (orders.length < emf.phase.order.length ? `; orders above ${orders.at(-1)} stay below 0.01 % of the first` : ''),
   };
 }
 

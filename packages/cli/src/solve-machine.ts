@@ -1,6 +1,6 @@
 import { triangleMeans } from '@gapwright/fem-core';
 import type { Machine, SolvedSlice } from '@gapwright/machine-models';
-import { describeMachine, imagesOfPolePair, readMachine, solveSlice } from '@gapwright/machine-models';
+import { describeMachine, findAll, imagesOfPolePair, readMachine, sliceSteps } from '@gapwright/machine-models';
 import type { Engine, SliceField } from './engine.js';
 import { magnitudeOf } from './magnitude.js';
 import { stopIfInterrupted } from './surroundings.js';
@@ -10,21 +10,23 @@ export const machineEngine: Engine = {
   read: readMachine,
 
   async solve(machine, options) {
-    const slices: SolvedSlice[] = [];
-    for (const [index, slice] of machine.model.slices.entries()) {
+    const steps = sliceSteps(machine);
+    for (let count = 0; ; count++) {
       await new Promise((resolve) => setImmediate(resolve)); // lets an interruption be heard between slices
       stopIfInterrupted(options.signal);
-      const solved = solveSlice(machine, slice);
-      slices.push(solved);
-      options.onSlice(solved.answer, index);
+      const step = steps.next();
+      if (!step.done) {
+        options.onSlice(step.value.answer, count);
+        continue;
+      }
+      const findings = findAll(machine, step.value);
+      const stamp = { version: options.version, inputSha256: options.inputSha256 };
+      return {
+        result: describeMachine(machine, findings, options.warnings, stamp),
+        answers: findings.slices,
+        fieldOf: (index) => pictured(machine, step.value.slices[index]),
+      };
     }
-    const answers = slices.map(({ answer }) => answer);
-    const stamp = { version: options.version, inputSha256: options.inputSha256 };
-    return {
-      result: describeMachine(machine, answers, options.warnings, stamp),
-      answers,
-      fieldOf: (index) => pictured(machine, slices[index]),
-    };
   },
 };
 

@@ -2,6 +2,8 @@
 export interface Output {
   write(text: string): unknown;
   readonly isTTY?: boolean | undefined;
+  /** Characters a line of the terminal holds. */
+  readonly columns?: number | undefined;
 }
 
 /** All that the commands know of the process they run in. */

@@ -27,6 +27,8 @@ export type LibraryMaterial =
       readonly kind: 'magnet';
       /** At 20 degC, T. */
       readonly remanence: number;
+      /** What the grade may have at 20 degC, T; `remanence` is what is taken. */
+      readonly remanenceRange?: readonly [lowest: number, highest: number];
       /** Demagnetisation curve at 20 degC where one is given: rows [H in A/m, B in T], one of them [0, remanence]. */
       readonly demagnetisation?: readonly (readonly [H: number, B: number])[];
       readonly recoil: number;
@@ -35,6 +37,8 @@ export type LibraryMaterial =
       /** A/m at 20 degC. */
       readonly coercivityIntrinsic?: number;
       readonly coercivitySlope?: number;
+      /** degC: the usual limit of the grade, for magnets in a good circuit; the working point decides. */
+      readonly highestTemperature?: number;
       readonly density?: number;
       readonly source: string;
     };
@@ -55,7 +59,21 @@ export interface Rotor {
   readonly gap: number;
   /** Undefined when ironless (material: none). */
   readonly disc: Disc | undefined;
+  /** The plain disc opposite the magnets; arrangement keeper only. */
+  readonly keeper: { readonly material: string; readonly thickness: number } | undefined;
   readonly magnets: Magnets;
+  readonly interpoles: Interpoles | undefined;
+}
+
+/** Magnets between the main ones, magnetised along the circumference so that the gap gains; as hot as the main ones. */
+export interface Interpoles {
+  /** `fill`: all the room between the main magnets at each radius; else m, about midway between two poles. */
+  readonly width: number | 'fill';
+  /** From the magnet face backwards, m. */
+  readonly depth: number;
+  /** They reach through the disc: what is left of it is a steel plate a pole. */
+  readonly through: boolean;
+  readonly material: string;
 }
 
 export interface MagnetsCommon {
@@ -67,8 +85,15 @@ export interface MagnetsCommon {
 }
 export type Magnets =
   | (MagnetsCommon & { readonly shape: 'block'; readonly width: number; readonly length: number })
-  /** `arc` is the share of the pole pitch, above 0, at most 1. */
-  | (MagnetsCommon & { readonly shape: 'sector'; readonly arc: number; readonly length: number });
+  | (MagnetsCommon & {
+      readonly shape: 'sector';
+      /** Share of the pole pitch, above 0, at most 1; 1 for a Halbach array. */
+      readonly arc: number;
+      readonly length: number;
+      /** Pieces a pole, each turned by 180/segments degrees against the one before, strong side to the gap; 1: plain magnets. */
+      readonly segments: number;
+    })
+  | (MagnetsCommon & { readonly shape: 'round'; readonly diameter: number });
 
 /** The hole of a concentrated coil: a trapezium on the coil's axis, widths straight across. */
 export interface Opening {
@@ -91,7 +116,7 @@ export interface Wire {
 }
 
 interface WindingCommon {
-  readonly phases: 3;
+  readonly phases: 2 | 3 | 5 | 6;
   /** All coils of the machine. */
   readonly coils: number;
   /** Per coil (overlapped: conductors per leg). */
@@ -127,6 +152,8 @@ export interface Operation {
 export interface Model {
   /** Radii of the slices and their weights: integral over the magnets' radial length of f dr = sum weight f(radius). */
   readonly slices: readonly { readonly radius: number; readonly weight: number }[];
+  /** These are the first choice only: finer ones follow until the leg's flux settles. */
+  readonly auto: boolean;
   /** Wanted relative error, from the mesh, of the effective leg flux density. */
   readonly accuracy: number;
   readonly endCorrection: boolean;

@@ -3,6 +3,7 @@ import { expect, test } from 'vitest';
 import { InputError } from '../../../packages/fem-core/src/base/fault.js';
 import { readMachine } from '../../../packages/machine-models/src/input/read-machine.js';
 import { legCut } from '../../../packages/machine-models/src/winding/leg-cut.js';
+import { scrapped } from '../../helpers/scraps.js';
 import { HUT } from './hut.js';
 
 /** Reads the text; anything but a machine or an InputError fails the test. Returns the faults. */
@@ -23,75 +24,14 @@ function readAnything(text: string): InputError | undefined {
   }
 }
 
-const SCRAPS = [
-  '',
-  ' ',
-  '\n',
-  '\t',
-  ':',
-  '-',
-  '- ',
-  '#',
-  '[',
-  ']',
-  '{',
-  '}',
-  ',',
-  '&a ',
-  '*a',
-  '!x ',
-  '"',
-  "'",
-  '|',
-  '>',
-  '?',
-  '%',
-  '~',
-  '0',
-  '1',
-  '-1',
-  '1e308',
-  '.nan',
-  '.inf',
-  'true',
-  'null',
-  'fill',
-  'fit',
-  'auto',
-  'none',
-  ' mm',
-  ' in',
-  ' V',
-  ' %',
-  ' degC',
-  '__proto__: {a: 1}',
-  'constructor',
-  '\u0000',
-  '\u2028',
-  '\ufeff',
-  '<<: *a',
-  'steel',
-  'round',
-  'overlapped',
-  'tapered',
-  'delta',
-  'keeper',
-  '999999999',
-  '1e-9',
+const VALUES = [
+  ...['1', '-1', '1e308', '999999999', '1e-9', '.nan', '.inf', 'true', 'null', ' mm', ' in', ' V', ' %', ' degC'],
+  ...['fill', 'fit', 'auto', 'none', 'steel', 'round', 'overlapped', 'tapered', 'delta', 'keeper'],
 ];
 
 test('the hut with random scraps in random places is a machine or an InputError with places', () => {
-  const cut = fc.record({
-    at: fc.nat(HUT.length),
-    length: fc.oneof(fc.constant(0), fc.nat(12), fc.nat(300)),
-    scrap: fc.oneof(fc.constantFrom(...SCRAPS), fc.string({ unit: 'binary', maxLength: 6 })),
-  });
   fc.assert(
-    fc.property(fc.array(cut, { minLength: 1, maxLength: 4 }), (cuts) => {
-      const text = cuts.reduce(
-        (whole, { at, length, scrap }) => whole.slice(0, at) + scrap + whole.slice(at + length),
-        HUT,
-      );
+    fc.property(scrapped(HUT, VALUES), (text) => {
       const error = readAnything(text);
       for (const fault of error?.faults ?? []) {
         expect(fault.at?.line).toBeGreaterThanOrEqual(1);

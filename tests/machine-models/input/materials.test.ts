@@ -62,6 +62,7 @@ describe('a steel described wrongly', () => {
     ['{kind: steel, mu_r: 9, bh: [[1, 1]]}', 'materials.plate: gives mu_r and bh at once'],
     ['{kind: steel, mu_r: 0.5}', 'materials.plate.mu_r: must be at least 1, got 0.5'],
     ['{kind: steel, bh: 3}', 'materials.plate.bh: must be a list, got 3'],
+    ['{kind: steel, bh: [[1e-320, 1e-320]]}', 'materials.plate.bh.0: 1e-320 A/m is too little to be measured'],
     ['{kind: steel, bh: [[0, 0], [1, 2, 3]]}', 'materials.plate.bh.1: must be a pair, got a list of 3'],
     ['{kind: steel, bh: [[0, 0], [1 A/m, 2]]}', 'materials.plate.bh.1.0: must be a bare number, got 1 A/m'],
   ])('%s', (steel, message) => {
@@ -167,4 +168,58 @@ describe('a table in a file of its own', () => {
     expect(rows).toHaveLength(10_000);
     expect(faults.map(({ wrong }) => wrong)).toEqual(['has more than 10000 rows']);
   });
+});
+
+describe('a demagnetisation curve in a file of its own', () => {
+  const setting = 'materials.m={kind: magnet, demagnetisation_file: m.csv}';
+  const read = (csv: string, ...more: readonly string[]) =>
+    readText(HUT, [setting, ...more], { 'm.csv': csv }).machine.materials.m;
+
+  test('gives curve and remanence', () => {
+    expect(read('# at 20 degC\nH, B\n0, 1.2\n-4e5, 0.67\n-420000, 0.2\n')).toMatchObject({
+      kind: 'magnet',
+      remanence: 1.2,
+      demagnetisation: [
+        [0, 1.2],
+        [-4e5, 0.67],
+        [-4.2e5, 0.2],
+      ],
+    });
+  });
+
+  test.each([
+    ['0, 1.2\n-4e5 A/m, 0.67\n', 'm.csv:2:1: materials.m.demagnetisation_file: is no row of two numbers'],
+    ['0, 1.2\n-4e5\n', 'give H in A/m and B in T, for example -4e5, 0.67'],
+    [
+      '0, 1.2\n  4e5, 0.67\n',
+      'm.csv:2:3: materials.m.demagnetisation_file: lies outside the second and third quadrants',
+    ],
+    ['H,B\n-1e5, 1.0\n-4e5, 0.6\n', 'm.csv:2:1: materials.m.demagnetisation_file: is no remanence'],
+    ['0, 1.2\n\n-4e5, 1.3\n', 'm.csv:3:1: materials.m.demagnetisation_file: does not fall in both columns'],
+    ['0, 12\n-4e5, 6.7\n', "m.csv:1:1: materials.m.demagnetisation_file: 12 T is more than any magnet's remanence"],
+    ['0, 1.2\n', 'm.csv:1:1: materials.m.demagnetisation_file: the curve has too few rows'],
+  ])('%j is told at its own line', (csv, message) => {
+    const faults = faultsOf(() => read(csv));
+    expect(faults).toHaveLength(1);
+    expect(faults[0]).toContain(message);
+  });
+
+  test('beside a remanence or rows of the file itself is refused', () => {
+    const csv = '0, 1.2\n-4e5, 0.67\n';
+    const [remanence] = faultsOf(() => read(csv, 'materials.m.remanence=1.2 T'));
+    expect(remanence).toContain('materials.m: gives remanence and demagnetisation_file at once');
+    const [rows] = faultsOf(() => read(csv, 'materials.m.demagnetisation=[[0, 1.2], [-4e5, 0.67]]'));
+    expect(rows).toContain('materials.m: gives demagnetisation and demagnetisation_file at once');
+  });
+
+  test('that cannot be read is told once', () => {
+    const faults = faultsOf(() => readHut(setting, 'rotor.magnets.material=m'));
+    expect(faults).toHaveLength(1);
+    expect(faults[0]).toContain('materials.m.demagnetisation_file: cannot be read: there is no such file');
+  });
+});
+
+test('the usual highest temperature of a magnet of the file', () => {
+  const { materials } = readHut('materials.m={kind: magnet, remanence: 1.2 T, highest_temperature: 176 degF}').machine;
+  expect(materials.m).toMatchObject({ highestTemperature: 80 });
 });

@@ -8,7 +8,7 @@ import { singleToothWindingFactor } from '../../helpers/single-tooth.js';
 
 const stamp = { version: '0.1.0', inputSha256: 'abc' };
 const solve = (machine: Machine): ReturnType<typeof describeMachine> =>
-  describeMachine(machine, closedFormSlices(machine), [], stamp);
+  describeMachine(machine, { slices: closedFormSlices(machine) }, [], stamp);
 
 describe('hut hydro with ideal discs', () => {
   const machine = hutHydro();
@@ -31,7 +31,16 @@ describe('hut hydro with ideal discs', () => {
       ...machine,
       rotor: {
         ...machine.rotor,
-        magnets: { shape: 'sector' as const, arc: 1, length: 0.055, material, thickness, meanRadius, temperature },
+        magnets: {
+          shape: 'sector' as const,
+          arc: 1,
+          length: 0.055,
+          segments: 1,
+          material,
+          thickness,
+          meanRadius,
+          temperature,
+        },
       },
     };
     const ring = Math.PI * (0.1555 ** 2 - 0.1005 ** 2) * 0.012;
@@ -103,7 +112,7 @@ describe('warnings', () => {
   test('of the reader come first, and a slice that failed adds its own', () => {
     const given = { key: 'operation.load', text: 'left out' };
     const bad = slices.map((slice, i) => ({ ...slice, converged: i !== 0, accurate: i !== 2 }));
-    const { warnings } = describeMachine(machine, bad, [given], stamp);
+    const { warnings } = describeMachine(machine, { slices: bad }, [given], stamp);
     expect(warnings.map(({ key }) => key)).toEqual(['operation.load', 'slices[0]', 'slices[2]']);
     expect(warnings[1].text).toMatch(/100\.5 mm did not converge/);
     expect(warnings[2].text).toMatch(/0\.20 %/);
@@ -131,7 +140,7 @@ describe('cautions', () => {
       rotor: { ...machine.rotor, gap: 0.06, magnets: { ...magnets, length: 0.015 } },
     };
     const weak = closedFormSlices(tiny).map((slice) => ({ ...slice, pull: 0.1 }));
-    const { cautions } = describeMachine(tiny, weak, [], stamp);
+    const { cautions } = describeMachine(tiny, { slices: weak }, [], stamp);
     expect(cautions.some((each) => /^Crushing/.test(each))).toBe(false);
   });
 
@@ -167,7 +176,7 @@ describe('cautions', () => {
   test('saturated discs draw a warning, others none', () => {
     const keys = (discB: number): readonly string[] => {
       const slices = closedFormSlices(machine).map((slice) => ({ ...slice, discB }));
-      return describeMachine(machine, slices, [], stamp).warnings.map(({ key }) => key);
+      return describeMachine(machine, { slices }, [], stamp).warnings.map(({ key }) => key);
     };
     expect(keys(1.7)).toEqual([]);
     expect(keys(2.1)).toEqual(['rotor.disc.thickness']);
@@ -186,7 +195,7 @@ describe('cautions', () => {
         ...slice,
         windingB: { order: [1, 3], amplitude: [0.5, 0.2] },
       }));
-      return describeMachine(other, slices, [], stamp).cautions.filter((text) => /^Circulating/.test(text));
+      return describeMachine(other, { slices }, [], stamp).cautions.filter((text) => /^Circulating/.test(text));
     };
     expect(third('star')).toEqual([]);
     expect(third('delta')[0]).toMatch(/V rms per phase.*A through it/);

@@ -1,9 +1,15 @@
 import fc from 'fast-check';
 import { Matrix, solve } from 'ml-matrix';
 import { describe, expect, test } from 'vitest';
-import type { Machine } from '../../../packages/machine-models/src/machine.js';
-import { circulatingEmf, computeEmf, describeEmf } from '../../../packages/machine-models/src/results/emf.js';
-import { windingFactor } from '../../../packages/machine-models/src/results/winding-figures.js';
+import type { Machine, Winding } from '../../../packages/machine-models/src/machine.js';
+import {
+  circulatingEmf,
+  computeEmf,
+  describeEmf,
+  rectifiedPeak,
+} from '../../../packages/machine-models/src/results/emf.js';
+import { lineResistanceHot } from '../../../packages/machine-models/src/results/merit.js';
+import { describeWinding, windingFactor } from '../../../packages/machine-models/src/results/winding-figures.js';
 import type { SliceAnswer } from '../../../packages/machine-models/src/slices/slice-answer.js';
 import { evaluate, peak, rms } from '../../../packages/machine-models/src/waves/series.js';
 import { coilPlaces } from '../../../packages/machine-models/src/winding/coil-places.js';
@@ -56,8 +62,14 @@ function g1(): Machine {
       thickness: 0.013,
     },
     operation: { speedRpm: 300, ambient: 20 },
-    model: { slices: [{ radius, weight: 0.046 }], accuracy: 0.002, endCorrection: false },
+    model: { slices: [{ radius, weight: 0.046 }], auto: false, accuracy: 0.002, endCorrection: false },
   };
+}
+
+/** Hut hydro with another balanced set of concentrated coils. */
+function withPhases(phases: Winding['phases'], coils: number, poles: number): Machine {
+  const hut = withWinding(hutHydro(), { phases, coils });
+  return { ...hut, rotor: { ...hut.rotor, poles } };
 }
 
 /** Harmonics of samples at whole degrees by least squares, sines and cosines of the odd orders up to `highest`. */
@@ -122,6 +134,10 @@ describe('flux cutting agrees with the rate of change of flux linkage', () => {
     ['hut hydro, tapered legs', withWinding(hutHydro(), { legShape: 'tapered' })],
     ['overlapped', overlappedHydro()],
     ['twelve coils on ten poles', { ...hutHydro(), rotor: { ...hutHydro().rotor, poles: 10 } }],
+    ['two phases', withPhases(2, 12, 10)],
+    ['five phases', withPhases(5, 10, 12)],
+    ['six phases', withPhases(6, 12, 10)],
+    ['six phases, overlapped', withWinding(overlappedHydro(), { phases: 6, coils: 48 })],
   ])('%s: e = -d(linkage)/dt of the coils in series, at any angle', (_, machine) => {
     const slices = closedFormSlices(machine).map((slice) => ({
       ...slice,
@@ -141,7 +157,7 @@ describe('flux cutting agrees with the rate of change of flux linkage', () => {
     const phasePeak = peak(phases[0]);
     for (const theta of [0.2, 1.3, 2.9]) {
       const step = 1e-4; // mechanical radians
-      for (const phase of [1, 2, 3]) {
+      for (let phase = 1; phase <= machine.winding.phases; phase++) {
         const linkage = (rotor: number): number =>
           places
             .filter((place) => place.phase === phase)
@@ -396,9 +412,147 @@ describe('delta', () => {
     expect(inStar.line.rms_V / inDelta.line.rms_V).toBeCloseTo(Math.sqrt(3), 9);
     // the same set of harmonics, turned by 30 degrees in alternating sense, so peaks and means differ a little more
     expect(relativeError(inStar.rectified_mean_V / inDelta.rectified_mean_V, Math.sqrt(3))).toBeLessThan(5e-3);
-    const { lines } = computeEmf(delta, slices);
+    const lines = computeEmf(delta, slices).lines[0].series;
     const sum = [0.4, 2].map((theta) => lines.reduce((total, line) => total + evaluate(line, theta), 0));
     for (const value of sum) expect(value).toBeCloseTo(0, 10); // round the terminals
     expect(rms(lines[0])).toBeCloseTo(inDelta.line.rms_V, 10);
+  });
+});
+
+describe('star and delta of three phases, order by order', () => {
+  test('third harmonic: in the phase, never in the line of a star; other orders sqrt(3) in star, 1 in delta', () => {
+    const hut = hutHydro();
+    for (const machine of [hut, overlappedHydro(), g1()]) {
+      const slices = closedFormSlices(machine);
+      const [star, delta] = (['star', 'delta'] as const).map((connection) =>
+        describeEmf({ ...machine, winding: { ...machine.winding, connection } }, slices),
+      );
+      for (const [i, n] of star.phase.order.entries()) {
+        const phase = star.phase.harmonic_rms_V[i];
+        const [inStar, inDelta] = n % 3 === 0 ? [0, 0] : [Math.sqrt(3), 1];
+        expect(star.line.harmonic_rms_V[i]).toBeCloseTo(inStar * phase, 10);
+        expect(delta.line.harmonic_rms_V[i]).toBeCloseTo(inDelta * phase, 10);
+        expect(delta.phase.harmonic_rms_V[i]).toBe(phase);
+      }
+      expect(star.phase.harmonic_rms_V[1]).toBeGreaterThan(1e-3 * star.phase.rms_V);
+    }
+  });
+});
+
+describe('two, five and six phases', () => {
+  /** The same machine in a field without harmonics. */
+  const pure = (machine: Machine): readonly SliceAnswer[] =>
+    closedFormSlices(machine).map((slice) => ({ ...slice, windingB: { order: [1], amplitude: [0.5] } }));
+  const cases = [
+    [2, 90, withPhases(2, 12, 10)],
+    [2, 90, withWinding(overlappedHydro(), { phases: 2, coils: 16 })],
+    [3, 120, hutHydro()],
+    [5, 72, withPhases(5, 10, 12)],
+    [5, 72, withWinding(overlappedHydro(), { phases: 5, coils: 40 })],
+    [6, 120, withPhases(6, 12, 10)],
+    [6, 120, withWinding(overlappedHydro(), { phases: 6, coils: 48 })],
+  ] as const;
+
+  test.each(cases)(
+    '%i phases: one wave, each phase lagging as it should; line between neighbours %i apart',
+    (phases, apart, machine) => {
+      const emf = computeEmf(machine, closedFormSlices(machine));
+      expect(emf.phases).toHaveLength(phases);
+      const lags = { 2: [0, 90], 3: [0, 120, 240], 5: [0, 72, 144, 216, 288], 6: [0, 120, 240, 30, 150, 270] }[phases];
+      for (const theta of [0.1, 1, 2.2]) {
+        for (const [k, lag] of lags.entries()) {
+          const later = evaluate(emf.phases[k], theta + (lag * Math.PI) / 180);
+          expect(later).toBeCloseTo(evaluate(emf.phases[0], theta), 8);
+        }
+        const line = evaluate(emf.lines[0].series[0], theta);
+        expect(line).toBeCloseTo(evaluate(emf.phases[0], theta) - evaluate(emf.phases[1], theta), 9);
+      }
+      const { phase, line } = describeEmf(machine, closedFormSlices(machine));
+      expect(line.fundamental_rms_V / phase.fundamental_rms_V).toBeCloseTo(2 * Math.sin((apart * Math.PI) / 360), 9);
+    },
+  );
+
+  test.each(cases)(
+    '%i phases (%i): the rectified wave is the highest less the lowest terminal of a star, the higher star of two',
+    (phases, _, machine) => {
+      const slices = closedFormSlices(machine);
+      const emf = computeEmf(machine, slices);
+      const { rectified_V } = describeEmf(machine, slices).waveform;
+      const groups =
+        phases === 6
+          ? [
+              [0, 1, 2],
+              [3, 4, 5],
+            ]
+          : [Array.from({ length: phases }, (_, k) => k)];
+      for (const degree of [0, 17, 100, 233]) {
+        const spans = groups.map((group) => {
+          const terminals = group.map((k) => evaluate(emf.phases[k], (degree * Math.PI) / 180));
+          return Math.max(...terminals) - Math.min(...terminals);
+        });
+        expect(rectified_V[degree]).toBeCloseTo(Math.max(...spans), 9);
+      }
+      expect(rectifiedPeak(emf)).toBeGreaterThan(Math.max(...rectified_V) * (1 - 1e-9));
+      expect(rectifiedPeak(emf)).toBeLessThan(Math.max(...rectified_V) * 1.001);
+    },
+  );
+
+  test('sinusoidal EMFs rectify to the closed forms', () => {
+    for (const [phases, , machine] of cases) {
+      const { phase, rectified_mean_V } = describeEmf(machine, pure(machine));
+      const odd = ((2 * phases) / Math.PI) * Math.sin(Math.PI / phases);
+      const even = phases === 2 ? (2 * Math.SQRT2) / Math.PI : Math.sqrt(3) * (12 / Math.PI) * Math.sin(Math.PI / 12);
+      expect(rectified_mean_V / phase.peak_V).toBeCloseTo(phases % 2 === 0 ? even : odd, 7);
+    }
+  });
+
+  test('orders 5, 15, 25 of five phases do not reach the line, and the terminals two apart see most', () => {
+    const machine = withPhases(5, 10, 12);
+    const slices = closedFormSlices(machine);
+    const { phase, line } = describeEmf(machine, slices);
+    for (const i of [2, 7, 12]) expect(line.harmonic_rms_V[i]).toBeLessThan(1e-12 * line.rms_V);
+    expect(line.harmonic_rms_V[1] / phase.harmonic_rms_V[1]).toBeCloseTo(2 * Math.sin((108 * Math.PI) / 180), 8);
+    const emf = computeEmf(machine, pure(machine));
+    expect(emf.lines.map(({ series }) => series.length)).toEqual([5, 5]);
+    expect(peak(emf.lines[1].series[0]) / peak(emf.lines[0].series[0])).toBeCloseTo((1 + Math.sqrt(5)) / 2, 9);
+  });
+
+  test('the bound of the rectified mean holds whatever each harmonic is off by within its bound', () => {
+    for (const [, , machine] of cases) {
+      const bounds = [4e-3, 2e-3, 3e-3];
+      const exact = describeEmf(machine, closedFormSlices(machine, bounds));
+      for (const signs of [
+        [1, 1, 1],
+        [1, -1, 1],
+        [-1, 1, 1],
+        [1, 1, -1],
+      ]) {
+        const off = closedFormSlices(machine).map((slice) => ({
+          ...slice,
+          windingB: {
+            ...slice.windingB,
+            amplitude: slice.windingB.amplitude.map((b, i) => b + (signs[i] ?? 0) * (bounds[i] ?? 0)),
+          },
+        }));
+        const got = describeEmf(machine, off).rectified_mean_V;
+        expect(relativeError(got, exact.rectified_mean_V)).toBeLessThan(exact.rectified_mean_V_rel_err);
+      }
+    }
+  });
+
+  test('copper shared among more phases: as much wire, resistance of a phase in proportion to its share of the coils', () => {
+    const [three, six] = [hutHydro(), withWinding(hutHydro(), { phases: 6 })].map(describeWinding);
+    expect(six.wire_length_m).toBe(three.wire_length_m);
+    expect(six.phase_resistance_20C_ohm).toBeCloseTo(three.phase_resistance_20C_ohm / 2, 12);
+    expect(lineResistanceHot(withWinding(hutHydro(), { phases: 6 }))).toBeCloseTo(2 * six.phase_resistance_hot_ohm, 12);
+  });
+
+  test('the phase map numbers 1 to the number of phases, as many coils each', () => {
+    for (const [phases, , machine] of cases) {
+      const { phase_map } = describeWinding(machine);
+      expect(phase_map).toHaveLength(machine.winding.coils);
+      const counts = Array.from({ length: phases }, (_, k) => phase_map.filter(({ phase }) => phase === k + 1).length);
+      expect(new Set(counts)).toEqual(new Set([machine.winding.coils / phases]));
+    }
   });
 });

@@ -42,7 +42,7 @@ describe('error bounds', () => {
     ['coils out of step', { ...hutHydro(), rotor: { ...hutHydro().rotor, poles: 14 } }],
   ])('%s: no error of the slices within their bounds moves a figure by more than its own bound', (_, machine) => {
     const slices = closedFormSlices(machine, bounds);
-    const told = figuresOf(describeMachine(machine, slices, [], stamp));
+    const told = figuresOf(describeMachine(machine, { slices }, [], stamp));
     expect(told.length).toBeGreaterThan(15);
     fc.assert(
       fc.property(shares, (share) => {
@@ -53,7 +53,7 @@ describe('error bounds', () => {
             amplitude: slice.windingB.amplitude.map((b, i) => (i < 4 ? b + share[4 * s + i] * bounds[i] : b)),
           },
         }));
-        const got = figuresOf(describeMachine(machine, wrong, [], stamp));
+        const got = figuresOf(describeMachine(machine, { slices: wrong }, [], stamp));
         for (const [i, [name, value, relativeBound]] of told.entries()) {
           const secondOrder = 1 + 2 * relativeBound; // the bounds are first order; squares need their own square
           const off = Math.abs(got[i][1] - value);
@@ -74,14 +74,14 @@ describe('error bounds', () => {
         amplitude: slice.windingB.amplitude.map((b, i) => (i === 0 ? b + bounds[0] : b)),
       },
     }));
-    const [told, got] = [slices, worst].map((list) => describeMachine(machine, list, [], stamp).emf.phase);
+    const [told, got] = [slices, worst].map((list) => describeMachine(machine, { slices: list }, [], stamp).emf.phase);
     const moved = got.fundamental_rms_V / told.fundamental_rms_V - 1;
     expect(moved).toBeCloseTo(told.fundamental_rms_V_rel_err, 10);
   });
 
   test('merit has twice the bound of the voltage it squares, line_B_squared_thickness that of the line peak', () => {
     const machine = hutHydro();
-    const result = describeMachine(machine, closedFormSlices(machine, bounds), [], stamp);
+    const result = describeMachine(machine, { slices: closedFormSlices(machine, bounds) }, [], stamp);
     expect(result.merit.merit_W_rel_err).toBe(2 * result.emf.rectified_mean_V_rel_err);
     expect(result.merit.line_B_squared_thickness_T2m_rel_err).toBe(2 * result.effective_B.line_peak_T_rel_err);
   });
@@ -93,7 +93,7 @@ describe('error bounds', () => {
         machine,
         bounds.map((b) => k * b),
       );
-      return figuresOf(describeMachine(machine, slices, [], stamp));
+      return figuresOf(describeMachine(machine, { slices }, [], stamp));
     });
     for (const [i, [, , bound]] of once.entries()) expect(thrice[i][2]).toBeCloseTo(3 * bound, 12);
   });

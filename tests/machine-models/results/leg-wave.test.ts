@@ -53,7 +53,7 @@ describe('the wave of a leg', () => {
 
   test('the line wave is the wave less itself 120 degrees later, without triplen orders', () => {
     const leg = legWave(machine, slices[0]);
-    const line = lineWave(leg);
+    const line = lineWave(leg, 3);
     for (const theta of [0, 0.5, 2, 4.4]) {
       const expected = evaluate(leg.series, theta) - evaluate(leg.series, theta - (2 * Math.PI) / 3);
       expect(evaluate(line.series, theta)).toBeCloseTo(expected, 12);
@@ -61,6 +61,26 @@ describe('the wave of a leg', () => {
     for (const [i, n] of line.series.order.entries()) {
       if (n % 3 === 0)
         expect([line.series.cos[i], line.series.sin[i], line.bounds[i]].map(Math.abs)).toEqual([0, 0, 0]);
+    }
+  });
+});
+
+describe('the line wave of other than three phases', () => {
+  test.each([
+    [2, 90, []],
+    [5, 72, [5, 15, 25]],
+    [6, 120, [3, 9, 15]],
+  ] as const)('%i phases: the wave less itself %i degrees later, exactly 0 at orders %j', (phases, degrees, none) => {
+    const leg = legWave(machine, slices[0]);
+    const line = lineWave(leg, phases);
+    for (const theta of [0, 0.5, 2, 4.4]) {
+      const expected = evaluate(leg.series, theta) - evaluate(leg.series, theta - (degrees * Math.PI) / 180);
+      expect(evaluate(line.series, theta)).toBeCloseTo(expected, 12);
+    }
+    for (const [i, n] of line.series.order.entries()) {
+      const size = Math.hypot(line.series.cos[i], line.series.sin[i]) + line.bounds[i];
+      if (none.some((order) => order === n)) expect(size).toBe(0);
+      else if (n < 20 && leg.series.cos[i] !== 0) expect(size).toBeGreaterThan(0);
     }
   });
 });

@@ -1,4 +1,6 @@
-import { applyFunctional, buildLocator, nodeCount, nodePoint, solveSection, valueAt } from '@gapwright/fem-core';
+import { buildLocator, solveSection, valueAt } from '@gapwright/fem-core';
+import { applyFunctional } from '@gapwright/fem-core/goals';
+import { nodeCount, nodePoint } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import {
   midPlaneShare,

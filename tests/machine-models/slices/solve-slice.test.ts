@@ -1,4 +1,4 @@
-import { checkMesh, nodeCount, triangleCount } from '@gapwright/fem-core';
+import { checkMesh, nodeCount, triangleCount } from '@gapwright/fem-core/mesh';
 import { describe, expect, test } from 'vitest';
 import type { Machine } from '../../../packages/machine-models/src/machine.js';
 import { solveSlice } from '../../../packages/machine-models/src/slices/solve-slice.js';

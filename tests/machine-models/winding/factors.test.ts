@@ -1,6 +1,11 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { type CoilPlace, starOfSlots } from '../../../packages/machine-models/src/winding/coil-places.js';
+import {
+  type CoilPlace,
+  isBalanced,
+  overlappedCoils,
+  starOfSlots,
+} from '../../../packages/machine-models/src/winding/coil-places.js';
 import {
   coilSum,
   distributionFactor,
@@ -28,7 +33,7 @@ describe('single-tooth winding factors', () => {
   );
 
   test.each(cases)('%i coils on %i poles', (coils, poles, [kd, kp, ...kw]) => {
-    expect(distributionFactor(starOfSlots(coils, poles), poles, 1)).toBeCloseTo(kd, 6);
+    expect(distributionFactor(starOfSlots(coils, poles, 3), poles, 1)).toBeCloseTo(kd, 6);
     expect(Math.abs(pitchFactor((Math.PI * poles) / (2 * coils), 1))).toBeCloseTo(kp, 6);
     for (const [i, expected] of kw.entries()) {
       expect(singleToothWindingFactor(coils, poles, 2 * i + 1)).toBeCloseTo(expected, 6);
@@ -40,8 +45,75 @@ describe('single-tooth winding factors', () => {
   });
 
   test('12 coils on 10 poles: pairs 15 degrees to either side cost about 3.5 % of voltage (Piggott, 2012 [READ])', () => {
-    expect(1 - distributionFactor(starOfSlots(12, 10), 10, 1)).toBeCloseTo(0.035, 2);
+    expect(1 - distributionFactor(starOfSlots(12, 10, 3), 10, 1)).toBeCloseTo(0.035, 2);
   });
+});
+
+describe('distribution factors against the textbook form kd = sin(q b/2) / (q sin(b/2)), b between neighbouring slots', () => {
+  const oddOrders = Array.from({ length: 13 }, (_, i) => 2 * i + 1);
+  const closedForm = (q: number, b: number): number => Math.sin((q * b) / 2) / (q * Math.sin(b / 2));
+
+  test('coils side by side, any balanced set of 2, 3, 5 or 6 phases: q directions spread evenly over a belt', () => {
+    fc.assert(
+      fc.property(
+        fc.constantFrom(2, 3, 5, 6),
+        fc.integer({ min: 1, max: 12 }),
+        fc.integer({ min: 1, max: 30 }),
+        (phases, parts, pairs) => {
+          const coils = (phases % 2 === 0 ? 2 : 1) * phases * parts;
+          fc.pre(isBalanced(coils, 2 * pairs, phases));
+          const places = starOfSlots(coils, 2 * pairs, phases);
+          // directions of a phase, a reversed coil counted half a turn on; q of them share a belt of pi/phases
+          const steps = places.flatMap(({ phase, sense }, k) =>
+            phase === 1 ? [(2 * pairs * k + (sense < 0 ? coils : 0)) % (2 * coils)] : [],
+          );
+          const q = new Set(steps).size;
+          for (const order of oddOrders) {
+            const expected = closedForm(q, (order * Math.PI) / (phases * q));
+            expect(distributionFactor(places, 2 * pairs, order)).toBeCloseTo(expected, 9);
+          }
+        },
+      ),
+    );
+  });
+
+  // Full-pitch windings of q slots a pole and phase, three phases: every textbook's table [from memory], digits [CALC]
+  test.each([
+    [2, [0.9659, Math.SQRT1_2, 0.2588, -0.2588]],
+    [3, [0.9598, 0.6667, 0.2176, -0.1774]],
+    [4, [0.9577, 0.6533, 0.2053, -0.1576]],
+    [5, [0.9567, 0.6472, 0.2, -0.1494]],
+  ])('%i slots a pole and phase, orders 1, 3, 5, 7', (q, table) => {
+    const step = Math.PI / (3 * q);
+    const belt = Array.from({ length: q }, (_, i): CoilPlace => ({ phase: 1, sense: 1, axis: i * step }));
+    for (const [i, expected] of table.entries()) {
+      expect(distributionFactor(belt, 2, 2 * i + 1)).toBeCloseTo(expected, 4);
+      expect(distributionFactor(belt, 2, 2 * i + 1)).toBeCloseTo(closedForm(q, (2 * i + 1) * step), 12);
+    }
+  });
+
+  test('overlapped coils of any number of phases are in step at every order: kd = 1, signed with the order', () => {
+    for (const phases of [2, 3, 5, 6] as const) {
+      for (const order of oddOrders) {
+        expect(distributionFactor(overlappedCoils(10, phases), 10, order)).toBeCloseTo(1, 12);
+      }
+    }
+  });
+});
+
+test('coils one slot wide, other than three phases [CALC]: kw = kd kp by the closed forms', () => {
+  const rad = Math.PI / 180;
+  // 4 coils on 2 poles, two phases: half a pole pitch wide, alone in their belts
+  expect(singleToothWindingFactor(4, 2, 1, 2)).toBeCloseTo(Math.sin(45 * rad), 12);
+  // 8 on 10: pairs of directions 45 degrees apart; span 225 degrees
+  expect(singleToothWindingFactor(8, 10, 1, 2)).toBeCloseTo(Math.cos(22.5 * rad) * Math.sin(112.5 * rad), 12);
+  // five phases, 10 on 8 and 10 on 12: all in step, spans 144 and 216 degrees; 20 on 18: pairs 18 degrees apart, 162 wide
+  expect(singleToothWindingFactor(10, 8, 1, 5)).toBeCloseTo(Math.sin(72 * rad), 12);
+  expect(singleToothWindingFactor(10, 12, 1, 5)).toBeCloseTo(Math.sin(72 * rad), 12);
+  expect(singleToothWindingFactor(20, 18, 1, 5)).toBeCloseTo(Math.cos(9 * rad) * Math.sin(81 * rad), 12);
+  // twelve on ten in two stars instead of one: the pairs part, so 0.9659 where three phases have 0.9330
+  expect(singleToothWindingFactor(12, 10, 1, 6)).toBeCloseTo(Math.cos(15 * rad), 12);
+  expect(singleToothWindingFactor(12, 10, 1, 6) / singleToothWindingFactor(12, 10, 1)).toBeCloseTo(1.0353, 4);
 });
 
 test('two neighbouring slots of 30 degrees, full pitch: 0.9659 (36 slots, 6 poles; a public test quotes it [2ND])', () => {
@@ -84,7 +156,7 @@ test('leg spread is the mean of the harmonic over the leg, and 1 for a thin leg'
 });
 
 test('reversing all coils reverses every vector of the star, at every odd order', () => {
-  const places = starOfSlots(12, 10);
+  const places = starOfSlots(12, 10, 3);
   const reversed = places.map((place): CoilPlace => ({ ...place, sense: place.sense > 0 ? -1 : 1 }));
   for (const phase of [1, 2, 3]) {
     for (const order of [1, 3, 5, 11]) {

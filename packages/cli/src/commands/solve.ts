@@ -1,4 +1,5 @@
-import { colourScaleEnd, drawField, writeVtu } from '@gapwright/fem-core';
+import { drawField, writeVtu } from '@gapwright/fem-core';
+import { colourScaleEnd } from '@gapwright/fem-core/field';
 import type { Machine, MachineResult, SliceAnswer } from '@gapwright/machine-models';
 import { sheetText } from '../datasheet.js';
 import type { Engine, SliceField, SolvedMachine } from '../engine.js';
@@ -25,7 +26,8 @@ export async function runSolve(
   const begun = performance.now();
   refuseVtuAlone(options);
   const { machine, warnings, sha256 } = readMachineFile(engine, file, options.set);
-  if (options.out !== undefined) checkOutputFolder(options.out, outputNames(machine, options.vtu === true), file);
+  if (options.out !== undefined)
+    checkOutputFolder(options.out, outputNames(machine.model.slices, options.vtu === true), file);
   if (!options.quiet) showWarnings(warnings, options, surroundings);
   const solved = await engine.solve(machine, {
     version: ownVersion(),
@@ -45,20 +47,19 @@ export async function runSolve(
     const files = await outputFiles(machine, solved, options.vtu === true);
     writeOutputs(options.out, files, options, surroundings);
   }
-  if (!options.quiet) stderr.write(`${timeLine(machine, solvedMs, performance.now() - begun)}\n`);
+  if (!options.quiet) stderr.write(`${timeLine(solved.answers, solvedMs, performance.now() - begun)}\n`);
   return judge(machine, solved.answers, surroundings);
 }
 
 function progressLine(answer: SliceAnswer, index: number, machine: Machine): string {
   const { mesh, meshes, newtonStepsTotal } = answer;
   return (
-    `slice ${index + 1} of ${machine.model.slices.length}, radius ${givenMm(answer.radius)} mm: ` +
+    `slice ${index + 1}${machine.model.auto ? '' : ` of ${machine.model.slices.length}`}, radius ${givenMm(answer.radius)} mm: ` +
     `${mesh.triangles} triangles, mesh ${meshes}, ${newtonStepsTotal} Newton steps in all\n`
   );
 }
 
-function timeLine(machine: Machine, solvedMs: number, totalMs: number): string {
-  const { length } = machine.model.slices;
+function timeLine({ length }: readonly SliceAnswer[], solvedMs: number, totalMs: number): string {
   return `${length} ${length === 1 ? 'slice' : 'slices'} solved in ${figure(solvedMs / 1000, 3)} s, all done in ${figure(totalMs / 1000, 3)} s`;
 }
 
@@ -79,8 +80,9 @@ function judge(machine: Machine, answers: readonly SliceAnswer[], { stderr }: Su
 
 const sliceName = (radius: number, index: number): string => `slice-${index + 1}-${given(1000 * radius)}mm`;
 
-function outputNames(machine: Machine, vtu: boolean): string[] {
-  const slices = machine.model.slices.map(({ radius }, k) => sliceName(radius, k));
+/** Of as many slices as are known: before the solve, `radii: auto` has told the first ones only. */
+function outputNames(radii: readonly { readonly radius: number }[], vtu: boolean): string[] {
+  const slices = radii.map(({ radius }, k) => sliceName(radius, k));
   return [
     'results.json',
     'waveforms.csv',
@@ -107,7 +109,7 @@ async function outputFiles(
     ...pictures,
     ...(vtu ? fields.map(writeVtu) : []),
   ];
-  return new Map(outputNames(machine, vtu).map((name, k) => [name, contents[k]]));
+  return new Map(outputNames(answers, vtu).map((name, k) => [name, contents[k]]));
 }
 
 /** One picture a slice, all on one colour scale so that they can be compared. */

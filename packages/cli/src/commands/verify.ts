@@ -1,5 +1,6 @@
-import type { FigureResult, Honesty, MeasuredOrder, Verification } from '@gapwright/fem-core';
+import type { FigureResult, Honesty, MeasuredOrder, Verification } from '@gapwright/fem-core/verify';
 import { percent } from '../figures.js';
+import { isNought, ROUNDING } from '../nought.js';
 import { resultJson } from '../results-json.js';
 import { exitStatus, type Surroundings, stopIfInterrupted } from '../surroundings.js';
 import { ownVersion } from '../version.js';
@@ -69,8 +70,7 @@ const HEAD = ['', 'expected', 'got', 'error', 'estimate', 'bound', ''] as const;
 function verifyText(figures: readonly FigureResult[], orders: readonly MeasuredOrder[], honesty: Honesty): string {
   const rows = figures.map((figure) => [
     `  ${figure.quantity}`,
-    shortNumber(figure.expected),
-    shortNumber(figure.got),
+    ...shownValues(figure),
     ...[figure.relativeError, figure.estimatedError, figure.bound].map((share) => share.toExponential(1)),
     figure.holds ? 'holds' : 'OUT',
   ]);
@@ -109,10 +109,17 @@ function alignColumns(rows: readonly (readonly string[])[]): string[] {
   );
 }
 
+/** What is expected and what was got: 0 where they are rounding, or where the estimate of the error leaves nothing of it. */
+function shownValues({ expected, got, relativeError, estimatedError }: FigureResult): readonly string[] {
+  const scale = Math.abs(got - expected) / relativeError; // of which errors are shares; no number where both are the same
+  const floor = ROUNDING * scale;
+  const lost = isNought(got, (estimatedError * scale) / Math.abs(got), floor);
+  return [Math.abs(expected) < floor ? 0 : expected, lost ? 0 : got].map(shortNumber);
+}
+
 /** Seven digits; small and large numbers with an exponent. */
 function shortNumber(value: number): string {
   const size = Math.abs(value);
-  if (size !== 0 && size < 1e-12) return '0'; // zero but for rounding: no figure of a case is that small
   return size === 0 || (size >= 1e-3 && size < 1e6) ? String(Number(value.toPrecision(7))) : value.toExponential(6);
 }
 

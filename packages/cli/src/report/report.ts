@@ -1,4 +1,4 @@
-import { escapeXml } from '@gapwright/fem-core';
+import { escapeXml } from '@gapwright/fem-core/text';
 import type { MachineResult } from '@gapwright/machine-models';
 import { plainText } from '../plain-text.js';
 import type { Sheet, SheetBlock, SheetGroup, SheetRow, SheetTable } from '../sheet.js';

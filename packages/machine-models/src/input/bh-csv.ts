@@ -1,6 +1,7 @@
-import { type Fault, type Place, showText } from '@gapwright/fem-core';
+import type { Fault, Place } from '@gapwright/fem-core';
+import { showText } from '@gapwright/fem-core/text';
 
-/** A row of a B-H table and where it stands in its file. */
+/** A row of a B-H table or a demagnetisation curve and where it stands in its file. */
 export interface BhRow {
   readonly row: readonly [H: number, B: number];
   readonly at: Place;
@@ -12,11 +13,13 @@ const MOST_ROWS = 10_000;
  * Rows `H, B` in A/m and T of a text with two columns, split at a comma, a semicolon, a tab or spaces. Lines that start
  * with # and empty ones are passed over, and so is one header: a first row without any number in it.
  *
- * @param file  the name to tell in places
+ * @param file     the name to tell in places
+ * @param example  a row to tell where one is none
  */
 export function readBhCsv(
   text: string,
   file: string,
+  example = '200, 0.5',
 ): { readonly rows: readonly BhRow[]; readonly faults: readonly Fault[] } {
   const rows: BhRow[] = [];
   const faults: Fault[] = [];
@@ -40,7 +43,7 @@ export function readBhCsv(
           'bad-row',
           at,
           `is no row of two numbers: ${showText(content)}`,
-          'give H in A/m and B in T, for example 200, 0.5',
+          `give H in A/m and B in T, for example ${example}`,
         ),
       );
     } else {

@@ -1,7 +1,7 @@
-import type { Disc, LibraryMaterial, Machine, Magnets, Operation, Winding } from '../machine.js';
-import type { SliceRadius } from './radii.js';
+import type { Disc, Interpoles, LibraryMaterial, Machine, Magnets, Operation, Winding } from '../machine.js';
+import type { SliceRadius } from '../rotor/slice-radii.js';
 import type { MachineFile } from './schema.js';
-import type { RotorFile, SolvedMagnets } from './schema-rotor.js';
+import type { RotorFile } from './schema-rotor.js';
 
 /** What the checks have worked out on the way. */
 export interface Resolved {
@@ -11,7 +11,7 @@ export interface Resolved {
 }
 
 /** The machine of a file in which every check has found nothing wrong. */
-export function buildMachine(file: MachineFile, magnets: SolvedMagnets, resolved: Resolved): Machine {
+export function buildMachine(file: MachineFile, resolved: Resolved): Machine {
   const { rotor, model } = file;
   return {
     name: file.name,
@@ -21,21 +21,50 @@ export function buildMachine(file: MachineFile, magnets: SolvedMagnets, resolved
       arrangement: rotor.arrangement,
       gap: rotor.gap,
       disc: buildDisc(rotor.disc),
-      magnets: buildMagnets(magnets),
+      keeper: buildKeeper(rotor),
+      magnets: buildMagnets(rotor.magnets),
+      interpoles: buildInterpoles(rotor),
     },
     winding: resolved.winding,
     operation: buildOperation(file.operation),
-    model: { slices: resolved.slices, accuracy: model.accuracy, endCorrection: model.end_correction === 'on' },
+    model: {
+      slices: resolved.slices,
+      auto: model.radii === 'auto',
+      accuracy: model.accuracy,
+      endCorrection: model.end_correction === 'on',
+    },
   };
 }
 
-function buildMagnets(magnets: SolvedMagnets): Magnets {
-  const { material, thickness, mean_radius: meanRadius, temperature, length } = magnets;
-  const common = { material, thickness, meanRadius, temperature, length };
-  // The checks see to it that plain sectors have an arc.
-  return magnets.shape === 'block'
-    ? { shape: 'block', ...common, width: magnets.width }
-    : { shape: 'sector', ...common, arc: magnets.arc ?? 1 };
+/** The magnets in SI units; what could not be read is NaN. */
+export function buildMagnets(magnets: RotorFile['magnets']): Magnets {
+  const { material, thickness, mean_radius: meanRadius, temperature } = magnets;
+  const common = { material, thickness, meanRadius, temperature };
+  switch (magnets.shape) {
+    case 'block':
+      return { shape: 'block', ...common, width: magnets.width, length: magnets.length };
+    case 'round':
+      return { shape: 'round', ...common, diameter: magnets.diameter };
+    case 'sector': {
+      // The checks see to it that plain sectors have an arc; a Halbach array fills the pole pitch.
+      const arc = magnets.segments > 1 ? 1 : (magnets.arc ?? 1);
+      return { shape: 'sector', ...common, arc, length: magnets.length, segments: magnets.segments };
+    }
+  }
+}
+
+/** The keeper is as the disc where nothing else is said. */
+function buildKeeper({ arrangement, keeper, disc }: RotorFile): Machine['rotor']['keeper'] {
+  if (arrangement !== 'keeper') return undefined;
+  return { material: keeper?.material ?? disc.material, thickness: keeper?.thickness ?? disc.thickness ?? Number.NaN };
+}
+
+function buildInterpoles({ interpoles, magnets, disc }: RotorFile): Interpoles | undefined {
+  if (interpoles === undefined) return undefined;
+  const { width, depth, material } = interpoles;
+  const whole = magnets.thickness + (disc.thickness ?? 0);
+  const reach = depth === 'through' ? whole : depth;
+  return { width, depth: reach, through: disc.material !== 'none' && reach >= whole, material };
 }
 
 function buildDisc(disc: RotorFile['disc']): Disc | undefined {

@@ -1,6 +1,6 @@
-import type { Winding } from '../machine.js';
+import type { Winding, Wire } from '../machine.js';
 import { fillFactor } from '../winding/turn.js';
-import { figure, millimetres } from './format-figure.js';
+import { figure, HAIR, millimetres } from './format-figure.js';
 import type { Report } from './report.js';
 import { type Surroundings, widthAt } from './resolve-winding.js';
 import type { WindingFile } from './schema-winding.js';
@@ -18,7 +18,7 @@ export function checkCopper(winding: Winding, around: Surroundings, report: Repo
   const { innerRadius } = layout === 'concentrated' ? winding.opening : winding.legs;
   // All turns pass the leg's narrowest place, the inner end where it is tapered.
   const narrowest = Math.min(1, widthAt(legShape, innerRadius, around));
-  checkWireSize(winding, legWidth * narrowest, report);
+  const goesIn = checkWireSize(winding, legWidth * narrowest, report);
   const fill = fillFactor(winding) / narrowest;
   const { most, usual } = wire.diameter === undefined ? FILL.flat : FILL.round;
   const place = narrowest < 1 ? ` at the leg's inner end, ${millimetres(legWidth * narrowest)} wide` : '';
@@ -33,6 +33,35 @@ export function checkCopper(winding: Winding, around: Surroundings, report: Repo
   } else if (fill > usual && thickness > 0) {
     report.warn(['winding', 'turns'], `${told}; hand winding seldom passes ${usual}`);
   }
+  if (goesIn && fill <= most) checkLayers(winding, legWidth * narrowest, report);
+}
+
+/** Thick wire may have the area it needs and yet no place: whole wires side by side, in whole layers, fill a leg by steps. */
+function checkLayers({ wire, turns, thickness }: Winding, legWidth: number, report: Report): void {
+  const wanted = turns * wire.strands;
+  const places = Math.max(inLayers(wire, legWidth, thickness), inLayers(wire, thickness, legWidth));
+  if (!(wanted > places)) return;
+  const text =
+    `${wanted} wires of ${sizeOf(wire)} do not go side by side into a leg of ${millimetres(legWidth)} x ` +
+    `${millimetres(thickness)}, where whole layers hold ${places}; thinner wire and more strands in hand fill it better`;
+  report.warn(['winding', 'wire'], text);
+}
+
+/**
+ * Wires, without enamel, in whole layers along `across`: flat ones on their broad side; round ones layer over layer, or,
+ * where that holds more, every other layer shifted by half a wire and sunk into the one below.
+ */
+function inLayers({ diameter, width = 0, height = 0 }: Wire, across: number, up: number): number {
+  const whole = (room: number): number => Math.max(0, Math.floor(room + HAIR));
+  if (diameter === undefined) return whole(across / width) * whole(up / height);
+  const inLayer = whole(across / diameter);
+  const layers = 1 + whole((up / diameter - 1) / Math.sin(Math.PI / 3));
+  const sunk = Math.ceil(layers / 2) * inLayer + Math.floor(layers / 2) * whole(across / diameter - 0.5);
+  return Math.max(inLayer * whole(up / diameter), sunk);
+}
+
+function sizeOf({ diameter, width = 0, height = 0 }: Wire): string {
+  return diameter === undefined ? `${millimetres(width)} x ${millimetres(height)}` : millimetres(diameter);
 }
 
 /** Whether the wire's section is given in exactly one way; tells what is wrong where it is not. */
@@ -52,12 +81,13 @@ export function checkWire({ wire }: WindingFile, report: Report): boolean {
   return false;
 }
 
-function checkWireSize({ wire, thickness }: Winding, legWidth: number, report: Report): void {
-  const path = ['winding', 'wire'];
-  const least = wire.diameter ?? Math.min(wire.width ?? Number.NaN, wire.height ?? Number.NaN);
-  const room = Math.min(legWidth, thickness);
-  if (least > room && room > 0) {
-    const wrong = `wire of ${millimetres(least)} is thicker than the leg, ${millimetres(legWidth)} x ${millimetres(thickness)}`;
-    report.fault(path, 'wire-too-thick', wrong, 'give thinner wire and more strands in hand');
-  }
+/** Whether a single wire goes into the leg, flat wire either way round. */
+function checkWireSize({ wire, thickness }: Winding, legWidth: number, report: Report): boolean {
+  const sides = [wire.diameter ?? wire.width ?? Number.NaN, wire.diameter ?? wire.height ?? Number.NaN];
+  const room = [legWidth, thickness];
+  const tooThick = Math.min(...sides) > Math.min(...room) || Math.max(...sides) > Math.max(...room);
+  if (!tooThick || !(Math.min(...room) > 0)) return !tooThick;
+  const wrong = `wire of ${sizeOf(wire)} is thicker than the leg, ${millimetres(legWidth)} x ${millimetres(thickness)}`;
+  report.fault(['winding', 'wire'], 'wire-too-thick', wrong, 'give thinner wire and more strands in hand');
+  return false;
 }

@@ -11,7 +11,7 @@ export function checkLegs(file: WindingFile, winding: Winding, around: Surroundi
   if (!checkEnds(ends, around, report)) return false;
   if (winding.layout === 'overlapped') {
     const { innerRadius } = winding.legs;
-    const most = { width: overlappedRoom(winding.legShape, innerRadius, around), radius: innerRadius };
+    const most = { width: overlappedRoom(winding, innerRadius, around), radius: innerRadius };
     return checkRoom(winding, most, report) && checkReach(winding, around, report);
   }
   return (

@@ -1,17 +1,14 @@
+import { type Fault, InputError, MU0 } from '@gapwright/fem-core';
 import {
-  editDistance,
-  type Fault,
   findDemagnetisationFaults,
   findTableFaults,
-  InputError,
-  MU0,
-  type Path,
-  showText,
   stackedPermeability,
   stackedTable,
-} from '@gapwright/fem-core';
+} from '@gapwright/fem-core/materials';
+import { type Path, showText } from '@gapwright/fem-core/text';
 import type { LibraryMaterial } from '../machine.js';
 import { MATERIAL_LIBRARY } from '../materials/library.js';
+import { nearestNames } from '../materials/nearest-names.js';
 import { type BhRow, readBhCsv } from './bh-csv.js';
 import { figure } from './format-figure.js';
 import type { Report } from './report.js';
@@ -58,8 +55,9 @@ function ownMaterial(
     case 'steel':
       return { ...ownSteel(name, material, readBeside, report), ...common };
     case 'magnet': {
-      const { demagnetisation, coercivity_intrinsic, coercivity_slope } = material;
-      const remanence = ownRemanence(name, material, report);
+      const { coercivity_intrinsic, coercivity_slope, highest_temperature } = material;
+      const curve = ownCurve(name, material, readBeside, report);
+      const remanence = ownRemanence(name, material, curve, report);
       const recoil = material.recoil ?? USUAL_RECOIL;
       if (recoil > HIGH_RECOIL) {
         report.warn(
@@ -70,43 +68,77 @@ function ownMaterial(
       return {
         kind: 'magnet',
         remanence,
-        ...(demagnetisation === undefined ? {} : { demagnetisation }),
+        ...(curve === undefined ? {} : { demagnetisation: curve.rows }),
         recoil,
         remanenceSlope: material.remanence_slope ?? USUAL_REMANENCE_SLOPE,
         ...(coercivity_intrinsic === undefined ? {} : { coercivityIntrinsic: coercivity_intrinsic }),
         ...(coercivity_slope === undefined ? {} : { coercivitySlope: coercivity_slope }),
+        ...(highest_temperature === undefined ? {} : { highestTemperature: highest_temperature }),
         ...common,
       };
     }
   }
 }
 
+type MagnetFile = UserMaterial & { readonly kind: 'magnet' };
+type TellRow = (row: number, fault: Fault) => void;
+
+/** A demagnetisation curve of the file, and how to tell what is wrong with one of its rows. */
+interface OwnCurve {
+  readonly key: 'demagnetisation' | 'demagnetisation_file';
+  readonly rows: BhTable;
+  readonly tell: TellRow;
+}
+
+/** The curve of the file or of a file beside it; undefined where none is given. */
+function ownCurve(
+  name: string,
+  { demagnetisation, demagnetisation_file }: MagnetFile,
+  readBeside: ReadBeside | undefined,
+  report: Report,
+): OwnCurve | undefined {
+  const path = ['materials', name];
+  if (demagnetisation !== undefined && demagnetisation_file !== undefined) {
+    const wrong = 'gives demagnetisation and demagnetisation_file at once';
+    report.fault(path, 'one-of', wrong, 'give one of them');
+  }
+  if (demagnetisation !== undefined) {
+    const tell: TellRow = (row, { code, wrong, remedy }) =>
+      report.fault([...path, 'demagnetisation', row], code, wrong, remedy);
+    return { key: 'demagnetisation', rows: demagnetisation, tell };
+  }
+  if (demagnetisation_file === undefined) return undefined;
+  const key = [...path, 'demagnetisation_file'];
+  const rows = readRows(demagnetisation_file, key, '-4e5, 0.67', readBeside, report);
+  const tell: TellRow = (row, fault) =>
+    report.faultBeside(key, placedIn(rows ?? [], { ...fault, row }, demagnetisation_file));
+  return { key: 'demagnetisation_file', rows: (rows ?? []).map(({ row }) => row), tell };
+}
+
 /** T; no magnet known today comes near it. */
 const MOST_REMANENCE = 2;
 
 /** Given as such, or by the curve's row [0, Br]; NaN where something is wrong, which is told. */
-function ownRemanence(name: string, magnet: UserMaterial & { readonly kind: 'magnet' }, report: Report): number {
+function ownRemanence(name: string, { remanence }: MagnetFile, curve: OwnCurve | undefined, report: Report): number {
   const path = ['materials', name];
-  const { remanence, demagnetisation: rows } = magnet;
-  if (rows === undefined) {
+  if (curve === undefined) {
     if (remanence !== undefined) return remanence;
     const remedy = 'give the remanence at 20 degC, for example 1.30 T, or a curve under demagnetisation';
     report.fault([...path, 'remanence'], 'missing', 'is missing', remedy);
     return Number.NaN;
   }
   if (remanence !== undefined) {
-    const wrong = 'gives remanence and demagnetisation at once';
+    const wrong = `gives remanence and ${curve.key} at once`;
     report.fault(path, 'one-of', wrong, 'leave out the remanence: it is that of the row [0, Br]');
   }
+  const { rows, tell } = curve;
   if (rows.length === 0 || rows.flat().some(Number.isNaN)) return Number.NaN; // told already
-  for (const { key, code, wrong, remedy } of findDemagnetisationFaults(rows)) {
-    report.fault([...path, 'demagnetisation', rowOf(key)], code, wrong, remedy);
-  }
+  for (const fault of findDemagnetisationFaults(rows)) tell(rowOf(fault.key), fault);
   const row = rows.findIndex(([h]) => h === 0);
   const found = rows[row]?.[1] ?? Number.NaN;
   if (found > MOST_REMANENCE) {
     const wrong = `${figure(found)} T is more than any magnet's remanence`;
-    report.fault([...path, 'demagnetisation', row], 'implausible-remanence', wrong, 'give H in A/m, then B in T');
+    tell(row, { code: 'implausible-remanence', key: '', wrong, remedy: 'give H in A/m, then B in T' });
   }
   return found;
 }
@@ -147,7 +179,22 @@ function checkRows(rows: BhTable, path: readonly string[], report: Report): BhTa
 }
 
 function readTable(name: string, path: readonly string[], readBeside: ReadBeside | undefined, report: Report): BhTable {
-  if (name === '') return []; // told already
+  const rows = readRows(name, path, '200, 0.5', readBeside, report);
+  if (rows === undefined) return [];
+  const table = rows.map(({ row }) => row);
+  for (const found of tableFaults(table)) report.faultBeside(path, placedIn(rows, found, name));
+  return withOrigin(table);
+}
+
+/** The rows of a CSV file beside this one; undefined where something is wrong with it, which is told. */
+function readRows(
+  name: string,
+  path: readonly string[],
+  example: string,
+  readBeside: ReadBeside | undefined,
+  report: Report,
+): readonly BhRow[] | undefined {
+  if (name === '') return undefined; // told already
   let text: string;
   try {
     if (readBeside === undefined) throw new Error('no files can be read here');
@@ -155,15 +202,11 @@ function readTable(name: string, path: readonly string[], readBeside: ReadBeside
   } catch (error) {
     if (error instanceof InputError) for (const fault of error.faults) report.faultBeside(path, fault);
     else report.fault(path, 'unreadable-file', `cannot be read: ${reasonOf(error)}`, 'name a CSV file beside this one');
-    return [];
+    return undefined;
   }
-  const { rows, faults } = readBhCsv(text, name);
+  const { rows, faults } = readBhCsv(text, name, example);
   for (const fault of faults) report.faultBeside(path, fault);
-  const table = rows.map(({ row }) => row);
-  if (faults.length === 0) {
-    for (const found of tableFaults(table)) report.faultBeside(path, placedIn(rows, found, name));
-  }
-  return withOrigin(table);
+  return faults.length === 0 ? rows : undefined;
 }
 
 function tableFaults(rows: BhTable): readonly (Fault & { readonly row: number })[] {
@@ -179,10 +222,17 @@ const MOST_POLARISATION = 2.6;
 /** Of the best laboratory alloys, about (from memory). */
 const MOST_PERMEABILITY = 1e6;
 
+/** A/m: far below what can be measured. */
+const LEAST_FIELD = 1e-9;
+
 /** The first row that no material has: a table in other units, or with its columns the other way round. */
 function implausible(rows: BhTable): readonly (Fault & { readonly row: number })[] {
   const code = 'implausible-bh';
   for (const [row, [h, b]] of rows.entries()) {
+    if (h > 0 && h < LEAST_FIELD) {
+      const wrong = `${h} A/m is too little to be measured`;
+      return [{ code, key: '', wrong, remedy: 'check the unit of H: A/m', row }];
+    }
     const permeability = b / (MU0 * h);
     if (b - MU0 * h > MOST_POLARISATION) {
       const wrong = `${figure(b)} T is more than any material carries at ${figure(h)} A/m`;
@@ -222,7 +272,9 @@ export function findMaterial<K extends LibraryMaterial['kind']>(
   const suitable = (material: LibraryMaterial): material is LibraryMaterial & { readonly kind: K } =>
     kinds.some((kind) => kind === material.kind);
   const alike = Object.keys(materials).filter((known) => suitable(materials[known]));
-  const remedy = `the nearest names are ${nearestNames(name, alike).join(', ')}; or describe it under materials`;
+  const remedy = `the nearest names are ${nearestNames(name, alike)
+    .map((near) => showText(near))
+    .join(', ')}; or describe it under materials`;
   const material = Object.hasOwn(materials, name) ? materials[name] : undefined;
   if (material === undefined) {
     report.fault(path, 'unknown-material', `${showText(name)} is not a known material`, remedy);
@@ -231,15 +283,4 @@ export function findMaterial<K extends LibraryMaterial['kind']>(
   if (suitable(material)) return material;
   report.fault(path, 'wrong-material', `must be ${wanted}, but ${showText(name)} is of kind ${material.kind}`, remedy);
   return undefined;
-}
-
-/** Three of them; long ones, and those beyond the first thousand, are not looked at. */
-function nearestNames(name: string, known: readonly string[]): readonly string[] {
-  return known
-    .filter((candidate) => candidate.length <= 40)
-    .slice(0, 1000)
-    .map((candidate) => ({ candidate, slips: editDistance(name.slice(0, 40), candidate) }))
-    .sort((a, b) => a.slips - b.slips)
-    .slice(0, 3)
-    .map(({ candidate }) => showText(candidate));
 }

@@ -1,22 +1,18 @@
-import type { LibraryMaterial } from '../machine.js';
-import { THINNEST } from './check-layers.js';
+import type { LibraryMaterial, Magnets } from '../machine.js';
+import { lostAt, temperatureWarning } from '../materials/at-temperature.js';
+import { magnetReach } from '../rotor/magnet-shape.js';
+import { checkInterpoles } from './check-interpoles.js';
+import { checkMagnets } from './check-magnets.js';
 import { findMaterial, hasUsualSlope } from './check-materials.js';
 import { atLeastMillimetres, atMostMillimetres, figure, HAIR, millimetres } from './format-figure.js';
 import type { Report } from './report.js';
 import type { MachineFile } from './schema.js';
-import type { RotorFile, SolvedMagnets } from './schema-rotor.js';
-
-/** Inner and outer radius of the magnets, m. */
-export function magnetRadii({ mean_radius, length }: SolvedMagnets): {
-  readonly inner: number;
-  readonly outer: number;
-} {
-  return { inner: mean_radius - length / 2, outer: mean_radius + length / 2 };
-}
+import type { RotorFile } from './schema-rotor.js';
 
 /** Everything about the rotor that one key alone does not tell. */
 export function checkRotor(
   file: MachineFile,
+  magnets: Magnets,
   materials: Readonly<Record<string, LibraryMaterial>>,
   report: Report,
 ): void {
@@ -25,17 +21,42 @@ export function checkRotor(
     const remedy = `north and south alternate: give ${rotor.poles - 1} or ${rotor.poles + 1}`;
     report.fault(['rotor', 'poles'], 'odd-poles', `must be even, got ${rotor.poles}`, remedy);
   }
-  if (rotor.arrangement === 'twin' && rotor.keeper !== undefined) {
-    report.warn(['rotor', 'keeper'], 'not used: with arrangement twin both discs carry magnets');
-  }
   checkMagnetMaterial(file, materials, report);
-  if (rotor.magnets.shape !== 'round') {
-    checkMagnets(rotor, rotor.magnets, report);
-    checkDisc(rotor, rotor.magnets, report);
-  }
+  checkMagnets(rotor, magnets, report);
+  checkInterpoles(rotor, magnets, materials, report);
+  checkDisc(rotor, magnets, report);
   if (rotor.disc.material !== 'none') {
     const path = ['rotor', 'disc', 'material'];
     findMaterial(materials, rotor.disc.material, ['steel', 'steel-curve'], 'a steel', path, report);
+  }
+  checkKeeper(rotor, materials, report);
+}
+
+function checkKeeper(
+  { arrangement, keeper, disc }: RotorFile,
+  materials: Readonly<Record<string, LibraryMaterial>>,
+  report: Report,
+): void {
+  const path = ['rotor', 'keeper'];
+  if (arrangement === 'twin') {
+    if (keeper !== undefined) report.warn(path, 'not used: with arrangement twin both discs carry magnets');
+    return;
+  }
+  if (keeper?.material !== undefined) {
+    const at = [...path, 'material'];
+    findMaterial(materials, keeper.material, ['steel', 'steel-curve'], 'a steel', at, report);
+  }
+  if (disc.material !== 'none') return;
+  // An ironless magnet disc has nothing that the keeper could be made like.
+  for (const key of ['material', 'thickness'] as const) {
+    if (keeper?.[key] !== undefined) continue;
+    const remedy = `the disc has none to go by: give ${key === 'material' ? 'the name of a steel' : 'a size, for example 10 mm'}`;
+    report.fault(
+      keeper === undefined ? ['rotor', 'arrangement'] : [...path, key],
+      'missing',
+      `the keeper's ${key} is missing`,
+      remedy,
+    );
   }
 }
 
@@ -48,25 +69,19 @@ function checkMagnetMaterial(
   const path = ['rotor', 'magnets', 'material'];
   const material = findMaterial(materials, name, ['magnet'], 'a magnet material', path, report);
   if (material === undefined) return;
-  const share = 1 + material.remanenceSlope * (temperature - 20);
-  if (share <= 0) {
+  const at = ['rotor', 'magnets', 'temperature'];
+  const lost = lostAt(material, temperature);
+  if (lost === 'remanence') {
     const wrong = `at ${figure(temperature)} degC the slope of ${figure(material.remanenceSlope * 100)} %/K leaves no remanence`;
-    report.fault(
-      ['rotor', 'magnets', 'temperature'],
-      'no-remanence',
-      wrong,
-      'give the temperature the magnets work at',
-    );
-  }
-  const { coercivityIntrinsic, coercivitySlope } = material;
-  if (
-    coercivityIntrinsic !== undefined &&
-    coercivitySlope !== undefined &&
-    1 + coercivitySlope * (temperature - 20) <= 0
-  ) {
-    const wrong = `at ${figure(temperature)} degC the slope of ${figure(coercivitySlope * 100)} %/K leaves no coercivity: the magnets are lost`;
+    report.fault(at, 'no-remanence', wrong, 'give the temperature the magnets work at');
+  } else if (lost === 'coercivity') {
+    const slope = figure((material.coercivitySlope ?? 0) * 100);
+    const wrong = `at ${figure(temperature)} degC the slope of ${slope} %/K leaves no coercivity: the magnets are lost`;
     const remedy = 'give the temperature the magnets work at, or a grade for it';
-    report.fault(['rotor', 'magnets', 'temperature'], 'no-coercivity', wrong, remedy);
+    report.fault(at, 'no-coercivity', wrong, remedy);
+  } else {
+    const hot = temperatureWarning(material, temperature);
+    if (hot !== undefined) report.warn(at, `${name}: ${hot}`);
   }
   if (material.demagnetisation !== undefined) {
     report.warn(
@@ -79,37 +94,7 @@ function checkMagnetMaterial(
   }
 }
 
-function checkMagnets(rotor: RotorFile, magnets: SolvedMagnets, report: Report): void {
-  const { inner } = magnetRadii(magnets);
-  const { poles } = rotor;
-  if (inner <= 0) {
-    const wrong = `${millimetres(magnets.length)} about a mean radius of ${millimetres(magnets.mean_radius)} reaches the shaft`;
-    const remedy = `give less than ${millimetres(2 * magnets.mean_radius)}`;
-    report.fault(['rotor', 'magnets', 'length'], 'magnets-at-shaft', wrong, remedy);
-    return;
-  }
-  if (magnets.shape === 'sector') {
-    if (magnets.arc === undefined && magnets.segments === 1) {
-      const remedy = 'give the share of the pole pitch, for example 0.75';
-      report.fault(['rotor', 'magnets', 'arc'], 'missing', 'is missing', remedy);
-    }
-    return;
-  }
-  const pitch = (2 * Math.PI * inner) / poles;
-  if (magnets.width > pitch * (1 + HAIR)) {
-    const wrong =
-      `neighbouring magnets overlap: ${millimetres(magnets.width)} wide, but at their inner radius of ${millimetres(inner)} ` +
-      `there are only ${millimetres(pitch)} from pole to pole`;
-    // With the slot between them that `checkLayers` asks for, a share of the outer pole pitch.
-    const half = magnets.length / 2;
-    const slot = (THINNEST * 2 * Math.PI * (magnets.mean_radius + half)) / poles;
-    const meanRadius = ((magnets.width * poles) / (2 * Math.PI) + half * (1 + THINNEST)) / (1 - THINNEST);
-    const remedy = `give at most ${atMostMillimetres(pitch - slot)}, or a mean_radius of at least ${atLeastMillimetres(meanRadius)}`;
-    report.fault(['rotor', 'magnets', 'width'], 'magnets-overlap', wrong, remedy);
-  }
-}
-
-function checkDisc({ disc }: RotorFile, magnets: SolvedMagnets, report: Report): void {
+function checkDisc({ disc }: RotorFile, magnets: Magnets, report: Report): void {
   const path = ['rotor', 'disc'];
   const sizes = ['thickness', 'inner_radius', 'outer_radius'] as const;
   if (disc.material === 'none') {
@@ -123,7 +108,7 @@ function checkDisc({ disc }: RotorFile, magnets: SolvedMagnets, report: Report):
   for (const key of sizes.filter((size) => disc[size] === undefined)) {
     report.fault([...path, key], 'missing', 'is missing', 'give a size, for example 10 mm');
   }
-  const { inner, outer } = magnetRadii(magnets);
+  const { inner, outer } = magnetReach(magnets);
   if (inner <= 0) return; // told already
   const { inner_radius: hole = Number.NaN, outer_radius: rim = Number.NaN, clamp_radius: clamp = 0 } = disc;
   if (rim < outer - HAIR) {

@@ -1,5 +1,5 @@
 import type { Winding } from '../machine.js';
-import { isBalanced } from '../winding/coil-places.js';
+import { coilPlaces, isBalanced, nearestCoils, nearestPoles, pathsAreAlike } from '../winding/coil-places.js';
 import { legCut } from '../winding/leg-cut.js';
 import { checkCopper, checkWire } from './check-copper.js';
 import { checkLegs } from './check-legs.js';
@@ -15,6 +15,7 @@ const LOW_PITCH_FACTOR = 0.6;
 /** Everything about the winding that one key alone does not tell. */
 export function checkWinding(file: WindingFile, winding: Winding, around: Surroundings, report: Report): void {
   checkCoilCount(file, around, report);
+  checkConnection(file, report);
   checkThickness(winding, around, report);
   const hasWire = checkWire(file, report);
   if (!checkLegs(file, winding, around, report)) return;
@@ -22,30 +23,51 @@ export function checkWinding(file: WindingFile, winding: Winding, around: Surrou
   if (hasWire) checkCopper(winding, around, report);
 }
 
-function checkCoilCount({ layout, coils, phases, paths }: WindingFile, { poles }: Surroundings, report: Report): void {
-  if (phases !== 3 || poles % 2 !== 0 || Number.isNaN(coils)) return; // told elsewhere
+const IN_WORDS = { 2: 'two', 3: 'three', 5: 'five', 6: 'six' };
+
+function checkCoilCount(file: WindingFile, { poles }: Surroundings, report: Report): void {
+  const { layout, coils, phases } = file;
+  if (poles % 2 !== 0 || [phases, coils].some(Number.isNaN)) return; // told elsewhere
   const path = ['winding', 'coils'];
   if (layout === 'overlapped' && coils !== (phases * poles) / 2) {
     const wanted = (phases * poles) / 2;
     const wrong = `overlapped coils are phases x poles / 2 = ${wanted} on ${poles} poles, got ${coils}`;
-    report.fault(path, 'coil-count', wrong, `give ${wanted}`);
-  } else if (layout === 'concentrated' && !isBalanced(coils, poles)) {
-    const wrong = `${coils} coils on ${poles} poles make no balanced set of three phases`;
-    report.fault(path, 'coil-count', wrong, `give ${nearestBalanced(coils, poles).join(' or ')} coils`);
-  } else if ((coils / phases) % paths > 0) {
-    const perPhase = coils / phases;
-    const divisors = Array.from({ length: perPhase }, (_, i) => i + 1).filter((i) => perPhase % i === 0);
-    const wrong = `${perPhase} coils per phase cannot be shared among ${paths} parallel paths`;
-    report.fault(['winding', 'paths'], 'path-count', wrong, `give one of ${divisors.slice(0, 10).join(', ')}`);
+    const others = coils % phases === 0 ? `, or ${(2 * coils) / phases} poles` : '';
+    report.fault(path, 'coil-count', wrong, `give ${wanted}${others}`);
+  } else if (layout === 'concentrated' && !isBalanced(coils, poles, phases)) {
+    const wrong = `${coils} coils on ${poles} poles make no balanced set of ${IN_WORDS[phases]} phases`;
+    const onOthers = nearestPoles(coils, poles, phases);
+    const others = onOthers.length > 0 ? `, or ${onOthers.join(' or ')} poles` : '';
+    report.fault(path, 'coil-count', wrong, `give ${nearestCoils(coils, poles, phases).join(' or ')} coils${others}`);
+  } else {
+    checkPaths(file, poles, report);
   }
 }
 
-/** The balanced counts next below and above. Every multiple of 3^(v+1) is, 3^v dividing poles/2: the search ends. */
-function nearestBalanced(coils: number, poles: number): readonly number[] {
-  const below = Array.from({ length: coils }, (_, i) => coils - i).find((count) => isBalanced(count, poles));
-  let above = coils;
-  while (!isBalanced(above, poles)) above++;
-  return below === undefined ? [above] : [below, above];
+/** Parallel paths of a phase: as many coils each, else refused; of one EMF, else warned of. The coils are balanced. */
+function checkPaths({ layout, coils, phases, paths }: WindingFile, poles: number, report: Report): void {
+  const path = ['winding', 'paths'];
+  const perPhase = coils / phases;
+  const divisors = Array.from({ length: perPhase }, (_, i) => i + 1).filter((i) => perPhase % i === 0);
+  if (perPhase % paths > 0) {
+    const wrong = `${perPhase} coils per phase cannot be shared among ${paths} parallel paths`;
+    report.fault(path, 'path-count', wrong, `give one of ${divisors.slice(0, 10).join(', ')}`);
+    return;
+  }
+  const places = coilPlaces({ layout, coils, phases }, poles);
+  if (pathsAreAlike(places, poles, paths)) return;
+  const fine = divisors.filter((count) => pathsAreAlike(places, poles, count));
+  report.warn(
+    path,
+    `the ${perPhase} coils of a phase are not all in step and make no ${paths} parallel paths of equal EMF: current runs ` +
+      `between the paths even with no load; ${fine.join(' or ')} would be equal`,
+  );
+}
+
+function checkConnection({ connection, phases }: WindingFile, report: Report): void {
+  if (connection !== 'delta' || phases === 3 || Number.isNaN(phases)) return;
+  const wrong = `a delta joins three phases, got ${phases}`;
+  report.fault(['winding', 'connection'], 'delta-phases', wrong, 'give star, or 3 phases');
 }
 
 function checkThickness({ thickness, clearance }: Winding, { gap }: Surroundings, report: Report): void {

@@ -1,5 +1,7 @@
+import type { Magnets } from '../machine.js';
+import { magnetReach } from '../rotor/magnet-shape.js';
+import { autoRadii, polynomialRadii, type SliceRadius, simpsonRadii } from '../rotor/slice-radii.js';
 import { HAIR, millimetres } from './format-figure.js';
-import { polynomialRadii, type SliceRadius, simpsonRadii } from './radii.js';
 import type { Report } from './report.js';
 import type { ModelFile } from './schema.js';
 
@@ -7,20 +9,26 @@ import type { ModelFile } from './schema.js';
 const MOST_AMPLIFICATION = 2;
 
 /** The slices that `model.radii` asks for; none where it asks for something impossible, which is told. */
-export function chooseSlices(
-  radii: ModelFile['radii'],
-  { inner, outer }: { readonly inner: number; readonly outer: number },
-  report: Report,
-): readonly SliceRadius[] {
-  if (radii === 'auto') return []; // refused
+export function chooseSlices(radii: ModelFile['radii'], magnets: Magnets, report: Report): readonly SliceRadius[] {
+  const { inner, outer } = magnetReach(magnets);
+  if (radii === 'auto') return inner > 0 ? autoRadii(magnets, 0) : [];
   if (typeof radii === 'number') {
     if (radii % 2 === 0) {
       const remedy = `give ${radii - 1 > 0 ? `${radii - 1} or ` : ''}${radii + 1}, or a list of radii`;
       report.fault(['model', 'radii'], 'even-count', `Simpson's rule needs an odd number, got ${radii}`, remedy);
     }
+    if (magnets.shape === 'round') warnRound(['model', 'radii'], report);
     return radii % 2 === 1 ? simpsonRadii(inner, outer, radii) : [];
   }
   return checkList(radii, inner, outer, report) ? weigh(radii, inner, outer, report) : [];
+}
+
+/** Their width vanishes like a square root at both ends, where a rule for smooth functions has its worst. */
+function warnRound(path: readonly string[], report: Report): void {
+  report.warn(
+    path,
+    'round magnets are badly served by evenly spaced radii, some percent off with few of them; give auto',
+  );
 }
 
 function checkList(radii: readonly number[], inner: number, outer: number, report: Report): boolean {

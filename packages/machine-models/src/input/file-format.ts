@@ -1,4 +1,5 @@
-import { applySettings, InputError, plainValue, readDocument, type Setting } from '@gapwright/fem-core';
+import { InputError } from '@gapwright/fem-core';
+import { applySettings, plainValue, readDocument, type Setting } from '@gapwright/fem-core/text';
 import type { OpenReport } from './report.js';
 
 export const MACHINE_FORMAT = 'gapwright-machine/1';

@@ -1,4 +1,4 @@
-import type { Path } from '@gapwright/fem-core';
+import type { Path } from '@gapwright/fem-core/text';
 
 /** One thing wrong with a value, before anyone knows where in a file it stands. */
 export interface Problem {

@@ -1,14 +1,16 @@
-import { applySettings, InputError, plainValue, readDocument, type Setting } from '@gapwright/fem-core';
+import { InputError } from '@gapwright/fem-core';
+import { applySettings, plainValue, readDocument, type Setting } from '@gapwright/fem-core/text';
 import type { Machine, Warning } from '../machine.js';
-import { buildMachine } from './build-machine.js';
+import { magnetReach } from '../rotor/magnet-shape.js';
+import { buildMachine, buildMagnets } from './build-machine.js';
 import { checkLayers } from './check-layers.js';
 import { gatherMaterials, type ReadBeside } from './check-materials.js';
 import { checkOperation } from './check-operation.js';
-import { checkRotor, magnetRadii } from './check-rotor.js';
+import { checkRotor } from './check-rotor.js';
 import { checkWinding } from './check-winding.js';
 import { chooseSlices } from './choose-slices.js';
 import { refuseOtherFormat, SECTION_FORMAT } from './file-format.js';
-import { refuseUnsolved, warnLeftOut } from './not-solved-yet.js';
+import { warnLeftOut } from './not-solved-yet.js';
 import { readSchema } from './read-schema.js';
 import { type OpenReport, openReport } from './report.js';
 import { resolveWinding } from './resolve-winding.js';
@@ -67,19 +69,18 @@ function isMeasuredOnly(raw: unknown): boolean {
 
 /** How the values go together; a machine where nothing at all is wrong. */
 function judge(file: MachineFile, options: ReadOptions, report: OpenReport): Machine | undefined {
-  refuseUnsolved(file, report);
   warnLeftOut(file, report);
   checkOperation(file, report);
   const materials = gatherMaterials(file.materials, options.readBeside, report);
-  checkRotor(file, materials, report);
   const { rotor, model } = file;
-  if (rotor.magnets.shape === 'round') return undefined; // refused
-  const radii = magnetRadii(rotor.magnets);
+  const magnets = buildMagnets(rotor.magnets);
+  checkRotor(file, magnets, materials, report);
+  const radii = magnetReach(magnets);
   const around = { poles: rotor.poles, gap: rotor.gap, ...radii };
   const winding = resolveWinding(file.winding, around);
   checkWinding(file.winding, winding, around, report);
-  checkLayers(rotor, rotor.magnets, winding, report);
-  const slices = chooseSlices(model.radii, radii, report);
+  checkLayers(rotor, magnets, winding, report);
+  const slices = chooseSlices(model.radii, magnets, report);
   if (report.faults().length > 0) return undefined;
-  return buildMachine(file, rotor.magnets, { materials, winding, slices });
+  return buildMachine(file, { materials, winding, slices });
 }

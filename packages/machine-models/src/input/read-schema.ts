@@ -1,4 +1,4 @@
-import { findNearest, listWords, type Path, showText, showValue } from '@gapwright/fem-core';
+import { findNearest, listWords, type Path, showText, showValue } from '@gapwright/fem-core/text';
 import type * as z from 'zod';
 import { problemOf } from './fields.js';
 import { type Problem, problem } from './problem.js';

@@ -7,7 +7,7 @@ import {
   parsePrice,
   parseQuantity,
   showValue,
-} from '@gapwright/fem-core';
+} from '@gapwright/fem-core/text';
 import { type Problem, problem } from './problem.js';
 
 /**

@@ -1,4 +1,5 @@
-import { type Document, type Fault, formatPath, type Path, placeOf, placeOfKey } from '@gapwright/fem-core';
+import type { Fault } from '@gapwright/fem-core';
+import { type Document, formatPath, type Path, placeOf, placeOfKey } from '@gapwright/fem-core/text';
 import type { Warning } from '../machine.js';
 import type { Problem } from './problem.js';
 

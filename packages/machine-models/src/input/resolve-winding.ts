@@ -16,7 +16,7 @@ type LegShape = Winding['legShape'];
 /** The winding in SI units, `fit`, `fill` and the defaults worked out; NaN where something they need is not known. */
 export function resolveWinding(file: WindingFile, around: Surroundings): Winding {
   const common = {
-    phases: 3, // others are refused
+    phases: file.phases,
     coils: file.coils,
     turns: file.turns,
     legShape: file.leg_shape,
@@ -29,7 +29,7 @@ export function resolveWinding(file: WindingFile, around: Surroundings): Winding
   } as const;
   if (file.layout === 'overlapped') {
     const { inner_radius: innerRadius = around.inner, outer_radius: outerRadius = around.outer } = file.opening ?? {};
-    const legWidth = file.leg_width === 'fill' ? overlappedRoom(file.leg_shape, innerRadius, around) : file.leg_width;
+    const legWidth = file.leg_width === 'fill' ? overlappedRoom(common, innerRadius, around) : file.leg_width;
     return { layout: 'overlapped', ...common, legWidth, legs: { innerRadius, outerRadius } };
   }
   const given = file.leg_width === 'fill' ? Number.NaN : file.leg_width;
@@ -93,9 +93,13 @@ export function legRoom(
   return atOuter.width < atInner.width ? atOuter : atInner;
 }
 
-/** As `legRoom`, for the 3 x poles straight legs of overlapped coils: they touch first at their inner ends. */
-export function overlappedRoom(legShape: LegShape, innerRadius: number, around: Surroundings): number {
-  const room = 2 * innerRadius * Math.sin(Math.PI / (3 * around.poles));
+/** As `legRoom`, for the phases x poles straight legs of overlapped coils: they touch first at their inner ends. */
+export function overlappedRoom(
+  { phases, legShape }: Pick<Winding, 'phases' | 'legShape'>,
+  innerRadius: number,
+  around: Surroundings,
+): number {
+  const room = 2 * innerRadius * Math.sin(Math.PI / (phases * around.poles));
   return room / widthAt(legShape, innerRadius, around);
 }
 

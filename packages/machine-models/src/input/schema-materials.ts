@@ -36,6 +36,7 @@ const magnet = group({
   demagnetisation: optional(
     list(pair(number, number, 'H in A/m and B in T, for example [-800e3, 0.3]'), 2, 10_000, 'rows [H in A/m, B in T]'),
   ),
+  demagnetisation_file: optional(text('the name of a CSV file beside this one')),
   recoil: optional(quantity('ratio', { from: '1', to: '2' }, 'the relative recoil permeability, for example 1.05')),
   remanence_slope: optional(
     quantity('perKelvin', { from: '-2 %/K', to: '2 %/K' }, "the remanence's change, for example -0.12 %/K"),
@@ -49,6 +50,13 @@ const magnet = group({
   ),
   coercivity_slope: optional(
     quantity('perKelvin', { from: '-2 %/K', to: '2 %/K' }, "the coercivity's change, for example -0.6 %/K"),
+  ),
+  highest_temperature: optional(
+    quantity(
+      'temperature',
+      { above: '-273.15 degC', to: '1000 degC' },
+      'the usual limit of the grade, for example 80 degC',
+    ),
   ),
   density,
 });

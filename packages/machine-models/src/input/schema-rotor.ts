@@ -67,5 +67,3 @@ export const rotor = group({
   interpoles: interpoles.optional(),
 });
 export type RotorFile = z.infer<typeof rotor>;
-/** The shapes that this version solves. */
-export type SolvedMagnets = RotorFile['magnets'] & { readonly shape: 'block' | 'sector' };

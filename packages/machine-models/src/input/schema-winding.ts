@@ -1,6 +1,8 @@
 import * as z from 'zod';
+import type { Winding } from '../machine.js';
 import { field, group, optional, usually, variants } from './fields.js';
-import { choice, orWord, whole } from './readers.js';
+import { problem } from './problem.js';
+import { choice, orWord, type Reader, whole } from './readers.js';
 import { length, size, temperature } from './schema-common.js';
 
 /** Exactly one of diameter, awg, or width with height; the checks see to it. */
@@ -12,6 +14,18 @@ const wire = group({
   strands: usually(1, whole(1, 10_000, 'the number of wires in hand, for example 2')),
   enamel: optional(choice(['grade 1', 'grade 2', 'grade 3'])),
 });
+
+const anyCount = whole(1, 1000, '2, 3, 5 or 6, 3 as a rule');
+
+function phaseCount(value: unknown): ReturnType<Reader<Winding['phases']>> {
+  const reading = anyCount(value);
+  if ('problems' in reading) return reading;
+  // NaN stands in for what has been told already, as for every number
+  if (Number.isNaN(reading.value)) return { value: reading.value as Winding['phases'] };
+  const count = ([2, 3, 5, 6] as const).find((known) => known === reading.value);
+  if (count !== undefined) return { value: count };
+  return { problems: [problem('out-of-range', `must be 2, 3, 5 or 6, got ${reading.value}`, 'give 3 as a rule')] };
+}
 
 /** `fit`: the radii of the magnets, and the widths that the legs leave. */
 const opening = group({
@@ -28,7 +42,7 @@ const legEnds = group({
 });
 
 const windingKeys = {
-  phases: usually(3, whole(1, 12, 'the number of phases, 3 as a rule')),
+  phases: usually(3, phaseCount),
   coils: field(whole(1, 10_000, 'the number of all coils, for example 12')),
   turns: field(whole(1, 100_000, 'the number of turns per coil, for example 58')),
   leg_width: field(orWord('fill', size("the width at right angles to the leg's side, for example 20.5 mm"))),

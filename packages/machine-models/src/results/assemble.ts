@@ -1,9 +1,10 @@
+import type { EndFactor } from '../end-effect/end-factor.js';
 import type { Machine, Warning } from '../machine.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
 import type { Harmonics } from '../waves/series.js';
 import { amplitudeOf } from '../waves/series.js';
 import { findCautions, overspeedPeak } from './cautions.js';
-import { circulatingEmf, computeEmf, describeEmf } from './emf.js';
+import { circulatingEmf, computeEmf, describeEmf, endsOf, rectifiedPeak } from './emf.js';
 import { harmonicBound, relative } from './error-bounds.js';
 import { describeEffectiveB, describeLeg } from './leg-wave.js';
 import { describeMasses, describePull } from './mechanical.js';
@@ -19,25 +20,35 @@ export interface RunStamp {
   readonly inputSha256: string;
 }
 
+/** What the models found of a machine. */
+export interface Findings {
+  /** By rising radius; their weights integrate over the magnets' radial length. */
+  readonly slices: readonly SliceAnswer[];
+  /** Of `radii: auto`: last relative change of the effective leg flux density, and whether it is within the accuracy. */
+  readonly refined?: { readonly change: number; readonly settled: boolean } | undefined;
+  readonly endFactor?: EndFactor | undefined;
+}
+
 /**
  * Result of a machine from its solved slices: EMF, effective flux density, winding, merit, pull, masses, cautions. The
- * error twins bound what the mesh does; see `error-bounds.ts`. No end factor is applied.
+ * error twins bound what the mesh does; see `error-bounds.ts`.
  *
- * @param slices    one for each entry of `machine.model.slices`, in that order
  * @param warnings  of the reader; a slice that did not converge or missed the wanted accuracy adds its own
  */
 export function describeMachine(
   machine: Machine,
-  slices: readonly SliceAnswer[],
+  { slices, refined, endFactor }: Findings,
   warnings: readonly Warning[],
   stamp: RunStamp,
 ): MachineResult {
-  const emf = describeEmf(machine, slices);
+  const emf = describeEmf(machine, slices, endFactor);
   const effectiveB = describeEffectiveB(machine, slices);
   const winding = describeWinding(machine);
   const mechanical = describePull(machine, slices);
-  const figures = { emf, winding, mechanical, circulatingEmf: circulatingEmf(computeEmf(machine, slices)) };
-  const overspeed = overspeedPeak(machine, emf);
+  const waves = computeEmf(machine, slices, endsOf(machine, endFactor));
+  const openPeak = rectifiedPeak(waves);
+  const figures = { emf, winding, mechanical, openPeak, circulatingEmf: circulatingEmf(waves) };
+  const overspeed = overspeedPeak(machine, openPeak);
   return {
     format: 'gapwright-result/1',
     gapwright: stamp.version,
@@ -52,7 +63,13 @@ export function describeMachine(
     mechanical,
     masses: describeMasses(machine),
     cautions: findCautions(machine, figures),
-    warnings: [...warnings, ...slices.flatMap((slice, i) => sliceWarnings(machine, slice, i)), ...saturation(slices)],
+    warnings: [
+      ...warnings,
+      ...slices.flatMap((slice, i) => sliceWarnings(machine, slice, i)),
+      ...saturation(slices),
+      ...unsettled(machine, refined),
+      ...(machine.model.endCorrection ? (endFactor?.warnings ?? []) : []),
+    ],
   };
 }
 
@@ -90,6 +107,14 @@ function saturation(slices: readonly SliceAnswer[]): readonly Warning[] {
     `the discs carry up to ${most.toFixed(2)} T midway between poles: they saturate, which costs voltage and lets field ` +
     'out behind them; thicker discs or smaller magnets would help';
   return [{ key: 'rotor.disc.thickness', text }];
+}
+
+function unsettled({ model }: Machine, refined: Findings['refined']): readonly Warning[] {
+  if (refined === undefined || refined.settled) return [];
+  const text =
+    `the leg's flux still changes by ${(100 * refined.change).toPrecision(2)} % with the finest choice of radii, wanted ` +
+    `${(100 * model.accuracy).toPrecision(2)} %`;
+  return [{ key: 'model.radii', text }];
 }
 
 function sliceWarnings(machine: Machine, slice: SliceAnswer, index: number): readonly Warning[] {

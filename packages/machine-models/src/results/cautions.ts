@@ -1,6 +1,6 @@
 import type { Machine } from '../machine.js';
-import { remanenceAt } from '../slices/pole-section.js';
-import { coilPlaces, pathsAreAlike } from '../winding/coil-places.js';
+import { remanenceAt } from '../materials/at-temperature.js';
+import { magnetLength, magnetReach } from '../rotor/magnet-shape.js';
 import type { EmfResult, MachineResult, WindingResult } from './result.js';
 
 /** What the cautions look at, beside the machine. */
@@ -8,6 +8,8 @@ export interface CautionFigures {
   readonly emf: EmfResult;
   readonly winding: WindingResult;
   readonly mechanical: MachineResult['mechanical'];
+  /** Highest rectified voltage with the load open at the operating speed, V. */
+  readonly openPeak: number;
   /** Rms EMF per phase that drives current round a closed delta, V; see `circulatingEmf`. */
   readonly circulatingEmf: number;
 }
@@ -29,12 +31,11 @@ const CRUSHING_PULL = 50;
 export function findCautions(machine: Machine, figures: CautionFigures): readonly string[] {
   return [
     crushing(machine, figures.mechanical.disc_pull_N),
-    shock(machine, figures.emf),
+    shock(machine, figures.openPeak),
     flyingParts(machine),
     heat(machine),
     demagnetisation(machine),
     circulation(machine, figures),
-    unlikePaths(machine),
     'Short circuit: its current and braking torque are not computed yet. A coreless machine can drive many times its ' +
       'rated current; do not count on shorting it as a brake at speed.',
     'A preliminary design aid, not a certification: local electrical codes and licensed persons decide on whatever is ' +
@@ -44,19 +45,18 @@ export function findCautions(machine: Machine, figures: CautionFigures): readonl
 
 function crushing({ rotor }: Machine, pull: number): string | undefined {
   const { magnets } = rotor;
-  if (magnets.length <= CRUSHING_LENGTH && pull <= CRUSHING_PULL) return undefined;
+  if (magnetLength(magnets) <= CRUSHING_LENGTH && pull <= CRUSHING_PULL) return undefined;
   return (
     `Crushing: at this gap the discs draw together with ${figure(pull)} N (${figure(pull / STANDARD_GRAVITY)} kgf), and ` +
-    `single magnets of ${figure(magnets.length * 1000)} mm snap together hard enough to crush fingers and throw splinters. ` +
+    `single magnets of ${figure(magnetLength(magnets) * 1000)} mm snap together hard enough to crush fingers and throw splinters. ` +
     'Lower the discs with jacking screws, slide magnets over wood, wear eye protection, do not work alone, keep medical ' +
     'implants well away.'
   );
 }
 
-function shock(machine: Machine, emf: EmfResult): string | undefined {
+function shock(machine: Machine, atSpeed: number): string | undefined {
   const { rotor, operation } = machine;
-  const atSpeed = emf.line.peak_V; // the highest rectified voltage with the load open, in star and in delta
-  const worst = overspeedPeak(machine, emf);
+  const worst = overspeedPeak(machine, atSpeed);
   if (Math.max(atSpeed, worst ?? 0) <= TOUCH_VOLTAGE) return undefined;
   const { overspeedRpm, cold } = operation;
   const overspeed =
@@ -73,22 +73,22 @@ function shock(machine: Machine, emf: EmfResult): string | undefined {
 
 /**
  * Highest rectified voltage with the load open at overspeed, with the magnets at the coldest start where one is given, V;
- * undefined without an overspeed. In proportion to speed and to remanence, which holds while the discs do not saturate
+ * undefined without an overspeed. `openPeak` is that at the operating speed. In proportion to speed and to remanence, which holds while the discs do not saturate
  * (cold magnets in saturated discs give a little less).
  */
-export function overspeedPeak({ rotor, operation, materials }: Machine, emf: EmfResult): number | undefined {
+export function overspeedPeak({ rotor, operation, materials }: Machine, openPeak: number): number | undefined {
   const { speedRpm, overspeedRpm, cold } = operation;
   if (overspeedRpm === undefined || overspeedRpm < speedRpm) return undefined;
   const magnet = materials[rotor.magnets.material];
   const at = (celsius: number): number => (magnet.kind === 'magnet' ? remanenceAt(magnet, celsius) : 1);
   const warmer = cold === undefined ? 1 : at(cold) / at(rotor.magnets.temperature);
-  return (emf.line.peak_V * overspeedRpm * warmer) / speedRpm;
+  return (openPeak * overspeedRpm * warmer) / speedRpm;
 }
 
 function flyingParts({ rotor, operation }: Machine): string {
   const { speedRpm, overspeedRpm = speedRpm } = operation;
   const fastest = Math.max(speedRpm, overspeedRpm);
-  const rim = rotor.disc?.outerRadius ?? rotor.magnets.meanRadius + rotor.magnets.length / 2;
+  const rim = rotor.disc?.outerRadius ?? magnetReach(rotor.magnets).outer;
   return (
     `Flying parts: the rim runs at ${figure((2 * Math.PI * fastest * rim) / 60)} m/s at ${figure(fastest)} rpm. Hold the ` +
     'magnets by a band or a ring, not by glue alone; test overspeed from behind a guard.'
@@ -123,14 +123,6 @@ function circulation({ winding }: Machine, figures: CautionFigures): string | un
   return (
     `Circulating current: harmonics 3, 9, 15, ... put ${figure(circulatingEmf)} V rms per phase round the closed delta and ` +
     `drive up to ${figure(current)} A through it with no load, which heats and brakes. Star avoids it.`
-  );
-}
-
-function unlikePaths({ winding, rotor }: Machine): string | undefined {
-  if (pathsAreAlike(coilPlaces(winding, rotor.poles), rotor.poles, winding.paths)) return undefined;
-  return (
-    `Circulating current: the coils of a phase cannot be shared among ${winding.paths} parallel paths of equal EMF; current ` +
-    'runs between the paths even with no load.'
   );
 }
 

@@ -1,4 +1,4 @@
-import type { Machine } from '../machine.js';
+import type { Machine, Winding } from '../machine.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
 import { amplitudeOf, amplitudes, evaluate, peak, type Series } from '../waves/series.js';
 import { legSpreadFactor } from '../winding/factors.js';
@@ -26,19 +26,38 @@ export function legWave(machine: Machine, slice: SliceAnswer): LegWave {
   };
 }
 
-/** leg(theta) - leg(theta - 120 deg): what two neighbouring phases of a star see together. Triplen orders cancel. */
-export function lineWave({ series, bounds }: LegWave): LegWave {
-  // cos(n 120 deg) and sin(n 120 deg) by n modulo 3, so that the triplen orders cancel exactly
-  const c = [1, -0.5, -0.5];
-  const s = [0, Math.sqrt(3) / 2, -Math.sqrt(3) / 2];
+const ROOT5 = Math.sqrt(5);
+const SINE_72 = Math.sqrt((5 + ROOT5) / 8);
+const SINE_144 = Math.sqrt((5 - ROOT5) / 8);
+
+/** cos and sin of n times 360 deg / 3, 4 or 5, by n modulo that number, so that what cancels does so exactly. */
+const TURNS = {
+  3: { cos: [1, -0.5, -0.5], sin: [0, Math.sqrt(3) / 2, -Math.sqrt(3) / 2] },
+  4: { cos: [1, 0, -1, 0], sin: [0, 1, 0, -1] },
+  5: {
+    cos: [1, (ROOT5 - 1) / 4, -(ROOT5 + 1) / 4, -(ROOT5 + 1) / 4, (ROOT5 - 1) / 4],
+    sin: [0, SINE_72, SINE_144, -SINE_144, -SINE_72],
+  },
+};
+
+/** Angle between neighbouring phases of one star as a share of a turn, 1 over this: 120, 90, 72 and (two stars) 120 degrees. */
+const NEIGHBOURS = { 2: 4, 3: 3, 5: 5, 6: 3 } as const;
+
+/**
+ * leg(theta) - leg(theta - lag), lag the angle between neighbouring phases of a star: what the two see together. Three
+ * and six phases: 120 degrees, triplen orders cancel; five: 72 degrees, orders 5, 15, ... cancel; two: 90 degrees.
+ */
+export function lineWave({ series, bounds }: LegWave, phases: Winding['phases']): LegWave {
+  const parts = NEIGHBOURS[phases];
+  const { cos: c, sin: s } = TURNS[parts];
   const { order, cos, sin } = series;
   return {
     series: {
       order,
-      cos: order.map((n, i) => cos[i] * (1 - c[n % 3]) + sin[i] * s[n % 3]),
-      sin: order.map((n, i) => sin[i] * (1 - c[n % 3]) - cos[i] * s[n % 3]),
+      cos: order.map((n, i) => cos[i] * (1 - c[n % parts]) + sin[i] * s[n % parts]),
+      sin: order.map((n, i) => sin[i] * (1 - c[n % parts]) - cos[i] * s[n % parts]),
     },
-    bounds: order.map((n, i) => bounds[i] * Math.hypot(1 - c[n % 3], s[n % 3])),
+    bounds: order.map((n, i) => bounds[i] * Math.hypot(1 - c[n % parts], s[n % parts])),
   };
 }
 
@@ -80,7 +99,7 @@ export function describeLeg(
       fundamental_T: leg.series.cos[0] ?? 0,
     },
     leg_width_m: legCut(machine.winding, machine.rotor.poles, machine.rotor.magnets.meanRadius, slice.radius).width,
-    line_B_peak_T: peak(lineWave(leg).series),
+    line_B_peak_T: peak(lineWave(leg, machine.winding.phases).series),
     leg_B_rel_err: relative(peakBound(leg.bounds), peakT),
   };
 }
@@ -88,7 +107,7 @@ export function describeLeg(
 /** `effective_B` of the results. */
 export function describeEffectiveB(machine: Machine, slices: readonly SliceAnswer[]): MachineResult['effective_B'] {
   const phase = effectiveWave(machine, slices);
-  const line = lineWave(phase);
+  const line = lineWave(phase, machine.winding.phases);
   const [phasePeak, linePeak] = [peak(phase.series), peak(line.series)];
   return {
     peak_T: phasePeak,

@@ -1,4 +1,6 @@
-import type { Disc, LibraryMaterial, Machine, Magnets } from '../machine.js';
+import type { Disc, LibraryMaterial, Machine, Rotor } from '../machine.js';
+import { interpoleFace } from '../rotor/interpole-shape.js';
+import { magnetFace } from '../rotor/magnet-shape.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
 import { copperMass } from '../winding/turn.js';
 import { relative } from './error-bounds.js';
@@ -22,29 +24,56 @@ export function describePull(machine: Machine, slices: readonly SliceAnswer[]): 
  */
 export function describeMasses(machine: Machine): MachineResult['masses'] {
   const { rotor, winding, materials } = machine;
-  const magnetDiscs = rotor.arrangement === 'twin' ? 2 : 1;
-  const magnetDensity = density(materials, rotor.magnets.material);
-  const steelDensity = rotor.disc && density(materials, rotor.disc.material);
+  const magnets = sum([
+    massOf(materials, rotor.magnets.material, magnetDiscs(rotor) * mainMagnetVolume(rotor)),
+    rotor.interpoles && massOf(materials, rotor.interpoles.material, magnetDiscs(rotor) * interpoleVolume(rotor)),
+  ]);
+  const steel = sum([
+    rotor.disc &&
+      massOf(materials, rotor.disc.material, magnetDiscs(rotor) * (discVolume(rotor.disc) - cutAway(rotor))),
+    rotor.keeper && massOf(materials, rotor.keeper.material, keeperVolume(rotor)),
+  ]);
   return {
-    ...(magnetDensity !== undefined && {
-      magnets_kg: magnetDiscs * rotor.poles * magnetVolume(rotor.magnets, rotor.poles) * magnetDensity,
-    }),
+    ...(magnets !== undefined && { magnets_kg: magnets }),
     copper_kg: copperMass(winding, rotor.poles),
-    ...(rotor.disc && steelDensity !== undefined && { steel_kg: 2 * discVolume(rotor.disc) * steelDensity }),
+    ...(steel !== undefined && { steel_kg: steel }),
   };
 }
 
-/** One magnet, m^3; a sector is the share `arc` of a pole pitch of the ring meanRadius -/+ length/2. */
-function magnetVolume(magnets: Magnets, poles: number): number {
-  const meanWidth =
-    magnets.shape === 'block' ? magnets.width : (magnets.arc * 2 * Math.PI * magnets.meanRadius) / poles;
-  return meanWidth * magnets.length * magnets.thickness;
+const magnetDiscs = ({ arrangement }: Rotor): number => (arrangement === 'twin' ? 2 : 1);
+
+/** Of all main magnets of one disc, m^3. */
+const mainMagnetVolume = ({ magnets, poles }: Rotor): number => poles * magnetFace(magnets, poles) * magnets.thickness;
+
+/** Of all interpoles of one disc, m^3, to whatever depth they reach. */
+function interpoleVolume({ interpoles, magnets, poles }: Rotor): number {
+  return interpoles === undefined ? 0 : poles * interpoleFace(interpoles, magnets, poles) * interpoles.depth;
+}
+
+/** What the interpoles take of one disc, m^3. */
+function cutAway({ interpoles, magnets, poles }: Rotor): number {
+  if (interpoles === undefined) return 0;
+  return poles * interpoleFace(interpoles, magnets, poles) * Math.max(0, interpoles.depth - magnets.thickness);
+}
+
+/** A keeper has the disc's radii; opposite an ironless disc its radii are not known, NaN. */
+function keeperVolume({ disc, keeper }: Rotor): number {
+  return disc === undefined || keeper === undefined ? Number.NaN : discVolume({ ...disc, thickness: keeper.thickness });
 }
 
 function discVolume({ innerRadius, outerRadius, thickness }: Disc): number {
   return Math.PI * (outerRadius ** 2 - innerRadius ** 2) * thickness;
 }
 
-function density(materials: Readonly<Record<string, LibraryMaterial>>, name: string): number | undefined {
-  return materials[name]?.density;
+/** kg; null where volume or density is not known. */
+function massOf(materials: Readonly<Record<string, LibraryMaterial>>, name: string, volume: number): number | null {
+  const density = materials[name]?.density;
+  return density === undefined || Number.isNaN(volume) ? null : volume * density;
+}
+
+/** Undefined where there is nothing (undefined) to add, or anything is not known (null). */
+function sum(masses: readonly (number | null | undefined)[]): number | undefined {
+  const there = masses.filter((mass) => mass !== undefined);
+  if (there.length === 0 || there.includes(null)) return undefined;
+  return there.reduce<number>((total, mass) => total + (mass ?? 0), 0);
 }

@@ -2,7 +2,10 @@ import type { Machine } from '../machine.js';
 import { phaseResistance } from '../winding/turn.js';
 import type { EmfResult, MachineResult } from './result.js';
 
-/** Resistance, hot, in the way of a DC load's current: two phases in series (star) or 2/3 of one (delta), ohm. */
+/**
+ * Resistance, hot, in the way of a DC load's current, ohm: two phases in series (star, whatever the number of phases; of
+ * two stars one carries the current at a time) or 2/3 of one (delta).
+ */
 export function lineResistanceHot(machine: Machine): number {
   const { winding, rotor } = machine;
   return phaseResistance(winding, rotor.poles, winding.temperature) * (winding.connection === 'star' ? 2 : 2 / 3);

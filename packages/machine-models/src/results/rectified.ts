@@ -1,9 +1,10 @@
 import { antiderivative, evaluate, type Series } from '../waves/series.js';
 
 /**
- * Highest less lowest terminal of a three-phase winding, which is the largest of its line voltages, whichever way round.
+ * Highest less lowest terminal of a star or delta, which is the largest of the voltages between its terminals, whichever
+ * way round. Two stars (six phases), each with a bridge of its own, feed one bus in parallel: the higher of the two.
  *
- * @param lines the three voltages between terminals
+ * @param lines all voltages between terminals of one star, of every star
  */
 export function rectifiedAt(lines: readonly Series[], theta: number): number {
   return Math.max(...lines.map((line) => Math.abs(evaluate(line, theta))));
@@ -14,7 +15,9 @@ export function rectifiedAt(lines: readonly Series[], theta: number): number {
  * another (found by bisection between points half a degree apart) and each stretch is integrated in closed form. Odd
  * orders repeat |f| every half period, so half is enough.
  *
- * For sinusoidal EMFs this is 3 sqrt(2)/pi times the rms line voltage.
+ * For sinusoidal EMFs of peak E in m phases it is the widest line's peak times sin(x)/x, x = pi/pulses, pulses the tops in
+ * a period:  three phases (3/pi) sqrt(3) E, five (10/pi) sin(36 deg) E, in general (2m/pi) sin(pi/m) E where m is odd; two,
+ * 90 degrees apart, (2/pi) sqrt(2) E; six in two stars (12/pi) sin(15 deg) sqrt(3) E.
  */
 export function rectifiedMean(lines: readonly Series[]): number {
   const integrals = lines.map(antiderivative);
@@ -37,7 +40,7 @@ export function rectifiedMean(lines: readonly Series[]): number {
   return sum / Math.PI;
 }
 
-/** The line voltage that is largest, and its sign. */
+/** The voltage that is largest, and its sign. */
 interface Leader {
   readonly line: number;
   readonly sign: 1 | -1;

@@ -83,6 +83,21 @@ export interface EmfResult {
   readonly speed_rpm: number;
   /** Electrical frequency. */
   readonly frequency_Hz: number;
+  /** EMF with the third dimension over EMF of the slices alone; see `computeEndFactor`. */
+  readonly end_factor?: number;
+  readonly end_factor_rel_err?: number;
+  /** Half width, relative, of the band for what its model leaves out. */
+  readonly end_factor_band?: number;
+  /** The same for straight legs over the magnets' radial length alone. */
+  readonly end_factor_legs?: number;
+  /** The figures here include the end factor. */
+  readonly end_corrected: boolean;
+  /** Without end factor. */
+  readonly slices_alone: {
+    readonly phase_rms_V: number;
+    readonly phase_fundamental_rms_V: number;
+    readonly line_rms_V: number;
+  };
   readonly phase: VoltageResult;
   readonly line: VoltageResult;
   readonly rectified_mean_V: number;

@@ -1,9 +1,10 @@
-import type { Functional, Mesh } from '@gapwright/fem-core';
-import { weightedIntegral } from '@gapwright/fem-core';
+import type { Functional } from '@gapwright/fem-core/goals';
+import { weightedIntegral } from '@gapwright/fem-core/goals';
+import type { Mesh } from '@gapwright/fem-core/mesh';
 import type { Machine } from '../machine.js';
+import { remanenceAt } from '../materials/at-temperature.js';
 import { legSpreadFactor } from '../winding/factors.js';
 import type { PoleSection } from './pole-section.js';
-import { remanenceAt } from './pole-section.js';
 
 /**
  * In the winding's space there is neither current nor magnet, so each odd harmonic of the field is known but for one

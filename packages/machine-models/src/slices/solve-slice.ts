@@ -1,16 +1,9 @@
-import type { AdaptiveSolution, Field, Goal, Locator, RecoveredGradient } from '@gapwright/fem-core';
-import {
-  buildLocator,
-  energiesOf,
-  exceededIn,
-  measureMesh,
-  nodeCount,
-  solveAdaptively,
-  stressFunctional,
-  stressThrough,
-  triangleCount,
-  valueAt,
-} from '@gapwright/fem-core';
+import type { Field, Locator } from '@gapwright/fem-core';
+import { buildLocator, energiesOf, valueAt } from '@gapwright/fem-core';
+import { exceededIn } from '@gapwright/fem-core/field';
+import type { AdaptiveSolution, Goal, RecoveredGradient } from '@gapwright/fem-core/goals';
+import { solveAdaptively, stressFunctional, stressThrough } from '@gapwright/fem-core/goals';
+import { measureMesh, nodeCount, triangleCount } from '@gapwright/fem-core/mesh';
 import type { Machine } from '../machine.js';
 import { peak } from '../waves/series.js';
 import { legSpreadFactor } from '../winding/factors.js';
@@ -59,7 +52,8 @@ export function solveSlice(
     weights: (values) => {
       const leg = { order: orders, cos: spread.map((f, i) => f * values[i]), sin: orders.map(() => 0) };
       const scale = peak(leg);
-      return [...spread.map((f) => Math.abs(f) / scale), 0];
+      // A radius at the very end of round magnets has no field at all.
+      return [...spread.map((f) => (scale === 0 ? 0 : Math.abs(f) / scale)), 0];
     },
     accuracy,
     ...(options.onMesh === undefined ? {} : { onMesh: options.onMesh }),
@@ -108,7 +102,7 @@ function describeSlice(
     pull,
     pullRelErr: pull === 0 ? 0 : bounds[orders.length] / Math.abs(pull),
     energy: pole.copies * energy,
-    energyRelErr: estimate.energy / energy,
+    energyRelErr: energy === 0 ? 0 : estimate.energy / energy,
     discB: discFluxDensity(field, locator, pole),
     peakSteelB: pole.steelRegions.length === 0 ? undefined : exceededIn(field, pole.steelRegions, 0.01),
     mesh: {
@@ -126,10 +120,15 @@ function describeSlice(
   };
 }
 
-/** Mean flux density along the disc in its cut midway between two poles: |A(face) - A(back)| / thickness. */
+/**
+ * Mean flux density along the disc in its cut midway between two poles: |A(face) - A(back)| / thickness; the larger one
+ * where there are a disc and a keeper.
+ */
 function discFluxDensity(field: Field, locator: Locator, pole: PoleSection): number | undefined {
-  if (pole.discFaces === undefined) return undefined;
-  const [face, back] = pole.discFaces;
-  const [a, b] = [face, back].map((y) => valueAt(field, locator, pole.to, y)?.a ?? Number.NaN);
-  return Math.abs(a - b) / (back - face);
+  if (pole.discCuts.length === 0) return undefined;
+  const means = pole.discCuts.map(([face, back]) => {
+    const [a, b] = [face, back].map((y) => valueAt(field, locator, pole.to, y)?.a ?? Number.NaN);
+    return Math.abs((a - b) / (back - face));
+  });
+  return Math.max(...means);
 }

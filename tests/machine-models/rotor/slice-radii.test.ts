@@ -1,7 +1,11 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { polynomialRadii, type SliceRadius, simpsonRadii } from '../../../packages/machine-models/src/input/radii.js';
-import { faultsOf, readHut } from './hut.js';
+import {
+  polynomialRadii,
+  type SliceRadius,
+  simpsonRadii,
+} from '../../../packages/machine-models/src/rotor/slice-radii.js';
+import { faultsOf, readHut } from '../input/hut.js';
 
 const INNER = 0.1005;
 const OUTER = 0.1555;

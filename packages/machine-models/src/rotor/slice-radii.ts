@@ -1,4 +1,6 @@
 import { Matrix, solve } from 'ml-matrix';
+import type { MagnetOutline } from './magnet-shape.js';
+import { magnetReach } from './magnet-shape.js';
 
 /** A slice's radius and its share in integrals along the magnets: integral of f dr = sum weight f(radius). */
 export interface SliceRadius {
@@ -44,4 +46,49 @@ function legendre(count: number, x: number): number[] {
   const p = [1, x];
   for (let k = 1; k + 1 < count; k++) p.push(((2 * k + 1) * x * p[k] - k * p[k - 1]) / (k + 1));
   return p.slice(0, count);
+}
+
+/**
+ * Gauss-Legendre points in the angle u of  r = meanRadius + (D/2) sin u,  u = -90 ... 90 degrees, dr = (D/2) cos u du: what a
+ * round magnet's slices show, whose width vanishes like a square root at both ends, is smooth in u, and the rule converges
+ * faster than any power of the number of slices.
+ */
+export function roundRadii(meanRadius: number, diameter: number, count: number): readonly SliceRadius[] {
+  return gaussLegendre(count).map(({ x, weight }) => {
+    const u = (Math.PI / 2) * x;
+    return {
+      radius: meanRadius + (diameter / 2) * Math.sin(u),
+      weight: (diameter / 2) * Math.cos(u) * (Math.PI / 2) * weight,
+    };
+  });
+}
+
+/** Points, rising, and weights on -1 ... 1: zeros of P_n by Newton's method, weights 2 / ((1 - x^2) P_n'(x)^2). */
+function gaussLegendre(count: number): readonly { readonly x: number; readonly weight: number }[] {
+  return Array.from({ length: count }, (_, i) => {
+    let x = -Math.cos((Math.PI * (i + 0.75)) / (count + 0.5));
+    let slope = 1;
+    for (let step = 0; step < 100; step++) {
+      const p = legendre(count + 1, x);
+      slope = (count * (p[count - 1] - x * p[count])) / (1 - x * x);
+      const change = p[count] / slope;
+      x -= change;
+      if (Math.abs(change) < 1e-16) break;
+    }
+    if (2 * i + 1 === count) x = 0;
+    return { x, weight: 2 / ((1 - x * x) * slope * slope) };
+  });
+}
+
+/** How often `auto` may choose finer slices after the first ones. */
+export const FINEST_LEVEL = 5;
+
+/**
+ * The slices of `radii: auto` at a level from 0: for round magnets 3, 5, 7, ... points in the angle, for others 3, 5, 9,
+ * 17, ... by Simpson's rule, each of which takes up all radii of the one before.
+ */
+export function autoRadii(magnets: MagnetOutline, level: number): readonly SliceRadius[] {
+  if (magnets.shape === 'round') return roundRadii(magnets.meanRadius, magnets.diameter, 3 + 2 * level);
+  const { inner, outer } = magnetReach(magnets);
+  return simpsonRadii(inner, outer, 1 + 2 ** (level + 1));
 }
