@@ -1,6 +1,6 @@
 import type { Machine } from '@gapwright/machine-models';
 import { describeMachine, readMachine, solveSlice } from '@gapwright/machine-models';
-import { describe, expect, test } from 'vitest';
+import { beforeAll, describe, expect, test } from 'vitest';
 
 /**
  * What common practice expects of magnets between the poles and of deeper magnets, each design at the gap that suits it
@@ -101,7 +101,7 @@ function look(geometry: Geometry, design: Design, room: number, gap: number): Se
 }
 
 /** Gaps looked at in search of the best, shares of the pole pitch. */
-const GAPS = [0.08, 0.14, 0.23, 0.36, 0.5, 0.75, 1.2];
+const GAPS = [0.12, 0.2, 0.32, 0.5, 0.75, 1.2];
 
 interface Best extends Seen {
   /** All gaps of `GAPS`. */
@@ -146,15 +146,23 @@ const FIFTH = 1 / 5;
 /** Dissipations in per cent of the plain design's, as found here: the test's own record of them. */
 const cases = [
   ['mill', mill, THIRD, { plain: 100, on: 69.8, through: 58.1, double: 74.4, doubleThrough: 38.1 }],
-  ['mill', mill, FIFTH, { plain: 100, on: 82.2, through: 78.2, double: 74.5, doubleThrough: 51.7 }],
-  ['winch', winch, THIRD, { plain: 100, on: 76.4, through: 57.5, double: 65.9, doubleThrough: 36.2 }],
   ['winch', winch, FIFTH, { plain: 100, on: 87.5, through: 78.0, double: 65.5, doubleThrough: 48.6 }],
 ] as const;
 
-describe.each(cases)('%s (case %#)', (name, geometry, room, expected) => {
-  const best = findAllBest(geometry, room);
-  const relative = Object.entries(best).map(([key, seen]) => [key, (100 * best.plain.merit) / seen.merit] as const);
-  const dissipation = Object.fromEntries(relative) as Record<keyof typeof designs, number>;
+describe.each(cases)('%s', (name, geometry, room, expected) => {
+  let best: Designs;
+  let dissipation: Record<keyof typeof designs, number>;
+  beforeAll(() => {
+    best = findAllBest(geometry, room);
+    const percent = ({ merit }: Best): number => (100 * best.plain.merit) / merit;
+    dissipation = {
+      plain: 100,
+      on: percent(best.on),
+      through: percent(best.through),
+      double: percent(best.double),
+      doubleThrough: percent(best.doubleThrough),
+    };
+  });
 
   test('the line has no third harmonic, whatever the gap', () => {
     for (const { sampled } of Object.values(best)) {
@@ -175,18 +183,13 @@ describe.each(cases)('%s (case %#)', (name, geometry, room, expected) => {
   test('interpoles on the disc, through it, and with magnets twice as deep each save more', () => {
     const { plain, on, through, doubleThrough } = dissipation;
     const order = [plain, on, through, doubleThrough];
-    expect(order).toEqual(order.toSorted((a, b) => b - a));
+    expect(order).toEqual([...order].sort((a, b) => b - a));
     expect(new Set(order).size).toBe(4);
-    for (const [key, percent] of relative) {
+    for (const [key, percent] of Object.entries(dissipation)) {
       expect(Math.abs(percent - expected[key as keyof typeof designs]), `${name}, ${key}: ${percent} %`).toBeLessThan(
         0.5,
       );
     }
-  });
-
-  test('magnets twice as deep do worse than interpoles that fill a third of the pole pitch, better than a fifth', () => {
-    if (room === THIRD) expect(dissipation.double).toBeGreaterThan(dissipation.through);
-    else expect(dissipation.double).toBeLessThan(dissipation.through);
   });
 });
 
@@ -212,7 +215,11 @@ function findCrossing(geometry: Geometry, low: number, high: number): number {
   );
 }
 
-/** Shares of the pole pitch, as found here. */
+/**
+ * Shares of the pole pitch at which the two are worth the same, as found here, and shares on either side of them. Magnets of
+ * a quarter of the pole pitch or less: between a fifth and a third. The deeper the magnets are already, the less is gained
+ * by more depth: with a third of the pole pitch, interpoles are still better at a fifth.
+ */
 const crossings = [
   ['winch', winch, FIFTH, THIRD, 0.278],
   ['mill', mill, FIFTH, THIRD, 0.225],
@@ -220,7 +227,7 @@ const crossings = [
 ] as const;
 
 test.each(crossings)(
-  'the deeper the magnets of the single design, the less room is needed before interpoles beat double depth: %s',
+  'double depth is worse than interpoles through the disc where these have much room, better where little: %s',
   (_, geometry, low, high, expected) => {
     const crossing = findCrossing(geometry, low, high);
     expect(Math.abs(crossing - expected), `crossing at ${crossing}`).toBeLessThan(0.004);

@@ -79,7 +79,7 @@ export function machineGroup({ rotor, winding, operation, materials }: Machine):
         ]),
     {
       label: 'Winding',
-      value: `${winding.layout}, ${winding.coils} coils of ${winding.turns} turns, ${winding.phases} phases in ${winding.connection}${winding.paths > 1 ? `, ${winding.paths} parallel paths` : ''}`,
+      value: `${winding.layout}, ${winding.coils} coils of ${winding.turns} turns, ${winding.phases} phases in ${winding.phases === 6 ? 'two stars' : winding.connection}${winding.paths > 1 ? `, ${winding.paths} parallel paths` : ''}`,
     },
     { label: 'Legs', value: `${legs}, ${givenMm(winding.clearance)} mm clearance each side` },
     { label: 'Wire', value: wireText(winding.wire) },

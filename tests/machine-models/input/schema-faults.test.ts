@@ -147,16 +147,6 @@ test.each([
   expect(faults.join('\n')).toContain(message);
 });
 
-test.each([['model.radii=auto', 'model.radii: a choice of its own is not solved by this version yet']])(
-  '%s is understood and refused',
-  (setting, message) => {
-    const faults = faultsOf(() => readHut(setting));
-    expect(faults).toHaveLength(1);
-    expect(faults[0]).toMatch(/^--set .*:1:\d+: /);
-    expect(faults[0]).toContain(message);
-  },
-);
-
 test('a machine known only by measurement is understood and refused', () => {
   const text = `format: gapwright-machine/1\npoles: 16\nmeasured: { phase_resistance: 0.3 ohm }\noperation: { speed: 420 rpm }\n`;
   expect(faultsOf(() => readText(text))).toEqual([

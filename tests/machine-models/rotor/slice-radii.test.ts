@@ -1,7 +1,10 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import {
+  autoRadii,
+  FINEST_LEVEL,
   polynomialRadii,
+  roundRadii,
   type SliceRadius,
   simpsonRadii,
 } from '../../../packages/machine-models/src/rotor/slice-radii.js';
@@ -76,9 +79,83 @@ test('fifteen Gauss points get the weights of Gauss: exact up to degree 29', () 
   expect(slices[14].weight).toBeCloseTo(0.030753241996117, 12);
 });
 
+describe('Gauss points in the angle u of r = mean + (D/2) sin u', () => {
+  const D = 0.036;
+  const over = (count: number, f: (radius: number) => number): number =>
+    roundRadii(0.128, D, count).reduce((sum, { radius, weight }) => sum + weight * f(radius), 0);
+  const width = (radius: number): number => 2 * Math.sqrt(Math.max(0, (D / 2) ** 2 - (radius - 0.128) ** 2));
+
+  test("the area of the magnet, and what vanishes like its width, faster than any power of their number's inverse", () => {
+    const off = [3, 5, 7, 9].map((count) => Math.abs(over(count, width) / ((Math.PI / 4) * D ** 2) - 1));
+    expect(off[0]).toBeLessThan(3e-2);
+    expect(off[1]).toBeLessThan(5e-5);
+    expect(off[2]).toBeLessThan(2e-8);
+    expect(off[3]).toBeLessThan(2e-12);
+  });
+
+  test('smooth functions of the radius likewise: length and moment', () => {
+    expect(Math.abs(over(5, () => 1) / D - 1)).toBeLessThan(1e-6);
+    expect(Math.abs(over(5, (radius) => radius) / (0.128 * D) - 1)).toBeLessThan(1e-6);
+  });
+
+  test('evenly spaced radii by Simpson are percents off where there are few', () => {
+    const simpson = (count: number): number =>
+      simpsonRadii(0.128 - D / 2, 0.128 + D / 2, count).reduce(
+        (sum, { radius, weight }) => sum + weight * width(radius),
+        0,
+      ) /
+      ((Math.PI / 4) * D ** 2);
+    expect(simpson(3)).toBeLessThan(0.9);
+    expect(simpson(15)).toBeLessThan(0.995);
+  });
+
+  test('points and weights are those of the tables', () => {
+    // Abramowitz and Stegun, table 25.4, n = 5: abscissas 0, 0.538469310105683, 0.906179845938664
+    const x = roundRadii(0, 2, 5).map(({ radius }) => Math.asin(radius) / (Math.PI / 2));
+    const table = [-0.906179845938664, -0.538469310105683, 0, 0.538469310105683, 0.906179845938664];
+    x.forEach((value, i) => {
+      expect(value).toBeCloseTo(table[i], 13);
+    });
+  });
+});
+
+describe('radii: auto', () => {
+  const block = { shape: 'block', width: 0.028, length: 0.055, meanRadius: 0.128 } as const;
+
+  test('of blocks and sectors each level takes up the radii of the one before, to the bit', () => {
+    for (let level = 0; level < FINEST_LEVEL; level++) {
+      const finer = autoRadii(block, level + 1).map(({ radius }) => radius);
+      for (const { radius } of autoRadii(block, level)) expect(finer).toContain(radius);
+      expect(finer).toHaveLength(2 ** (level + 2) + 1);
+    }
+    expect(autoRadii(block, 0)).toEqual(simpsonRadii(0.1005, 0.1555, 3));
+  });
+
+  test('round magnets get points in the angle, none at the ends', () => {
+    const round = { shape: 'round', diameter: 0.03, meanRadius: 0.052 } as const;
+    expect(autoRadii(round, 0)).toEqual(roundRadii(0.052, 0.03, 5));
+    for (const { radius } of autoRadii(round, 2)) expect(Math.abs(radius - 0.052)).toBeLessThan(0.015);
+  });
+});
+
 describe('model.radii', () => {
   const radiiOf = (setting: string) =>
     readHut(`model.radii=${setting}`).machine.model.slices.map(({ radius }) => radius);
+
+  test('auto begins with the first choice', () => {
+    const { machine, warnings } = readHut('model.radii=auto');
+    expect(machine.model.slices).toEqual(simpsonRadii(INNER, OUTER, 3));
+    expect(machine.model.auto).toBe(true);
+    expect(warnings.map(({ key }) => key)).not.toContain('model.radii');
+    expect(readHut('model.radii=3').machine.model.auto).toBe(false);
+  });
+
+  test('evenly spaced radii are warned of where magnets are round', () => {
+    const round = 'rotor.magnets={shape: round, diameter: 36 mm, thickness: 12 mm, mean_radius: 128 mm, material: N42}';
+    const keys = (...settings: string[]) => readHut(round, ...settings).warnings.map(({ key }) => key);
+    expect(keys('model.radii=7')).toContain('model.radii');
+    expect(keys('model.radii=auto')).not.toContain('model.radii');
+  });
 
   test('a count or a list', () => {
     expect(radiiOf('1')).toEqual([0.128]);

@@ -86,7 +86,7 @@ function distanceFrom({ innerRadius, outerRadius, innerWidth, outerWidth }: Open
   if (within) return 0;
   const end = Math.min(Math.max(along, 0), length);
   const toSide = Math.sqrt((along - end) ** 2 + outwards ** 2);
-  const toInner = Math.sqrt(Math.max(0, x) ** 2 + (z - innerRadius) ** 2);
+  const toInner = Math.sqrt(Math.max(0, x - a) ** 2 + (z - innerRadius) ** 2);
   const toOuter = Math.sqrt(Math.max(0, x - b) ** 2 + (z - outerRadius) ** 2);
   return Math.min(toSide, toInner, toOuter);
 }

@@ -72,11 +72,11 @@ export function measureLinkage(
 
 /**
  * Points along a quarter period: 8 to 48. Harmonic n falls off by exp(-n k c) over the clearance c between magnets and
- * winding, k = pi/polePitch; the first that the points mistake for the fundamental is 4 points - 1, past exp(-3) then. A
- * winding that nearly fills the gap takes the mean over harmonics at all distances: a tenth of the gap will do.
+ * winding, k = pi/polePitch; the first that the points mistake for the fundamental is 4 points - 1, past exp(-3) then.
+ * A winding that nearly fills the gap takes the mean over harmonics at all distances: a twentieth of the gap will do.
  */
 export function stationsFor({ poles, face, windingTo }: GapModel, radius: number): number {
-  const fall = (poles / (2 * radius)) * Math.max(face - windingTo, face / 5);
+  const fall = (poles / (2 * radius)) * Math.max(face - windingTo, face / 10);
   return Math.ceil(Math.min(Math.max(1 / fall, 8), 48) - 1e-9);
 }
 

@@ -17,6 +17,10 @@ export interface CoilWindow {
   readonly profile: (radius: number) => Profile;
 }
 
+/** Radii between which the legs run: those of the opening where coils stand side by side. */
+export const legEnds = (winding: Winding): { readonly innerRadius: number; readonly outerRadius: number } =>
+  winding.layout === 'concentrated' ? winding.opening : winding.legs;
+
 /** The whole coil, end turns and all. */
 export function coilWindow({ winding, rotor }: Machine): CoilWindow {
   const { meanRadius } = rotor.magnets;

@@ -1,10 +1,11 @@
-import type { Machine, Warning, Winding } from '../machine.js';
+import type { Machine, Warning } from '../machine.js';
 import { magnetReach } from '../rotor/magnet-shape.js';
 import { polynomialRadii } from '../rotor/slice-radii.js';
 import type { SolvedSlice } from '../slices/solve-slice.js';
-import { endRing, ringInductance } from './end-turns.js';
-import type { SliceInductance } from './slice-inductance.js';
+import { legEnds } from './coil-window.js';
 import { sliceInductance, turnsSquared } from './slice-inductance.js';
+import type { Pair } from './whole-coils.js';
+import { wholeCoils } from './whole-coils.js';
 
 /** A figure by its parts, H. */
 export interface InductanceParts {
@@ -12,78 +13,91 @@ export interface InductanceParts {
   readonly total: number;
   /** Straight legs, from the fields of the slices. */
   readonly slices: number;
+  /** What the third dimension adds: end turns, and what the legs' ends change. */
   readonly endTurns: number;
   /** Estimated error of `slices` from the mesh, relative to it. */
   readonly slicesRelErr: number;
+  /** Half width of the band about `endTurns` for what their model leaves out, H. */
+  readonly endTurnsBand: number;
 }
 
-/** Of one phase, its paths in parallel. */
+/** Of one phase, its paths in parallel; mean over the rotor's position. */
 export interface Inductance {
   readonly self: InductanceParts;
-  /** Between two phases of one star, mean over the pairs; negative where their coils drive flux through each other's backwards. */
+  /** Of two phases of one star, mean over the pairs. */
   readonly mutual: InductanceParts;
-  /** self - mutual: what a phase has where the currents of its star sum to nothing. */
+  /** self - mutual: what a phase has where the currents of its star sum to nothing, mean over all such currents. */
   readonly phase: InductanceParts;
   readonly warnings: readonly Warning[];
 }
 
 /** More slices than these are not needed for what varies so little along the radius. */
 const ENOUGH = 5;
-/** Beyond this share of `phase` the rough part is told. */
-const MUCH = 0.4;
 
 /**
- * Self and mutual inductance of the phases, mean over the rotor's position.
+ * Share of the end turns by which they may be off: the bundles' real section and course; those of overlapped windings pass
+ * over each other. A judgement.
+ */
+const BUNDLES = { concentrated: 0.05, overlapped: 0.2 } as const;
+
+/**
+ * Self and mutual inductance of the phases.
  *
- * Slices: along the legs' own radial length (the opening's, of coils side by side) the polynomial through the slices'
- * inductances per metre is integrated; where legs end beyond the magnets, the rotor is taken to go on as it is. A leg that
- * slants counts by its radial length: that it is longer and its neighbours nearer cancel but for a per cent.
+ * Slices: the polynomial through the slices' inductances per metre, integrated along the legs' own radial length (that of the
+ * opening, of coils side by side); where the legs end beyond the magnets, the rotor is taken to go on as it is. A slanted leg
+ * counts by its radial length: it is longer, and the waves across it are shorter by as much, which cancels but for a per cent.
  *
- * End turns: both end parts of a coil joined to a ring in free space (`ringInductance`). End parts of different coils are
- * taken not to link each other, nor the legs, and the steel near them is left out.
+ * End turns: the whole coils in three dimensions less their straight legs, both under the same simpler assumptions
+ * (`wholeCoils`).
  *
- * @param slices  solved; of many, some are used
+ * @param slices  solved, of one machine; of many, some are used
+ * @throws Error for slices without a solution
  */
 export function computeInductance(machine: Machine, slices: readonly SolvedSlice[]): Inductance {
-  const { winding, rotor } = machine;
+  const { winding } = machine;
   const chosen = spread(slices);
   const { innerRadius, outerRadius } = legEnds(winding);
-  const weights = polynomialRadii(
-    innerRadius,
-    outerRadius,
-    chosen.map(({ answer }) => answer.radius),
-  ).map(({ weight }) => weight);
+  const radii = chosen.map(({ answer }) => answer.radius);
+  const weights = polynomialRadii(innerRadius, outerRadius, radii).map(({ weight }) => weight);
   const each = chosen.map((slice) => sliceInductance(machine, slice));
-  const coils = winding.coils / winding.phases;
-  const ends = turnsSquared(winding) * coils * ringInductance(endRing(winding, rotor.poles));
-  const of = (which: 'self' | 'mutual' | 'phase', endTurns: number): InductanceParts => {
-    const value = sum(each.map((slice, i) => weights[i] * slice[which].value));
-    const error = sum(each.map((slice, i) => Math.abs(weights[i]) * slice[which].error));
+  const coils = wholeCoils(machine);
+  const of = (which: 'self' | 'mutual' | 'phase', from: (pair: Pair) => number): InductanceParts => {
+    let [value, error] = [0, 0];
+    each.forEach((slice, i) => {
+      value += weights[i] * slice[which].value;
+      error += Math.abs(weights[i]) * slice[which].error;
+    });
+    const endTurns = turnsSquared(winding) * (from(coils.whole) - from(coils.slices));
+    const homopolar = turnsSquared(winding) * from(coils.endless);
     return {
       total: value + endTurns,
       slices: value,
       endTurns,
       slicesRelErr: value === 0 ? 0 : error / Math.abs(value),
+      endTurnsBand: BUNDLES[winding.layout] * Math.abs(endTurns) + Math.abs(homopolar) / 2,
     };
   };
-  const phase = of('phase', ends);
-  return { self: of('self', ends), mutual: of('mutual', 0), phase, warnings: warningsOf(machine, phase, each) };
+  const phase = of('phase', ({ self, mutual }) => self - mutual);
+  return {
+    self: of('self', ({ self }) => self),
+    mutual: of('mutual', ({ mutual }) => mutual),
+    phase,
+    warnings: warningsOf(machine, phase),
+  };
 }
-
-const sum = (values: readonly number[]): number => values.reduce((a, b) => a + b, 0);
 
 /** At most `ENOUGH` slices, first and last among them, evenly by their order. */
 function spread(slices: readonly SolvedSlice[]): readonly SolvedSlice[] {
   const count = Math.min(ENOUGH, slices.length);
-  if (count === 1) return slices;
+  if (count <= 1) return slices;
   return Array.from({ length: count }, (_, i) => slices[Math.round((i * (slices.length - 1)) / (count - 1))]);
 }
 
-/** Radii between which the legs run. */
-const legEnds = (winding: Winding): { readonly innerRadius: number; readonly outerRadius: number } =>
-  winding.layout === 'concentrated' ? winding.opening : winding.legs;
+const KEY = 'winding.phase_inductance_H';
+/** A band of more than this share of the phase inductance is told. */
+const WIDE = 0.1;
 
-function warningsOf({ rotor, winding }: Machine, phase: InductanceParts, _each: readonly SliceInductance[]): Warning[] {
+function warningsOf({ rotor, winding }: Machine, phase: InductanceParts): Warning[] {
   const warnings: Warning[] = [];
   const { inner, outer } = magnetReach(rotor.magnets);
   const { innerRadius, outerRadius } = legEnds(winding);
@@ -92,14 +106,14 @@ function warningsOf({ rotor, winding }: Machine, phase: InductanceParts, _each: 
     const text =
       `the legs reach ${(1000 * beyond).toFixed(1)} mm beyond the magnets; their inductance is worked out as if the rotor ` +
       'went on there';
-    warnings.push({ key: 'winding.phase_inductance_H', text });
+    warnings.push({ key: KEY, text });
   }
-  if (phase.endTurns > MUCH * phase.total) {
-    const share = (100 * phase.endTurns) / phase.total;
+  if (phase.endTurnsBand > WIDE * phase.total) {
+    const [ends, band] = [phase.endTurns, phase.endTurnsBand].map((part) => ((100 * part) / phase.total).toFixed(0));
     const text =
-      `${share.toFixed(0)} % of the phase inductance is that of the end turns, taken as rings in free space that do not link ` +
-      'each other; take the figure as a guide';
-    warnings.push({ key: 'winding.phase_inductance_H', text });
+      `${ends} % of it is that of the end turns, which the way they run over each other and the steel beside them may change ` +
+      `by as much as ${band} % of the whole`;
+    warnings.push({ key: KEY, text });
   }
   return warnings;
 }

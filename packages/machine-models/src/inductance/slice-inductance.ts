@@ -31,7 +31,7 @@ export interface SliceInductance {
 }
 
 /** A wave whose reaction may bring no more than this share of the self-inductance is taken to have none. */
-const NEGLIGIBLE = 2e-5;
+const NEGLIGIBLE = 5e-5;
 
 /**
  * Inductance of the straight legs where the cylinder of one radius cuts them, from the slice's solved field.

@@ -37,8 +37,8 @@ export function coercivityAt({ coercivityIntrinsic, coercivitySlope }: Magnet, c
 
 /** What a temperature in degC leaves nothing of, by the straight laws: there the magnet is none any more. */
 export function lostAt(magnet: Magnet, celsius: number): 'remanence' | 'coercivity' | undefined {
-  if (!(share(magnet.remanenceSlope, celsius) > 0)) return 'remanence';
-  return share(magnet.coercivitySlope ?? 0, celsius) > 0 ? undefined : 'coercivity';
+  if (share(magnet.remanenceSlope, celsius) <= 0) return 'remanence';
+  return share(magnet.coercivitySlope ?? 0, celsius) <= 0 ? 'coercivity' : undefined;
 }
 
 /**

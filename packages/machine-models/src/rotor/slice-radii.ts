@@ -84,11 +84,11 @@ function gaussLegendre(count: number): readonly { readonly x: number; readonly w
 export const FINEST_LEVEL = 5;
 
 /**
- * The slices of `radii: auto` at a level from 0: for round magnets 3, 5, 7, ... points in the angle, for others 3, 5, 9,
+ * The slices of `radii: auto` at a level from 0: for round magnets 5, 7, 9, ... points in the angle, for others 3, 5, 9,
  * 17, ... by Simpson's rule, each of which takes up all radii of the one before.
  */
 export function autoRadii(magnets: MagnetOutline, level: number): readonly SliceRadius[] {
-  if (magnets.shape === 'round') return roundRadii(magnets.meanRadius, magnets.diameter, 3 + 2 * level);
+  if (magnets.shape === 'round') return roundRadii(magnets.meanRadius, magnets.diameter, 5 + 2 * level);
   const { inner, outer } = magnetReach(magnets);
   return simpsonRadii(inner, outer, 1 + 2 ** (level + 1));
 }
