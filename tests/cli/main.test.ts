@@ -49,8 +49,8 @@ describe('gapwright new', () => {
   test('lists the scenarios, each with what it is', async () => {
     const { status, out } = await run(['new', '--list']);
     expect(status).toBe(0);
-    expect(out).toMatch(/^hut-hydro {2}\S.{20,}/m);
-    for (const line of out.trimEnd().split('\n')) expect(line).toMatch(/^([a-z-]+| +) {2}\S.{0,96}$/);
+    expect(out).toMatch(/^hut-hydro {2,}\S.{20,}/m);
+    for (const line of out.trimEnd().split('\n')) expect(line).toMatch(/^([a-z-]+| +) {2,}\S.{0,96}$/);
   });
 
   test.each(['../hut-hydro', 'hut', '', 'hut-hydro.yaml'])('knows no scenario %j', async (scenario) => {

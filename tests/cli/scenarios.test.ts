@@ -12,6 +12,8 @@ interface ByHand {
   readonly emf: number;
   /** Relative: coils of touching legs (by hand) are not the trapezia of the files, and the steel is not ideal. */
   readonly band: number;
+  /** Key of the results about which a warning is in place. */
+  readonly warned?: string;
 }
 
 /**
@@ -26,7 +28,7 @@ const byHand: Readonly<Record<string, ByHand>> = {
   'field-charger': { emf: 29.0 * (11 / 10) * (1 - 0.0012 * 60), band: 0.04 }, // by hand: ten turns, cold
   'lab-rig': { emf: 4.19 * (268 / 300), band: 0.03 },
   'orchard-cart': { emf: 17.2, band: 0.04 },
-  'canal-launch': { emf: canalLaunch(), band: 0.04 },
+  'canal-launch': { emf: canalLaunch(), band: 0.04, warned: 'winding.phase_inductance_H' }, // much of it in the end turns
 };
 
 /**
@@ -39,16 +41,16 @@ const byHand: Readonly<Record<string, ByHand>> = {
  * its mean over the winding is sinh(kt/2)/(kt/2) times that, and E = N omega B kw (ro^2 - ri^2) / sqrt 2.
  */
 function canalLaunch(): number {
-  const [k, gap, depth, thickness, arc] = [8 / 0.105, 0.013, 0.01, 0.011, 0.7];
+  const [k, gap, depth, thickness, arc] = [10 / 0.112, 0.013, 0.01, 0.011, 0.7];
   const remanence = 1.305 * (1 - 0.0012 * 20);
   const [a, b, c] = [(k * gap) / 2, k * depth, (k * thickness) / 2];
   const angle = (arc * Math.PI) / 2;
   const main = Math.sin(angle) * Math.sinh(b);
   const between = Math.cos(angle) * (Math.cosh(b) - 1);
   const field = (remanence * (4 / Math.PI) * (main + between) * (Math.sinh(c) / c)) / Math.sinh(a + b);
-  const spread = (k * 0.0105) / 2; // half a leg in electrical radians
-  const [turns, omega] = [8 * 5, (2 * Math.PI * 850) / 60];
-  return (turns * omega * field * (Math.sin(spread) / spread) * (0.125 ** 2 - 0.085 ** 2)) / Math.SQRT2;
+  const spread = (k * 0.0086) / 2; // half a leg in electrical radians
+  const [turns, omega] = [10 * 3, (2 * Math.PI * 900) / 60];
+  return (turns * omega * field * (Math.sin(spread) / spread) * (0.137 ** 2 - 0.087 ** 2)) / Math.SQRT2;
 }
 
 /** What a scenario may ask for and this version leaves out. */
@@ -77,11 +79,11 @@ describe('the scenarios', () => {
       const said = err.split('\n').filter((text) => text !== '' && !/^\d+ slices solved in /.test(text));
       for (const line of said) expect(line).toMatch(leftOut);
       const result: MachineResult = JSON.parse(out);
-      for (const { text } of result.warnings) expect(text).toMatch(/^read and checked; /);
+      const { emf, band, warned } = byHand[name];
+      for (const { key, text } of result.warnings) if (key !== warned) expect(text).toMatch(/^read and checked; /);
       for (const slice of result.slices) expect(slice.newton_steps).toBeGreaterThan(0);
       expect(result.effective_B.peak_T_rel_err).toBeLessThanOrEqual(0.002);
 
-      const { emf, band } = byHand[name];
       const { slices_alone: alone, end_factor: endFactor = Number.NaN, phase } = result.emf;
       expect(Math.abs(alone.phase_rms_V / emf - 1), `${alone.phase_rms_V} V, by hand ${emf} V`).toBeLessThan(band);
       expect(endFactor).toBeGreaterThan(0.7);

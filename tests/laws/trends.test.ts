@@ -162,7 +162,7 @@ describe.each(cases)('%s', (name, geometry, room, expected) => {
       double: percent(best.double),
       doubleThrough: percent(best.doubleThrough),
     };
-  });
+  }, 60_000);
 
   test('the line has no third harmonic, whatever the gap', () => {
     for (const { sampled } of Object.values(best)) {

@@ -35,14 +35,15 @@ const airShown = 0.35;
 
 function pictured({ rotor }: Machine, { field, recovered, pole }: SolvedSlice): SliceField {
   const { mesh, potential } = field;
-  const rear = rotor.gap / 2 + rotor.magnets.thickness + (rotor.disc?.thickness ?? 0);
-  const height = rear + airShown * pole.polePitch;
+  const air = airShown * pole.polePitch;
+  const upper = rotor.gap / 2 + rotor.magnets.thickness + (rotor.disc?.thickness ?? 0) + air;
+  const lower = rotor.keeper === undefined ? upper : rotor.gap / 2 + rotor.keeper.thickness + air;
   return {
     mesh,
     potential,
     magnitude: magnitudeOf(recovered),
     ...triangleMeans(field),
     copies: imagesOfPolePair(pole),
-    heights: [-height, height],
+    heights: [-lower, upper],
   };
 }

@@ -71,3 +71,8 @@ test('arcs that bulge through flat triangles beside a cusp are cut finer', () =>
   ]);
   checkMesh(meshSection(cusp), { regionAreas: overlayAreas(cusp) });
 });
+
+test('an outline thinner than the distance within which points are one is refused', () => {
+  for (const shapes of [[], [circle(1e-7, 4e-7, 1e-8)]])
+    expect(faultCodes(() => meshSection(drawing(shapes, { outline: rectangle(0, 0, 1e9, 1e-6) })))[0]).toBe('no-area');
+});

@@ -1,7 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { coilWindow, legsFundamental } from '../../../packages/machine-models/src/end-effect/coil-window.js';
-import { gaussPoints } from '../../../packages/machine-models/src/end-effect/gauss-points.js';
 import type { Machine } from '../../../packages/machine-models/src/machine.js';
+import { gaussPoints } from '../../../packages/machine-models/src/rotor/gauss-points.js';
 import { hutHydro, overlappedHydro, withWinding } from '../../helpers/machines.js';
 import { withRotor } from './made-machines.js';
 

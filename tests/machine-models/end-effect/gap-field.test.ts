@@ -1,11 +1,11 @@
 import { describe, expect, test } from 'vitest';
 import { fundamentalOf, gapField } from '../../../packages/machine-models/src/end-effect/gap-field.js';
 import { type GapModel, gapModel } from '../../../packages/machine-models/src/end-effect/gap-model.js';
-import { gaussPoints } from '../../../packages/machine-models/src/end-effect/gauss-points.js';
 import { stationsFor } from '../../../packages/machine-models/src/end-effect/linkage.js';
 import { planeFundamental, planeSources } from '../../../packages/machine-models/src/end-effect/plane-field.js';
 import { CHORD, poleFaces } from '../../../packages/machine-models/src/end-effect/pole-faces.js';
 import type { Machine } from '../../../packages/machine-models/src/machine.js';
+import { gaussPoints } from '../../../packages/machine-models/src/rotor/gauss-points.js';
 import { magnetReach } from '../../../packages/machine-models/src/rotor/magnet-shape.js';
 import { hutHydro } from '../../helpers/machines.js';
 import {

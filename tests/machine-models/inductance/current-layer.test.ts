@@ -45,7 +45,7 @@ test('plates: the images of the layer in them, summed', () => {
       const most = Math.ceil(30 / (k * period)) + 2;
       for (let n = 0; n < most; n++) {
         for (const apart of [2 * u + n * period, 2 * v + n * period, (n + 1) * period, (n + 1) * period]) {
-          sum += byGreenFunction(k, thickness, apart, 40);
+          sum += byGreenFunction(k, thickness, apart, 100);
         }
       }
       expect(relativeError(reactionOfPlates(k, thickness, u, v), sum)).toBeLessThan(2e-3);

@@ -3,7 +3,7 @@ import { colourScaleEnd } from '@gapwright/fem-core/field';
 import type { Machine, MachineResult, SliceAnswer } from '@gapwright/machine-models';
 import { sheetText } from '../datasheet.js';
 import type { Engine, SliceField, SolvedMachine } from '../engine.js';
-import { figure, given, givenMm, percent } from '../figures.js';
+import { figure, given, percent } from '../figures.js';
 import { checkOutputFolder } from '../files.js';
 import { readMachineFile } from '../input.js';
 import { colourWanted } from '../options.js';
@@ -54,7 +54,7 @@ export async function runSolve(
 function progressLine(answer: SliceAnswer, index: number, machine: Machine): string {
   const { mesh, meshes, newtonStepsTotal } = answer;
   return (
-    `slice ${index + 1}${machine.model.auto ? '' : ` of ${machine.model.slices.length}`}, radius ${givenMm(answer.radius)} mm: ` +
+    `slice ${index + 1}${machine.model.auto ? '' : ` of ${machine.model.slices.length}`}, radius ${sliceMm(answer.radius)} mm: ` +
     `${mesh.triangles} triangles, mesh ${meshes}, ${newtonStepsTotal} Newton steps in all\n`
   );
 }
@@ -73,12 +73,15 @@ function judge(machine: Machine, answers: readonly SliceAnswer[], { stderr }: Su
           .slice(-6)
           .map((r) => r.toExponential(1))
           .join(', ')})`;
-    stderr.write(`not reached: the slice at radius ${givenMm(radius)} mm ${what}\n`);
+    stderr.write(`not reached: the slice at radius ${sliceMm(radius)} mm ${what}\n`);
   }
   return short.length === 0 ? exitStatus.done : exitStatus.notReached;
 }
 
-const sliceName = (radius: number, index: number): string => `slice-${index + 1}-${given(1000 * radius)}mm`;
+/** Radii that a rule has chosen have many digits. */
+const sliceMm = (radius: number): string => given(1000 * radius, 5);
+
+const sliceName = (radius: number, index: number): string => `slice-${index + 1}-${sliceMm(radius)}mm`;
 
 /** Of as many slices as are known: before the solve, `radii: auto` has told the first ones only. */
 function outputNames(radii: readonly { readonly radius: number }[], vtu: boolean): string[] {
@@ -117,7 +120,7 @@ function drawPictures(result: MachineResult, fields: readonly SliceField[]): str
   const scaleEnd = Math.max(...fields.map(({ mesh, magnitude }) => colourScaleEnd(mesh, magnitude)));
   return fields.map((field, k) =>
     drawField(field, {
-      title: `Slice at radius ${givenMm(result.slices[k].radius_m)} mm: ${plainText(result.machine)}`,
+      title: `Slice at radius ${sliceMm(result.slices[k].radius_m)} mm: ${plainText(result.machine)}`,
       copies: field.copies,
       heights: field.heights,
       scaleEnd,

@@ -1,5 +1,5 @@
 import type { Mesh } from '../mesh/mesh.js';
-import { triangleCount } from '../mesh/mesh.js';
+import { longestEdge, triangleCount } from '../mesh/mesh.js';
 
 /** Smallest share of its present size an element is asked to shrink to in one go. */
 const SMALLEST = 0.25;
@@ -38,15 +38,4 @@ export function wantedSizes(
     if (r < 0.85) wanted[t] = 1.15 * r * longestEdge(mesh, t);
   }
   return wanted;
-}
-
-function longestEdge(mesh: Mesh, t: number): number {
-  const { xy, triangles } = mesh;
-  let longest = 0;
-  for (let k = 0; k < 3; k++) {
-    const a = 2 * triangles[3 * t + k];
-    const b = 2 * triangles[3 * t + ((k + 1) % 3)];
-    longest = Math.max(longest, Math.hypot(xy[a] - xy[b], xy[a + 1] - xy[b + 1]));
-  }
-  return longest;
 }

@@ -69,6 +69,17 @@ export const triangleCount = (mesh: Mesh): number => mesh.triangles.length / 3;
 /** Number of nodes of the quadratic elements, n + e: corners and edge middles. */
 export const nodeCount = (mesh: Mesh): number => cornerCount(mesh) + edgeCount(mesh);
 
+/** Longest edge of triangle t, from corner to corner, m. */
+export function longestEdge({ xy, triangles }: Mesh, t: number): number {
+  let longest = 0;
+  for (let k = 0; k < 3; k++) {
+    const a = 2 * triangles[3 * t + k];
+    const b = 2 * triangles[3 * t + ((k + 1) % 3)];
+    longest = Math.max(longest, Math.hypot(xy[a] - xy[b], xy[a + 1] - xy[b + 1]));
+  }
+  return longest;
+}
+
 /** The six node numbers of triangle t, written into `out` (Int32Array(6)) and returned. */
 export function triangleNodes(mesh: Mesh, t: number, out: Int32Array): Int32Array {
   const n = cornerCount(mesh);

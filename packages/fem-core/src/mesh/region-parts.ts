@@ -18,7 +18,9 @@ export function nameRegions(tri: Triangulation, graph: PlanarGraph, outermost: n
   const { drawing } = graph;
   const present = new Uint8Array(drawing.shapes.length);
   const done = new Uint8Array(tri.slotCount);
-  const open: { readonly seed: number; readonly within: readonly number[] }[] = [{ seed: outermost, within: [] }];
+  const open: { readonly seed: number; readonly within: readonly number[] }[] = [];
+  // Points that all became one, or lie on one line, make no triangle: nothing of the outline is there.
+  if (outermost >= 0 && outermost < tri.slotCount) open.push({ seed: outermost, within: [] });
   for (let part = open.pop(); part !== undefined; part = open.pop()) {
     if (done[part.seed] === 1) continue;
     const region = regionWithin(drawing, part.within);

@@ -1,10 +1,10 @@
 import type { Machine } from '../machine.js';
+import { gaussPoints } from '../rotor/gauss-points.js';
 import { magnetReach } from '../rotor/magnet-shape.js';
 import type { CoilWindow } from './coil-window.js';
 import { coilWindow, legsFundamental } from './coil-window.js';
 import { fundamentalOf, gapField } from './gap-field.js';
 import type { GapModel } from './gap-model.js';
-import { gaussPoints } from './gauss-points.js';
 import { planeFundamental, planeSources } from './plane-field.js';
 import { CHORD, poleFaces } from './pole-faces.js';
 

@@ -1,5 +1,5 @@
 import { MU0 } from '@gapwright/fem-core';
-import type { Rotor } from '../machine.js';
+import type { Machine } from '../machine.js';
 
 /*
  * A layer of thickness t about y = 0 that carries J = cos(k x) out of the page, 1 A/m^2 at the crest, alike over y. In the
@@ -12,7 +12,7 @@ import type { Rotor } from '../machine.js';
 export function freeResponse(k: number, thickness: number): number {
   const x = k * thickness;
   // The difference loses all digits for thin layers: 1 - (1 - exp(-x))/x = x/2 - x^2/6 + x^3/24 - ...
-  const share = x < 1e-3 ? x / 2 - (x * x) / 6 : 1 - -Math.expm1(-x) / x;
+  const share = x < 1e-3 ? x / 2 - (x * x) / 6 + x ** 3 / 24 : 1 - -Math.expm1(-x) / x;
   return (MU0 / (k * k)) * share;
 }
 
@@ -43,7 +43,10 @@ export function reactionOfPlates(k: number, thickness: number, up: number, down:
 }
 
 /** How far above and below the mid-plane of the gap steel begins, m; Infinity where there is none. */
-export function plates({ gap, magnets, disc, keeper }: Rotor): { readonly up: number; readonly down: number } {
-  const behind = disc === undefined ? Infinity : gap / 2 + magnets.thickness;
-  return { up: behind, down: keeper === undefined ? behind : gap / 2 };
+export function plates({ rotor, materials }: Machine): { readonly up: number; readonly down: number } {
+  const { gap, magnets, disc, keeper } = rotor;
+  const distance = (name: string | undefined, from: number): number =>
+    name === undefined || materials[name].kind === 'nonmagnetic' ? Infinity : from;
+  const up = distance(disc?.material, gap / 2 + magnets.thickness);
+  return { up, down: keeper === undefined ? up : distance(keeper.material, gap / 2) };
 }

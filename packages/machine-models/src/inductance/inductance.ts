@@ -68,13 +68,13 @@ export function computeInductance(machine: Machine, slices: readonly SolvedSlice
       error += Math.abs(weights[i]) * slice[which].error;
     });
     const endTurns = turnsSquared(winding) * (from(coils.whole) - from(coils.slices));
-    const homopolar = turnsSquared(winding) * from(coils.endless);
+    const homopolar = turnsSquared(winding) * from(coils.homopolarBand);
     return {
       total: value + endTurns,
       slices: value,
       endTurns,
       slicesRelErr: value === 0 ? 0 : error / Math.abs(value),
-      endTurnsBand: BUNDLES[winding.layout] * Math.abs(endTurns) + Math.abs(homopolar) / 2,
+      endTurnsBand: BUNDLES[winding.layout] * Math.abs(endTurns) + Math.abs(homopolar),
     };
   };
   const phase = of('phase', ({ self, mutual }) => self - mutual);
@@ -95,7 +95,7 @@ function spread(slices: readonly SolvedSlice[]): readonly SolvedSlice[] {
 
 const KEY = 'winding.phase_inductance_H';
 /** A band of more than this share of the phase inductance is told. */
-const WIDE = 0.1;
+const WIDE = 0.2;
 
 function warningsOf({ rotor, winding }: Machine, phase: InductanceParts): Warning[] {
   const warnings: Warning[] = [];
@@ -111,8 +111,8 @@ function warningsOf({ rotor, winding }: Machine, phase: InductanceParts): Warnin
   if (phase.endTurnsBand > WIDE * phase.total) {
     const [ends, band] = [phase.endTurns, phase.endTurnsBand].map((part) => ((100 * part) / phase.total).toFixed(0));
     const text =
-      `${ends} % of it is that of the end turns, which the way they run over each other and the steel beside them may change ` +
-      `by as much as ${band} % of the whole`;
+      `the end turns make up ${ends} % of it; how they pass over each other and the steel beside them may change the whole ` +
+      `by ${band} %`;
     warnings.push({ key: KEY, text });
   }
   return warnings;

@@ -96,14 +96,15 @@ export const turnsSquared = ({ turns, paths }: Winding): number => (turns / path
  * What magnets and steel can add to a wave at most: endlessly permeable plates where steel begins, and where magnets do their
  * share (m - 1)/(m + 1) of such plates, m the recoil permeability.
  */
-function reactionBound({ rotor, winding, materials }: Machine, k: number): number {
+function reactionBound(machine: Machine, k: number): number {
+  const { rotor, winding, materials } = machine;
   const { gap, magnets, interpoles } = rotor;
   const names = [magnets.material, ...(interpoles === undefined ? [] : [interpoles.material])];
   const shares = names.map((name) => {
     const material = materials[name];
     return material.kind === 'magnet' ? Math.abs(material.recoil - 1) / (material.recoil + 1) : 0;
   });
-  const { up, down } = plates(rotor);
+  const { up, down } = plates(machine);
   const { thickness } = winding;
   return (
     reactionOfPlates(k, thickness, up, down) + Math.max(...shares) * reactionOfPlates(k, thickness, gap / 2, gap / 2)

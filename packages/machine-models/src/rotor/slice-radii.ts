@@ -1,4 +1,5 @@
 import { Matrix, solve } from 'ml-matrix';
+import { gaussPoints } from './gauss-points.js';
 import type { MagnetOutline } from './magnet-shape.js';
 import { magnetReach } from './magnet-shape.js';
 
@@ -54,29 +55,13 @@ function legendre(count: number, x: number): number[] {
  * faster than any power of the number of slices.
  */
 export function roundRadii(meanRadius: number, diameter: number, count: number): readonly SliceRadius[] {
-  return gaussLegendre(count).map(({ x, weight }) => {
+  const { at, weight } = gaussPoints(count);
+  return at.map((x, i) => {
     const u = (Math.PI / 2) * x;
     return {
       radius: meanRadius + (diameter / 2) * Math.sin(u),
-      weight: (diameter / 2) * Math.cos(u) * (Math.PI / 2) * weight,
+      weight: (diameter / 2) * Math.cos(u) * (Math.PI / 2) * weight[i],
     };
-  });
-}
-
-/** Points, rising, and weights on -1 ... 1: zeros of P_n by Newton's method, weights 2 / ((1 - x^2) P_n'(x)^2). */
-function gaussLegendre(count: number): readonly { readonly x: number; readonly weight: number }[] {
-  return Array.from({ length: count }, (_, i) => {
-    let x = -Math.cos((Math.PI * (i + 0.75)) / (count + 0.5));
-    let slope = 1;
-    for (let step = 0; step < 100; step++) {
-      const p = legendre(count + 1, x);
-      slope = (count * (p[count - 1] - x * p[count])) / (1 - x * x);
-      const change = p[count] / slope;
-      x -= change;
-      if (Math.abs(change) < 1e-16) break;
-    }
-    if (2 * i + 1 === count) x = 0;
-    return { x, weight: 2 / ((1 - x * x) * slope * slope) };
   });
 }
 
