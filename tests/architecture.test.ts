@@ -36,6 +36,7 @@ const houses: readonly (readonly [SourcePackage, Floors])[] = [
       ['machine.ts'],
       ['materials', 'rotor', 'waves', 'winding'],
       ['input', 'slices', 'end-effect'],
+      ['inductance'],
       ['results', 'section-file'],
       ['solve-machine.ts'],
       ['index.ts'],

@@ -32,3 +32,7 @@ export const force = (newton: number): string => `${figure(newton, 3)} N (${figu
 export const meshError = (relative: number): string => `± ${figure(100 * relative, 2)} %`;
 
 export const percent = (share: number, digits = 3): string => `${figure(100 * share, digits)} %`;
+
+/** Millihenry or microhenry, whichever reads better. */
+export const henry = (value: number, digits = 4): string =>
+  Math.abs(value) < 1e-4 ? `${figure(1e6 * value, digits)} uH` : `${figure(1e3 * value, digits)} mH`;

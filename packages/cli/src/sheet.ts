@@ -1,5 +1,6 @@
 import type { Machine, MachineResult, VoltageResult } from '@gapwright/machine-models';
-import { figure, force, given, givenMm, meshError, mm, percent, power, resistance } from './figures.js';
+import { coercivityAt, remanenceAt } from '@gapwright/machine-models';
+import { figure, force, given, givenMm, henry, meshError, mm, percent, power, resistance } from './figures.js';
 import { plainText } from './plain-text.js';
 
 /** A datasheet as content, whatever it is then shown on. All texts are plain, of one line, with units. */
@@ -59,7 +60,7 @@ export function machineGroup({ rotor, winding, operation, materials }: Machine):
     { label: 'Magnets', value: `${magnetText(magnets)}, mean radius ${givenMm(magnets.meanRadius)} mm` },
     {
       label: 'Magnet material',
-      value: `${materialText(magnets.material, materials)}, at ${given(magnets.temperature)} degC`,
+      value: magnetMaterial(magnets.material, magnets.temperature, materials),
     },
     ...interpoleRows(rotor, materials),
     {
@@ -107,20 +108,24 @@ function magnetText(magnets: Machine['rotor']['magnets']): string {
   }
 }
 
-function interpoleRows({ interpoles }: Machine['rotor'], materials: Machine['materials']): SheetRow[] {
+function interpoleRows({ interpoles, magnets }: Machine['rotor'], materials: Machine['materials']): SheetRow[] {
   if (interpoles === undefined) return [];
   const { width, depth, through, material } = interpoles;
   const across = width === 'fill' ? 'fill the room between the magnets' : `${givenMm(width)} mm wide`;
   const deep = through ? `${givenMm(depth)} mm deep, through the disc` : `${givenMm(depth)} mm deep`;
-  return [{ label: 'Interpoles', value: `${across}, ${deep}, ${materialText(material, materials)}` }];
+  return [
+    { label: 'Interpoles', value: `${across}, ${deep}, ${magnetMaterial(material, magnets.temperature, materials)}` },
+  ];
 }
 
 const rowsBlock = (rows: readonly SheetRow[]): SheetBlock => ({ kind: 'rows', rows });
 
-function materialText(name: string, materials: Machine['materials']): string {
+function magnetMaterial(name: string, celsius: number, materials: Machine['materials']): string {
   const material = materials[name];
   if (material?.kind !== 'magnet') return plainText(name);
-  return `${plainText(name)}, remanence ${figure(material.remanence, 3)} T, recoil ${given(material.recoil)}`;
+  const coercivity = coercivityAt(material, celsius);
+  const held = coercivity === undefined ? '' : `, HcJ ${figure(coercivity / 1000, 3)} kA/m`;
+  return `${plainText(name)}, recoil ${given(material.recoil)}; ${figure(remanenceAt(material, celsius), 3)} T${held} at ${given(celsius)} degC`;
 }
 
 function wireText(wire: Machine['winding']['wire']): string {
@@ -312,10 +317,28 @@ function windingGroup({ winding: built }: Machine, { winding }: MachineResult): 
           label: 'Phase resistance',
           value: `${resistance(winding.phase_resistance_20C_ohm)} at 20 degC, ${resistance(winding.phase_resistance_hot_ohm)} at ${given(built.temperature)} degC`,
         },
+        ...inductanceRows(winding),
         ...phaseRows(winding.phase_map),
       ]),
     ],
   };
+}
+
+function inductanceRows({
+  self_inductance_H: self,
+  mutual_inductance_H: mutual,
+  phase_inductance_H: phase,
+  phase_inductance_H_rel_err: error = 0,
+  inductance_parts: parts,
+}: MachineResult['winding']): SheetRow[] {
+  if (self === undefined || mutual === undefined || phase === undefined || parts === undefined) return [];
+  const { slices_H, end_turns_H, end_turns_band_H } = parts.phase;
+  return [
+    { label: 'Phase inductance', value: `${henry(phase)}, self less mutual`, note: meshError(error) },
+    { label: '  by its legs', value: `${henry(slices_H)}, from the slices` },
+    { label: '  by its end turns', value: henry(end_turns_H), note: `± ${henry(end_turns_band_H, 2)} for their model` },
+    { label: 'Self, mutual', value: `${henry(self)}, ${henry(mutual)}` },
+  ];
 }
 
 /** Which coils, counted round the machine, make each phase; a minus marks those connected the other way round. */

@@ -10,7 +10,14 @@ export type { MaterialsReadResult } from './input/read-materials.js';
 export { readMaterials } from './input/read-materials.js';
 export type { LibraryMaterial, Machine, Warning, Winding } from './machine.js';
 export type { DemagnetisationRows, Magnet } from './materials/at-temperature.js';
-export { demagnetisationAt, kneeAt, lostAt, temperatureWarning } from './materials/at-temperature.js';
+export {
+  coercivityAt,
+  demagnetisationAt,
+  kneeAt,
+  lostAt,
+  remanenceAt,
+  temperatureWarning,
+} from './materials/at-temperature.js';
 export type { CurveColumns, MagnetAtResult, MaterialResult } from './materials/describe-material.js';
 export { curveColumns, magnetFigures, materialFigures } from './materials/describe-material.js';
 export type { MaterialGroup } from './materials/library.js';

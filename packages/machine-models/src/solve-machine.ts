@@ -1,4 +1,5 @@
 import { computeEndFactor } from './end-effect/end-factor.js';
+import { computeInductance } from './inductance/inductance.js';
 import type { Machine } from './machine.js';
 import type { Findings } from './results/assemble.js';
 import { effectiveWave, lineWave } from './results/leg-wave.js';
@@ -72,5 +73,12 @@ function changeOfFlux(machine: Machine, before: readonly SolvedSlice[], after: r
 
 /** All that `describeMachine` wants to know, from the solved slices; the fields are not needed any more. */
 export function findAll(machine: Machine, { slices, refined }: SolvedSlices): Findings {
-  return { slices: slices.map(({ answer }) => answer), refined, endFactor: computeEndFactor(machine) };
+  const answers = slices.map(({ answer }) => answer);
+  const solved = answers.every(({ converged }) => converged); // else there is no permeability to freeze
+  return {
+    slices: answers,
+    refined,
+    endFactor: computeEndFactor(machine),
+    inductance: solved ? computeInductance(machine, slices) : undefined,
+  };
 }

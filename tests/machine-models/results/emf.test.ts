@@ -541,7 +541,9 @@ describe('two, five and six phases', () => {
   });
 
   test('copper shared among more phases: as much wire, resistance of a phase in proportion to its share of the coils', () => {
-    const [three, six] = [hutHydro(), withWinding(hutHydro(), { phases: 6 })].map(describeWinding);
+    const [three, six] = [hutHydro(), withWinding(hutHydro(), { phases: 6 })].map((machine) =>
+      describeWinding(machine),
+    );
     expect(six.wire_length_m).toBe(three.wire_length_m);
     expect(six.phase_resistance_20C_ohm).toBeCloseTo(three.phase_resistance_20C_ohm / 2, 12);
     expect(lineResistanceHot(withWinding(hutHydro(), { phases: 6 }))).toBeCloseTo(2 * six.phase_resistance_hot_ohm, 12);

@@ -1,8 +1,8 @@
 import type { Machine } from '../machine.js';
 import { gaussPoints } from '../rotor/gauss-points.js';
 import { magnetReach } from '../rotor/magnet-shape.js';
-import type { CoilWindow } from './coil-window.js';
-import { coilWindow, legsFundamental } from './coil-window.js';
+import type { CoilWindow } from '../winding/coil-window.js';
+import { coilWindow, legsFundamental, windowFundamental } from '../winding/coil-window.js';
 import { fundamentalOf, gapField } from './gap-field.js';
 import type { GapModel } from './gap-model.js';
 import { planeFundamental, planeSources } from './plane-field.js';
@@ -60,7 +60,7 @@ export function measureLinkage(
     for (let j = 0; j < at.length; j++) {
       const radius = ends[i] + half * (1 + at[j]);
       const onMagnets = radius > inner && radius < outer;
-      const turns = window.fundamental(radius);
+      const turns = windowFundamental(window, machine.rotor.poles, radius);
       if (turns === 0 && !onMagnets) continue;
       const flux = weight[j] * half * radius * fundamentalOf(field, radius, count);
       whole += flux * turns;

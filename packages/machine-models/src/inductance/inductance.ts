@@ -2,7 +2,8 @@ import type { Machine, Warning } from '../machine.js';
 import { magnetReach } from '../rotor/magnet-shape.js';
 import { polynomialRadii } from '../rotor/slice-radii.js';
 import type { SolvedSlice } from '../slices/solve-slice.js';
-import { legEnds } from './coil-window.js';
+import { legEnds } from '../winding/coil-window.js';
+import type { SliceInductance } from './slice-inductance.js';
 import { sliceInductance, turnsSquared } from './slice-inductance.js';
 import type { Pair } from './whole-coils.js';
 import { wholeCoils } from './whole-coils.js';
@@ -28,6 +29,8 @@ export interface Inductance {
   readonly mutual: InductanceParts;
   /** self - mutual: what a phase has where the currents of its star sum to nothing, mean over all such currents. */
   readonly phase: InductanceParts;
+  /** Of the slices that were used, of overlapped windings of all, by rising radius. */
+  readonly slices: readonly SliceInductance[];
   readonly warnings: readonly Warning[];
 }
 
@@ -60,6 +63,9 @@ export function computeInductance(machine: Machine, slices: readonly SolvedSlice
   const radii = chosen.map(({ answer }) => answer.radius);
   const weights = polynomialRadii(innerRadius, outerRadius, radii).map(({ weight }) => weight);
   const each = chosen.map((slice) => sliceInductance(machine, slice));
+  // Overlapped: the legs' inductance is wanted of every slice.
+  const others = winding.layout === 'overlapped' ? slices.filter((slice) => !chosen.includes(slice)) : [];
+  const all = [...each, ...others.map((slice) => sliceInductance(machine, slice))];
   const coils = wholeCoils(machine);
   const of = (which: 'self' | 'mutual' | 'phase', from: (pair: Pair) => number): InductanceParts => {
     let [value, error] = [0, 0];
@@ -82,6 +88,7 @@ export function computeInductance(machine: Machine, slices: readonly SolvedSlice
     self: of('self', ({ self }) => self),
     mutual: of('mutual', ({ mutual }) => mutual),
     phase,
+    slices: all.sort((a, b) => a.radius - b.radius),
     warnings: warningsOf(machine, phase),
   };
 }

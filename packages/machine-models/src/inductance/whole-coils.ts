@@ -1,8 +1,8 @@
 import type { Machine } from '../machine.js';
 import { simpsonRadii } from '../rotor/slice-radii.js';
+import type { Profile } from '../winding/coil-window.js';
+import { coilWindow, legEnds, windowWave } from '../winding/coil-window.js';
 import { besselOrders } from './bessel.js';
-import type { Profile } from './coil-window.js';
-import { coilWindow, legEnds, windowWave } from './coil-window.js';
 import { freeResponse, plates, reactionOfPlates } from './current-layer.js';
 import type { CoilProducts } from './current-waves.js';
 import { coilProducts } from './current-waves.js';

@@ -1,4 +1,5 @@
 import type { EndFactor } from '../end-effect/end-factor.js';
+import type { Inductance } from '../inductance/inductance.js';
 import type { Machine, Warning } from '../machine.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
 import type { Harmonics } from '../waves/series.js';
@@ -7,6 +8,7 @@ import { findCautions, overspeedPeak } from './cautions.js';
 import { circulatingEmf, computeEmf, describeEmf, endsOf, rectifiedPeak } from './emf.js';
 import { harmonicBound, relative } from './error-bounds.js';
 import { describeEffectiveB, describeLeg } from './leg-wave.js';
+import { describeMagnets } from './magnets.js';
 import { describeMasses, describePull } from './mechanical.js';
 import { describeMerit } from './merit.js';
 import type { HarmonicsResult, MachineResult, SliceResult } from './result.js';
@@ -27,6 +29,7 @@ export interface Findings {
   /** Of `radii: auto`: last relative change of the effective leg flux density, and whether it is within the accuracy. */
   readonly refined?: { readonly change: number; readonly settled: boolean } | undefined;
   readonly endFactor?: EndFactor | undefined;
+  readonly inductance?: Inductance | undefined;
 }
 
 /**
@@ -37,13 +40,13 @@ export interface Findings {
  */
 export function describeMachine(
   machine: Machine,
-  { slices, refined, endFactor }: Findings,
+  { slices, refined, endFactor, inductance }: Findings,
   warnings: readonly Warning[],
   stamp: RunStamp,
 ): MachineResult {
   const emf = describeEmf(machine, slices, endFactor);
   const effectiveB = describeEffectiveB(machine, slices);
-  const winding = describeWinding(machine);
+  const winding = describeWinding(machine, inductance);
   const mechanical = describePull(machine, slices);
   const waves = computeEmf(machine, slices, endsOf(machine, endFactor));
   const openPeak = rectifiedPeak(waves);
@@ -54,11 +57,12 @@ export function describeMachine(
     gapwright: stamp.version,
     machine: machine.name,
     input_sha256: stamp.inputSha256,
-    slices: slices.map((slice) => describeSlice(machine, slice)),
+    slices: slices.map((slice) => describeSlice(machine, slice, legInductance(slice, inductance))),
     emf,
     effective_B: effectiveB,
     winding,
     merit: describeMerit(machine, emf, effectiveB),
+    magnets: describeMagnets(machine),
     faults: { ...(overspeed !== undefined && { overspeed_dc_peak_V: overspeed }) },
     mechanical,
     masses: describeMasses(machine),
@@ -69,6 +73,7 @@ export function describeMachine(
       ...saturation(slices),
       ...unsettled(machine, refined),
       ...(machine.model.endCorrection ? (endFactor?.warnings ?? []) : []),
+      ...(inductance?.warnings ?? []),
     ],
   };
 }
@@ -79,7 +84,20 @@ function describeHarmonics(slice: SliceAnswer, { order, amplitude }: Harmonics):
   return { order, amplitude_T: amplitude, amplitude_T_rel_err: errors };
 }
 
-function describeSlice(machine: Machine, slice: SliceAnswer): SliceResult {
+/** Of overlapped windings. */
+function legInductance(slice: SliceAnswer, inductance: Inductance | undefined): SliceResult['leg_inductance'] {
+  const leg = inductance?.slices.find(({ radius }) => radius === slice.radius)?.leg;
+  if (leg === undefined) return undefined;
+  const { self, mutual } = leg;
+  return {
+    self_H_per_m: self.value,
+    self_H_per_m_rel_err: relative(self.error, self.value),
+    mutual_H_per_m: mutual.value,
+    mutual_H_per_m_rel_err: relative(mutual.error, mutual.value),
+  };
+}
+
+function describeSlice(machine: Machine, slice: SliceAnswer, leg: SliceResult['leg_inductance']): SliceResult {
   return {
     radius_m: slice.radius,
     pole_pitch_m: slice.polePitch,
@@ -90,6 +108,7 @@ function describeSlice(machine: Machine, slice: SliceAnswer): SliceResult {
     pull_N_per_m_pole_rel_err: slice.pullRelErr,
     energy_J_per_m_pole: slice.energy,
     energy_J_per_m_pole_rel_err: slice.energyRelErr,
+    ...(leg !== undefined && { leg_inductance: leg }),
     ...(slice.discB !== undefined && { disc_B_T: slice.discB }),
     ...(slice.peakSteelB !== undefined && { peak_steel_B_T: slice.peakSteelB }),
     mesh: { nodes: slice.mesh.nodes, triangles: slice.mesh.triangles, min_angle_deg: slice.mesh.minAngleDeg },

@@ -23,12 +23,22 @@ export interface MachineResult {
     readonly line_B_squared_thickness_T2m: number;
     readonly line_B_squared_thickness_T2m_rel_err: number;
   };
+  /** Main magnets at their temperature, and interpoles where they are of another material. */
+  readonly magnets: MagnetResult & { readonly interpoles?: MagnetResult };
   /** Open-circuit peak at overspeed with cold magnets, scaled from the figures above; left out without an overspeed. */
   readonly faults: { readonly overspeed_dc_peak_V?: number };
   readonly mechanical: { readonly disc_pull_N: number; readonly disc_pull_N_rel_err: number };
   readonly masses: { readonly magnets_kg?: number; readonly copper_kg: number; readonly steel_kg?: number };
   readonly cautions: readonly string[];
   readonly warnings: readonly Warning[];
+}
+
+export interface MagnetResult {
+  readonly material: string;
+  readonly temperature_C: number;
+  readonly remanence_T: number;
+  /** Left out where it is not known, or not how it changes from 20 degC. */
+  readonly coercivity_intrinsic_A_per_m?: number;
 }
 
 export interface HarmonicsResult {
@@ -56,6 +66,18 @@ export interface SliceResult {
   readonly pull_N_per_m_pole_rel_err: number;
   readonly energy_J_per_m_pole: number;
   readonly energy_J_per_m_pole_rel_err: number;
+  /**
+   * Overlapped windings: one turn a leg, all legs of a phase at 1 A in alternating sense, linkage of one leg per ampere, mean
+   * over the rotor's position; mutual with the next phase.
+   */
+  readonly leg_inductance?:
+    | {
+        readonly self_H_per_m: number;
+        readonly self_H_per_m_rel_err: number;
+        readonly mutual_H_per_m: number;
+        readonly mutual_H_per_m_rel_err: number;
+      }
+    | undefined;
   readonly disc_B_T?: number;
   readonly peak_steel_B_T?: number;
   readonly mesh: { readonly nodes: number; readonly triangles: number; readonly min_angle_deg: number };
@@ -120,6 +142,22 @@ export interface WindingResult {
   readonly wire_length_m: number;
   readonly phase_resistance_20C_ohm: number;
   readonly phase_resistance_hot_ohm: number;
+  /** Of one phase, mean over the rotor's position; left out where a slice did not converge. */
+  readonly self_inductance_H?: number;
+  readonly self_inductance_H_rel_err?: number;
+  /** Between two phases of one star. */
+  readonly mutual_inductance_H?: number;
+  readonly mutual_inductance_H_rel_err?: number;
+  /** self - mutual. */
+  readonly phase_inductance_H?: number;
+  readonly phase_inductance_H_rel_err?: number;
+  /** What each is made of: straight legs by the slices, and end turns with a band for what their model leaves out. */
+  readonly inductance_parts?: Readonly<
+    Record<
+      'self' | 'mutual' | 'phase',
+      { readonly slices_H: number; readonly end_turns_H: number; readonly end_turns_band_H: number }
+    >
+  >;
   readonly order: readonly number[];
   readonly winding_factor: readonly number[];
   /** For each coil in order round the machine: its phase (1 ...) and which way round (+1, -1). */

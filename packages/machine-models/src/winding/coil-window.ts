@@ -1,5 +1,5 @@
 import type { Machine, Opening, Winding } from '../machine.js';
-import { coilEdges, legCut } from '../winding/leg-cut.js';
+import { coilEdges, legCut } from './leg-cut.js';
 
 /** W as theta rises from the coil's axis: `share[0]` up to `angle[0]`, then straight from knot to knot, 0 at the last. */
 export interface Profile {
@@ -44,6 +44,25 @@ export function windowWave({ angle, share }: Profile, order: number): number {
     }
   }
   return sum / Math.PI;
+}
+
+/**
+ * Fundamental of the window at a radius:  S(r) = integral of W cos(p theta) dtheta,  p the pole pairs. A field
+ * By = B1(r) cos(p theta) links the coil, when a magnet stands on its axis, by turns x integral of r B1 S dr.
+ */
+export function windowFundamental({ profile }: CoilWindow, poles: number, radius: number): number {
+  return 2 * Math.PI * windowWave(profile(radius), poles / 2);
+}
+
+/**
+ * The same of the slices' coil: two legs prolonged to any radius, their turns spread evenly over the leg's width along the
+ * circumference:  S = (2/p) sin(p middle) sin(x)/x,  x = p (leg's angle)/2.
+ */
+export function legsFundamental({ rotor, winding }: Machine, radius: number): number {
+  const pairs = rotor.poles / 2;
+  const { halfSpan, width } = legCut(winding, rotor.poles, rotor.magnets.meanRadius, radius);
+  const x = (pairs * width) / (2 * radius);
+  return ((2 / pairs) * Math.sin(pairs * halfSpan) * Math.sin(x)) / x;
 }
 
 /**

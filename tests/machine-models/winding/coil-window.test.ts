@@ -1,9 +1,23 @@
 import { describe, expect, test } from 'vitest';
-import { coilWindow, legsFundamental } from '../../../packages/machine-models/src/end-effect/coil-window.js';
 import type { Machine } from '../../../packages/machine-models/src/machine.js';
 import { gaussPoints } from '../../../packages/machine-models/src/rotor/gauss-points.js';
+import {
+  coilWindow,
+  legsFundamental,
+  windowFundamental,
+  windowWave,
+} from '../../../packages/machine-models/src/winding/coil-window.js';
 import { hutHydro, overlappedHydro, withWinding } from '../../helpers/machines.js';
-import { withRotor } from './made-machines.js';
+import { withRotor } from '../end-effect/made-machines.js';
+
+/** Where the window changes, and its fundamental. */
+function windowOf(machine: Machine) {
+  const window = coilWindow(machine);
+  return {
+    radii: window.radii,
+    fundamental: (radius: number) => windowFundamental(window, machine.rotor.poles, radius),
+  };
+}
 
 /** Integral over the radius of r f, piece by piece. */
 function overRadius(radii: readonly number[], f: (radius: number) => number): number {
@@ -29,7 +43,7 @@ describe('coils side by side', () => {
     const side = Math.hypot(height, (opening.outerWidth - opening.innerWidth) / 2);
     const perimeter = opening.innerWidth + opening.outerWidth + 2 * side;
     // So few poles that the cosine is 1 all over the coil.
-    const { radii, fundamental } = coilWindow(withRotor(machine, { poles: 1e-6 }));
+    const { radii, fundamental } = windowOf(withRotor(machine, { poles: 2e-3 }));
     const got = overRadius(radii, fundamental);
     expect(Math.abs(got / (area + (perimeter * b) / 2 + (Math.PI * b * b) / 3) - 1)).toBeLessThan(1e-4);
   });
@@ -38,14 +52,14 @@ describe('coils side by side', () => {
     'beside the middle of the opening the turns are the legs of the slices, %s',
     (legShape) => {
       const machine = withWinding(hutHydro(), { legShape });
-      const { fundamental } = coilWindow(machine);
+      const { fundamental } = windowOf(machine);
       // The slices spread the turns evenly along the circumference, here they lie evenly across the leg.
       expect(Math.abs(fundamental(0.128) / legsFundamental(machine, 0.128) - 1)).toBeLessThan(2e-3);
     },
   );
 
   test('it shrinks to nothing at its ends and is nothing beyond', () => {
-    const { radii, fundamental } = coilWindow(hutHydro());
+    const { radii, fundamental } = windowOf(hutHydro());
     const [first, last] = [Math.min(...radii), Math.max(...radii)];
     expect(first).toBeCloseTo(0.1045 - 0.0205, 12);
     expect(last).toBeCloseTo(Math.hypot(0.1515, 0.015) + 0.0205, 12);
@@ -58,14 +72,14 @@ describe('coils side by side', () => {
 
   test('a coil no wider than its opening goes round just that', () => {
     const machine = withWinding(hutHydro(), { legWidth: 1e-7 });
-    const { fundamental } = coilWindow(machine);
+    const { fundamental } = windowOf(machine);
     expect(Math.abs(fundamental(0.128) / legsFundamental(machine, 0.128) - 1)).toBeLessThan(3e-3);
   });
 });
 
 describe('overlapped coils', () => {
   const machine = overlappedHydro();
-  const { fundamental } = coilWindow(machine);
+  const { fundamental } = windowOf(machine);
 
   test('between the ends of the legs the turns are the legs of the slices', () => {
     for (const radius of [0.101, 0.128, 0.155]) {
@@ -96,6 +110,31 @@ describe('overlapped coils', () => {
 
   test('full-pitch legs without width link (2/p) of the amplitude', () => {
     const thin: Machine = withWinding(machine, { legWidth: 1e-9 });
-    expect(Math.abs(coilWindow(thin).fundamental(0.128) / (2 / 8) - 1)).toBeLessThan(1e-6);
+    expect(Math.abs(windowOf(thin).fundamental(0.128) / (2 / 8) - 1)).toBeLessThan(1e-6);
+  });
+});
+
+describe.each([
+  ['side by side', hutHydro()],
+  ['side by side, tapered', withWinding(hutHydro(), { legShape: 'tapered' })],
+  ['overlapped', overlappedHydro()],
+])('%s', (_, machine) => {
+  const window = coilWindow(machine);
+
+  test('the waves of the window add up to it', () => {
+    const profile = window.profile(0.13);
+    let [axis, outside] = [windowWave(profile, 0), windowWave(profile, 0)];
+    for (let m = 1; m < 4000; m++) {
+      axis += 2 * windowWave(profile, m);
+      outside += 2 * windowWave(profile, m) * Math.cos(m * Math.PI);
+    }
+    expect(axis).toBeCloseTo(1, 3);
+    expect(outside).toBeCloseTo(0, 3);
+  });
+
+  test('it vanishes at both ends', () => {
+    for (const radius of [window.radii[0] ?? 0, window.radii[window.radii.length - 1] ?? 0]) {
+      expect(windowWave(window.profile(radius), 0)).toBeLessThan(1e-3 * windowWave(window.profile(0.128), 0));
+    }
   });
 });
