@@ -250,7 +250,7 @@ function endRows(emf: MachineResult['emf']): SheetRow[] {
     {
       label: 'End factor',
       value: `${figure(factor)}${emf.end_corrected ? '' : ' (off: not applied)'}`,
-      note: `± ${percent(band, 2)} for what its model leaves out`,
+      note: `± ${percent(band, 2)}, its model`,
     },
     { label: 'End factor, legs', value: `${figure(legs)}, straight legs over the magnets alone` },
   ];
@@ -336,7 +336,7 @@ function inductanceRows({
   return [
     { label: 'Phase inductance', value: `${henry(phase)}, self less mutual`, note: meshError(error) },
     { label: '  by its legs', value: `${henry(slices_H)}, from the slices` },
-    { label: '  by its end turns', value: henry(end_turns_H), note: `± ${henry(end_turns_band_H, 2)} for their model` },
+    { label: '  by its end turns', value: henry(end_turns_H), note: `± ${henry(end_turns_band_H, 2)}, their model` },
     { label: 'Self, mutual', value: `${henry(self)}, ${henry(mutual)}` },
   ];
 }

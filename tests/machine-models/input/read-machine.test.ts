@@ -125,7 +125,6 @@ test('what only leaves figures out gives one warning for each key', () => {
   expect([...keys].sort()).toEqual([
     'limits',
     'measured',
-    'model.end_correction',
     'operation.cable',
     'operation.cooling',
     'operation.drag',
@@ -149,9 +148,9 @@ test.each([
   expect(readHut(`operation.load=${load}`).warnings.map(({ key }) => key)).toContain('operation.load');
 });
 
-test('a machine without a load or limits is complete, and nothing warns but the end correction', () => {
+test('a machine without a load or limits is complete, and nothing warns', () => {
   const { text } = edit(HUT.slice(HUT.indexOf('  load:'), HUT.indexOf('model:')), '');
-  expect(readText(text).warnings.map(({ key }) => key)).toEqual(['model.end_correction']);
+  expect(readText(text).warnings).toEqual([]);
 });
 
 test('all faults of a file come at once, each in its place, in the order of the text', () => {

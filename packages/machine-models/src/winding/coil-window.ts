@@ -90,7 +90,7 @@ function overlappedWindow(
 }
 
 /** Pieces of the profile where it is round. */
-const PIECES = 24;
+const PIECES = 60;
 
 /**
  * Coils side by side: the turns lie round the opening, evenly from 0 to the leg's width outside it, with round corners
