@@ -62,7 +62,8 @@ export function hutHydro(): Machine & { readonly winding: Concentrated } {
       paths: 1,
       temperature: 90,
     },
-    operation: { speedRpm: 420, overspeedRpm: 756, ambient: 15, cold: -10 },
+    operation: { speedRpm: 420, overspeedRpm: 756, ambient: 15, cold: -10, cableResistance: 0 },
+    limits: {},
     model: { slices: simpson(0.128, 0.055), auto: false, accuracy: 0.002, endCorrection: false },
   };
 }

@@ -10,7 +10,36 @@ export interface Machine {
   readonly rotor: Rotor;
   readonly winding: Winding;
   readonly operation: Operation;
+  readonly limits: Limits;
+  readonly prices?: Prices;
+  readonly measured?: Measured;
   readonly model: Model;
+}
+
+/** What must not be passed. */
+export interface Limits {
+  /** Highest DC voltage, V. */
+  readonly controllerVoltage?: number;
+  /** degC. */
+  readonly windingTemperature?: number;
+}
+
+/** Per kilogram. */
+export interface Prices {
+  readonly currency: string;
+  readonly magnets?: number;
+  readonly copper?: number;
+  readonly steel?: number;
+}
+
+/** What a bench test gave; replaces the computed figure. */
+export interface Measured {
+  /** e = sum peak_n sin(n theta) at the speed; it scales with speed. */
+  readonly phaseEmf?: { readonly speedRpm: number; readonly order: readonly number[]; readonly peak: readonly number[] };
+  /** At the temperature of the winding, ohm. */
+  readonly phaseResistance?: number;
+  /** Self less mutual, H. */
+  readonly phaseInductance?: number;
 }
 
 export type LibraryMaterial =
@@ -147,7 +176,40 @@ export interface Operation {
   /** degC. */
   readonly ambient: number;
   readonly cold?: number;
+  readonly load?: Load;
+  /** Of one conductor from the machine to the bridge or load, at 20 degC, ohm; 0 without a cable. */
+  readonly cableResistance: number;
+  /** Sound defaults are taken where it is not given. */
+  readonly drag?: Drag;
+  readonly cooling?: Cooling;
+  readonly primeMover?: PrimeMover;
 }
+
+/** What the machine works into. */
+export type Load =
+  /** Diode bridge on a stiff DC voltage (V) or a resistance (ohm); `diodeDrop` of one diode, of which two conduct at a time. */
+  | { readonly kind: 'bridge'; readonly voltage: number; readonly diodeDrop: number }
+  | { readonly kind: 'bridge'; readonly resistance: number; readonly diodeDrop: number }
+  /** Ohm per phase, in star. */
+  | { readonly kind: 'resistor'; readonly resistance: number }
+  /** Sinusoidal current in phase with the EMF, rms per phase, A. */
+  | { readonly kind: 'drive'; readonly current: number };
+
+/** Torque against turning:  bearing + windage w^2,  Nm and Nm s^2. */
+export interface Drag {
+  readonly bearing: number;
+  readonly windage: number;
+}
+
+/** Speed of the air along the winding (m/s), or the heat transfer coefficient itself (W/(m^2 K)). */
+export type Cooling = { readonly airSpeed: number } | { readonly h: number };
+
+/** Power offered at the shaft against speed. */
+export type PrimeMover = {
+  readonly kind: 'table';
+  /** Rising speeds, rpm, and powers, W. */
+  readonly points: readonly (readonly [rpm: number, watt: number])[];
+};
 
 export interface Model {
   /** Radii of the slices and their weights: integral over the magnets' radial length of f dr = sum weight f(radius). */

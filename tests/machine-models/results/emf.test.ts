@@ -61,7 +61,7 @@ function g1(): Machine {
       opening: { innerRadius: 0.08, outerRadius: 0.11, innerWidth: 2 * slope * 0.08, outerWidth: 2 * slope * 0.11 },
       thickness: 0.013,
     },
-    operation: { speedRpm: 300, ambient: 20 },
+    operation: { speedRpm: 300, ambient: 20, cableResistance: 0 },
     model: { slices: [{ radius, weight: 0.046 }], auto: false, accuracy: 0.002, endCorrection: false },
   };
 }

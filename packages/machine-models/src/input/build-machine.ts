@@ -1,5 +1,6 @@
-import type { Disc, Interpoles, LibraryMaterial, Machine, Magnets, Operation, Winding } from '../machine.js';
+import type { Disc, Interpoles, LibraryMaterial, Machine, Magnets, Winding } from '../machine.js';
 import type { SliceRadius } from '../rotor/slice-radii.js';
+import { buildLimits, buildMeasured, buildOperation, buildPrices } from './build-operation.js';
 import type { MachineFile } from './schema.js';
 import type { RotorFile } from './schema-rotor.js';
 
@@ -13,6 +14,7 @@ export interface Resolved {
 /** The machine of a file in which every check has found nothing wrong. */
 export function buildMachine(file: MachineFile, resolved: Resolved): Machine {
   const { rotor, model } = file;
+  const [prices, measured] = [buildPrices(file), buildMeasured(file)];
   return {
     name: file.name,
     materials: resolved.materials,
@@ -27,6 +29,9 @@ export function buildMachine(file: MachineFile, resolved: Resolved): Machine {
     },
     winding: resolved.winding,
     operation: buildOperation(file.operation),
+    limits: buildLimits(file),
+    ...(prices !== undefined && { prices }),
+    ...(measured !== undefined && { measured }),
     model: {
       slices: resolved.slices,
       auto: model.radii === 'auto',
@@ -76,14 +81,5 @@ function buildDisc(disc: RotorFile['disc']): Disc | undefined {
     innerRadius: inner_radius,
     outerRadius: outer_radius,
     ...(clamp_radius === undefined ? {} : { clampRadius: clamp_radius }),
-  };
-}
-
-function buildOperation({ speed, overspeed, ambient, cold }: MachineFile['operation']): Operation {
-  return {
-    speedRpm: speed,
-    ...(overspeed === undefined ? {} : { overspeedRpm: overspeed }),
-    ambient,
-    ...(cold === undefined ? {} : { cold }),
   };
 }
