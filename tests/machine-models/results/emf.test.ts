@@ -270,7 +270,7 @@ describe('a 40-pole wave winding at 3000 rpm (public notes on a coreless pulse g
         thickness: 0.009,
         legs: { innerRadius: 0.14, outerRadius: 0.18 },
       },
-      operation: { speedRpm: 3000, ambient: 20 },
+      operation: { speedRpm: 3000, ambient: 20, cableResistance: 0 },
       model: { ...base.model, slices: simpson(0.16, 0.04) },
     };
     const volts = describeEmf(machine, closedFormSlices(machine)).phase.fundamental_rms_V;
