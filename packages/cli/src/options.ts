@@ -14,7 +14,7 @@ export interface CommonOptions {
 export function addCommonOptions(command: Command): Command {
   return command
     .addOption(
-      new Option('--set <KEY=VALUE>', 'set a value of the file, for example rotor.gap=18mm; may be repeated')
+      new Option('--set <KEY=VALUE>', 'set a value of the file, for example operation.speed=380rpm; may be repeated')
         .argParser(addSetting)
         .default([], 'none'),
     )
@@ -26,7 +26,7 @@ export function addCommonOptions(command: Command): Command {
 
 function addSetting(text: string, before: readonly Setting[]): readonly Setting[] {
   const split = text.indexOf('=');
-  if (split < 1) throw new InvalidArgumentError('Give it as KEY=VALUE, for example rotor.gap=18mm.');
+  if (split < 1) throw new InvalidArgumentError('Give it as KEY=VALUE, for example operation.speed=380rpm.');
   return [...before, { key: text.slice(0, split).trim(), value: text.slice(split + 1).trim() }];
 }
 

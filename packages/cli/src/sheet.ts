@@ -138,6 +138,9 @@ function wireText(wire: Machine['winding']['wire']): string {
   return `${wire.strands} ${wire.strands === 1 ? 'strand' : 'strands in hand'} of ${strand}, ${copper}${enamel}`;
 }
 
+/** Electrical degrees between neighbouring phases of one star. */
+const APART = { 2: 90, 3: 120, 5: 72, 6: 120 } as const;
+
 function slicesGroup(machine: Machine, result: MachineResult): SheetGroup {
   const { slices, effective_B: effective } = result;
   const column = (name: string, unit: string) => ({ name, unit });
@@ -188,7 +191,7 @@ function slicesGroup(machine: Machine, result: MachineResult): SheetGroup {
     },
     {
       label: 'Third harmonic',
-      value: `${percent(effective.third_share_phase)} of the flux a leg cuts, ${percent(effective.third_share_line)} of leg less leg 120 deg on`,
+      value: `${percent(effective.third_share_phase)} of the flux a leg cuts, ${percent(effective.third_share_line)} of leg less leg ${APART[machine.winding.phases]} deg on`,
     },
     ...mesh,
   ];
@@ -234,6 +237,11 @@ function emfGroup({ emf, winding }: MachineResult): SheetGroup {
       note: meshError(emf.rectified_mean_V_rel_err),
     },
   ];
+  if (emf.end_corrected && emf.end_factor_band_rel !== undefined) {
+    const all = emf.end_factor_band_rel + emf.phase.rms_V_rel_err;
+    const value = `${figure(emf.phase.rms_V, 3)} V phase, ${figure(emf.line.rms_V, 3)} V line, rms`;
+    rows.push({ label: 'All told', value, note: `± ${percent(all, 2)}, mesh and end factor` });
+  }
   return {
     heading: 'EMF with no load',
     blocks: [rowsBlock(rows), { kind: 'table', ...harmonicsTable(emf, winding) }],
@@ -243,7 +251,7 @@ function emfGroup({ emf, winding }: MachineResult): SheetGroup {
 /** What the third dimension does to the EMF, and the EMF without it. */
 function endRows(emf: MachineResult['emf']): SheetRow[] {
   const alone = `${figure(emf.slices_alone.phase_rms_V)} V, phase rms`;
-  const { end_factor: factor, end_factor_band: band = 0, end_factor_legs: legs = 1 } = emf;
+  const { end_factor: factor, end_factor_band_rel: band = 0, end_factor_legs: legs = 1 } = emf;
   if (factor === undefined) return [];
   return [
     { label: 'Slices alone', value: alone },
@@ -271,7 +279,9 @@ function harmonicsTable(emf: MachineResult['emf'], winding: MachineResult['windi
     const bound = value * (at(order, harmonic_rms_V_rel_err, n) ?? 0);
     const sign = bound > value ? '<' : '';
     const told = Math.max(value, bound);
-    return [sign + told.toFixed(3), sign + ((100 * told) / fundamental_rms_V).toFixed(2)];
+    const shown = (figure: number, digits: number): string =>
+      sign + (sign === '' ? figure : Math.ceil(figure * 10 ** digits) / 10 ** digits).toFixed(digits); // no '<0.000'
+    return [shown(told, 3), shown((100 * told) / fundamental_rms_V, 2)];
   };
   const orders = tellingOrders(emf);
   return {

@@ -78,7 +78,7 @@ export function findAll(machine: Machine, { slices, refined }: SolvedSlices): Fi
   return {
     slices: answers,
     refined,
-    endFactor: computeEndFactor(machine),
+    endFactor: computeEndFactor(machine, answers[Math.floor(answers.length / 2)]?.discB),
     inductance: solved ? computeInductance(machine, slices) : undefined,
   };
 }

@@ -4,6 +4,8 @@ import type { GapModel } from './gap-model.js';
 import { gapModel } from './gap-model.js';
 import type { Linkage } from './linkage.js';
 import { COARSE, FINE, measureLinkage } from './linkage.js';
+import type { Mirrors } from './plate-mirror.js';
+import { plateMirrors } from './plate-mirror.js';
 
 /** What the third dimension makes of the slices' EMF. */
 export interface EndFactor {
@@ -20,27 +22,60 @@ export interface EndFactor {
 
 /**
  * The end factor: linkage of one coil in three dimensions over that of the slices, both under the same assumptions,
- * recoil 1 and steel of endless permeability, so that what these leave out nearly cancels.
+ * recoil 1 and steel of endless permeability or none, so that what these leave out nearly cancels.
  *
  * Three dimensions: all magnets at their real places round the shaft as evenly magnetised bodies, the field of their
  * charged faces in closed form, steel by images in endless planes; the coil with all its turns (`coilWindow`). Slices:
  * the unrolled machine at each radius, straight legs along the magnets' radial length (`measureLinkage`). In steel
  * discs interpoles count as deep as the magnets at most.
  *
- * Curvature is in it, saturation is not. The other orders of the EMF take the same factor.
+ * Steel that is thin, saturated or of low permeability mirrors the field by a share only (`plateMirrors`): the factor
+ * then lies so far between those with planes and without.
+ *
+ * Curvature is in it. The other orders of the EMF take the same factor.
+ *
+ * @param discB  of the slices, T: how far the discs saturate
  */
-export function computeEndFactor(machine: Machine): EndFactor {
+export function computeEndFactor(machine: Machine, discB?: number): EndFactor {
   const model = gapModel(machine);
   const fine = measureLinkage(machine, model, FINE);
   const coarse = measureLinkage(machine, model, COARSE);
   const left = leftOut(machine, model, fine, factorOf(coarse));
+  const leaking = leakage(machine, model, plateMirrors(machine, discB), coarse);
   return {
-    endFactor: factorOf(fine),
-    endFactorLegs: fine.legs / fine.plane,
-    band: left.rims + left.recoil + left.interpoles + left.coil,
+    endFactor: factorOf(fine) * (1 + leaking.whole),
+    endFactorLegs: (fine.legs / fine.plane) * (1 + leaking.legs),
+    band: left.rims + left.recoil + left.interpoles + left.coil + leaking.band,
     relErr: Math.abs(factorOf(coarse) / factorOf(fine) - 1) + SUMMATION,
     warnings: warningsOf(machine, model, fine, left),
   };
+}
+
+/** What imperfect mirrors change of the factors, relative, and the band that this leaves. */
+interface Leakage {
+  readonly whole: number;
+  readonly legs: number;
+  readonly band: number;
+}
+
+/** Plates that mirror more than all but this share of the field are taken to mirror all of it. */
+const PERFECT = 0.01;
+
+function leakage(machine: Machine, model: GapModel, mirrors: Mirrors, coarse: Linkage): Leakage {
+  const missing = [
+    { lost: model.behind === undefined ? 0 : 1 - mirrors.disc, without: { ...model, behind: undefined } },
+    { lost: machine.rotor.keeper === undefined ? 0 : 1 - mirrors.keeper, without: { ...model, facing: undefined } },
+  ].filter(({ lost }) => lost > PERFECT);
+  let [whole, legs, band] = [0, 0, 0];
+  for (const { lost, without } of missing) {
+    const bare = measureLinkage(machine, without, COARSE);
+    const change = factorOf(bare) / factorOf(coarse) - 1;
+    whole += lost * change;
+    legs += lost * (bare.legs / bare.plane / (coarse.legs / coarse.plane) - 1);
+    // Halfway between plane and nothing the share itself is least certain.
+    band += Math.min(lost, 1 - lost) * Math.abs(change);
+  }
+  return { whole, legs, band };
 }
 
 const factorOf = ({ whole, plane }: Linkage): number => whole / plane;

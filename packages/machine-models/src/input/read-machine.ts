@@ -80,7 +80,7 @@ function judge(file: MachineFile, options: ReadOptions, report: OpenReport): Mac
   const winding = resolveWinding(file.winding, around);
   checkWinding(file.winding, winding, around, report);
   checkLayers(rotor, magnets, winding, report);
-  const slices = chooseSlices(model.radii, magnets, report);
+  const slices = chooseSlices(model, magnets, report);
   if (report.faults().length > 0) return undefined;
   return buildMachine(file, { materials, winding, slices });
 }

@@ -43,7 +43,8 @@ const countOrRadii: Reader<number | readonly number[]> = (value) =>
   (Array.isArray(value) ? sliceRadii : sliceCount)(value);
 
 const model = group({
-  radii: usually<'auto' | number | readonly number[]>(3, orWord('auto', countOrRadii)),
+  /** 3 where it is not said, auto for round magnets. */
+  radii: optional<'auto' | number | readonly number[]>(orWord('auto', countOrRadii)),
   accuracy: usually(
     0.002,
     quantity('ratio', { from: '0.001 %', to: '20 %' }, 'the wanted relative error, for example 0.2 %'),

@@ -164,7 +164,7 @@ export function describeEmf(machine: Machine, slices: readonly SliceAnswer[], en
     ...(endFactor !== undefined && {
       end_factor: endFactor.endFactor,
       end_factor_rel_err: endFactor.relErr,
-      end_factor_band: endFactor.band,
+      end_factor_band_rel: endFactor.band,
       end_factor_legs: endFactor.endFactorLegs,
     }),
     end_corrected: machine.model.endCorrection && endFactor !== undefined,

@@ -109,7 +109,7 @@ export interface EmfResult {
   readonly end_factor?: number;
   readonly end_factor_rel_err?: number;
   /** Half width, relative, of the band for what its model leaves out. */
-  readonly end_factor_band?: number;
+  readonly end_factor_band_rel?: number;
   /** The same for straight legs over the magnets' radial length alone. */
   readonly end_factor_legs?: number;
   /** The figures here include the end factor. */
