@@ -12,14 +12,14 @@ export const machineEngine: Engine = {
   async solve(machine, options) {
     const steps = sliceSteps(machine);
     for (let count = 0; ; count++) {
-      await new Promise((resolve) => setImmediate(resolve)); // lets an interruption be heard between slices
-      stopIfInterrupted(options.signal);
+      await hearInterruption(options.signal);
       const step = steps.next();
       if (!step.done) {
         options.onSlice(step.value.answer, count);
         continue;
       }
       const findings = findAll(machine, step.value);
+      await hearInterruption(options.signal);
       const stamp = { version: options.version, inputSha256: options.inputSha256 };
       return {
         result: describeMachine(machine, findings, options.warnings, stamp),
@@ -29,6 +29,12 @@ export const machineEngine: Engine = {
     }
   },
 };
+
+/** Between slices and after the last: whatever runs in one go hears nothing. */
+async function hearInterruption(signal: AbortSignal): Promise<void> {
+  await new Promise((resolve) => setImmediate(resolve));
+  stopIfInterrupted(signal);
+}
 
 /** Air shown behind a disc, in pole pitches; there is more, but nothing happens in it. */
 const airShown = 0.35;

@@ -80,9 +80,10 @@ describe('six phases: two stars', () => {
 
 describe('held against the outside', () => {
   test('measured pulse generator: right order of magnitude', () => {
-    // A 40-pole wave-wound machine, one phase a stator, measured 90.02, 84.56 and 91.02 microhenry (project's check values,
-    // K1). Ten conductors a leg, 7.6 mm wide in ten layers of 0.9 mm, 140 to 180 mm. Missing: gap (12 mm taken), steel behind
-    // the magnets, which differs between outer and inner rotors; and its ends run one way round in waves where coils go to and fro.
+    // A 40-pole wave-wound machine, one phase a stator, measured 90.02, 84.56 and 91.02 microhenry (see
+    // `built-machines.test.ts`). Ten conductors a leg, 7.6 mm wide in ten layers of 0.9 mm, 140 to 180 mm. Missing: gap (12 mm
+    // taken), steel behind the magnets, which differs between outer and inner rotors; and its ends run one way round in waves
+    // where coils go to and fro.
     const base = overlappedHydro();
     const magnets = { ...base.rotor.magnets, width: 0.01, length: 0.04, thickness: 0.005, meanRadius: 0.16 } as const;
     const of = (disc: Machine['rotor']['disc']) => {

@@ -144,3 +144,103 @@ describe('layers and slots too thin to be meshed', () => {
 test('magnets too hot to keep any coercivity are refused', () => {
   expect(faultsOf(() => readHut('rotor.magnets.temperature=200 degC')).join()).toMatch(/leaves no coercivity/);
 });
+
+describe('round magnets', () => {
+  const round = (diameter: string, meanRadius = '128 mm') =>
+    `rotor.magnets={shape: round, diameter: ${diameter}, thickness: 12 mm, mean_radius: ${meanRadius}, material: N42}`;
+
+  test('that overlap when unrolled are told with what would do, and that does', () => {
+    // 2 x 128 mm sin(atan(pi/16)) = 49.32 mm
+    const [fault] = faultsOf(() => readHut(round('49.5 mm'), 'model.radii=auto'));
+    expect(fault).toContain('49.5 mm across, but unrolled there is room for no more than 49.32 mm');
+    const [, diameter, radius] = /give at most ([\d.]+) mm, or a mean_radius of at least ([\d.]+) mm/.exec(fault) ?? [];
+    expect(() => readHut(round(`${diameter} mm`), 'model.radii=auto')).not.toThrow();
+    expect(() => readHut(round('49.3 mm'), 'model.radii=auto')).not.toThrow();
+    const wider = readWarned(round('49.5 mm', `${radius} mm`), 'rotor.disc.outer_radius=200 mm', 'model.radii=auto');
+    expect(wider).not.toContain('overlap');
+  });
+});
+
+/** Faults and warnings in one. */
+function readWarned(...settings: readonly string[]): string {
+  try {
+    return warningsOf(...settings);
+  } catch (error) {
+    return String(error);
+  }
+}
+
+describe('Halbach arrays', () => {
+  test('are sectors that fill the pole pitch', () => {
+    expect(faultsOf(() => readHut('rotor.magnets.segments=2'))[0]).toContain(
+      'the pieces of a Halbach array are sectors',
+    );
+    const array =
+      'rotor.magnets={shape: sector, segments: 4, arc: 0.5, length: 55 mm, thickness: 12 mm, mean_radius: 128 mm, material: N42}';
+    expect(readHut(array).machine.rotor.magnets).toMatchObject({ arc: 1, segments: 4 });
+    expect(faultsOf(() => readHut(array, 'rotor.interpoles={depth: 12 mm, material: N42}'))[0]).toContain(
+      'a Halbach array fills the pole pitch',
+    );
+  });
+});
+
+describe('interpoles', () => {
+  const between = (parts: string) => `rotor.interpoles={material: N42, ${parts}}`;
+
+  test('through the disc, in words or as deep as magnets and disc together', () => {
+    const of = (...settings: readonly string[]) => readHut(...settings).machine.rotor.interpoles;
+    expect(of(between('depth: through'))).toMatchObject({ width: 'fill', depth: 0.022, through: true });
+    expect(of(between('depth: 22 mm'))).toMatchObject({ through: true });
+    expect(of(between('depth: 21 mm'))).toMatchObject({ through: false });
+    // 1 mm + 0.7 mm is more than 1.7 mm by the rounding of their fractions.
+    const thin = ['rotor.magnets.thickness=1 mm', 'rotor.disc.thickness=0.7 mm'];
+    expect(of(...thin, between('depth: 1.7 mm'))).toMatchObject({ through: true });
+  });
+
+  test.each([
+    [
+      ['depth: 23 mm'],
+      'rotor.interpoles.depth: magnets and disc are 22 mm thick together, got 23 mm; give at most 22 mm',
+    ],
+    [['depth: 12 mm, width: 12 mm'], 'rotor.interpoles.width: must be at most the 11.47 mm between the main magnets'],
+    [['depth: 12.01 mm'], 'the step to the back of the main magnets of 0.01 mm is too thin to be meshed'],
+    [['depth: 21.99 mm'], 'the disc behind an interpole of 0.01 mm is too thin to be meshed'],
+    [['depth: 12 mm', 'rotor.magnets.width=39.47841760435743 mm'], 'rotor.interpoles: there is no room between'],
+    [['depth: through', 'rotor.disc={material: none}'], 'rotor.interpoles.depth: there is no disc to go through'],
+    [['depth: 13 mm', 'rotor.disc={material: none}'], "must be at most the magnets' 12 mm where there is no disc"],
+  ])('%j', ([parts, ...settings], message) => {
+    expect(faultsOf(() => readHut(between(parts), ...settings)).join('\n')).toContain(message);
+  });
+
+  test('their material is judged at the temperature of the magnets, as that of the main ones', () => {
+    const hot = 'rotor.magnets.temperature=150 degC';
+    const own = (parts: string) => `materials.own={kind: magnet, remanence: 1.2 T, ${parts}}`;
+    const interpoles = 'rotor.interpoles={depth: 12 mm, material: own}';
+    expect(faultsOf(() => readHut(hot, own('remanence_slope: -1 %/K'), interpoles)).join()).toContain(
+      'rotor.interpoles.material: at 150 degC the slope of -1 %/K leaves no remanence',
+    );
+    expect(warningsOf(hot, own('highest_temperature: 80 degC'), interpoles)).toMatch(
+      /rotor\.interpoles\.material: own: 150 degC is above the usual limit of 80 degC[\s\S]*materials\.own\.remanence_slope: not given/,
+    );
+    expect(faultsOf(() => readHut('rotor.interpoles={depth: 12 mm, material: DC01}'))[0]).toContain(
+      'rotor.interpoles.material: must be a magnet material, but DC01 is of kind steel-curve',
+    );
+    expect(warningsOf(between('depth: 12 mm').replace('N42', 'magnet_42'))).not.toContain('interpoles');
+  });
+});
+
+describe('a keeper', () => {
+  test('is as the disc, and has to be described where there is none', () => {
+    const { keeper } = readHut('rotor.arrangement=keeper').machine.rotor;
+    expect(keeper).toEqual({ material: 'AISI 1008', thickness: 0.01 });
+    const none = ['rotor.arrangement=keeper', 'rotor.disc={material: none}'];
+    expect(faultsOf(() => readHut(...none)).join('\n')).toMatch(
+      /the keeper's material is missing[\s\S]*thickness is missing/,
+    );
+    expect(faultsOf(() => readHut(...none, 'rotor.keeper={thickness: 8 mm}')).join('\n')).toContain(
+      "rotor.keeper.material: the keeper's material is missing",
+    );
+    const own = 'rotor.keeper={material: DC01, thickness: 8 mm}';
+    expect(readHut(...none, own).machine.rotor.keeper).toEqual({ material: 'DC01', thickness: 0.008 });
+  });
+});

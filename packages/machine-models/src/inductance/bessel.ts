@@ -10,19 +10,25 @@ export function besselOrders(x: number, out: Float64Array): void {
     return;
   }
   const start = 2 * Math.ceil((x + 8 * Math.cbrt(x) + 24) / 2);
-  let [above, here, sum] = [0, 1e-250, 0];
+  const last = Math.min(out.length - 1, start);
+  const slope = 2 / x;
+  let above = 0;
+  let here = 1e-250;
+  let sum = 0;
   for (let m = start; m > 0; m--) {
-    if (m < out.length) out[m] = here;
+    if (m <= last) out[m] = here;
     if (m % 2 === 0) sum += 2 * here;
-    [above, here] = [here, ((2 * m) / x) * here - above];
+    const below = m * slope * here - above;
+    above = here;
+    here = below;
     if (Math.abs(here) > 1e200) {
       above *= 1e-200;
       here *= 1e-200;
       sum *= 1e-200;
-      for (let i = m; i < Math.min(out.length, start + 1); i++) out[i] *= 1e-200;
+      for (let i = m; i <= last; i++) out[i] *= 1e-200;
     }
   }
   out[0] = here;
-  sum += here;
-  for (let m = 0; m < Math.min(out.length, start + 1); m++) out[m] /= sum;
+  const scale = 1 / (sum + here);
+  for (let m = 0; m <= last; m++) out[m] *= scale;
 }

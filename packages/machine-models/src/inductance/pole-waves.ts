@@ -44,7 +44,7 @@ export interface PoleWaves {
 }
 
 /** @throws Error for a slice that is not cut along the magnet's axis */
-export function buildPoleWaves({ field, pole }: SolvedSlice): PoleWaves {
+export function buildPoleWaves({ field, pole }: Pick<SolvedSlice, 'field' | 'pole'>): PoleWaves {
   if (!pole.cuts.magnetAxis) throw new Error('waves are solved on half a pole, from the axis of a magnet on');
   const { mesh } = field;
   const all = everyNode(mesh);

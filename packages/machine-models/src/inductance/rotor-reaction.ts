@@ -45,7 +45,7 @@ export function rotorReactions(solved: SolvedSlice, orders: readonly number[], p
   for (let step = 0; 2 * step <= poles; step++) {
     const which = orders.flatMap((order, k) => (fold(order, poles).step === step ? [k] : []));
     if (which.length === 0) continue;
-    const phase = (2 * Math.PI * step) / poles; // exactly pi for half a turn
+    const phase = Math.PI * ((2 * step) / poles); // exactly pi for half a turn
     const factored = factorWaves(waves, phase, reuse);
     reuse = factored;
     const some = which.map((k) => sources[k].parts);

@@ -1,6 +1,8 @@
 import type { Disc, Interpoles, LibraryMaterial, Machine, Magnets, Winding } from '../machine.js';
 import type { SliceRadius } from '../rotor/slice-radii.js';
 import { buildLimits, buildMeasured, buildOperation, buildPrices } from './build-operation.js';
+import { radiiOf } from './choose-slices.js';
+import { HAIR } from './format-figure.js';
 import type { MachineFile } from './schema.js';
 import type { RotorFile } from './schema-rotor.js';
 
@@ -34,7 +36,7 @@ export function buildMachine(file: MachineFile, resolved: Resolved): Machine {
     ...(measured !== undefined && { measured }),
     model: {
       slices: resolved.slices,
-      auto: model.radii === 'auto',
+      auto: radiiOf(model, rotor.magnets) === 'auto',
       accuracy: model.accuracy,
       endCorrection: model.end_correction === 'on',
     },
@@ -69,7 +71,7 @@ function buildInterpoles({ interpoles, magnets, disc }: RotorFile): Interpoles |
   const { width, depth, material } = interpoles;
   const whole = magnets.thickness + (disc.thickness ?? 0);
   const reach = depth === 'through' ? whole : depth;
-  return { width, depth: reach, through: disc.material !== 'none' && reach >= whole, material };
+  return { width, depth: reach, through: disc.material !== 'none' && reach >= whole - HAIR, material };
 }
 
 function buildDisc(disc: RotorFile['disc']): Disc | undefined {

@@ -1,6 +1,5 @@
-import type { LibraryMaterial, Magnets } from '../machine.js';
+import type { Magnets } from '../machine.js';
 import { leastRoom } from '../rotor/interpole-shape.js';
-import { findMaterial } from './check-materials.js';
 import { atMostMillimetres, HAIR, millimetres } from './format-figure.js';
 import type { Report } from './report.js';
 import type { RotorFile } from './schema-rotor.js';
@@ -8,15 +7,9 @@ import type { RotorFile } from './schema-rotor.js';
 const PATH = ['rotor', 'interpoles'] as const;
 
 /** Whether the interpoles find room between the main magnets, and in the disc behind them. */
-export function checkInterpoles(
-  rotor: RotorFile,
-  magnets: Magnets,
-  materials: Readonly<Record<string, LibraryMaterial>>,
-  report: Report,
-): void {
+export function checkInterpoles(rotor: RotorFile, magnets: Magnets, report: Report): void {
   const { interpoles } = rotor;
   if (interpoles === undefined) return;
-  findMaterial(materials, interpoles.material, ['magnet'], 'a magnet material', [...PATH, 'material'], report);
   if (rotor.magnets.segments > 1) {
     const remedy = 'leave them out, or give segments: 1';
     report.fault(PATH, 'no-room', 'a Halbach array fills the pole pitch: there is no room between its poles', remedy);

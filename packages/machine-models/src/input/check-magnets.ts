@@ -1,5 +1,4 @@
 import type { Magnets } from '../machine.js';
-import { leastRoom } from '../rotor/interpole-shape.js';
 import { magnetLength, magnetReach } from '../rotor/magnet-shape.js';
 import { THINNEST } from './check-layers.js';
 import { atLeastMillimetres, atMostMillimetres, HAIR, millimetres } from './format-figure.js';
@@ -47,16 +46,19 @@ function checkBlocks(poles: number, magnets: Magnets & { readonly shape: 'block'
   report.fault(['rotor', 'magnets', 'width'], 'magnets-overlap', wrong, remedy);
 }
 
-/** Two round magnets touch where the line between their centres is as long as they are wide. */
+/**
+ * Two round magnets touch where the line between their centres is as long as they are wide; in the slices, cut along circles
+ * that are then unrolled, a little before: where the line y = pi r / poles, half a pole pitch at the radius r, touches the
+ * magnet's circle about y = 0, r = meanRadius.
+ */
 function checkRounds(poles: number, magnets: Magnets & { readonly shape: 'round' }, report: Report): void {
-  const apart = 2 * magnets.meanRadius * Math.sin(Math.PI / poles);
-  const { room } = leastRoom(magnets, poles); // between arcs of the circle, on which the slices go
-  if (!(magnets.diameter > apart + HAIR || room < -HAIR)) return;
+  const share = 2 * Math.sin(Math.atan(Math.PI / poles));
+  const most = magnets.meanRadius * share;
+  if (!(magnets.diameter > most + HAIR)) return;
   const wrong =
-    `neighbouring magnets overlap: ${millimetres(magnets.diameter)} across, but only ${millimetres(apart)} from centre to ` +
-    'centre';
-  const remedy = `give at most ${atMostMillimetres(0.995 * apart)}, or a mean_radius of at least ${atLeastMillimetres(
-    (1.005 * magnets.diameter) / (2 * Math.sin(Math.PI / poles)),
-  )}`;
+    `neighbouring magnets overlap: ${millimetres(magnets.diameter)} across, but unrolled there is room for no more than ` +
+    millimetres(most);
+  const meanRadius = atLeastMillimetres((1.005 * magnets.diameter) / share);
+  const remedy = `give at most ${atMostMillimetres(0.995 * most)}, or a mean_radius of at least ${meanRadius}`;
   report.fault(['rotor', 'magnets', 'diameter'], 'magnets-overlap', wrong, remedy);
 }

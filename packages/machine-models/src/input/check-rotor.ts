@@ -21,9 +21,10 @@ export function checkRotor(
     const remedy = `north and south alternate: give ${rotor.poles - 1} or ${rotor.poles + 1}`;
     report.fault(['rotor', 'poles'], 'odd-poles', `must be even, got ${rotor.poles}`, remedy);
   }
-  checkMagnetMaterial(file, materials, report);
+  checkMagnetMaterial(file, 'magnets', materials, report);
+  checkMagnetMaterial(file, 'interpoles', materials, report);
   checkMagnets(rotor, magnets, report);
-  checkInterpoles(rotor, magnets, materials, report);
+  checkInterpoles(rotor, magnets, report);
   checkDisc(rotor, magnets, report);
   if (rotor.disc.material !== 'none') {
     const path = ['rotor', 'disc', 'material'];
@@ -60,16 +61,21 @@ function checkKeeper(
   }
 }
 
+/** Main magnets and interpoles alike: the material, and what the magnets' temperature leaves of it. */
 function checkMagnetMaterial(
   file: MachineFile,
+  part: 'magnets' | 'interpoles',
   materials: Readonly<Record<string, LibraryMaterial>>,
   report: Report,
 ): void {
-  const { material: name, temperature } = file.rotor.magnets;
-  const path = ['rotor', 'magnets', 'material'];
+  const { magnets, interpoles } = file.rotor;
+  const name = part === 'magnets' ? magnets.material : interpoles?.material;
+  if (name === undefined) return;
+  const { temperature } = magnets;
+  const path = ['rotor', part, 'material'];
   const material = findMaterial(materials, name, ['magnet'], 'a magnet material', path, report);
-  if (material === undefined) return;
-  const at = ['rotor', 'magnets', 'temperature'];
+  if (material === undefined || (part === 'interpoles' && name === magnets.material)) return;
+  const at = part === 'magnets' ? ['rotor', 'magnets', 'temperature'] : path;
   const lost = lostAt(material, temperature);
   if (lost === 'remanence') {
     const wrong = `at ${figure(temperature)} degC the slope of ${figure(material.remanenceSlope * 100)} %/K leaves no remanence`;
