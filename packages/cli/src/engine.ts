@@ -22,6 +22,8 @@ export interface SliceField {
 export interface SolvedMachine {
   readonly result: MachineResult;
   readonly answers: readonly SliceAnswer[];
+  /** Of `radii: auto`: whether the leg's flux settled within the accuracy; undefined where the radii were given. */
+  readonly settled?: boolean;
   /** Worked out only when asked for: nothing but the files needs it. */
   readonly fieldOf: (index: number) => SliceField;
 }

@@ -24,6 +24,7 @@ export const machineEngine: Engine = {
       return {
         result: describeMachine(machine, findings, options.warnings, stamp),
         answers: findings.slices,
+        ...(findings.refined !== undefined && { settled: findings.refined.settled }),
         fieldOf: (index) => pictured(machine, step.value.slices[index]),
       };
     }

@@ -1,3 +1,4 @@
+import { readFileSync } from 'node:fs';
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import { InputError } from '../../../packages/fem-core/src/base/fault.js';
@@ -28,6 +29,21 @@ const VALUES = [
   ...['1', '-1', '1e308', '999999999', '1e-9', '.nan', '.inf', 'true', 'null', ' mm', ' in', ' V', ' %', ' degC'],
   ...['fill', 'fit', 'auto', 'none', 'steel', 'round', 'overlapped', 'tapered', 'delta', 'keeper'],
 ];
+
+/** Machines of other kinds: keeper, interpoles, overlapped legs, Halbach array, round magnets. */
+const OTHERS = ['lab-rig', 'canal-launch', 'orchard-cart'].map((name) =>
+  readFileSync(new URL(`../../../packages/cli/scenarios/${name}.yaml`, import.meta.url), 'utf8'),
+);
+
+test.each(OTHERS)('so is any other machine with random scraps: %#', (file) => {
+  fc.assert(
+    fc.property(scrapped(file, [...VALUES, 'through', 'N42', '2', '5', '6']), (text) => {
+      const error = readAnything(text);
+      for (const line of error?.message.split('\n') ?? []) expect(line).not.toMatch(/\p{Cc}|NaN|undefined|\[object/u);
+    }),
+    { numRuns: 150 },
+  );
+});
 
 test('the hut with random scraps in random places is a machine or an InputError with places', () => {
   fc.assert(

@@ -35,7 +35,14 @@ test('the hut reads into the values of its file, in SI units', () => {
   });
   expect(machine.winding.wire.diameter).toBeCloseTo(0.00118, 15);
   expect(machine.winding.wire.strandArea).toBeCloseTo((Math.PI / 4) * 0.00118 ** 2, 15);
-  expect(machine.operation).toEqual({ speedRpm: 420, overspeedRpm: 756, ambient: 15, cold: -10 });
+  expect(machine.operation).toEqual({
+    speedRpm: 420,
+    overspeedRpm: 756,
+    ambient: 15,
+    cold: -10,
+    load: { kind: 'bridge', voltage: 106, diodeDrop: 0.9 },
+    cableResistance: 0,
+  });
   expect(machine.model.accuracy).toBe(0.002);
   expect(machine.model.slices.map(({ radius }) => radius)).toEqual([0.1005, 0.128, 0.1555]);
   expect(machine.materials.magnet_42).toEqual({
@@ -84,7 +91,7 @@ test('the same machine as JSON reads the same', () => {
   });
   expect(machine.winding.thickness).toBeCloseTo(0.012, 15);
   expect(machine.winding.wire.strands).toBe(1);
-  expect(machine.operation).toEqual({ speedRpm: 670, ambient: 20 });
+  expect(machine.operation).toEqual({ speedRpm: 670, ambient: 20, cableResistance: 0 });
   expect(machine.model).toMatchObject({ accuracy: 0.002, endCorrection: true });
   expect(machine.model.slices).toHaveLength(3);
 });

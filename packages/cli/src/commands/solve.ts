@@ -48,7 +48,7 @@ export async function runSolve(
     writeOutputs(options.out, files, options, surroundings);
   }
   if (!options.quiet) stderr.write(`${timeLine(solved.answers, solvedMs, performance.now() - begun)}\n`);
-  return judge(machine, solved.answers, surroundings);
+  return judge(machine, solved, surroundings);
 }
 
 function progressLine(answer: SliceAnswer, index: number, machine: Machine): string {
@@ -64,7 +64,7 @@ function timeLine({ length }: readonly SliceAnswer[], solvedMs: number, totalMs:
 }
 
 /** Exit status, with a line for each slice that did not reach what was asked. */
-function judge(machine: Machine, answers: readonly SliceAnswer[], { stderr }: Surroundings): number {
+function judge(machine: Machine, { answers, settled }: SolvedMachine, { stderr }: Surroundings): number {
   const short = answers.filter(({ converged, accurate }) => !converged || !accurate);
   for (const { radius, converged, newtonSteps, residuals } of short) {
     const what = converged
@@ -75,7 +75,9 @@ function judge(machine: Machine, answers: readonly SliceAnswer[], { stderr }: Su
           .join(', ')})`;
     stderr.write(`not reached: the slice at radius ${sliceMm(radius)} mm ${what}\n`);
   }
-  return short.length === 0 ? exitStatus.done : exitStatus.notReached;
+  if (settled === false)
+    stderr.write('not reached: the flux of the leg did not settle with the finest choice of radii\n');
+  return short.length === 0 && settled !== false ? exitStatus.done : exitStatus.notReached;
 }
 
 /** Radii that a rule has chosen have many digits. */

@@ -21,6 +21,11 @@ export function checkRotor(
     const remedy = `north and south alternate: give ${rotor.poles - 1} or ${rotor.poles + 1}`;
     report.fault(['rotor', 'poles'], 'odd-poles', `must be even, got ${rotor.poles}`, remedy);
   }
+  const pitch = (2 * Math.PI * magnets.meanRadius) / rotor.poles;
+  if (rotor.gap > pitch) {
+    const text = `${millimetres(rotor.gap)} is more than a pole pitch of ${millimetres(pitch)}: hardly any field gets across`;
+    report.warn(['rotor', 'gap'], text);
+  }
   checkMagnetMaterial(file, 'magnets', materials, report);
   checkMagnetMaterial(file, 'interpoles', materials, report);
   checkMagnets(rotor, magnets, report);
@@ -88,6 +93,17 @@ function checkMagnetMaterial(
   } else {
     const hot = temperatureWarning(material, temperature);
     if (hot !== undefined) report.warn(at, `${name}: ${hot}`);
+  }
+  // The coldest start is the worst for ferrite.
+  const { cold } = file.operation;
+  const frozen = cold === undefined || cold >= temperature ? undefined : temperatureWarning(material, cold);
+  if (frozen !== undefined) report.warn(['operation', 'cold'], `${name}: ${frozen}`);
+  if (material.remanenceSlope > 0) {
+    const slope = figure(100 * material.remanenceSlope);
+    report.warn(
+      path,
+      `its remanence rises by ${slope} %/K with temperature; that of magnets falls: check the sign of the slope`,
+    );
   }
   if (material.demagnetisation !== undefined) {
     report.warn(
