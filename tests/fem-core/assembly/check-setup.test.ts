@@ -36,6 +36,28 @@ test('materials, currents and edges that cannot be are told together', () => {
   ]);
 });
 
+test('what has not the form of a setup, as plain JavaScript may hand over, is told and breaks nothing', () => {
+  const fill = (bar: unknown): unknown => ({ ...sources, materials: { ...sources.materials, bar } });
+  const bind = (side: unknown): unknown => ({ ...sources, edges: { left: side } });
+  const magnet = { kind: 'directed-magnet', recoil: 1 };
+  for (const [key, setup] of [
+    ['setup', undefined],
+    ['setup', null],
+    ['bar', fill({ kind: 'wood' })],
+    ['bar', fill({ kind: 'magnet', recoil: 1 })],
+    ['bar', fill({ ...magnet, along: 1 })],
+    ['bar', fill({ ...magnet, direction: { angle: 0 } })],
+    ['bar', fill({ kind: 'curve' })],
+    ['bar', fill({ kind: 'curve', curve: [[100, 1]] })],
+    ['edges.left', bind(null)],
+    ['edges.left', bind({ kind: 'wet' })],
+    ['edges.left', bind({ kind: 'applied' })],
+    ['edges.left', bind({ kind: 'potential', value: 1 })],
+  ]) {
+    expect(faultsOf(() => checkSetup(mesh, setup as Setup))).toEqual([`${key}: bad-form`]);
+  }
+});
+
 test('equations are not built on materials that the setup check refuses, and on all that it lets pass', () => {
   const unknowns = numberUnknowns(mesh, sources);
   const fillings: readonly Material[] = [

@@ -60,6 +60,35 @@ describe('bundled for a browser', () => {
     expect(Math.abs(a / b - 1)).toBeLessThan(1e-9);
   });
 
+  /** The answer where the host was changed before, and which of the kernels that are compiled are fused. */
+  const pullOn = (change: string): { readonly pull: number; readonly fused: readonly boolean[] } => {
+    const host = createContext({});
+    // Operations of relaxed SIMD have numbers from 0xfd 0x80 0x02 on; only the fused kernels hold one.
+    runInContext(
+      `globalThis.fused = [];
+      const { Module, validate } = WebAssembly;
+      const isFused = (bytes) => bytes.some((b, i) => b === 0xfd && (bytes[i + 1] & 0x80) !== 0 && bytes[i + 2] === 2);
+      WebAssembly.Module = function (bytes) { fused.push(isFused(bytes)); return new Module(bytes); };
+      ${change}`,
+      host,
+    );
+    runInContext(bundle, host, { timeout: 60_000 });
+    return { pull: runInContext('globalThis.pull', host), fused: runInContext('globalThis.fused', host) };
+  };
+
+  test('where relaxed SIMD is unknown, all SIMD is, or compiling is forbidden, other kernels or the plain twins serve', () => {
+    const all = pullOn('');
+    const unfused = pullOn('WebAssembly.validate = (bytes) => !isFused(bytes) && validate(bytes);');
+    const none = pullOn('WebAssembly.validate = () => false;');
+    const forbidden = pullOn(`WebAssembly.Module = function () { throw new WebAssembly.CompileError('forbidden'); };`);
+    expect(all.fused.filter((fused) => fused)).toHaveLength(1);
+    expect(unfused.fused).toEqual(all.fused.map(() => false));
+    expect(none.fused).toEqual([]);
+    for (const { pull } of [all, unfused]) expect(Math.abs(pull / EXPECTED - 1)).toBeLessThan(1e-2);
+    expect(Math.abs(all.pull / unfused.pull - 1)).toBeLessThan(1e-9);
+    for (const { pull } of [none, forbidden]) expect(pull).toBe(unfused.pull); // the twins round alike
+  });
+
   test('it asks for no file and no network', () => {
     expect(bundle).not.toMatch(/\bfetch\(|XMLHttpRequest|import\(|require\(/);
   });

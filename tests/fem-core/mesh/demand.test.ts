@@ -45,6 +45,15 @@ describe('what wishes ask for', () => {
     }
   });
 
+  test('a wish finer than coordinates can tell is counted as far as they can', () => {
+    const all64 = inDisc(1e-16, 0.3, 1);
+    for (const maxEdge of [1e-30, 1e-300]) {
+      const { wishes } = demand(drawing([], { sizeAt: [{ at: [0.37, 0.61], maxEdge }] }));
+      expect(wishes[0]).toBeGreaterThan(0.5 * all64);
+      expect(wishes[0]).toBeLessThan(2 * all64);
+    }
+  });
+
   test('far apart points add up; of two at one place the shorter counts; a region counts where it asks for less', () => {
     const at = (x: number, maxEdge = 1e-5): SizeAt => ({ at: [x, 0.5], maxEdge });
     const one = all(demand(drawing([], { sizeAt: [at(0.2)] })));

@@ -191,3 +191,17 @@ test('few triangles for the edges wanted: on average above half the area of the 
     expect(measureMesh(mesh).minAngleDeg).toBeGreaterThan(25 - 1e-9);
   }
 });
+
+test('round things that touch each other and the outline are refined: gaps that narrow to nothing ask for no more', () => {
+  const packed = [0, 1, 2, 3, 4].flatMap((i) => [0, 1, 2, 3, 4].map((j) => circle(0.1 + 0.2 * i, 0.1 + 0.2 * j, 0.1)));
+  for (const shapes of [packed, [circle(0.1, 0.5, 0.1)]]) {
+    const coarse = meshSection(drawing(shapes));
+    const fine = refineMesh(
+      coarse,
+      wishes(coarse, () => 0.05),
+      { ...LIMITS, maxTriangles: triangleCount(coarse) + 6000 },
+    );
+    expect(triangleCount(fine)).toBeGreaterThan(triangleCount(coarse));
+    checkMesh(fine, { minFreeAngleDeg: 25 });
+  }
+});

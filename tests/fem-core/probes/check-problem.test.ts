@@ -59,6 +59,20 @@ describe('what is refused without solving', () => {
     expect(faultsOf(() => solveProbes(section, setup, probes, { accuracy: 0.5, maxMeshes: 1 }))).toEqual(told);
   });
 
+  test('what has not the form of a section or of a probe, and lines of more places than can be answered', () => {
+    const none: unknown = undefined;
+    for (const solve of [checkProblem, solveProbes]) {
+      expect(faultsOf(() => solve(none as Section, setup, []))).toEqual(['section: must be an object, got nothing']);
+      expect(faultsOf(() => solve(section, setup, [none as Probe]))).toEqual([
+        'probes.0: must be an object, got undefined',
+      ]);
+      const line: Probe = { kind: 'line', name: 'l', from: [0, 0], to: [0.1, 0.1], points: 1e9 };
+      expect(faultsOf(() => solve(section, setup, [line]))).toEqual([
+        'probes.l: points must be a whole number from 1 to 1000000, got 1000000000',
+      ]);
+    }
+  });
+
   test('a corner shared is a touch, a gap is none', () => {
     const beside = (x: number): readonly string[] => {
       const regions = [box('steel', 0.02, 0.02, 0.04, 0.02), box('bar', x, 0.04, 0.02, 0.01)];

@@ -18,10 +18,15 @@ const CONDITIONS: readonly EdgeCondition['kind'][] = [
 
 /**
  * Checks what the types do not: plain JavaScript may hand over anything, and names may be mistyped.
- * @throws InputError with everything wrong: regions without a material, materials that cannot be, currents of regions that do not exist or cover nothing, numbers that are not finite,
- * unknown edge conditions, directions that do not come back to themselves
+ * @throws InputError with everything wrong: regions without a material, materials that cannot be, currents of regions that do
+ * not exist or cover nothing, numbers that are not finite, unknown edge conditions, directions that do not come back to
+ * themselves
  */
 export function checkSetup(mesh: Mesh, setup: Setup): void {
+  if (typeof setup !== 'object' || setup === null) {
+    const wrong = `must be an object, got ${String(setup)}`;
+    throw new InputError([{ code: 'bad-form', key: 'setup', wrong, remedy: 'give materials by region' }]);
+  }
   const faults = [
     ...keyFaults(setup),
     ...materialFaults(mesh, setup),
@@ -76,9 +81,16 @@ function* currentFaults(mesh: Mesh, setup: Setup): Generator<Fault> {
 
 function* edgeFaults(setup: Setup): Generator<Fault> {
   for (const [side, condition] of Object.entries(setup.edges ?? {})) {
-    if (CONDITIONS.includes(condition.kind)) continue;
-    const wrong = `is of an unknown kind, ${String(condition.kind)}`;
-    yield { code: 'bad-form', key: `edges.${side}`, wrong, remedy: `kinds are: ${CONDITIONS.join(', ')}` };
+    const key = `edges.${side}`;
+    const kind: unknown = condition?.kind;
+    if (!CONDITIONS.some((known) => known === kind)) {
+      const wrong = `is of an unknown kind, ${String(kind)}`;
+      yield { code: 'bad-form', key, wrong, remedy: `kinds are: ${CONDITIONS.join(', ')}` };
+    } else if (condition.kind === 'applied' && condition.field?.length !== 2) {
+      yield { code: 'bad-form', key, wrong: 'has no field of two components', remedy: 'give [Bx, By] in tesla' };
+    } else if (condition.kind === 'potential' && typeof condition.value !== 'function') {
+      yield { code: 'bad-form', key, wrong: 'has no function of place', remedy: 'give A in Wb/m by (x, y) in metres' };
+    }
   }
 }
 
@@ -91,6 +103,11 @@ function* materialFaults(mesh: Mesh, setup: Setup): Generator<Fault> {
       yield { code: 'no-material', key, wrong: 'has no material', remedy: 'name it in the setup' };
       continue;
     }
+    const wrongForm = formFault(material);
+    if (wrongForm !== undefined) {
+      yield { code: 'bad-form', key, wrong: wrongForm, remedy: 'see `Material` for what each kind wants' };
+      continue;
+    }
     const { positive, others } = figuresOf(material);
     if (!(positive > 0) || ![positive, ...others].every(Number.isFinite)) {
       const wrong = `is filled with ${material.kind} material of figures ${[positive, ...others].join(', ')}`;
@@ -99,6 +116,26 @@ function* materialFaults(mesh: Mesh, setup: Setup): Generator<Fault> {
       const wrong = `turns ${String(material.direction.turns)} times round its centre, and so has a seam`;
       yield { code: 'bad-form', key, wrong, remedy: 'give a whole number of turns' };
     }
+  }
+}
+
+/** What of its kind a material lacks. */
+function formFault(material: Material): string | undefined {
+  const isCurve = (curve: unknown): boolean =>
+    typeof curve === 'object' && curve !== null && 'energy' in curve && ArrayBuffer.isView(curve.energy);
+  switch (material.kind) {
+    case 'linear':
+      return undefined;
+    case 'magnet':
+      return material.remanence?.length === 2 ? undefined : 'is a magnet without a remanence of two components';
+    case 'directed-magnet':
+      if (typeof material.direction !== 'object') return 'is a magnet without a direction';
+      if (typeof material.along === 'number' || isCurve(material.along)) return undefined;
+      return 'is a magnet with neither a remanence nor a built curve along its direction';
+    case 'curve':
+      return isCurve(material.curve) ? undefined : 'is of a curve that is not built';
+    default:
+      return `is filled with an unknown kind of material, ${String((material satisfies never as Material).kind)}`;
   }
 }
 

@@ -32,11 +32,20 @@ const PAGE = 65_536;
 /** Pages a 32-bit address reaches. */
 const MOST = 65_536;
 
-/** Compiles kernels; undefined where the host has no WebAssembly, or none with SIMD: then the plain twins serve. */
+/**
+ * Compiles kernels; undefined where the host has no WebAssembly, or none with what they use, such as SIMD, or where it lets
+ * none be compiled: pages may forbid it (Content Security Policy), and older browsers compile little of it on the page
+ * itself. Then the plain twins serve.
+ */
 export function compileKernels(base64: string): CompiledKernels | undefined {
   if (typeof WebAssembly === 'undefined') return undefined;
   const bytes = decodeBase64(base64);
-  return WebAssembly.validate(bytes) ? { module: new WebAssembly.Module(bytes) } : undefined;
+  if (!WebAssembly.validate(bytes)) return undefined;
+  try {
+    return { module: new WebAssembly.Module(bytes) };
+  } catch {
+    return undefined; // the bytes are sound, so the host does not want them
+  }
 }
 
 /** A new instance with at least so many bytes of memory. Throws RangeError where the host cannot give them. */

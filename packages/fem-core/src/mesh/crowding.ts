@@ -14,6 +14,8 @@ interface Task {
   /** Wishes at points, beside those in `tri.size`. */
   readonly wishes: readonly SizeAt[];
   readonly limits: QualityLimits;
+  /** Gaps between lines are still empty; in a mesh they are filled, and its finest ones are told of by no width. */
+  readonly drawn: boolean;
 }
 
 /**
@@ -25,7 +27,7 @@ interface Task {
 export function* tellCrowd(task: Task, refinement: () => Steps<RefineProgress, void>): Steps<RefineProgress, void> {
   const { tri, wishes, limits } = task;
   const { byTriangle, byWish } = demandOf(tri, wishes, limits.maxTriangles);
-  const least = gapCounts(tri);
+  const least = task.drawn ? gapCounts(tri) : new Float64Array(tri.slotCount);
   for (let t = 0; t < least.length; t++) least[t] += byTriangle[t];
   if (sumOf(least) + USUAL * sumOf(byWish) > limits.maxTriangles) throw crowded(task, least, byWish);
   try {

@@ -16,8 +16,8 @@ type Corners = readonly [Point, Point, Point];
 /**
  * Triangles that a mesh with all wishes met has at least: none with edges of at most h has more area than sqrt(3)/4 h^2, so
  * there are no fewer than the integral of 4/(sqrt(3) h^2), where h is the least of what is wanted in the triangle
- * (`tri.size`) and by the points. Triangles are halved until h varies by no more than `VARIED` in them or they are as small
- * as h; each part counts, by h in its middle, for what asks for the least there.
+ * (`tri.size`) and by the points. Triangles are halved until h varies by no more than `VARIED` in them, or they are as small
+ * as h, or as coordinates can tell; each part counts, by h in its middle, for what asks for the least there.
  * @param enough  at which to stop counting
  */
 export function demandOf(tri: Triangulation, wishes: readonly SizeAt[], enough: number): Demand {
@@ -30,19 +30,19 @@ export function demandOf(tri: Triangulation, wishes: readonly SizeAt[], enough: 
       byTriangle[t] = (0.5 * doubleArea(tri, t)) / (FULL * tri.size[t] ** 2);
       continue;
     }
-    const count = (corners: Corners, candidates: readonly number[]): void => {
+    const count = (corners: Corners, candidates: readonly number[], halvings: number): void => {
       const { low, high, middle, by, near } = lengthIn(corners, candidates, wishes, tri.size[t]);
       const area = areaOf(corners);
-      if (high <= VARIED * low || area <= FULL * low ** 2) {
+      if (high <= VARIED * low || area <= FULL * low ** 2 || halvings === MOST_HALVINGS) {
         const share = area === 0 ? 0 : area / (FULL * middle ** 2);
         all += share;
         if (by < 0) byTriangle[t] += share;
         else byWish[by] += share;
         return;
       }
-      if (all < enough) for (const half of halvesOf(corners)) count(half, near);
+      if (all < enough) for (const half of halvesOf(corners)) count(half, near, halvings + 1);
     };
-    count(cornersOf(tri, t), [...wishes.keys()]);
+    count(cornersOf(tri, t), [...wishes.keys()], 0);
   }
   return { byTriangle, byWish };
 }
@@ -52,6 +52,9 @@ const FULL = Math.sqrt(3) / 4;
 
 /** Greatest over least length wanted in a part that is not halved further. */
 const VARIED = 2;
+
+/** Two halve the edges: after so many, coordinates no longer tell the corners apart. */
+const MOST_HALVINGS = 100;
 
 /** Bounds of the length wanted in a triangle, that in its middle and whose it is (-1: no point's), and the wishes that count. */
 function lengthIn(corners: Corners, candidates: readonly number[], wishes: readonly SizeAt[], size: number) {

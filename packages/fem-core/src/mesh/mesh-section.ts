@@ -27,7 +27,7 @@ export function* meshSteps(section: Section, limits: QualityLimits): Steps<Refin
   const { regionNames, maxEdges, sideNames, beyond } = graph.drawing;
   const tri = triangulateGraph(graph);
   for (let t = 0; t < tri.slotCount; t++) tri.size[t] = maxEdges[tri.region[t]] ?? Infinity;
-  yield* tellCrowd({ tri, regionNames, wishes: sizeAt, limits }, function* () {
+  yield* tellCrowd({ tri, regionNames, wishes: sizeAt, limits, drawn: true }, function* () {
     yield* refine(tri, limits);
     yield* refineTo(tri, maxEdges, sizeAt, limits);
     yield* unfold(tri, limits);
@@ -48,7 +48,7 @@ export function refineMesh(mesh: Mesh, wanted: Float64Array, limits: QualityLimi
 export function* refineMeshSteps(mesh: Mesh, wanted: Float64Array, limits: QualityLimits): Steps<RefineProgress, Mesh> {
   const { regionNames, sideNames } = mesh;
   const tri = triangulationOf(mesh, wanted);
-  yield* tellCrowd({ tri, regionNames, wishes: [], limits }, function* () {
+  yield* tellCrowd({ tri, regionNames, wishes: [], limits, drawn: false }, function* () {
     yield* refine(tri, limits);
     yield* unfold(tri, limits);
   });

@@ -3,22 +3,29 @@ import { InputError } from '../base/fault.js';
 import { regionAreas } from '../elements/areas.js';
 import { forceFault } from '../field/air-layer.js';
 import type { Field } from '../field/field.js';
+import { checkForm } from '../geometry/check-form.js';
 import type { Section } from '../geometry/section.js';
 import { BEYOND_REGION, OUTSIDE_REGION } from '../geometry/unbounded.js';
 import type { Probe } from './probe.js';
 
 /**
  * Checks what the types do not: plain JavaScript may hand over anything, and names may be mistyped.
- * @throws InputError with everything wrong, `probes.NAME` or `accuracy` as the key
+ * @throws InputError for what is no section; else with everything wrong, `probes.NAME` or `accuracy` as the key
  */
 export function checkProbes(section: Section, probes: readonly Probe[], accuracy: number): void {
+  checkForm(section);
   const regions = [section.background, ...section.regions.map(({ name }) => name), OUTSIDE_REGION, BEYOND_REGION];
   const faults: Fault[] = [];
   if (!(accuracy > 0 && accuracy < Infinity)) {
     const wrong = `must be a number above 0, got ${String(accuracy)}`;
     faults.push({ code: 'out-of-range', key: 'accuracy', wrong, remedy: 'give a share, for example 0.002' });
   }
-  for (const probe of probes) {
+  for (const [i, probe] of probes.entries()) {
+    if (typeof probe !== 'object' || probe === null) {
+      const wrong = `must be an object, got ${String(probe)}`;
+      faults.push({ code: 'bad-form', key: `probes.${i}`, wrong, remedy: 'give its kind, its name and where' });
+      continue;
+    }
     const key = `probes.${probe.name}`;
     for (const name of namesOf(probe)) {
       if (regions.includes(name)) continue;
@@ -68,11 +75,15 @@ function namesOf(probe: Probe): readonly string[] {
 /** A text handed over in place of a list would be searched letter by letter. */
 const listed = (names: readonly string[]): readonly string[] => (Array.isArray(names) ? names : [String(names)]);
 
+/** Of one line; each is an answer with its errors. */
+const MOST_POINTS = 1_000_000;
+
 function wrongNumber(probe: Probe): string | undefined {
   switch (probe.kind) {
     case 'line':
-      if (Number.isInteger(probe.points) && probe.points >= 1) return pointless(probe.from) ?? pointless(probe.to);
-      return `points must be a whole number from 1 on, got ${String(probe.points)}`;
+      if (Number.isInteger(probe.points) && probe.points >= 1 && probe.points <= MOST_POINTS)
+        return pointless(probe.from) ?? pointless(probe.to);
+      return `points must be a whole number from 1 to ${MOST_POINTS}, got ${String(probe.points)}`;
     case 'linkage':
       return Number.isFinite(probe.turns) ? undefined : `turns must be a finite number, got ${String(probe.turns)}`;
     case 'point':

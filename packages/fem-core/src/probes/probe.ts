@@ -20,7 +20,7 @@ export type Probe =
       readonly from: Point;
       /** Where it ends. */
       readonly to: Point;
-      /** Number of places, 1 or more. */
+      /** Number of places, 1 to 1,000,000. */
       readonly points: number;
     }
   /** Force and torque on regions together, see `forceOn`. */
