@@ -8,7 +8,9 @@ test.each([
   ['1 %', { accuracy: 1e-2 }],
   ['0.1 %', { accuracy: 1e-3 }],
   ['0.01 %', { accuracy: 1e-4 }],
-])(
+  ['5 % by linear elements', { accuracy: 5e-2, order: 1 }],
+  ['2 % by linear elements', { accuracy: 2e-2, order: 1 }],
+] as const)(
   'over the closed forms at %s, true errors are within their estimates, and not far below them',
   (_, options) => {
     const results = verificationCases().flatMap((given) => runCase(given, options));

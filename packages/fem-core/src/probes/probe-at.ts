@@ -40,6 +40,9 @@ const LINE_SAMPLES = 5;
  */
 const BALANCED = 0.01;
 
+/** A body that has hardly any field about it: the same, of the mean stress of the section all round the body. */
+const STRESSLESS = 1e-5;
+
 /** What there is in a section: flux between its least and its greatest A, Wb/m, and flux density, T. */
 interface Extent {
   readonly flux: number;
@@ -180,7 +183,8 @@ function forceAt({ name, on, about = [0, 0] }: Extract<Probe, { kind: 'force' }>
   const by = forceFunctionals(field, about, layer);
   const stress = stressSize(field, layer, about);
   const known = (value: number): number => (Number.isNaN(value) ? 0 : value); // of a body cut in two
-  const size = Math.max(Math.hypot(known(fx), known(fy)), BALANCED * stress.force);
+  const mean = extentOf(field).density ** 2 / (2 * MU0);
+  const size = Math.max(Math.hypot(known(fx), known(fy)), BALANCED * stress.force, STRESSLESS * mean * stress.length);
   const push = (recovered: RecoveredGradient): Float64Array => forceRemainder(field, layer, recovered);
   const twist = (recovered: RecoveredGradient): Float64Array => forceRemainder(field, layer, recovered, about);
   const bound = (value: number): { readonly size?: number } => (Number.isNaN(value) ? {} : { size });

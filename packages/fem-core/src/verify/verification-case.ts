@@ -68,6 +68,8 @@ export interface FigureResult {
 export interface RunOptions {
   /** In place of the case's own. */
   readonly accuracy?: number;
+  /** Of the elements: 1 linear, 2 quadratic (if absent). */
+  readonly order?: 1 | 2;
   /** Milliseconds since any moment; the library reads no clock of its own. */
   readonly now?: () => number;
 }
@@ -82,8 +84,9 @@ const MOST_TRIANGLES = 30_000;
 export function runCase(given: VerificationCase, options: RunOptions = {}): FigureResult[] {
   const { now = () => 0 } = options;
   const begun = now();
-  const { accuracy = given.accuracy } = options;
-  const answer = solveProbes(given.section, given.setup, given.probes, { accuracy, maxTriangles: MOST_TRIANGLES });
+  const { accuracy = given.accuracy, order = 2 } = options;
+  const limits = { accuracy, order, maxTriangles: MOST_TRIANGLES };
+  const answer = solveProbes(given.section, given.setup, given.probes, limits);
   const ms = now() - begun;
   return given.figures.map((figure) => {
     const { quantity, expected, scale = Math.abs(expected), bound = given.accuracy, slack = 0 } = figure;
