@@ -1,6 +1,6 @@
 import pc from 'picocolors';
 import { cutText, wrapText } from './plain-text.js';
-import type { Sheet, SheetBlock, SheetGroup, SheetRow, SheetTable } from './sheet.js';
+import type { Sheet, SheetBlock, SheetGroup, SheetRow, SheetTable } from './sheet-parts.js';
 
 const width = 100;
 const labelWidth = 24;

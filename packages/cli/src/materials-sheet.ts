@@ -1,7 +1,7 @@
 import type { MagnetAtResult, MaterialResult } from '@gapwright/machine-models';
 import { figure, given } from './figures.js';
 import { plainText } from './plain-text.js';
-import type { Sheet, SheetBlock, SheetRow } from './sheet.js';
+import type { Sheet, SheetBlock, SheetRow } from './sheet-parts.js';
 
 /** All figures of one material, a magnet's also by temperature. */
 export function materialSheet(

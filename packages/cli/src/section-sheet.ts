@@ -3,7 +3,7 @@ import { figure, given, givenMm, meshError } from './figures.js';
 import type { Floors } from './nought.js';
 import { isNought, ROUNDING, roundingOf } from './nought.js';
 import { cutText, plainText } from './plain-text.js';
-import type { Sheet, SheetBlock, SheetGroup, SheetRow } from './sheet.js';
+import type { Sheet, SheetBlock, SheetGroup, SheetRow } from './sheet-parts.js';
 
 /** What the command shows of a solved section. */
 export function sectionSheet(problem: SectionProblem, result: SectionResult): Sheet {

@@ -2,37 +2,8 @@ import type { Machine, MachineResult, VoltageResult } from '@gapwright/machine-m
 import { coercivityAt, remanenceAt } from '@gapwright/machine-models';
 import { figure, force, given, givenMm, henry, meshError, mm, percent, power, resistance } from './figures.js';
 import { plainText } from './plain-text.js';
-
-/** A datasheet as content, whatever it is then shown on. All texts are plain, of one line, with units. */
-export interface Sheet {
-  readonly title: string;
-  readonly groups: readonly SheetGroup[];
-  readonly warnings: readonly string[];
-  readonly cautions: readonly string[];
-}
-
-export interface SheetGroup {
-  readonly heading: string;
-  readonly blocks: readonly SheetBlock[];
-}
-
-export type SheetBlock =
-  | { readonly kind: 'rows'; readonly rows: readonly SheetRow[] }
-  | ({ readonly kind: 'table' } & SheetTable);
-
-export interface SheetRow {
-  readonly label: string;
-  readonly value: string;
-  /** What qualifies the value, for example the mesh's error. */
-  readonly note?: string;
-}
-
-export interface SheetTable {
-  /** Units stand in the head; a column with an empty unit has none. */
-  readonly columns: readonly { readonly name: string; readonly unit: string }[];
-  readonly rows: readonly (readonly string[])[];
-  readonly caption?: string;
-}
+import { costRows, mechanicalRows, serviceGroups } from './service-sheet.js';
+import type { Sheet, SheetBlock, SheetGroup, SheetRow, SheetTable } from './sheet-parts.js';
 
 /** What the commands and the report show of a solved machine. */
 export function datasheet(machine: Machine, result: MachineResult): Sheet {
@@ -44,6 +15,7 @@ export function datasheet(machine: Machine, result: MachineResult): Sheet {
       emfGroup(result),
       windingGroup(machine, result),
       meritGroup(result),
+      ...serviceGroups(result),
       mechanicalGroup(result),
     ],
     warnings: result.warnings.map(({ key, text }) => plainText(key === '' ? text : `${key}: ${text}`)),
@@ -377,7 +349,8 @@ function meritGroup({ merit }: MachineResult): SheetGroup {
   };
 }
 
-function mechanicalGroup({ mechanical, masses }: MachineResult): SheetGroup {
+function mechanicalGroup(result: MachineResult): SheetGroup {
+  const { mechanical, masses } = result;
   const mass = (label: string, value: number | undefined): SheetRow[] =>
     value === undefined ? [] : [{ label, value: `${figure(value, 3)} kg` }];
   return {
@@ -389,9 +362,12 @@ function mechanicalGroup({ mechanical, masses }: MachineResult): SheetGroup {
           value: force(mechanical.disc_pull_N),
           note: meshError(mechanical.disc_pull_N_rel_err),
         },
+        ...mechanicalRows(result),
         ...mass('Magnets', masses.magnets_kg),
         ...mass('Copper', masses.copper_kg),
         ...mass('Steel', masses.steel_kg),
+        ...mass('Resin, about', masses.resin_kg),
+        ...costRows(result),
       ]),
     ],
   };

@@ -29,6 +29,8 @@ export { describeMachine } from './results/assemble.js';
 export type {
   EmfResult,
   HarmonicsResult,
+  LoadResult,
+  LoadRow,
   MachineResult,
   SliceResult,
   VoltageResult,

@@ -35,7 +35,11 @@ export interface Prices {
 /** What a bench test gave; replaces the computed figure. */
 export interface Measured {
   /** e = sum peak_n sin(n theta) at the speed; it scales with speed. */
-  readonly phaseEmf?: { readonly speedRpm: number; readonly order: readonly number[]; readonly peak: readonly number[] };
+  readonly phaseEmf?: {
+    readonly speedRpm: number;
+    readonly order: readonly number[];
+    readonly peak: readonly number[];
+  };
   /** At the temperature of the winding, ohm. */
   readonly phaseResistance?: number;
   /** Self less mutual, H. */

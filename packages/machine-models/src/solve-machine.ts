@@ -1,8 +1,15 @@
+import { computeDemagnetisation } from './demagnetisation/demagnetisation.js';
 import { computeEndFactor } from './end-effect/end-factor.js';
+import { shortCircuitPath } from './faults/rotor-current.js';
 import { computeInductance } from './inductance/inductance.js';
+import { endShare } from './losses/end-share.js';
+import { windingField } from './losses/winding-field.js';
 import type { Machine } from './machine.js';
+import { solveApproach } from './mechanics/approach.js';
 import type { Findings } from './results/assemble.js';
+import { computeEmf, endsOf } from './results/emf.js';
 import { effectiveWave, lineWave } from './results/leg-wave.js';
+import { shortedOf } from './results/service.js';
 import type { SliceRadius } from './rotor/slice-radii.js';
 import { autoRadii, FINEST_LEVEL } from './rotor/slice-radii.js';
 import type { SliceAnswer } from './slices/slice-answer.js';
@@ -74,11 +81,22 @@ function changeOfFlux(machine: Machine, before: readonly SolvedSlice[], after: r
 /** All that `describeMachine` wants to know, from the solved slices; the fields are not needed any more. */
 export function findAll(machine: Machine, { slices, refined }: SolvedSlices): Findings {
   const answers = slices.map(({ answer }) => answer);
+  const endFactor = computeEndFactor(machine, answers[Math.floor(answers.length / 2)]?.discB);
   const solved = answers.every(({ converged }) => converged); // else there is no permeability to freeze
+  if (!solved) return { slices: answers, refined, endFactor };
+  const inductance = computeInductance(machine, slices);
+  const emf = computeEmf(machine, answers, endsOf(machine, endFactor));
+  const path = shortCircuitPath(shortedOf(machine, emf, inductance), machine.operation.speedRpm);
   return {
     slices: answers,
     refined,
-    endFactor: computeEndFactor(machine, answers[Math.floor(answers.length / 2)]?.discB),
-    inductance: solved ? computeInductance(machine, slices) : undefined,
+    endFactor,
+    inductance,
+    eddies: {
+      fields: slices.map((slice) => windingField(machine, slice)),
+      endShare: machine.model.endCorrection ? endShare(machine) : 1,
+    },
+    approach: solveApproach(machine, answers),
+    demagnetisation: computeDemagnetisation(machine, slices, path),
   };
 }

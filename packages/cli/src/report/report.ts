@@ -1,7 +1,7 @@
 import { escapeXml } from '@gapwright/fem-core/text';
 import type { MachineResult } from '@gapwright/machine-models';
 import { plainText } from '../plain-text.js';
-import type { Sheet, SheetBlock, SheetGroup, SheetRow, SheetTable } from '../sheet.js';
+import type { Sheet, SheetBlock, SheetGroup, SheetRow, SheetTable } from '../sheet-parts.js';
 import { type Chart, drawCharts } from './charts.js';
 import { pageStyle } from './page-style.js';
 

@@ -4,14 +4,14 @@ import type { MachineFile } from './schema.js';
 
 /** What is read and judged, but only leaves figures out: one warning each. */
 export function warnLeftOut(file: MachineFile, report: Report): void {
-  for (const key of ['load', 'cable', 'drag', 'cooling', 'prime_mover'] as const) {
-    if (file.operation[key] !== undefined) leftOut(['operation', key], report);
+  const { load, prime_mover: mover } = file.operation;
+  if (mover !== undefined && mover.kind !== 'table') leftOut(['operation', 'prime_mover'], report);
+  if (load !== undefined && file.winding.phases !== 3) {
+    report.warn(['operation', 'load'], 'loads are worked out for three phases; left out');
   }
-  for (const key of ['limits', 'prices', 'tolerances'] as const) {
-    if (file[key] !== undefined) leftOut([key], report);
-  }
+  if (file.tolerances !== undefined) leftOut(['tolerances'], report);
   if (file.measured !== undefined) {
-    report.warn(['measured'], 'read and checked, but not worked out by this version yet: the computed figures stand');
+    report.warn(['measured'], 'taken for the load and the short circuit; all other figures stay as computed');
   }
   if (file.model.end_correction === 'off') {
     report.warn(['model', 'end_correction'], 'off: voltages are those of the slices alone, some percent too high');

@@ -1,6 +1,10 @@
+import type { Demagnetisation } from '../demagnetisation/demagnetisation.js';
 import type { EndFactor } from '../end-effect/end-factor.js';
+import { controllerWarning } from '../faults/fault-notes.js';
 import type { Inductance } from '../inductance/inductance.js';
 import type { Machine, Warning } from '../machine.js';
+import type { Approach } from '../mechanics/approach.js';
+import { describeMechanics } from '../mechanics/mechanics.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
 import type { Harmonics } from '../waves/series.js';
 import { amplitudeOf } from '../waves/series.js';
@@ -8,10 +12,12 @@ import { findCautions, overspeedPeak } from './cautions.js';
 import { circulatingEmf, computeEmf, describeEmf, endsOf, rectifiedPeak } from './emf.js';
 import { harmonicBound, relative } from './error-bounds.js';
 import { describeEffectiveB, describeLeg } from './leg-wave.js';
-import { describeMagnets } from './magnets.js';
-import { describeMasses, describePull } from './mechanical.js';
+import { describeMagnets, describeMargin } from './magnets.js';
+import { describeMasses, describePull, describeTotal, mapMechanics } from './mechanical.js';
 import { describeMerit } from './merit.js';
 import type { HarmonicsResult, MachineResult, SliceResult } from './result.js';
+import type { EddyFields } from './service.js';
+import { describeService } from './service.js';
 import { describeWinding } from './winding-figures.js';
 
 /** What only the caller knows of a run. */
@@ -30,6 +36,9 @@ export interface Findings {
   readonly refined?: { readonly change: number; readonly settled: boolean } | undefined;
   readonly endFactor?: EndFactor | undefined;
   readonly inductance?: Inductance | undefined;
+  readonly eddies?: EddyFields | undefined;
+  readonly approach?: Approach | undefined;
+  readonly demagnetisation?: Demagnetisation | undefined;
 }
 
 /**
@@ -40,17 +49,20 @@ export interface Findings {
  */
 export function describeMachine(
   machine: Machine,
-  { slices, refined, endFactor, inductance }: Findings,
+  { slices, refined, endFactor, inductance, eddies, approach, demagnetisation }: Findings,
   warnings: readonly Warning[],
   stamp: RunStamp,
 ): MachineResult {
   const emf = describeEmf(machine, slices, endFactor);
   const effectiveB = describeEffectiveB(machine, slices);
   const winding = describeWinding(machine, inductance);
-  const mechanical = describePull(machine, slices);
+  const pull = describePull(machine, slices);
+  const mechanics = describeMechanics(machine, slices, approach);
+  const masses = describeMasses(machine);
   const waves = computeEmf(machine, slices, endsOf(machine, endFactor));
   const openPeak = rectifiedPeak(waves);
-  const figures = { emf, winding, mechanical, openPeak, circulatingEmf: circulatingEmf(waves) };
+  const service = describeService(machine, waves, inductance, eddies, masses, openPeak);
+  const figures = { emf, winding, mechanical: pull, openPeak, circulatingEmf: circulatingEmf(waves), service };
   const overspeed = overspeedPeak(machine, openPeak);
   return {
     format: 'gapwright-result/1',
@@ -62,10 +74,15 @@ export function describeMachine(
     effective_B: effectiveB,
     winding,
     merit: describeMerit(machine, emf, effectiveB),
-    magnets: describeMagnets(machine),
-    faults: { ...(overspeed !== undefined && { overspeed_dc_peak_V: overspeed }) },
-    mechanical,
-    masses: describeMasses(machine),
+    magnets: { ...describeMagnets(machine), ...describeMargin(demagnetisation) },
+    ...(service.load !== undefined && { load: service.load }),
+    losses: service.losses,
+    ...(service.thermal !== undefined && { thermal: service.thermal }),
+    faults: { ...(overspeed !== undefined && { overspeed_dc_peak_V: overspeed }), ...service.faults },
+    mechanical: { ...pull, ...mapMechanics(mechanics) },
+    masses: { ...masses, resin_kg: mechanics.resin.mass },
+    ...(machine.prices !== undefined && { costs: describeTotal(machine, machine.prices, masses) }),
+    notes: [...service.notes, ...mechanics.notes, ...mechanics.leftOut.map(({ key, text }) => `${key}: ${text}`)],
     cautions: findCautions(machine, figures),
     warnings: [
       ...warnings,
@@ -74,8 +91,18 @@ export function describeMachine(
       ...unsettled(machine, refined),
       ...(machine.model.endCorrection ? (endFactor?.warnings ?? []) : []),
       ...(inductance?.warnings ?? []),
+      ...service.warnings,
+      ...controllerRoom(machine, overspeed),
+      ...(demagnetisation?.warnings ?? []),
+      ...mechanics.warnings,
     ],
   };
+}
+
+function controllerRoom({ limits }: Machine, overspeed: number | undefined): readonly Warning[] {
+  if (overspeed === undefined || limits.controllerVoltage === undefined) return [];
+  const warning = controllerWarning(overspeed, limits.controllerVoltage);
+  return warning === undefined ? [] : [warning];
 }
 
 /** On the mid-plane and averaged over the winding an order has one relative error: the shape between them is exact. */

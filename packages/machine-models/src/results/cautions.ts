@@ -1,17 +1,20 @@
+import { shortCircuitCaution } from '../faults/fault-notes.js';
 import type { Machine } from '../machine.js';
 import { remanenceAt } from '../materials/at-temperature.js';
 import { magnetLength, magnetReach } from '../rotor/magnet-shape.js';
 import type { EmfResult, MachineResult, WindingResult } from './result.js';
+import type { Service } from './service.js';
 
 /** What the cautions look at, beside the machine. */
 export interface CautionFigures {
   readonly emf: EmfResult;
   readonly winding: WindingResult;
-  readonly mechanical: MachineResult['mechanical'];
+  readonly mechanical: Pick<MachineResult['mechanical'], 'disc_pull_N'>;
   /** Highest rectified voltage with the load open at the operating speed, V. */
   readonly openPeak: number;
   /** Rms EMF per phase that drives current round a closed delta, V; see `circulatingEmf`. */
   readonly circulatingEmf: number;
+  readonly service: Service;
 }
 
 /** m/s^2, to tell a force in kgf. */
@@ -34,10 +37,8 @@ export function findCautions(machine: Machine, figures: CautionFigures): readonl
     shock(machine, figures.openPeak),
     flyingParts(machine),
     heat(machine),
-    demagnetisation(machine),
     circulation(machine, figures),
-    'Short circuit: its current and braking torque are not computed yet. A coreless machine can drive many times its ' +
-      'rated current; do not count on shorting it as a brake at speed.',
+    shorted(figures.service),
     'A preliminary design aid, not a certification: local electrical codes and licensed persons decide on whatever is ' +
       'connected to a building, a boat, a vehicle or a network.',
   ].filter((text) => text !== undefined);
@@ -95,16 +96,8 @@ function flyingParts({ rotor, operation }: Machine): string {
   );
 }
 
-/** Above this an ordinary NdFeB grade may lose strength for good, degC; makers' guide values for standard grades are 80. */
-const WARM_MAGNETS = 60;
-
-function demagnetisation({ rotor }: Machine): string | undefined {
-  const { temperature } = rotor.magnets;
-  if (temperature <= WARM_MAGNETS) return undefined;
-  return (
-    `Demagnetisation: at ${figure(temperature)} degC magnets may lose strength for good; whether these do is not checked by ` +
-    "this version. Ask the maker for the grade's curves at that temperature."
-  );
+function shorted({ short, brake, rated, warming }: Service): string | undefined {
+  return short && shortCircuitCaution(short, brake, rated, warming);
 }
 
 function heat({ winding }: Machine): string | undefined {

@@ -1,4 +1,6 @@
-import type { Disc, LibraryMaterial, Machine, Rotor } from '../machine.js';
+import { describeCosts } from '../costs/costs.js';
+import type { Disc, LibraryMaterial, Machine, Prices, Rotor } from '../machine.js';
+import type { Mechanics } from '../mechanics/mechanics.js';
 import { interpoleFace } from '../rotor/interpole-shape.js';
 import { magnetFace } from '../rotor/magnet-shape.js';
 import type { SliceAnswer } from '../slices/slice-answer.js';
@@ -7,7 +9,10 @@ import { relative } from './error-bounds.js';
 import type { MachineResult } from './result.js';
 
 /** Pull of one disc towards the other over the magnets' radial length:  poles x sum(weight x pull), N. */
-export function describePull(machine: Machine, slices: readonly SliceAnswer[]): MachineResult['mechanical'] {
+export function describePull(
+  machine: Machine,
+  slices: readonly SliceAnswer[],
+): Pick<MachineResult['mechanical'], 'disc_pull_N' | 'disc_pull_N_rel_err'> {
   const { poles } = machine.rotor;
   let pull = 0;
   let bound = 0;
@@ -76,4 +81,41 @@ function sum(masses: readonly (number | null | undefined)[]): number | undefined
   const there = masses.filter((mass) => mass !== undefined);
   if (there.length === 0 || there.includes(null)) return undefined;
   return there.reduce<number>((total, mass) => total + (mass ?? 0), 0);
+}
+
+/** Bending, clearance, retention and the pull on the way in, as the results name them. */
+export function mapMechanics({
+  discs,
+  clearance,
+  retention,
+  jacking,
+}: Mechanics): Partial<MachineResult['mechanical']> {
+  const edges = discs.map(({ edge }) => edge);
+  return {
+    ...(edges.length > 0 && {
+      disc_deflection_m: Math.max(...edges),
+      disc_stress_Pa: Math.max(...discs.map(({ stress }) => stress)),
+    }),
+    ...(clearance !== undefined && Number.isFinite(clearance.left) && { clearance_left_m: clearance.left }),
+    ...(retention !== undefined && { magnet_retention_N: retention.force, band_tension_N: retention.bandTension }),
+    ...(jacking !== undefined && { jacking: jacking.map(({ gap, force }) => ({ gap_m: gap, pull_N: force })) }),
+  };
+}
+
+/** `costs` of the results. */
+export function describeTotal(
+  { rotor }: Machine,
+  prices: Prices,
+  masses: MachineResult['masses'],
+): NonNullable<MachineResult['costs']> {
+  const parts = { magnets: masses.magnets_kg, copper: masses.copper_kg, steel: masses.steel_kg };
+  const known = Object.fromEntries(Object.entries(parts).filter(([, mass]) => mass !== undefined));
+  const steel = rotor.disc !== undefined || rotor.keeper !== undefined;
+  const {
+    currency,
+    priced,
+    total,
+    parts: costs,
+  } = describeCosts(prices, known, ['magnets', 'copper', ...(steel ? (['steel'] as const) : [])]);
+  return { ...(total !== undefined && { total }), priced, currency, parts: costs };
 }

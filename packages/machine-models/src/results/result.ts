@@ -1,3 +1,5 @@
+import type { LoadPoint } from '../load/load-point.js';
+import type { Match } from '../load/operating-points.js';
 import type { Warning } from '../machine.js';
 
 /** Content of results.json: SI units, the unit ends the key; `_rel_err` twins are bounds estimated from the mesh. */
@@ -24,13 +26,108 @@ export interface MachineResult {
     readonly line_B_squared_thickness_T2m_rel_err: number;
   };
   /** Main magnets at their temperature, and interpoles where they are of another material. */
-  readonly magnets: MagnetResult & { readonly interpoles?: MagnetResult };
-  /** Open-circuit peak at overspeed with cold magnets, scaled from the figures above; left out without an overspeed. */
-  readonly faults: { readonly overspeed_dc_peak_V?: number };
-  readonly mechanical: { readonly disc_pull_N: number; readonly disc_pull_N_rel_err: number };
-  readonly masses: { readonly magnets_kg?: number; readonly copper_kg: number; readonly steel_kg?: number };
+  readonly magnets: MagnetResult & {
+    readonly interpoles?: MagnetResult;
+    /** The magnet with the least margin, worst hundredth of its area, circuit open; left out where it is not known. */
+    readonly working_B_min_T?: number;
+    /** 1 - |H| / |H at the knee|. */
+    readonly demagnetisation_margin?: number;
+    /** The least of all states: open and shorted at the operating speed, and the coldest start where that is worse. */
+    readonly demagnetisation_margin_short?: number;
+    readonly worst_region?: string;
+  };
+  /** On its load at the operating speed; three phases. */
+  readonly load?: LoadResult;
+  readonly losses: LossResult;
+  readonly thermal?: ThermalResult;
+  readonly faults: {
+    /** Open-circuit peak at overspeed with cold magnets, scaled; left out without an overspeed. */
+    readonly overspeed_dc_peak_V?: number;
+    /** All terminals joined at the operating speed, hot: of one phase, steady rms, and the first peak. */
+    readonly short_circuit_A?: number;
+    readonly short_circuit_first_peak_A?: number;
+    readonly short_circuit_torque_Nm?: number;
+    /** Where joined terminals brake most. */
+    readonly greatest_brake_Nm?: number;
+    readonly greatest_brake_rpm?: number;
+    /** Speed from which the open machine's rectified voltage is taken for a shock hazard. */
+    readonly touch_voltage_rpm?: number;
+  };
+  readonly mechanical: {
+    readonly disc_pull_N: number;
+    readonly disc_pull_N_rel_err: number;
+    /** Rim of the disc that bends most, at the nominal gap. */
+    readonly disc_deflection_m?: number;
+    readonly disc_stress_Pa?: number;
+    /** Between winding and magnets once both discs have bent. */
+    readonly clearance_left_m?: number;
+    /** Centrifugal force on one magnet (of a Halbach array: one piece) at the highest speed given. */
+    readonly magnet_retention_N?: number;
+    readonly band_tension_N?: number;
+    /** While the discs come together, from far to the gap. */
+    readonly jacking?: readonly { readonly gap_m: number; readonly pull_N: number }[];
+  };
+  readonly masses: {
+    readonly magnets_kg?: number;
+    readonly copper_kg: number;
+    readonly steel_kg?: number;
+    readonly resin_kg?: number;
+  };
+  /** Of magnets, copper and steel, where prices are given; no total while a price or a mass is missing. */
+  readonly costs?: {
+    readonly total?: number;
+    readonly priced: number;
+    readonly currency: string;
+    readonly parts: { readonly magnets?: number; readonly copper?: number; readonly steel?: number };
+  };
+  /** What was taken for what the machine file does not tell. */
+  readonly notes: readonly string[];
   readonly cautions: readonly string[];
   readonly warnings: readonly Warning[];
+}
+
+/** One operating point; see `LoadPoint`. */
+export interface LoadRow extends Omit<LoadPoint, 'torque_Nm'> {
+  /** Electromagnetic, with drag and strand eddies. */
+  readonly shaft_W: number;
+  /** At the shaft. */
+  readonly torque_Nm: number;
+  readonly electromagnetic_torque_Nm: number;
+  /** Delivered over shaft power. */
+  readonly efficiency: number;
+}
+
+export interface LoadResult extends LoadRow {
+  readonly cut_in_rpm: number;
+  /** Rising in speed, from above cut-in to overspeed. */
+  readonly table: readonly LoadRow[];
+  /** The same speeds at other voltages of the bus. */
+  readonly buses?: readonly {
+    readonly voltage_V: number;
+    readonly cut_in_rpm: number;
+    readonly rows: readonly LoadRow[];
+  }[];
+  readonly prime_mover?: Pick<Match, 'outcome' | 'points'>;
+}
+
+/** W; those of the load are left out without one. */
+export interface LossResult {
+  readonly copper_W?: number;
+  readonly strand_eddy_W?: number;
+  readonly rectifier_W?: number;
+  readonly cable_W?: number;
+  /** Bearings and windage. */
+  readonly rotation_W: number;
+}
+
+export interface ThermalResult {
+  /** Left out where the heat runs away. */
+  readonly winding_C?: number;
+  readonly winding_middle_C?: number;
+  readonly limit_C: number;
+  /** Rms per phase, for good. */
+  readonly continuous_A: number;
+  readonly overloads: readonly { readonly times: number; readonly current_A: number; readonly from_cold_s: number }[];
 }
 
 export interface MagnetResult {
