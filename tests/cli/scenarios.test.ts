@@ -12,8 +12,6 @@ interface ByHand {
   readonly emf: number;
   /** Relative: coils of touching legs (by hand) are not the trapezia of the files, and the steel is not ideal. */
   readonly band: number;
-  /** Key of the results about which a warning is in place. */
-  readonly warned?: string;
 }
 
 /**
@@ -24,11 +22,11 @@ interface ByHand {
 const byHand: Readonly<Record<string, ByHand>> = {
   'hut-hydro': { emf: 53.8, band: 0.02 },
   'towed-spinner': { emf: 10.1 * (670 / 830), band: 0.03 },
-  'weather-station': { emf: 11.5, band: 0.04 },
+  'weather-station': { emf: 11.5 * (290 / 256), band: 0.04 },
   'field-charger': { emf: 29.0 * (11 / 10) * (1 - 0.0012 * 60), band: 0.04 }, // by hand: ten turns, cold
   'lab-rig': { emf: 4.19 * (268 / 300), band: 0.03 },
   'orchard-cart': { emf: 17.2, band: 0.04 },
-  'canal-launch': { emf: canalLaunch(), band: 0.04, warned: 'winding.phase_inductance_H' }, // much of it in the end turns
+  'canal-launch': { emf: canalLaunch(), band: 0.05 },
 };
 
 /**
@@ -42,7 +40,7 @@ const byHand: Readonly<Record<string, ByHand>> = {
  */
 function canalLaunch(): number {
   const [k, gap, depth, thickness, arc] = [10 / 0.112, 0.013, 0.01, 0.011, 0.7];
-  const remanence = 1.305 * (1 - 0.0012 * 20);
+  const remanence = 1.305 * (1 - 0.0012 * 20); // the middle of N42 grades
   const [a, b, c] = [(k * gap) / 2, k * depth, (k * thickness) / 2];
   const angle = (arc * Math.PI) / 2;
   const main = Math.sin(angle) * Math.sinh(b);
@@ -52,9 +50,6 @@ function canalLaunch(): number {
   const [turns, omega] = [10 * 3, (2 * Math.PI * 900) / 60];
   return (turns * omega * field * (Math.sin(spread) / spread) * (0.137 ** 2 - 0.087 ** 2)) / Math.SQRT2;
 }
-
-/** What a scenario may ask for and this version leaves out. */
-const leftOut = /^warning: (operation\.[a-z_]+|limits|prices|tolerances): read and checked; .* left out$/;
 
 describe('the scenarios', () => {
   test('are the files of their folder, and gapwright new knows them all', async () => {
@@ -70,17 +65,19 @@ describe('the scenarios', () => {
       expect((await run(['new', place, '--scenario', name])).status).toBe(0);
       const { status, err } = await run(['check', join(place, `${name}.yaml`)]);
       expect(status).toBe(0);
-      for (const line of err.split('\n').filter((text) => text !== '')) expect(line).toMatch(leftOut);
+      expect(err).toBe('');
     });
 
     test('solves to the wanted accuracy with no false warning, and gives the EMF of the hand calculation', async () => {
       const { status, out, err } = await run(['solve', join(folder, `${name}.yaml`), '--json']);
       expect(status, err).toBe(0);
       const said = err.split('\n').filter((text) => text !== '' && !/^\d+ slices solved in /.test(text));
-      for (const line of said) expect(line).toMatch(leftOut);
+      expect(said).toEqual([]);
       const result: MachineResult = JSON.parse(out);
-      const { emf, band, warned } = byHand[name];
-      for (const { key, text } of result.warnings) if (key !== warned) expect(text).toMatch(/^read and checked; /);
+      const { emf, band } = byHand[name];
+      expect(result.warnings).toEqual([]);
+      expect(result.load?.efficiency).toBeGreaterThan(0.5);
+      expect(result.magnets.demagnetisation_margin).toBeGreaterThan(0.1);
       for (const slice of result.slices) expect(slice.newton_steps).toBeGreaterThan(0);
       expect(result.effective_B.peak_T_rel_err).toBeLessThanOrEqual(0.002);
 

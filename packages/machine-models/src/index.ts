@@ -51,3 +51,5 @@ export { solveSlice } from './slices/solve-slice.js';
 export type { SolvedSlices } from './solve-machine.js';
 export { findAll, sliceSteps } from './solve-machine.js';
 export type { Harmonics } from './waves/series.js';
+export type { ChooserInput, WindingChoice } from './winding-chooser/chooser.js';
+export { chooseWinding } from './winding-chooser/chooser.js';

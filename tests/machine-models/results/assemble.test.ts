@@ -127,7 +127,6 @@ describe('cautions', () => {
   test('every machine has the general ones, the preliminary nature last', () => {
     const { cautions } = solve(machine);
     expect(cautions.at(-1)).toMatch(/preliminary.*licensed/);
-    expect(about(machine, /^Short circuit/)).toMatch(/not computed yet/);
   });
 
   test('crushing is told in N and kgf, unless magnets are small and the pull is slight', () => {
@@ -164,13 +163,6 @@ describe('cautions', () => {
   test('the rim speed is that of the disc at overspeed', () => {
     const rim = (2 * Math.PI * 756 * 0.165) / 60;
     expect(about(machine, /^Flying parts/)).toContain(`${rim.toFixed(1)} m/s at 756 rpm`);
-  });
-
-  test('magnets above 60 degC: that their loss of strength is not checked', () => {
-    const { rotor } = machine;
-    const warm = { ...machine, rotor: { ...rotor, magnets: { ...rotor.magnets, temperature: 90 } } };
-    expect(about(machine, /^Demagnetisation/)).toBeUndefined();
-    expect(about(warm, /^Demagnetisation/)).toMatch(/90 degC/);
   });
 
   test('saturated discs draw a warning, others none', () => {

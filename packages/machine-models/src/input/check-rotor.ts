@@ -94,10 +94,6 @@ function checkMagnetMaterial(
     const hot = temperatureWarning(material, temperature);
     if (hot !== undefined) report.warn(at, `${name}: ${hot}`);
   }
-  // The coldest start is the worst for ferrite.
-  const { cold } = file.operation;
-  const frozen = cold === undefined || cold >= temperature ? undefined : temperatureWarning(material, cold);
-  if (frozen !== undefined) report.warn(['operation', 'cold'], `${name}: ${frozen}`);
   if (material.remanenceSlope > 0) {
     const slope = figure(100 * material.remanenceSlope);
     report.warn(
