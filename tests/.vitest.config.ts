@@ -19,5 +19,6 @@ export default defineConfig({
     setupFiles: [fileURLToPath(new URL('../packages/cli/src/fused-products.ts', import.meta.url))],
     exclude: ['tests/long/**', '**/node_modules/**'],
     testTimeout: 60_000,
+    maxWorkers: 2, // the default leaves a core idle where there are two
   },
 });

@@ -56,10 +56,13 @@ describe('the report', () => {
       'EMF with no load',
       'Winding',
       'Merit',
+      'On its load',
+      'Losses and heat',
+      'Faults',
+      'Magnets at work',
       'Pull and masses',
       'Charts',
       'Flux lines and flux density',
-      'Warnings',
       'Cautions',
     ]);
     const charts = [...document.querySelectorAll('figure:not(.field)')];
