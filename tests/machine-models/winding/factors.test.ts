@@ -40,7 +40,7 @@ describe('single-tooth winding factors', () => {
     }
   });
 
-  test('12 coils on 14 poles: 0.933, as an e-bike project quotes [READ]', () => {
+  test('12 coils on 14 poles: 0.933, as a public page of builders quotes', () => {
     expect(singleToothWindingFactor(12, 14, 1)).toBeCloseTo(0.933, 3);
   });
 
