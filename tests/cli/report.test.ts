@@ -63,6 +63,7 @@ describe('the report', () => {
       'Pull and masses',
       'Charts',
       'Flux lines and flux density',
+      'Taken for granted',
       'Cautions',
     ]);
     const charts = [...document.querySelectorAll('figure:not(.field)')];

@@ -15,6 +15,7 @@ export function sheetText(sheet: Sheet, colour: boolean): string {
     colours.bold(title),
     '='.repeat(Math.min(width, Math.max(8, [...title].length))),
     ...sheet.groups.flatMap((group) => ['', ...groupLines(group, colours)]),
+    ...remarks('Taken for granted', sheet.notes ?? [], colours.dim, colours),
     ...remarks('Warnings', sheet.warnings, colours.yellow, colours),
     ...remarks('Cautions', sheet.cautions, colours.red, colours),
   ];

@@ -78,14 +78,15 @@ function speedTable(table: readonly LoadRow[]): SheetTable {
   };
 }
 
-function heatGroup({ losses, thermal, load }: MachineResult): SheetGroup {
+function heatGroup({ losses, thermal }: MachineResult): SheetGroup {
   const watt = (label: string, value: number | undefined): SheetRow[] =>
     value === undefined ? [] : [{ label, value: power(value) }];
   const rows: SheetRow[] = [
     ...watt('Copper', losses.copper_W),
     ...watt('Eddies in the strands', losses.strand_eddy_W),
-    ...watt('Rectifier', losses.rectifier_W),
-    ...watt('Cable', load === undefined || losses.cable_W === 0 ? undefined : losses.cable_W),
+    ...watt('Rectifier', losses.rectifier_W || undefined), // none, no row
+    ...watt('Cable', losses.cable_W || undefined),
+    ...watt('Current in the delta', losses.circulation_W),
     ...watt('Bearings and windage', losses.rotation_W),
   ];
   if (thermal !== undefined) {

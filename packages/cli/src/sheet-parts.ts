@@ -2,6 +2,8 @@
 export interface Sheet {
   readonly title: string;
   readonly groups: readonly SheetGroup[];
+  /** What was taken for what the file does not tell. */
+  readonly notes?: readonly string[];
   readonly warnings: readonly string[];
   readonly cautions: readonly string[];
 }

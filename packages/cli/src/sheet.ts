@@ -18,6 +18,7 @@ export function datasheet(machine: Machine, result: MachineResult): Sheet {
       ...serviceGroups(result),
       mechanicalGroup(result),
     ],
+    notes: result.notes.map(plainText),
     warnings: result.warnings.map(({ key, text }) => plainText(key === '' ? text : `${key}: ${text}`)),
     cautions: result.cautions.map(plainText),
   };

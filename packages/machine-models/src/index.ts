@@ -8,6 +8,11 @@ export type { ReadOptions, ReadResult } from './input/read-machine.js';
 export { readMachine } from './input/read-machine.js';
 export type { MaterialsReadResult } from './input/read-materials.js';
 export { readMaterials } from './input/read-materials.js';
+export { pathCirculation, pathEmfs } from './losses/circulation.js';
+export type { StrandChoice } from './losses/strand-choices.js';
+export { strandChoices } from './losses/strand-choices.js';
+export type { WindingField } from './losses/winding-field.js';
+export { windingField } from './losses/winding-field.js';
 export type { LibraryMaterial, Machine, Warning, Winding } from './machine.js';
 export type { DemagnetisationRows, Magnet } from './materials/at-temperature.js';
 export {

@@ -2,11 +2,10 @@ import { describe, expect, test } from 'vitest';
 import { computeDemagnetisation } from '../../../packages/machine-models/src/demagnetisation/demagnetisation.js';
 import { solveFineSlice } from '../../../packages/machine-models/src/demagnetisation/fine-slice.js';
 import { fieldStrength, magnetSamples } from '../../../packages/machine-models/src/demagnetisation/magnet-samples.js';
-import { usedShare } from '../../../packages/machine-models/src/demagnetisation/used-share.js';
 import type { Machine } from '../../../packages/machine-models/src/machine.js';
 import { coercivityAt, remanenceAt } from '../../../packages/machine-models/src/materials/at-temperature.js';
 import { solveSlice } from '../../../packages/machine-models/src/slices/solve-slice.js';
-import { hutHydro, overlappedHydro, relativeError } from '../../helpers/machines.js';
+import { hutHydro, relativeError } from '../../helpers/machines.js';
 import { halbachHydro, interpoled, keeperHydro, roundHydro, withRotor } from '../slices/variants.js';
 
 const solve = (machine: Machine) => machine.model.slices.map((slice) => solveSlice(machine, slice));
@@ -162,31 +161,4 @@ describe('other magnets', () => {
     expect(magnets[0]?.limit).toBeUndefined();
     expect(warnings.map(({ text }) => text).join()).toMatch(/left out for magnet_42: its coercivity at 20 degC/);
   });
-});
-
-test('the picture: a wide magnet between ideal discs uses the same share throughout, all else none', () => {
-  const machine = hutHydro();
-  const { thickness, meanRadius, material, temperature } = machine.rotor.magnets;
-  const magnets = { shape: 'sector', arc: 0.7, length: 0.055, segments: 1, thickness, meanRadius, material } as const;
-  const wide: Machine = {
-    ...withRotor({ poles: 2, magnets: { ...magnets, temperature } }),
-    materials: { ...machine.materials, plate: { kind: 'steel', muR: 1e7, source: 'ideal' } },
-  };
-  const slice = solveSlice({ ...wide, winding: overlappedHydro().winding }, { radius: 0.2, weight: 1 });
-  const share = usedShare(wide, slice);
-  const { mesh } = slice.field;
-  const b = (1.3 * 0.024) / (0.024 + 1.05 * 0.019);
-  const expected = (1.3 - b) / (4e-7 * Math.PI * 1.05) / 955e3;
-  let met = 0;
-  mesh.triangleToRegion.forEach((region, t) => {
-    const corners = [0, 1, 2].map((i) => mesh.xy[2 * (mesh.triangles[3 * t + i] ?? 0)] ?? 0);
-    for (const part of share.subarray(6 * t, 6 * t + 6)) {
-      if (mesh.regionNames[region] !== 'upper magnet') expect(part).toBe(0);
-      else if (Math.max(...corners) < 0.1) {
-        met++;
-        expect(relativeError(part, expected)).toBeLessThan(1e-3);
-      }
-    }
-  });
-  expect(met).toBeGreaterThan(6);
 });

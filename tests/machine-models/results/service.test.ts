@@ -123,3 +123,13 @@ test('costs are masses times prices, with no total where a price is missing', ()
   const { steel: _, ...some } = prices;
   expect(resultOf({ ...hutHydro(), prices: some }).costs).not.toHaveProperty('total');
 });
+
+test('a closed delta without a load is heated by the current round it, 3 R I^2; a star has none', () => {
+  const delta = resultOf(withWinding(hutHydro(), { connection: 'delta' }));
+  const { phase_resistance_hot_ohm: resistance } = delta.winding;
+  const current = Math.sqrt((delta.losses.circulation_W ?? 0) / (3 * resistance));
+  expect(current).toBeGreaterThan(0.1);
+  const told = delta.cautions.find((text) => /^Circulating/.test(text));
+  expect(Number(/up to ([\d.]+) A/.exec(told ?? '')?.[1])).toBeCloseTo(current, 1);
+  expect(resultOf(hutHydro()).losses).not.toHaveProperty('circulation_W');
+});

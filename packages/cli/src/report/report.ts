@@ -37,6 +37,7 @@ export function reportHtml(sheet: Sheet, result: MachineResult, pictures: readon
     ...drawCharts(result).map(chartHtml),
     '<h2>Flux lines and flux density</h2>',
     ...pictures.map((picture) => `<figure class="field">\n${picture}</figure>`),
+    ...remarksHtml('notes', 'Taken for granted', sheet.notes ?? []),
     ...remarksHtml('warnings', 'Warnings', sheet.warnings),
     ...remarksHtml('cautions', 'Cautions', sheet.cautions),
     '</main>',

@@ -3,7 +3,7 @@ import type { BrakePoint } from './brake.js';
 import type { ShortCircuit } from './short-circuit.js';
 
 /** Above this a DC voltage is taken for a shock hazard, V; from memory, limits differ by country. */
-const TOUCH_VOLTAGE = 60;
+export const TOUCH_VOLTAGE = 60;
 
 /**
  * Speed from which the rectified voltage of the open machine can kill who touches it, rpm.
@@ -72,8 +72,8 @@ export function shortCircuitCaution(
   return sentences.join(' ');
 }
 
-/** Three significant digits at least, no exponent. */
-function figure(value: number): string {
+/** At least three significant digits, no exponent, no zeros after the point alone. */
+export function figure(value: number): string {
   const digits = value === 0 ? 0 : Math.max(0, 2 - Math.floor(Math.log10(Math.abs(value))));
   return value.toFixed(Math.min(digits, 6)).replace(/\.0+$/, '');
 }

@@ -1,4 +1,4 @@
-import { shortCircuitCaution } from '../faults/fault-notes.js';
+import { figure, shortCircuitCaution, TOUCH_VOLTAGE } from '../faults/fault-notes.js';
 import type { Machine } from '../machine.js';
 import { remanenceAt } from '../materials/at-temperature.js';
 import { magnetLength, magnetReach } from '../rotor/magnet-shape.js';
@@ -19,9 +19,6 @@ export interface CautionFigures {
 
 /** m/s^2, to tell a force in kgf. */
 const STANDARD_GRAVITY = 9.80665;
-
-/** Above this a DC voltage is taken for a shock hazard, V; from memory, limits differ by country. */
-const TOUCH_VOLTAGE = 60;
 
 /** Metal above this burns the skin that touches it, degC; from memory. */
 const TOUCH_TEMPERATURE = 60;
@@ -112,15 +109,9 @@ function heat({ winding }: Machine): string | undefined {
 function circulation({ winding }: Machine, figures: CautionFigures): string | undefined {
   const { emf, circulatingEmf } = figures;
   if (winding.connection !== 'delta' || circulatingEmf <= 0.01 * emf.phase.fundamental_rms_V) return undefined;
-  const current = circulatingEmf / figures.winding.phase_resistance_hot_ohm;
+  const current = figures.service.roundDelta ?? circulatingEmf / figures.winding.phase_resistance_hot_ohm;
   return (
     `Circulating current: harmonics 3, 9, 15, ... put ${figure(circulatingEmf)} V rms per phase round the closed delta and ` +
     `drive up to ${figure(current)} A through it with no load, which heats and brakes. Star avoids it.`
   );
-}
-
-/** At least three significant digits, no exponent, no zeros after the point alone. */
-function figure(value: number): string {
-  const digits = value === 0 ? 0 : Math.max(0, 2 - Math.floor(Math.log10(Math.abs(value))));
-  return value.toFixed(Math.min(digits, 6)).replace(/\.0+$/, '');
 }

@@ -116,6 +116,8 @@ export interface LossResult {
   readonly strand_eddy_W?: number;
   readonly rectifier_W?: number;
   readonly cable_W?: number;
+  /** Of a delta without a load: by the current round it; on a load it is part of the copper's. */
+  readonly circulation_W?: number;
   /** Bearings and windage. */
   readonly rotation_W: number;
 }

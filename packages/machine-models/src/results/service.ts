@@ -9,6 +9,8 @@ import { loadPoint, loadTable, loadWarnings } from '../load/load-table.js';
 import { operatingPoints } from '../load/operating-points.js';
 import type { Source } from '../load/source.js';
 import { phasesFromPeaks } from '../load/source.js';
+import type { Circulation } from '../losses/circulation.js';
+import { deltaCirculation } from '../losses/circulation.js';
 import type { DragTorque } from '../losses/drag.js';
 import { dragTorque, rotorSize } from '../losses/drag.js';
 import type { WindingEddies } from '../losses/winding-eddies.js';
@@ -17,6 +19,7 @@ import type { WindingField } from '../losses/winding-field.js';
 import type { Machine, Warning } from '../machine.js';
 import type { WindingThermal } from '../thermal/winding-temperature.js';
 import { windingThermal } from '../thermal/winding-temperature.js';
+import { combine } from '../waves/series.js';
 import { copperMass, phaseResistance } from '../winding/turn.js';
 import type { Emf } from './emf.js';
 import type { LoadResult, LossResult, MachineResult, ThermalResult } from './result.js';
@@ -40,6 +43,8 @@ export interface Service {
   /** Copper's first warming on a short circuit, K/s. */
   readonly warming: number;
   readonly brake: ReturnType<typeof greatestBrake>;
+  /** Current that flows round a closed delta with no load, rms, A. */
+  readonly roundDelta?: number;
   readonly warnings: readonly Warning[];
   /** What was taken for what the machine does not tell. */
   readonly notes: readonly string[];
@@ -116,6 +121,7 @@ export function describeService(
   const known = inductance !== undefined || machine.measured?.phaseInductance !== undefined;
   const short = known ? shortCircuit(shorted, operation.speedRpm) : undefined;
   const brake = known ? greatestBrake(shorted) : undefined;
+  const round = roundDelta(machine, shorted);
   const touch = touchSpeed(openPeak, operation.speedRpm);
   return {
     ...(served !== undefined && { load: served.load }),
@@ -126,6 +132,8 @@ export function describeService(
         cable_W: point.cable_W,
       }),
       ...(own !== undefined && { strand_eddy_W: own.loss }),
+      // On a load it is part of the copper's.
+      ...(point === undefined && round !== undefined && { circulation_W: round.loss }),
       rotation_W: drag.loss,
     },
     ...(heat !== undefined && { thermal: describeHeat(heat) }),
@@ -142,14 +150,24 @@ export function describeService(
     rated: point === undefined ? {} : { current: point.phase_rms_A, torque: served?.load.torque_Nm ?? point.torque_Nm },
     warming: short === undefined ? 0 : heatingRate(short.heat, copperMass(winding, rotor.poles)),
     brake,
+    ...(round !== undefined && { roundDelta: round.current[0] }),
     warnings: [...(served?.warnings ?? []), ...(own?.warnings ?? []), ...(heat?.warnings ?? [])],
     notes: [
       ...(drag.assumed === undefined ? [] : [drag.assumed]),
-      ...(heat === undefined ? [] : [heat.cooling]),
+      ...(heat === undefined ? [] : [`cooling of the winding: ${heat.cooling}`]),
       ...(heat?.limit.assumed === undefined ? [] : [`limit of the winding: ${heat.limit.assumed}`]),
       ...(served?.notes ?? []),
     ],
   };
+}
+
+/** Of a delta whose inductance to currents alike in all phases is known. */
+function roundDelta({ winding, operation }: Machine, shorted: ShortedMachine): Circulation | undefined {
+  const { homopolarInductance: inductance, resistance, poles, emf, speedRpm } = shorted;
+  if (winding.connection !== 'delta' || inductance === undefined) return undefined;
+  const now = operation.speedRpm / speedRpm;
+  const phases = emf.map((wave) => combine([wave], [now]));
+  return deltaCirculation(phases, { resistance, inductance, omega: turning(operation.speedRpm), polePairs: poles / 2 });
 }
 
 const turning = (rpm: number): number => (2 * Math.PI * rpm) / 60;
